@@ -1,0 +1,3 @@
+//! The batch runner: everything that touches the outside world (JSON, HDF5, terminal, pictures, signals, time).
+//!
+//! The physics lives in [`tdse_core`]; this crate turns one configuration file into checked, self-describing results.
