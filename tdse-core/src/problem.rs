@@ -1,0 +1,110 @@
+//! What is asked and how it is computed, as plain data: [`Problem`], [`Numerics`], [`Record`].
+
+use crate::field::Field;
+use crate::grid::Grid;
+use crate::potential::Potential;
+
+/// One model atom in one field.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Problem {
+    /// Potential energy of the active electron.
+    pub potential: Potential,
+    /// State before the field.
+    pub initial: InitialState,
+    /// The laser field.
+    pub field: Field,
+}
+
+/// State of the electron before the field, in terms of bound states counted from 0 by rising energy.
+#[derive(Clone, Debug, PartialEq)]
+pub enum InitialState {
+    /// One bound state.
+    Single(usize),
+    /// Coherent superposition of bound states; the weights are probabilities and are normalised to sum 1.
+    Superposition(Vec<Term>),
+}
+
+impl InitialState {
+    /// The highest state number that takes part.
+    pub fn highest(&self) -> usize {
+        match self {
+            Self::Single(number) => *number,
+            Self::Superposition(terms) => terms.iter().map(|t| t.number).max().unwrap_or(0),
+        }
+    }
+}
+
+/// One member of a superposition: √weight e^{i phase} |number⟩, with ⟨x|number⟩ > 0 for x → +∞.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Term {
+    /// Number of the bound state.
+    pub number: usize,
+    /// Probability, before normalisation.
+    pub weight: f64,
+    /// Phase at the start of the run, rad.
+    pub phase: f64,
+}
+
+/// Splitting of a time step.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Scheme {
+    /// Fourth order with gradient-corrected potential (Chin, Chen, J. Chem. Phys. 117, 1409 (2002), scheme 4A).
+    FourthOrder,
+    /// Second order (Strang, SIAM J. Numer. Anal. 5, 506 (1968)).
+    Strang,
+}
+
+/// Gauge in which the equation is solved.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Gauge {
+    /// H = p²/2 + V + r·E.
+    Length,
+    /// H = (p + A)²/2 + V.
+    Velocity,
+}
+
+/// What happens at the edges of the box.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Absorber {
+    /// Nothing: the box is periodic, and nothing may reach its edge.
+    None,
+    /// Smooth complex absorber of this width at each side, bohr.
+    Smooth {
+        /// Width per side, bohr.
+        width: f64,
+    },
+}
+
+impl Absorber {
+    /// Width per side, bohr.
+    pub fn width(&self) -> f64 {
+        match self {
+            Self::None => 0.0,
+            Self::Smooth { width } => *width,
+        }
+    }
+}
+
+/// Every choice that fixes the bits of a run.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Numerics {
+    /// Grid in space.
+    pub grid: Grid,
+    /// Time step τ, a.u.
+    pub time_step: f64,
+    /// Splitting.
+    pub scheme: Scheme,
+    /// Gauge.
+    pub gauge: Gauge,
+    /// Edges.
+    pub absorber: Absorber,
+    /// Field-free time after the field, a.u.
+    pub trailing_time: f64,
+}
+
+/// What is recorded beside field, acceleration and norm.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Default)]
+pub struct Record {
+    /// Number of bound states, from the lowest, whose populations are recorded in time.
+    pub populations: usize,
+}
