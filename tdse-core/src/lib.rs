@@ -19,4 +19,5 @@ pub mod field;
 pub mod grid;
 pub mod potential;
 pub mod problem;
+pub mod stationary;
 pub mod units;

@@ -1,0 +1,55 @@
+//! Stationary states: grid-free levels of a model atom, the softening that gives a level, and bound states on a grid.
+
+mod bound;
+mod level;
+mod magnus;
+mod root;
+mod tune;
+
+pub use bound::{BoundStates, bound_states, bound_states_below};
+pub use level::{Level, count_below, level};
+pub use tune::{Softenable, tune_softening};
+
+/// Why a stationary state could not be had.
+#[derive(Clone, Debug, PartialEq, thiserror::Error)]
+pub enum StationaryError {
+    /// The atom has fewer bound states.
+    #[error("state {number} does not exist: this potential binds {bound} state(s), numbered 0 to {}", bound.saturating_sub(1))]
+    NoSuchState {
+        /// Number asked for.
+        number: usize,
+        /// How many there are.
+        bound: usize,
+    },
+    /// No softening gives the energy asked for.
+    #[error(
+        "no softening between {smallest} and {largest} bohr gives state {number} the energy {energy} hartree: \
+         it reaches from {lowest} to {highest} hartree"
+    )]
+    OutOfReach {
+        /// Number of the state.
+        number: usize,
+        /// Energy asked for, hartree.
+        energy: f64,
+        /// Smallest softening tried, bohr.
+        smallest: f64,
+        /// Largest softening tried, bohr.
+        largest: f64,
+        /// Energy at the smallest softening.
+        lowest: f64,
+        /// Energy at the largest softening.
+        highest: f64,
+    },
+    /// An iteration did not reach its accuracy.
+    #[error("{what} did not converge: {reached:e} reached, {wanted:e} wanted ({unit})")]
+    NotConverged {
+        /// What was iterated.
+        what: &'static str,
+        /// Accuracy reached.
+        reached: f64,
+        /// Accuracy wanted.
+        wanted: f64,
+        /// Unit of both.
+        unit: &'static str,
+    },
+}

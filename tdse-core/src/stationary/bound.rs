@@ -1,0 +1,190 @@
+//! Bound states of the Hamiltonian as the grid represents it: what a run starts from and is projected on.
+
+use nalgebra::{DMatrix, DVector, SymmetricEigen};
+use num_complex::Complex;
+
+use super::{StationaryError, count_below, level};
+use crate::grid::{Grid, Transform};
+use crate::potential::{Potential, PotentialOnGrid};
+
+/// Residual |Hψ - Eψ| wanted of every state, hartree. The energy error is its square over the level distance.
+const RESIDUAL: f64 = 1e-11;
+/// Residual that is still accepted where rounding on a fine grid, or a level close to the threshold, allows no better:
+/// the energy is then good to 1e-10 hartree for level distances down to 1e-6 hartree.
+const ACCEPTED: f64 = 1e-8;
+/// Most iterations.
+const ITERATIONS: usize = 400;
+
+/// The lowest bound states of a grid's Hamiltonian, by rising energy.
+#[derive(Clone, Debug, PartialEq)]
+pub struct BoundStates {
+    /// Energies, hartree.
+    pub energies: Vec<f64>,
+    /// Real wave functions, each of the grid's length, ∫ψ² = 1, positive towards x → +∞.
+    pub states: Vec<Vec<f64>>,
+}
+
+/// The `count` lowest states of `potential` on a one-dimensional grid.
+///
+/// # Errors
+/// [`StationaryError::NoSuchState`] where fewer are bound, [`StationaryError::NotConverged`].
+pub fn bound_states(potential: &Potential, grid: &Grid, count: usize) -> Result<BoundStates, StationaryError> {
+    let mut guesses = Vec::with_capacity(count);
+    let positions: Vec<f64> = grid.x.positions().collect();
+    for number in 0..count {
+        guesses.push(level(potential, number)?.wave_function(potential, &positions));
+    }
+    let hamiltonian = Hamiltonian::new(PotentialOnGrid::sample(potential, grid).values, grid);
+    lowest(&hamiltonian, guesses, count)
+}
+
+/// All states of `potential` on the grid with an energy below zero, among them those the box squeezes.
+///
+/// # Errors
+/// [`StationaryError::NotConverged`].
+pub fn bound_states_below(potential: &Potential, grid: &Grid) -> Result<BoundStates, StationaryError> {
+    let half = 0.5 * grid.x.extent();
+    let count = count_below(potential, 0.0, half);
+    let mut found = bound_states(potential, grid, count)?;
+    let bound = found.energies.partition_point(|&e| e < 0.0);
+    found.energies.truncate(bound);
+    found.states.truncate(bound);
+    Ok(found)
+}
+
+/// H = p²/2 + V on real functions, with a preconditioner.
+struct Hamiltonian {
+    potential: Vec<f64>,
+    /// k²/2 in the order of the transform, divided by the number of points.
+    kinetic: Vec<f64>,
+    transform: Transform,
+    cell: f64,
+}
+
+impl Hamiltonian {
+    fn new(potential: Vec<f64>, grid: &Grid) -> Self {
+        let kinetic = grid.x.momenta().map(|k| 0.5 * k * k).collect();
+        Self { potential, kinetic, transform: Transform::new(grid.x.points), cell: grid.cell() }
+    }
+
+    /// Applies g(k²/2) to a real function.
+    fn in_momentum(&self, psi: &DVector<f64>, g: impl Fn(f64) -> f64) -> DVector<f64> {
+        let mut work: Vec<Complex<f64>> = psi.iter().map(|&p| Complex::new(p, 0.0)).collect();
+        let mut scratch = self.transform.make_scratch();
+        self.transform.forward(&mut work, &mut scratch);
+        let scale = 1.0 / psi.len() as f64;
+        for (w, &t) in work.iter_mut().zip(&self.kinetic) {
+            *w *= g(t) * scale;
+        }
+        self.transform.inverse(&mut work, &mut scratch);
+        DVector::from_iterator(psi.len(), work.iter().map(|w| w.re))
+    }
+
+    fn apply(&self, psi: &DVector<f64>) -> DVector<f64> {
+        let mut out = self.in_momentum(psi, |t| t);
+        for ((o, v), p) in out.iter_mut().zip(&self.potential).zip(psi.iter()) {
+            *o += v * p;
+        }
+        out
+    }
+}
+
+/// Locally optimal block preconditioned conjugate gradients (Knyazev, SIAM J. Sci. Comput. 23, 517 (2001),
+/// algorithm 5.1), the basis orthonormalised in every round.
+fn lowest(h: &Hamiltonian, guesses: Vec<Vec<f64>>, count: usize) -> Result<BoundStates, StationaryError> {
+    let mut x: Vec<DVector<f64>> = guesses.into_iter().map(DVector::from_vec).collect();
+    orthonormalise(&mut x, 0);
+    let mut directions: Vec<DVector<f64>> = Vec::new();
+    let (mut energies, mut worst, mut best) = (vec![0.0; count], f64::INFINITY, f64::INFINITY);
+    let mut stalled = 0;
+    for _ in 0..ITERATIONS {
+        let mut basis = x.clone();
+        let mut images: Vec<DVector<f64>> = x.iter().map(|v| h.apply(v)).collect();
+        worst = 0.0;
+        for i in 0..count {
+            energies[i] = x[i].dot(&images[i]);
+            let residual = &images[i] - energies[i] * &x[i];
+            worst = f64::max(worst, residual.norm());
+            let shift = energies[i].abs().max(0.05);
+            basis.push(h.in_momentum(&residual, |t| 1.0 / (t + shift)));
+        }
+        if worst < RESIDUAL {
+            break;
+        }
+        stalled = if worst < 0.7 * best { 0 } else { stalled + 1 };
+        best = best.min(worst);
+        if best < ACCEPTED && stalled > 12 {
+            break;
+        }
+        basis.append(&mut directions);
+        orthonormalise(&mut basis, count);
+        images.extend(basis[count..].iter().map(|v| h.apply(v)));
+        (x, directions) = ritz(&basis, &images, count);
+    }
+    if worst > ACCEPTED {
+        return Err(StationaryError::NotConverged {
+            what: "the bound states on the grid",
+            reached: worst,
+            wanted: RESIDUAL,
+            unit: "hartree",
+        });
+    }
+    Ok(BoundStates { energies, states: x.iter().map(|v| finished(v, h.cell)).collect() })
+}
+
+/// The `count` lowest Ritz vectors of the basis, and their parts outside the first `count` basis vectors.
+fn ritz(
+    basis: &[DVector<f64>],
+    images: &[DVector<f64>],
+    count: usize,
+) -> (Vec<DVector<f64>>, Vec<DVector<f64>>) {
+    let size = basis.len();
+    let matrix = DMatrix::from_fn(size, size, |i, j| {
+        let (i, j) = (i.min(j), i.max(j));
+        basis[i].dot(&images[j])
+    });
+    let eigen = SymmetricEigen::new(matrix);
+    let mut order: Vec<usize> = (0..size).collect();
+    order.sort_by(|&i, &j| eigen.eigenvalues[i].total_cmp(&eigen.eigenvalues[j]));
+    let combine = |column: usize, from: usize| {
+        let mut sum = DVector::zeros(basis[0].len());
+        for (i, vector) in basis.iter().enumerate().skip(from) {
+            sum.axpy(eigen.eigenvectors[(i, column)], vector, 1.0);
+        }
+        sum
+    };
+    let x = order[..count].iter().map(|&c| combine(c, 0)).collect();
+    let directions = order[..count].iter().map(|&c| combine(c, count)).collect();
+    (x, directions)
+}
+
+/// Gram–Schmidt, twice, of all vectors from `first` on; those that vanish are dropped.
+fn orthonormalise(vectors: &mut Vec<DVector<f64>>, first: usize) {
+    let mut kept: Vec<DVector<f64>> = vectors.drain(..first).collect();
+    for mut vector in vectors.drain(..) {
+        let before = vector.norm();
+        if before == 0.0 {
+            continue;
+        }
+        vector /= before;
+        for _ in 0..2 {
+            for other in &kept {
+                let overlap = other.dot(&vector);
+                vector.axpy(-overlap, other, 1.0);
+            }
+        }
+        let left = vector.norm();
+        if left > 1e-12 {
+            kept.push(vector / left);
+        }
+    }
+    *vectors = kept;
+}
+
+/// Normalised to ∫ψ² = 1, with the sign that makes it positive towards x → +∞.
+fn finished(vector: &DVector<f64>, cell: f64) -> Vec<f64> {
+    let largest = vector.amax();
+    let outermost = vector.iter().rev().find(|v| v.abs() > 1e-3 * largest).copied().unwrap_or(1.0);
+    let scale = outermost.signum() / (vector.norm() * cell.sqrt());
+    vector.iter().map(|v| v * scale).collect()
+}
