@@ -2,7 +2,9 @@
 
 use tdse_core::grid::Grid;
 use tdse_core::potential::Potential;
-use tdse_core::stationary::{Softenable, StationaryError, bound_states, bound_states_below, level, tune_softening};
+use tdse_core::stationary::{
+    Softenable, StationaryError, bound_states, bound_states_below, level, tune_softening,
+};
 use tdse_core::units::HARTREE_EV;
 
 fn soft(softening: f64) -> Potential {
@@ -41,7 +43,10 @@ fn grid_free_levels_of_the_soft_core_atom() {
         for (number, expected) in levels.into_iter().enumerate() {
             let found = level(&soft(softening), number).unwrap().energy;
             println!("a = {softening:.4}, n = {number}: {found:.12} against {expected:.11}");
-            assert!((found - expected).abs() < 1e-10, "a = {softening}, n = {number}: {found} against {expected}");
+            assert!(
+                (found - expected).abs() < 1e-10,
+                "a = {softening}, n = {number}: {found} against {expected}"
+            );
         }
     }
 }
@@ -61,7 +66,10 @@ fn levels_of_the_poschl_teller_well() {
                 assert!((free - expected).abs() < 1e-10, "λ = {lambda}, n = {n}: {free} against {expected}");
                 if lambda != 2.5 {
                     let found = on_grid.energies[n];
-                    assert!((found - expected).abs() < 1e-9, "grid, λ = {lambda}, n = {n}: {found} against {expected}");
+                    assert!(
+                        (found - expected).abs() < 1e-9,
+                        "grid, λ = {lambda}, n = {n}: {found} against {expected}"
+                    );
                 }
             }
             assert_eq!(level(&well, bound), Err(StationaryError::NoSuchState { number: bound, bound }));
@@ -125,7 +133,11 @@ fn tuned_softenings_give_the_ionization_energies_of_the_elements() {
         }
         // The tuned atom, on a fine grid, by the other solver.
         let on_grid = bound_states(&soft(softening), &Grid::line(4096, 0.03), 1).unwrap();
-        assert!((on_grid.energies[0] - energy).abs() < 1e-9, "{name}: {} against {energy}", on_grid.energies[0]);
+        assert!(
+            (on_grid.energies[0] - energy).abs() < 1e-9,
+            "{name}: {} against {energy}",
+            on_grid.energies[0]
+        );
     }
 }
 

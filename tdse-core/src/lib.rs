@@ -13,11 +13,14 @@
 //! A wrong call by a programmer panics with the broken inequality; wrong input is a `Result`.
 //! This crate never prints, opens no file and knows no clock.
 
+pub mod absorber;
 pub mod choose;
 pub mod cubic;
 pub mod field;
 pub mod grid;
 pub mod potential;
 pub mod problem;
+pub mod simulate;
 pub mod stationary;
+pub mod step;
 pub mod units;

@@ -28,7 +28,11 @@ pub struct BoundStates {
 ///
 /// # Errors
 /// [`StationaryError::NoSuchState`] where fewer are bound, [`StationaryError::NotConverged`].
-pub fn bound_states(potential: &Potential, grid: &Grid, count: usize) -> Result<BoundStates, StationaryError> {
+pub fn bound_states(
+    potential: &Potential,
+    grid: &Grid,
+    count: usize,
+) -> Result<BoundStates, StationaryError> {
     let mut guesses = Vec::with_capacity(count);
     let positions: Vec<f64> = grid.x.positions().collect();
     for number in 0..count {

@@ -39,8 +39,13 @@ impl Level {
             positions[..=split.min(positions.len() - 1)].iter().copied(),
             step,
         );
-        let right =
-            decaying_solution(potential, self.energy, right_end, positions[split..].iter().rev().copied(), step);
+        let right = decaying_solution(
+            potential,
+            self.energy,
+            right_end,
+            positions[split..].iter().rev().copied(),
+            step,
+        );
         // The two pieces meet at positions[split]; they are scaled to agree there in (ψ, ψ') as well as they can.
         let (l, r) = (left[left.len() - 1], right[right.len() - 1]);
         let r = [r[0], -r[1]];
@@ -66,7 +71,10 @@ fn meeting_point(potential: &Potential) -> f64 {
 fn meshes(potential: &Potential, reach: f64, fineness: f64) -> [Mesh; 2] {
     let near = meeting_point(potential);
     let (first, last) = potential.domain();
-    [Mesh::new(potential, (-reach).max(first), near, fineness), Mesh::new(potential, reach.min(last), near, fineness)]
+    [
+        Mesh::new(potential, (-reach).max(first), near, fineness),
+        Mesh::new(potential, reach.min(last), near, fineness),
+    ]
 }
 
 /// Continuous, rising function of the energy that is n at level n.
@@ -149,7 +157,10 @@ fn locate(potential: &Potential, number: usize, reach: f64) -> Result<f64, Stati
         if reach < whole(potential) && potential.far_charge() > 0.0 {
             return Ok(THRESHOLD); // a larger box holds it
         }
-        return Err(StationaryError::NoSuchState { number, bound: (at_top + number as f64 + 1.0).floor() as usize });
+        return Err(StationaryError::NoSuchState {
+            number,
+            bound: (at_top + number as f64 + 1.0).floor() as usize,
+        });
     }
     Ok(brent(f, [(bottom, f(bottom)), (top, at_top)], 1e-8))
 }

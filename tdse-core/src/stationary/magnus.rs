@@ -67,7 +67,8 @@ impl Mesh {
             t.copysign(x)
         };
         let to_x = |s: f64| {
-            let t = if growth == 0.0 { s.abs() * scale } else { (growth * s.abs()).exp_m1() * scale / growth };
+            let t =
+                if growth == 0.0 { s.abs() * scale } else { (growth * s.abs()).exp_m1() * scale / growth };
             t.copysign(s)
         };
         let (s_far, s_near) = (to_s(far), to_s(near));
@@ -77,9 +78,7 @@ impl Mesh {
             _ if i == count => near,
             _ => to_x(s_far + (s_near - s_far) * i as f64 / count as f64),
         };
-        let intervals = (0..count)
-            .map(|i| Interval::new(potential, node(i), node(i + 1)))
-            .collect();
+        let intervals = (0..count).map(|i| Interval::new(potential, node(i), node(i + 1))).collect();
         Self { intervals, far_value: potential.value(far) }
     }
 

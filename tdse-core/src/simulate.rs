@@ -1,0 +1,380 @@
+//! Propagation: a plan made once, a state that can be stopped and continued, a series of what was recorded.
+
+use std::sync::Arc;
+
+use num_complex::Complex;
+
+use crate::field::Field;
+use crate::grid::Grid;
+use crate::potential::{Potential, PotentialOnGrid};
+use crate::problem::{Gauge, InitialState, Numerics, Problem, Record};
+use crate::stationary::{BoundStates, StationaryError, bound_states};
+use crate::step::{Drive, Line, LineWorkspace, Moments};
+
+/// Most population samples kept of a run.
+const POPULATION_SAMPLES: usize = 512;
+
+/// A model atom on a grid: computed once for all runs that share it.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Atom {
+    /// Potential and gradient.
+    pub potential: PotentialOnGrid,
+    /// Its bound states, as many as were asked for.
+    pub bound: BoundStates,
+}
+
+impl Atom {
+    /// Atom with its `states` lowest bound states.
+    pub fn new(potential: &Potential, grid: &Grid, states: usize) -> Result<Self, StationaryError> {
+        Ok(Self {
+            potential: PotentialOnGrid::sample(potential, grid),
+            bound: bound_states(potential, grid, states)?,
+        })
+    }
+
+    /// ψ(0) of an initial state, normalised.
+    ///
+    /// # Panics
+    /// If the atom holds fewer states than the initial state names.
+    pub fn wave_function(&self, initial: &InitialState) -> Vec<Complex<f64>> {
+        let states = &self.bound.states;
+        match initial {
+            InitialState::Single(number) => states[*number].iter().map(|&p| Complex::new(p, 0.0)).collect(),
+            InitialState::Superposition(terms) => {
+                let total: f64 = terms.iter().map(|t| t.weight).sum();
+                let mut psi = vec![Complex::default(); states[0].len()];
+                for term in terms {
+                    let amplitude = Complex::from_polar((term.weight / total).sqrt(), term.phase);
+                    for (p, s) in psi.iter_mut().zip(&states[term.number]) {
+                        *p += amplitude * s;
+                    }
+                }
+                psi
+            }
+        }
+    }
+}
+
+/// Times and field of a run: t_n = start + n τ, n = 0 … steps.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Schedule {
+    /// First time, a.u.
+    pub start: f64,
+    /// Time step, a.u.
+    pub time_step: f64,
+    /// Number of steps.
+    pub steps: usize,
+    /// Time when the field has ended, a.u.
+    pub field_end: f64,
+}
+
+impl Schedule {
+    /// From the start of the field to `trailing_time` after its end, lengthened to whole steps.
+    pub fn new(field: &Field, time_step: f64, trailing_time: f64) -> Self {
+        let (start, field_end) = field.interval();
+        // A length within rounding of whole steps counts as whole.
+        let steps = ((field_end + trailing_time - start) / time_step - 1e-9).ceil().max(1.0);
+        Self { start, time_step, steps: steps as usize, field_end }
+    }
+
+    /// Time of sample `n`, a.u.
+    pub fn time(&self, n: usize) -> f64 {
+        self.start + n as f64 * self.time_step
+    }
+
+    /// Every sample's time, a.u.; length `steps + 1`.
+    pub fn times(&self) -> Vec<f64> {
+        (0..=self.steps).map(|n| self.time(n)).collect()
+    }
+}
+
+/// Everything about a run that is known before it starts.
+#[derive(Clone, Debug)]
+pub struct Plan {
+    atom: Arc<Atom>,
+    initial: Vec<Complex<f64>>,
+    grid: Grid,
+    gauge: Gauge,
+    line: Line,
+    schedule: Schedule,
+    drives: Vec<Drive>,
+    /// A at every sample; used to turn velocity gauge into length gauge.
+    vector_potential: Vec<[f64; 2]>,
+    populations: usize,
+    stride: usize,
+}
+
+/// The field is too strong for the time step.
+#[derive(Clone, Copy, Debug, PartialEq, thiserror::Error)]
+#[error(
+    "time step {time_step} a.u. is too long for a field of {field} a.u. on this atom: the gradient correction of the \
+     fourth-order splitting allows at most {largest} a.u."
+)]
+pub struct StepTooLong {
+    /// Time step, a.u.
+    pub time_step: f64,
+    /// Largest field of the run, a.u.
+    pub field: f64,
+    /// Largest field allowed, a.u.
+    pub largest: f64,
+}
+
+impl Plan {
+    /// Plan for a problem, on an atom made for its potential and grid.
+    ///
+    /// # Panics
+    /// If the atom holds fewer states than the initial state and the record need.
+    pub fn new(
+        problem: &Problem,
+        atom: Arc<Atom>,
+        numerics: &Numerics,
+        record: Record,
+    ) -> Result<Self, StepTooLong> {
+        let initial = atom.wave_function(&problem.initial);
+        Self::from_wave_function(initial, atom, &problem.field, numerics, record)
+    }
+
+    /// Plan that starts from any wave function on the grid.
+    ///
+    /// # Panics
+    /// If the lengths differ, or the atom holds fewer states than are recorded.
+    pub fn from_wave_function(
+        initial: Vec<Complex<f64>>,
+        atom: Arc<Atom>,
+        field: &Field,
+        numerics: &Numerics,
+        record: Record,
+    ) -> Result<Self, StepTooLong> {
+        assert_eq!(initial.len(), numerics.grid.len(), "wave function and grid have the same length");
+        let states = atom.bound.states.len();
+        assert!(record.populations <= states, "{} populations of {states} states", record.populations);
+        let schedule = Schedule::new(field, numerics.time_step, numerics.trailing_time);
+        let line = Line::new(&atom.potential, numerics);
+        let drives: Vec<Drive> = (0..=schedule.steps).map(|n| drive(field, &schedule, n)).collect();
+        let strongest =
+            drives.iter().flat_map(|d| [d.field[0], d.middle_field[0]]).map(f64::abs).fold(0.0, f64::max);
+        let largest = line.largest_field();
+        if strongest > largest {
+            return Err(StepTooLong { time_step: numerics.time_step, field: strongest, largest });
+        }
+        let vector_potential = schedule.times().into_iter().map(|t| field.vector_potential(t)).collect();
+        let stride = schedule.steps.div_ceil(POPULATION_SAMPLES).max(1);
+        Ok(Self {
+            atom,
+            initial,
+            grid: numerics.grid,
+            gauge: numerics.gauge,
+            line,
+            schedule,
+            drives,
+            vector_potential,
+            populations: record.populations,
+            stride,
+        })
+    }
+
+    /// Times of the run.
+    pub fn schedule(&self) -> &Schedule {
+        &self.schedule
+    }
+
+    /// Electric field at every sample, a.u.
+    pub fn electric_field(&self) -> Vec<[f64; 2]> {
+        self.drives.iter().map(|d| d.field).collect()
+    }
+
+    /// Vector potential at every sample, a.u.
+    pub fn vector_potential(&self) -> &[[f64; 2]] {
+        &self.vector_potential
+    }
+
+    /// State before the first step.
+    pub fn initial_state(&self) -> State {
+        let mut psi = self.initial.clone();
+        self.line.open(&mut psi, self.drives[0].field[0]);
+        State { psi, step: 0, series: Series::with_capacity(self.schedule.steps + 1, self.populations) }
+    }
+
+    /// Scratch for [`advance`].
+    pub fn make_workspace(&self) -> Workspace {
+        Workspace { line: self.line.make_workspace(), psi: vec![Complex::default(); self.grid.len()] }
+    }
+
+    /// ψ of the state in length gauge, free of the splitting's open form, into `out`.
+    pub fn wave_function(&self, state: &State, out: &mut [Complex<f64>]) {
+        out.copy_from_slice(&state.psi);
+        self.line.close(out, self.drives[state.step].field[0]);
+        let a = self.vector_potential[state.step][0];
+        if self.gauge == Gauge::Velocity && a != 0.0 {
+            for (p, x) in out.iter_mut().zip(self.grid.x.positions()) {
+                *p *= Complex::cis(a * x);
+            }
+        }
+    }
+
+    /// |⟨n|ψ⟩|² for every bound state of `states`, in length gauge.
+    pub fn populations(&self, state: &State, states: &BoundStates) -> Vec<f64> {
+        let mut psi = vec![Complex::default(); self.grid.len()];
+        self.wave_function(state, &mut psi);
+        states.states.iter().map(|s| population(s, &psi, self.grid.cell())).collect()
+    }
+}
+
+fn drive(field: &Field, schedule: &Schedule, n: usize) -> Drive {
+    let (t, half) = (schedule.time(n), 0.5 * schedule.time_step);
+    let (first, first_square) = field.potential_integrals(t, half);
+    let (second, second_square) = field.potential_integrals(t + half, half);
+    Drive {
+        field: field.electric_field(t),
+        middle_field: field.electric_field(t + half),
+        potential_integral: [first, second],
+        square_integral: [first_square, second_square],
+    }
+}
+
+fn population(bound: &[f64], psi: &[Complex<f64>], cell: f64) -> f64 {
+    let overlap: Complex<f64> = bound.iter().zip(psi).map(|(s, p)| p * s).sum();
+    (overlap * cell).norm_sqr()
+}
+
+/// A run stopped between two steps; with its plan, all that is needed to continue.
+#[derive(Clone, Debug, PartialEq)]
+pub struct State {
+    /// Wave function in the form the step works on; see [`Plan::wave_function`].
+    pub psi: Vec<Complex<f64>>,
+    /// Number of steps done.
+    pub step: usize,
+    /// What was recorded so far.
+    pub series: Series,
+}
+
+/// Recorded samples: entry n belongs to time n of the [`Schedule`].
+#[derive(Clone, Debug, PartialEq, Default)]
+pub struct Series {
+    /// ⟨∇V⟩, hartree/bohr.
+    pub gradient: Vec<[f64; 2]>,
+    /// ∫|ψ|².
+    pub norm: Vec<f64>,
+    /// Norm near the edges, see [`Moments::edge`].
+    pub edge: Vec<f64>,
+    /// Norm at the top of the momentum grid, see [`Moments::top`].
+    pub top: Vec<f64>,
+    /// Step numbers at which populations were taken.
+    pub population_steps: Vec<usize>,
+    /// Populations, one row per entry of `population_steps`, flat.
+    pub populations: Vec<f64>,
+}
+
+impl Series {
+    fn with_capacity(samples: usize, populations: usize) -> Self {
+        let rows = if populations == 0 { 0 } else { POPULATION_SAMPLES + 2 };
+        Self {
+            gradient: Vec::with_capacity(samples),
+            norm: Vec::with_capacity(samples),
+            edge: Vec::with_capacity(samples),
+            top: Vec::with_capacity(samples),
+            population_steps: Vec::with_capacity(rows),
+            populations: Vec::with_capacity(rows * populations),
+        }
+    }
+
+    fn push(&mut self, moments: Moments) {
+        self.gradient.push(moments.gradient);
+        self.norm.push(moments.norm);
+        self.edge.push(moments.edge);
+        self.top.push(moments.top);
+    }
+}
+
+/// Scratch of [`advance`]; holds nothing between calls.
+#[derive(Clone, Debug)]
+pub struct Workspace {
+    line: LineWorkspace,
+    psi: Vec<Complex<f64>>,
+}
+
+/// Advances by at most `steps` steps, and takes the last sample when the run is over.
+///
+/// The same bits come out however the steps are divided over calls.
+pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usize) {
+    let end = plan.schedule.steps.min(state.step + steps);
+    while state.step < end {
+        record_populations(plan, state, work);
+        let drive = &plan.drives[state.step];
+        let moments = plan.line.step(&mut state.psi, drive, &mut work.line);
+        state.series.push(moments);
+        state.step += 1;
+    }
+    if state.step == plan.schedule.steps && state.series.norm.len() == state.step {
+        record_populations(plan, state, work);
+        state.series.push(plan.line.moments_of(&state.psi, &mut work.line));
+    }
+}
+
+fn record_populations(plan: &Plan, state: &mut State, work: &mut Workspace) {
+    let due = state.step.is_multiple_of(plan.stride) || state.step == plan.schedule.steps;
+    if plan.populations == 0 || !due {
+        return;
+    }
+    plan.wave_function(state, &mut work.psi);
+    state.series.population_steps.push(state.step);
+    for bound in &plan.atom.bound.states[..plan.populations] {
+        state.series.populations.push(population(bound, &work.psi, plan.grid.cell()));
+    }
+}
+
+/// How a run is doing.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Health {
+    /// Norm at the last sample.
+    pub norm: f64,
+    /// Largest norm near the edges so far.
+    pub edge: f64,
+    /// Largest norm at the top of the momentum grid so far.
+    pub top: f64,
+}
+
+/// What went wrong beyond repair.
+#[derive(Clone, Copy, Debug, PartialEq, thiserror::Error)]
+pub enum Failure {
+    /// Numbers stopped being numbers.
+    #[error("the wave function is not finite after step {step}")]
+    NotFinite {
+        /// Steps done.
+        step: usize,
+    },
+    /// The norm grew, which no exact propagation can.
+    #[error("the norm grew from {before} to {after} by step {step}")]
+    NormGrew {
+        /// Norm at the start.
+        before: f64,
+        /// Norm at the last sample.
+        after: f64,
+        /// Steps done.
+        step: usize,
+    },
+}
+
+/// Judges the recorded samples of a state.
+pub fn health(state: &State) -> Result<Health, Failure> {
+    let series = &state.series;
+    let (Some(&before), Some(&after)) = (series.norm.first(), series.norm.last()) else {
+        return Ok(Health { norm: 1.0, edge: 0.0, top: 0.0 });
+    };
+    if !after.is_finite() || series.gradient.last().is_some_and(|g| !g[0].is_finite()) {
+        return Err(Failure::NotFinite { step: state.step });
+    }
+    if after > before * (1.0 + 1e-9) {
+        return Err(Failure::NormGrew { before, after, step: state.step });
+    }
+    let largest = |values: &[f64]| values.iter().copied().fold(0.0, f64::max);
+    Ok(Health { norm: after, edge: largest(&series.edge), top: largest(&series.top) })
+}
+
+/// Runs a plan from start to end: a convenience over [`advance`].
+pub fn run(plan: &Plan) -> State {
+    let mut state = plan.initial_state();
+    let mut work = plan.make_workspace();
+    advance(plan, &mut state, &mut work, plan.schedule.steps);
+    state
+}

@@ -1,0 +1,221 @@
+//! The step in one dimension.
+
+use num_complex::Complex;
+use pulp::Arch;
+
+use super::kernel::{self, LARGEST_TILT};
+use super::ramp::{BLOCK, Ramp};
+use super::{Drive, Moments, Splitting};
+use crate::absorber;
+use crate::grid::{Grid, Transform};
+use crate::potential::PotentialOnGrid;
+use crate::problem::{Absorber, Gauge, Numerics};
+
+/// Everything about a step that does not change with time.
+///
+/// Neighbouring steps share their outer local factors, so ψ is kept *open*: without the closing factor
+/// e^{-iwτ(V + xE)} of the step that led to it. [`Line::open`] and [`Line::close`] convert; moments of densities are the
+/// same in both forms.
+#[derive(Clone, Debug)]
+pub struct Line {
+    arch: Arch,
+    grid: Grid,
+    gauge: Gauge,
+    time_step: f64,
+    splitting: Splitting,
+    transform: Transform,
+    potential: Vec<f64>,
+    gradient: Vec<f64>,
+    /// e^{-2iwτV} e^{-τW}: the closing factor of one step, the opening one of the next, and the absorber.
+    outer: Vec<Complex<f64>>,
+    /// e^{-imτ(V - τ²|V'|²/48)}; empty without a middle factor.
+    middle: Vec<Complex<f64>>,
+    /// e^{-i…τk²/2}/n in the order of the transform.
+    kinetic: Vec<Complex<f64>>,
+    edge_blocks: usize,
+}
+
+/// Scratch of [`Line::step`]; holds nothing between steps.
+#[derive(Clone, Debug)]
+pub struct LineWorkspace {
+    scratch: Vec<Complex<f64>>,
+    ramp: Ramp,
+    momentum_ramps: [Ramp; 2],
+}
+
+impl Line {
+    /// Precomputes the factors of a step.
+    ///
+    /// # Panics
+    /// If `potential` does not belong to the grid of `numerics`, or the grid is not one-dimensional and even.
+    pub fn new(potential: &PotentialOnGrid, numerics: &Numerics) -> Self {
+        let (grid, tau) = (numerics.grid, numerics.time_step);
+        let axis = grid.x;
+        assert_eq!(grid.dimensions(), 1, "a line has one dimension");
+        assert_eq!(potential.values.len(), axis.points, "potential and grid have the same length");
+        assert!(axis.points.is_multiple_of(2), "an even number of points, got {}", axis.points);
+        let splitting = Splitting::of(numerics.scheme);
+        let damping = match numerics.absorber {
+            Absorber::None => vec![0.0; axis.points],
+            Absorber::Smooth { width } => absorber::strength(axis, width),
+        };
+        let (values, gradient) = (potential.values.clone(), potential.gradient[0].clone());
+        let outer = values
+            .iter()
+            .zip(&damping)
+            .map(|(v, w)| Complex::from_polar((-tau * w).exp(), -2.0 * splitting.outer * tau * v))
+            .collect();
+        let middle = splitting.middle.map_or_else(Vec::new, |m| {
+            let corrected = values.iter().zip(&gradient).map(|(v, g)| v - tau * tau / 48.0 * g * g);
+            corrected.map(|v| Complex::cis(-m * tau * v)).collect()
+        });
+        let scale = 1.0 / axis.points as f64;
+        let kinetic = axis
+            .momenta()
+            .map(|k| Complex::from_polar(scale, -splitting.kinetic * tau * 0.5 * k * k))
+            .collect();
+        let edge = match numerics.absorber {
+            Absorber::None => axis.extent() / 16.0,
+            Absorber::Smooth { width } => width,
+        };
+        Self {
+            arch: Arch::new(),
+            grid,
+            gauge: numerics.gauge,
+            time_step: tau,
+            splitting,
+            transform: Transform::new(axis.points),
+            potential: values,
+            gradient,
+            outer,
+            middle,
+            kinetic,
+            edge_blocks: (edge / axis.spacing) as usize / BLOCK,
+        }
+    }
+
+    /// Workspace for [`Self::step`].
+    pub fn make_workspace(&self) -> LineWorkspace {
+        let points = self.grid.x.points;
+        LineWorkspace {
+            scratch: self.transform.make_scratch(),
+            ramp: Ramp::new(points),
+            momentum_ramps: [Ramp::new(points / 2), Ramp::new(points / 2)],
+        }
+    }
+
+    /// Largest electric field for which the gradient correction is evaluated to rounding, a.u.
+    pub fn largest_field(&self) -> f64 {
+        let steepest = self.gradient.iter().fold(0.0, |m: f64, g| m.max(g.abs()));
+        match self.splitting.middle {
+            Some(m) if self.gauge == Gauge::Length => {
+                LARGEST_TILT / (m * self.time_step.powi(3) / 24.0 * steepest)
+            }
+            _ => f64::INFINITY,
+        }
+    }
+
+    /// Advances the open `psi` by one step; returns the moments at its start.
+    pub fn step(&self, psi: &mut [Complex<f64>], drive: &Drive, work: &mut LineWorkspace) -> Moments {
+        self.set_ramp(&mut work.ramp, 2.0 * self.splitting.outer * self.time_step, drive.field[0], 0.0);
+        let sums = kernel::multiply_ramp_and_sum(
+            self.arch,
+            psi,
+            &self.outer,
+            &work.ramp,
+            &self.gradient,
+            self.edge_blocks,
+        );
+        self.transform.forward(psi, &mut work.scratch);
+        let top = self.top_of(psi);
+        if let Some(fraction) = self.splitting.middle {
+            self.kinetic_factor(psi, drive.potential_integral[0][0], drive.square_integral[0], work);
+            self.transform.inverse(psi, &mut work.scratch);
+            self.middle_factor(psi, fraction, drive.middle_field[0], work);
+            self.transform.forward(psi, &mut work.scratch);
+            self.kinetic_factor(psi, drive.potential_integral[1][0], drive.square_integral[1], work);
+        } else {
+            let both = drive.potential_integral[0][0] + drive.potential_integral[1][0];
+            self.kinetic_factor(psi, both, drive.square_integral[0] + drive.square_integral[1], work);
+        }
+        self.transform.inverse(psi, &mut work.scratch);
+        self.moments(sums, top)
+    }
+
+    /// Moments of `psi` without a step; overwrites `psi`'s transform into `copy`.
+    pub fn moments_of(&self, psi: &[Complex<f64>], work: &mut LineWorkspace) -> Moments {
+        let mut copy = psi.to_vec();
+        self.transform.forward(&mut copy, &mut work.scratch);
+        let sums = kernel::sum(self.arch, psi, &self.gradient, self.edge_blocks);
+        self.moments(sums, self.top_of(&copy))
+    }
+
+    /// Turns ψ at a time when the field is `field` into the open form.
+    pub fn open(&self, psi: &mut [Complex<f64>], field: f64) {
+        self.half_step_phase(psi, field, 1.0);
+    }
+
+    /// Turns the open form at a time when the field is `field` into ψ.
+    pub fn close(&self, psi: &mut [Complex<f64>], field: f64) {
+        self.half_step_phase(psi, field, -1.0);
+    }
+
+    fn half_step_phase(&self, psi: &mut [Complex<f64>], field: f64, sign: f64) {
+        let field = if self.gauge == Gauge::Length { field } else { 0.0 };
+        let factor = sign * self.splitting.outer * self.time_step;
+        for ((p, v), x) in psi.iter_mut().zip(&self.potential).zip(self.grid.x.positions()) {
+            *p *= Complex::cis(factor * (v + field * x));
+        }
+    }
+
+    /// e^{-i duration·field·x + i extra} in length gauge, e^{i extra} in velocity gauge.
+    fn set_ramp(&self, ramp: &mut Ramp, duration: f64, field: f64, extra: f64) {
+        let field = if self.gauge == Gauge::Length { field } else { 0.0 };
+        let rate = -duration * field;
+        ramp.set(rate * self.grid.x.position(0) + extra, rate * self.grid.x.spacing);
+    }
+
+    /// e^{-imτṼ} with V holding the field: its cross term -(τ²/48) 2E V' is a small rotation, its E² term a phase.
+    fn middle_factor(&self, psi: &mut [Complex<f64>], fraction: f64, field: f64, work: &mut LineWorkspace) {
+        let correction = fraction * self.time_step.powi(3) / 48.0;
+        match self.gauge {
+            Gauge::Length => {
+                self.set_ramp(&mut work.ramp, fraction * self.time_step, field, correction * field * field);
+                let tilt = 2.0 * correction * field;
+                kernel::multiply_ramp_tilt(self.arch, psi, &self.middle, &work.ramp, tilt, &self.gradient);
+            }
+            Gauge::Velocity => kernel::multiply(self.arch, psi, &self.middle),
+        }
+    }
+
+    /// e^{-i∫(k+A)²/2 dt}/n on the transform of ψ; `first` = ∫A dt, `second` = ∫A² dt, unused in length gauge.
+    fn kinetic_factor(&self, psi: &mut [Complex<f64>], first: f64, second: f64, work: &mut LineWorkspace) {
+        if self.gauge == Gauge::Length {
+            return kernel::multiply(self.arch, psi, &self.kinetic);
+        }
+        let half = psi.len() / 2;
+        let (low, high) = psi.split_at_mut(half);
+        let spacing = self.grid.x.momentum(1);
+        let [ramp_low, ramp_high] = &mut work.momentum_ramps;
+        ramp_low.set(-0.5 * second, -spacing * first);
+        ramp_high.set(-0.5 * second - self.grid.x.momentum(half) * first, -spacing * first);
+        kernel::multiply_ramp(self.arch, low, &self.kinetic[..half], ramp_low);
+        kernel::multiply_ramp(self.arch, high, &self.kinetic[half..], ramp_high);
+    }
+
+    /// Σ|ψ_k|² over the upper quarter of the momenta, both signs.
+    fn top_of(&self, transformed: &[Complex<f64>]) -> f64 {
+        let n = transformed.len();
+        transformed[n / 2 - n / 8..n / 2 + n / 8].iter().map(Complex::norm_sqr).sum()
+    }
+
+    fn moments(&self, sums: kernel::Sums, top: f64) -> Moments {
+        let cell = self.grid.cell();
+        Moments {
+            norm: sums.norm * cell,
+            gradient: [sums.gradient * cell, 0.0],
+            edge: sums.edge * cell,
+            top: top * cell / self.grid.x.points as f64,
+        }
+    }
+}
