@@ -1,0 +1,76 @@
+//! Files of `tdse run` opened by the Python libraries that users have, in a throw-away environment.
+//!
+//! Source of truth: h5py, xarray (h5netcdf and netCDF4), nexusformat and pint themselves, at the versions of
+//! `tests/python/requirements.txt`. Skipped only where `TDSE_SKIP_PYTHON` is set.
+
+use std::error::Error;
+use std::io::Write;
+use std::path::{Path, PathBuf};
+use std::process::Command;
+use std::{env, fs, io};
+
+use sha2::{Digest, Sha256};
+
+type Outcome<T> = Result<T, Box<dyn Error>>;
+
+#[test]
+fn python_opens_every_file_of_a_run() -> Outcome<()> {
+    if env::var_os("TDSE_SKIP_PYTHON").is_some() {
+        // Straight to stderr: what the test harness captures, nobody sees.
+        writeln!(io::stderr(), "python_opens_every_file_of_a_run: SKIPPED, because TDSE_SKIP_PYTHON is set")?;
+        return Ok(());
+    }
+    let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("..");
+    let scratch = tempfile::tempdir()?;
+    let out = scratch.path().join("out");
+    let config = root.join("configs/quickstart.json");
+    run(Command::new(env!("CARGO_BIN_EXE_tdse")).arg("run").arg(config).arg("--out").arg(&out))?;
+
+    let points = point_files(&out.join("points"))?;
+    assert!(!points.is_empty(), "the run left no point file");
+    let python = python_with(&root.join("tests/python/requirements.txt"))?;
+    let script = root.join("tests/python/open_everywhere.py");
+    run(Command::new(python).arg(script).arg(out.join("result.h5")).args(points))?;
+    Ok(())
+}
+
+/// Every `DIR/xx/<id>.h5`.
+fn point_files(dir: &Path) -> Outcome<Vec<PathBuf>> {
+    let mut files = Vec::new();
+    for shelf in fs::read_dir(dir).map_err(|error| format!("{}: {error}", dir.display()))? {
+        for file in fs::read_dir(shelf?.path())? {
+            files.push(file?.path());
+        }
+    }
+    files.retain(|file| file.extension().is_some_and(|extension| extension == "h5"));
+    Ok(files)
+}
+
+/// A Python that has the given requirements. Made once for each text of them and each version of Python; a half-made
+/// one has no `ready` mark and is made anew.
+fn python_with(requirements: &Path) -> Outcome<PathBuf> {
+    let version = run(Command::new("python3").arg("--version"))?;
+    let hash = Sha256::new().chain_update(version).chain_update(fs::read(requirements)?).finalize();
+    let home = Path::new(env!("CARGO_TARGET_TMPDIR")).join(format!("python-{:.16}", format!("{hash:x}")));
+    let (python, ready) = (home.join("bin/python"), home.join("ready"));
+    if !ready.exists() {
+        run(Command::new("python3").args(["-m", "venv", "--clear"]).arg(&home))?;
+        let install = ["-m", "pip", "install", "--quiet", "--disable-pip-version-check", "--requirement"];
+        run(Command::new(&python).args(install).arg(requirements))?;
+        fs::write(ready, "")?;
+    }
+    Ok(python)
+}
+
+/// Standard output of a command that must succeed; all its output in the failure.
+fn run(command: &mut Command) -> Outcome<Vec<u8>> {
+    let output = command.output().map_err(|error| format!("{command:?}: {error}"))?;
+    assert!(
+        output.status.success(),
+        "{command:?}\n{}\n{}{}",
+        output.status,
+        String::from_utf8_lossy(&output.stdout),
+        String::from_utf8_lossy(&output.stderr)
+    );
+    Ok(output.stdout)
+}
