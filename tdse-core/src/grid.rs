@@ -92,12 +92,12 @@ impl Grid {
     }
 }
 
-/// The smallest length of at least `at_least` that is 2^a 3^b with a ≥ 1 and b ≤ 2: fast to transform, and coarse
+/// The smallest length of at least `at_least` that is 2^a 3^b with a ≥ 3 and b ≤ 2: fast to transform, and coarse
 /// enough that neighbours in a scan share it.
 pub fn good_length(at_least: usize) -> usize {
     let mut best = usize::MAX;
     for odd in [1, 3, 9] {
-        let mut n = 2 * odd;
+        let mut n = 8 * odd;
         while n < at_least {
             n *= 2;
         }

@@ -4,6 +4,7 @@ mod kernel;
 mod line;
 mod ramp;
 
+pub use kernel::instruction_set;
 pub use line::{Line, LineWorkspace};
 
 use crate::problem::Scheme;

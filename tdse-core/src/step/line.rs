@@ -3,7 +3,9 @@
 use num_complex::Complex;
 use pulp::Arch;
 
-use super::kernel::{self, LARGEST_TILT};
+use super::kernel::{
+    LANES, LARGEST_TILT, Multiply, MultiplyRamp, MultiplyRampTilt, Sum, SumAndMultiplyRamp, Sums,
+};
 use super::ramp::{BLOCK, Ramp};
 use super::{Drive, Moments, Splitting};
 use crate::absorber;
@@ -25,7 +27,8 @@ pub struct Line {
     splitting: Splitting,
     transform: Transform,
     potential: Vec<f64>,
-    gradient: Vec<f64>,
+    /// V' twice at every point, beside the two parts of ψ.
+    gradient: Vec<[f64; 2]>,
     /// e^{-2iwτV} e^{-τW}: the closing factor of one step, the opening one of the next, and the absorber.
     outer: Vec<Complex<f64>>,
     /// e^{-imτ(V - τ²|V'|²/48)}; empty without a middle factor.
@@ -47,26 +50,26 @@ impl Line {
     /// Precomputes the factors of a step.
     ///
     /// # Panics
-    /// If `potential` does not belong to the grid of `numerics`, or the grid is not one-dimensional and even.
+    /// If `potential` does not belong to the grid of `numerics`, or the grid is not one-dimensional or no multiple of 8 points.
     pub fn new(potential: &PotentialOnGrid, numerics: &Numerics) -> Self {
         let (grid, tau) = (numerics.grid, numerics.time_step);
         let axis = grid.x;
         assert_eq!(grid.dimensions(), 1, "a line has one dimension");
         assert_eq!(potential.values.len(), axis.points, "potential and grid have the same length");
-        assert!(axis.points.is_multiple_of(2), "an even number of points, got {}", axis.points);
+        assert!(axis.points.is_multiple_of(LANES), "a multiple of {LANES} points, got {}", axis.points);
         let splitting = Splitting::of(numerics.scheme);
         let damping = match numerics.absorber {
             Absorber::None => vec![0.0; axis.points],
             Absorber::Smooth { width } => absorber::strength(axis, width),
         };
-        let (values, gradient) = (potential.values.clone(), potential.gradient[0].clone());
+        let (values, gradient) = (potential.values.clone(), &potential.gradient[0]);
         let outer = values
             .iter()
             .zip(&damping)
             .map(|(v, w)| Complex::from_polar((-tau * w).exp(), -2.0 * splitting.outer * tau * v))
             .collect();
         let middle = splitting.middle.map_or_else(Vec::new, |m| {
-            let corrected = values.iter().zip(&gradient).map(|(v, g)| v - tau * tau / 48.0 * g * g);
+            let corrected = values.iter().zip(gradient).map(|(v, g)| v - tau * tau / 48.0 * g * g);
             corrected.map(|v| Complex::cis(-m * tau * v)).collect()
         });
         let scale = 1.0 / axis.points as f64;
@@ -86,7 +89,7 @@ impl Line {
             splitting,
             transform: Transform::new(axis.points),
             potential: values,
-            gradient,
+            gradient: gradient.iter().map(|&g| [g, g]).collect(),
             outer,
             middle,
             kinetic,
@@ -106,7 +109,7 @@ impl Line {
 
     /// Largest electric field for which the gradient correction is evaluated to rounding, a.u.
     pub fn largest_field(&self) -> f64 {
-        let steepest = self.gradient.iter().fold(0.0, |m: f64, g| m.max(g.abs()));
+        let steepest = self.gradient.iter().fold(0.0, |m: f64, g| m.max(g[0].abs()));
         match self.splitting.middle {
             Some(m) if self.gauge == Gauge::Length => {
                 LARGEST_TILT / (m * self.time_step.powi(3) / 24.0 * steepest)
@@ -118,14 +121,13 @@ impl Line {
     /// Advances the open `psi` by one step; returns the moments at its start.
     pub fn step(&self, psi: &mut [Complex<f64>], drive: &Drive, work: &mut LineWorkspace) -> Moments {
         self.set_ramp(&mut work.ramp, 2.0 * self.splitting.outer * self.time_step, drive.field[0], 0.0);
-        let sums = kernel::multiply_ramp_and_sum(
-            self.arch,
+        let sums = self.arch.dispatch(SumAndMultiplyRamp {
             psi,
-            &self.outer,
-            &work.ramp,
-            &self.gradient,
-            self.edge_blocks,
-        );
+            table: &self.outer,
+            ramp: &work.ramp,
+            gradient: &self.gradient,
+            edge: self.edge_blocks,
+        });
         self.transform.forward(psi, &mut work.scratch);
         let top = self.top_of(psi);
         if let Some(fraction) = self.splitting.middle {
@@ -146,7 +148,7 @@ impl Line {
     pub fn moments_of(&self, psi: &[Complex<f64>], work: &mut LineWorkspace) -> Moments {
         let mut copy = psi.to_vec();
         self.transform.forward(&mut copy, &mut work.scratch);
-        let sums = kernel::sum(self.arch, psi, &self.gradient, self.edge_blocks);
+        let sums = self.arch.dispatch(Sum { psi, gradient: &self.gradient, edge: self.edge_blocks });
         self.moments(sums, self.top_of(&copy))
     }
 
@@ -182,16 +184,22 @@ impl Line {
             Gauge::Length => {
                 self.set_ramp(&mut work.ramp, fraction * self.time_step, field, correction * field * field);
                 let tilt = 2.0 * correction * field;
-                kernel::multiply_ramp_tilt(self.arch, psi, &self.middle, &work.ramp, tilt, &self.gradient);
+                self.arch.dispatch(MultiplyRampTilt {
+                    psi,
+                    table: &self.middle,
+                    ramp: &work.ramp,
+                    gradient: &self.gradient,
+                    c: tilt,
+                });
             }
-            Gauge::Velocity => kernel::multiply(self.arch, psi, &self.middle),
+            Gauge::Velocity => self.arch.dispatch(Multiply { psi, table: &self.middle }),
         }
     }
 
     /// e^{-i∫(k+A)²/2 dt}/n on the transform of ψ; `first` = ∫A dt, `second` = ∫A² dt, unused in length gauge.
     fn kinetic_factor(&self, psi: &mut [Complex<f64>], first: f64, second: f64, work: &mut LineWorkspace) {
         if self.gauge == Gauge::Length {
-            return kernel::multiply(self.arch, psi, &self.kinetic);
+            return self.arch.dispatch(Multiply { psi, table: &self.kinetic });
         }
         let half = psi.len() / 2;
         let (low, high) = psi.split_at_mut(half);
@@ -199,8 +207,8 @@ impl Line {
         let [ramp_low, ramp_high] = &mut work.momentum_ramps;
         ramp_low.set(-0.5 * second, -spacing * first);
         ramp_high.set(-0.5 * second - self.grid.x.momentum(half) * first, -spacing * first);
-        kernel::multiply_ramp(self.arch, low, &self.kinetic[..half], ramp_low);
-        kernel::multiply_ramp(self.arch, high, &self.kinetic[half..], ramp_high);
+        self.arch.dispatch(MultiplyRamp { psi: low, table: &self.kinetic[..half], ramp: ramp_low });
+        self.arch.dispatch(MultiplyRamp { psi: high, table: &self.kinetic[half..], ramp: ramp_high });
     }
 
     /// Σ|ψ_k|² over the upper quarter of the momenta, both signs.
@@ -209,7 +217,7 @@ impl Line {
         transformed[n / 2 - n / 8..n / 2 + n / 8].iter().map(Complex::norm_sqr).sum()
     }
 
-    fn moments(&self, sums: kernel::Sums, top: f64) -> Moments {
+    fn moments(&self, sums: Sums, top: f64) -> Moments {
         let cell = self.grid.cell();
         Moments {
             norm: sums.norm * cell,
