@@ -21,6 +21,7 @@ pub mod grid;
 pub mod potential;
 pub mod problem;
 pub mod simulate;
+pub mod spectrum;
 pub mod stationary;
 pub mod step;
 pub mod units;

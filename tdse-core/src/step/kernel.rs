@@ -74,7 +74,8 @@ impl WithSimd for SumAndMultiplyRamp<'_> {
     fn with_simd<S: Simd>(self, simd: S) -> Sums {
         let count = self.ramp.coarse.len();
         let mut sums = Sums::default();
-        let blocks = self.psi.chunks_mut(BLOCK).zip(self.table.chunks(BLOCK)).zip(self.gradient.chunks(BLOCK));
+        let blocks =
+            self.psi.chunks_mut(BLOCK).zip(self.table.chunks(BLOCK)).zip(self.gradient.chunks(BLOCK));
         for (b, (((psi, table), gradient), coarse)) in blocks.zip(&self.ramp.coarse).enumerate() {
             sums.add(block_sums(simd, psi, gradient), b < self.edge || b + self.edge >= count);
             times_ramp(simd, psi, table, *coarse, &self.ramp.fine);
@@ -126,7 +127,8 @@ pub(super) struct MultiplyRampTilt<'a> {
 pub(super) const LARGEST_TILT: f64 = 0.04;
 
 /// e^{iθ} = p_c(θ²) + iθ p_s(θ²), Taylor series through θ⁷; coefficients of p_c and p_s side by side.
-const TAYLOR: [[f64; 2]; 4] = [[1.0, 1.0], [-1.0 / 2.0, -1.0 / 6.0], [1.0 / 24.0, 1.0 / 120.0], [-1.0 / 720.0, -1.0 / 5040.0]];
+const TAYLOR: [[f64; 2]; 4] =
+    [[1.0, 1.0], [-1.0 / 2.0, -1.0 / 6.0], [1.0 / 24.0, 1.0 / 120.0], [-1.0 / 720.0, -1.0 / 5040.0]];
 
 impl WithSimd for MultiplyRampTilt<'_> {
     type Output = ();
@@ -136,7 +138,8 @@ impl WithSimd for MultiplyRampTilt<'_> {
         let pair = |[re, im]: [f64; 2]| pairs(simd, re, im);
         let [one, two, three, four] = TAYLOR.map(pair);
         let (scale, odd, unit) = (pair([self.c, self.c]), pair([0.0, self.c]), pair([1.0, 0.0]));
-        let blocks = self.psi.chunks_mut(BLOCK).zip(self.table.chunks(BLOCK)).zip(self.gradient.chunks(BLOCK));
+        let blocks =
+            self.psi.chunks_mut(BLOCK).zip(self.table.chunks(BLOCK)).zip(self.gradient.chunks(BLOCK));
         for (((psi, table), gradient), coarse) in blocks.zip(&self.ramp.coarse) {
             let coarse = simd.splat_c64s(*coarse);
             let (psi, table) = (S::as_mut_simd_c64s(psi).0, S::as_simd_c64s(table).0);

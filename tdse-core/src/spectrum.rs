@@ -1,0 +1,13 @@
+//! Spectra from recorded series: harmonics, their yields and cutoff, time–frequency maps, the dipole.
+
+mod chirp;
+mod cutoff;
+mod dipole;
+mod harmonics;
+mod time_frequency;
+
+pub use chirp::FourierSum;
+pub use cutoff::{Cutoff, measured_cutoff};
+pub use dipole::twice_integrated;
+pub use harmonics::{EnergyAxis, Harmonics, Window, harmonics, order_yields, radiated_energy};
+pub use time_frequency::{GaborMap, TimeFrequency, gabor};
