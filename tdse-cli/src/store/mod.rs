@@ -1,0 +1,35 @@
+//! Results on disk: HDF5 files with the NeXus base classes, open to any HDF5 reader.
+//!
+//! * [`table`] says what a file may hold: every group and dataset with its unit, axes and meaning.
+//! * [`Contents`] is a result in memory, checked against the table as it is filled.
+//! * [`write()`] puts one on disk whole or not at all; [`read()`] gets it back exactly.
+//! * [`gather()`] stacks the files of a scan's points into one, scan axes first.
+//!
+//! All numbers are in the units of the table, which are those of the file. Only the module `hdf5` calls the
+//! HDF5 library; that library holds one global lock, so threads gain nothing here.
+
+mod atomic;
+mod axes;
+mod contents;
+mod entry;
+mod error;
+mod gather;
+mod group;
+mod hdf5;
+mod provenance;
+mod read;
+mod stack;
+pub mod table;
+mod values;
+mod write;
+
+pub use atomic::host_name;
+pub use axes::{ScanAxis, ScanDimension};
+pub use contents::{Contents, Group};
+pub use error::Error;
+pub use gather::{Gathering, Point, gather};
+pub use provenance::Provenance;
+pub use read::{read, read_groups};
+pub use table::{Status, is_reserved_name};
+pub use values::Values;
+pub use write::write;
