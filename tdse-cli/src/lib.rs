@@ -2,4 +2,5 @@
 //!
 //! The physics lives in [`tdse_core`]; this crate turns one configuration file into checked, self-describing results.
 
+pub mod report;
 pub mod store;
