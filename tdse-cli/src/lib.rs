@@ -1,3 +1,6 @@
 //! The batch runner: everything that touches the outside world (JSON, HDF5, terminal, pictures, signals, time).
 //!
 //! The physics lives in [`tdse_core`]; this crate turns one configuration file into checked, self-describing results.
+
+pub mod config;
+pub mod scan;

@@ -15,6 +15,7 @@
 
 pub mod choose;
 pub mod cubic;
+pub mod elements;
 pub mod field;
 pub mod grid;
 pub mod potential;

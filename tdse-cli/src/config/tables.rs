@@ -1,0 +1,169 @@
+//! CSV tables: a header with units, `#` comments, rising first column, at least four rows.
+
+use std::path::Path;
+
+use csv::{ReaderBuilder, StringRecord, Trim};
+use sha2::{Digest, Sha256};
+use tdse_core::cubic::Cubic;
+use tdse_core::units::Quantity;
+
+use super::allowed::either;
+use super::files::INPUTS;
+
+/// A table kept with a result.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Input {
+    /// JSON Pointer to the object that names the file.
+    pub user: String,
+    /// Name in the result: the file's own, with the start of its hash.
+    pub name: String,
+    /// The whole text.
+    pub contents: String,
+    /// SHA-256 of the contents, hexadecimal.
+    pub sha256: String,
+}
+
+impl Input {
+    /// Names and hashes the contents of `file`, which the object at `user` names.
+    pub fn new(user: &str, file: &str, contents: String) -> Self {
+        let sha256 = format!("{:x}", Sha256::digest(contents.as_bytes()));
+        let mark = format!("-{}", &sha256[..8]);
+        let stem = Path::new(file).file_stem().map_or("table".into(), |stem| stem.to_string_lossy());
+        let stem = stem.strip_suffix(&mark).unwrap_or(&stem);
+        Self { user: user.into(), name: format!("{stem}{mark}.csv"), contents, sha256 }
+    }
+
+    /// How a resolved configuration refers to it.
+    pub fn reference(&self) -> String {
+        format!("{INPUTS}{}", self.name)
+    }
+}
+
+/// What a column holds.
+#[derive(Clone, Copy, Debug)]
+pub struct Column {
+    /// Name in the header.
+    pub name: &'static str,
+    /// Quantity of its unit.
+    pub quantity: Quantity,
+}
+
+/// What a table holds.
+#[derive(Clone, Copy, Debug)]
+pub struct Layout {
+    /// The rising column and the one interpolated.
+    pub columns: [Column; 2],
+    /// An example of the header.
+    pub header: &'static str,
+}
+
+/// Electric field over time.
+pub const FIELD: Layout = Layout {
+    columns: [
+        Column { name: "time", quantity: Quantity::Time },
+        Column { name: "electric_field", quantity: Quantity::ElectricField },
+    ],
+    header: "time [fs],electric_field [V/m]",
+};
+
+/// Potential energy over position.
+pub const POTENTIAL: Layout = Layout {
+    columns: [
+        Column { name: "position", quantity: Quantity::Length },
+        Column { name: "potential", quantity: Quantity::Energy },
+    ],
+    header: "position [bohr],potential [eV]",
+};
+
+/// What is wrong with a table, where, and what belongs there.
+#[derive(Clone, Debug, PartialEq)]
+pub struct TableFault {
+    /// Line in the file, from 1.
+    pub line: u64,
+    /// What is wrong, with the text concerned.
+    pub reason: String,
+    /// What may stand there.
+    pub allowed: String,
+}
+
+/// Reads a table in atomic units.
+pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
+    let mut reader = ReaderBuilder::new()
+        .comment(Some(b'#'))
+        .trim(Trim::All)
+        .flexible(true)
+        .has_headers(false)
+        .from_reader(contents.as_bytes());
+    let mut records = reader.records();
+    let no_row = |what: &str| TableFault {
+        line: contents.lines().count() as u64,
+        reason: "is the end".into(),
+        allowed: what.into(),
+    };
+    let header = records.next().ok_or_else(|| no_row(layout.header))?.map_err(|error| unreadable(&error))?;
+    let factors = units(&header, layout)?;
+    let mut columns = [Vec::new(), Vec::new()];
+    for record in records {
+        let record = record.map_err(|error| unreadable(&error))?;
+        let row = row(&record)?;
+        if columns[0].last().is_some_and(|before| row[0] * factors[0] <= *before) {
+            return Err(fault(&record, format!("{:?} does not rise", &record[0]), "rising values"));
+        }
+        for ((column, number), factor) in columns.iter_mut().zip(row).zip(factors) {
+            column.push(number * factor);
+        }
+    }
+    let [x, y] = columns;
+    if x.len() < 4 { Err(no_row("at least 4 rows of numbers")) } else { Ok(Cubic::new(x, y)) }
+}
+
+/// Factors to atomic units of both columns.
+fn units(header: &StringRecord, layout: Layout) -> Result<[f64; 2], TableFault> {
+    width(header)?;
+    let mut factors = [0.0; 2];
+    for (i, column) in layout.columns.into_iter().enumerate() {
+        let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
+        let unit = unit.filter(|(name, _)| name.trim() == column.name);
+        let unit = unit.and_then(|(_, symbol)| column.quantity.unit(symbol.trim()));
+        let symbols: Vec<&str> = column.quantity.units().iter().map(|unit| unit.symbol).collect();
+        let allowed = format!("a header such as {}, with the unit {}", layout.header, either(&symbols));
+        factors[i] = unit
+            .ok_or_else(|| {
+                fault(header, format!("{:?} is not {} and its unit", &header[i], column.name), allowed)
+            })?
+            .factor;
+    }
+    Ok(factors)
+}
+
+fn row(record: &StringRecord) -> Result<[f64; 2], TableFault> {
+    width(record)?;
+    let number = |text: &str| {
+        let number = text.parse::<f64>().ok().filter(|number| number.is_finite());
+        number
+            .ok_or_else(|| fault(record, format!("{text:?} is not a number"), "a finite number such as 0.5"))
+    };
+    Ok([number(&record[0])?, number(&record[1])?])
+}
+
+fn width(record: &StringRecord) -> Result<(), TableFault> {
+    match record.len() {
+        2 => Ok(()),
+        n => {
+            Err(fault(record, format!("{:?} has {n} columns", &record[0]), "two columns, parted by a comma"))
+        }
+    }
+}
+
+fn fault(record: &StringRecord, reason: String, allowed: impl Into<String>) -> TableFault {
+    TableFault { line: record.position().map_or(0, csv::Position::line), reason, allowed: allowed.into() }
+}
+
+fn unreadable(error: &csv::Error) -> TableFault {
+    let line = error.position().map_or(0, csv::Position::line);
+    TableFault {
+        line,
+        reason: error.to_string(),
+        allowed: "comma-separated values (RFC 4180) in UTF-8".into(),
+    }
+}

@@ -1,0 +1,57 @@
+//! Reading the tables that a configuration names.
+
+use std::sync::Arc;
+
+use serde_json::Value;
+use tdse_core::cubic::Cubic;
+
+use super::Check;
+use crate::config::complaint::Fix;
+use crate::config::pointer::{join, nearest};
+use crate::config::tables::{self, Input, Layout};
+
+impl Check<'_> {
+    /// The table that the object at `user` names, kept among the inputs.
+    pub(super) fn table(
+        &mut self,
+        user: &str,
+        file: &str,
+        sha256: Option<&String>,
+        layout: Layout,
+    ) -> Option<Arc<Cubic>> {
+        let input = match self.files.contents(file) {
+            Ok(contents) => Input::new(user, file, contents),
+            Err(error) => {
+                self.unreadable(user, file, &error);
+                return None;
+            }
+        };
+        if sha256.is_some_and(|wanted| *wanted != input.sha256) {
+            self.complain(
+                &join(user, "sha256"),
+                format!("is not the SHA-256 of {file:?}"),
+                "the SHA-256 of the contents, or the key left out",
+                Fix::Value(Value::from(input.sha256.as_str())),
+            );
+        }
+        let cubic = tables::read(&input.contents, layout);
+        self.inputs.push(input);
+        match cubic {
+            Ok(cubic) => Some(Arc::new(cubic)),
+            Err(fault) => {
+                let fix = Fix::Words(format!("correct line {} of the file", fault.line));
+                let reason = format!("has a fault in line {}: {}", fault.line, fault.reason);
+                self.complain(&join(user, "file"), reason, fault.allowed, fix);
+                None
+            }
+        }
+    }
+
+    fn unreadable(&mut self, user: &str, file: &str, error: &std::io::Error) {
+        let tables = self.files.tables();
+        let fix = nearest(file, tables.iter().map(String::as_str))
+            .map_or_else(|| Fix::Words("put the file there".into()), |table| Fix::Value(table.into()));
+        let allowed = "the path of a CSV file, relative to the configuration's folder";
+        self.complain(&join(user, "file"), format!("cannot be read ({})", error.kind()), allowed, fix);
+    }
+}
