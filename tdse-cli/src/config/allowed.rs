@@ -2,6 +2,7 @@
 
 use serde_json::Value;
 
+use super::quantity::number_text;
 use super::structure::Shape;
 
 /// What may stand at a place with this schema.
@@ -18,11 +19,12 @@ pub fn allowed(schema: &Value) -> String {
         Shape::Quantity(quantity) => {
             let units: Vec<&str> = quantity.units().iter().map(|unit| unit.symbol).collect();
             let limits = limits(schema, "x-minimum", "x-exclusive-minimum", "x-maximum");
-            format!("{} in {}{limits}", with_article(quantity.name()), either(&units))
+            let comma = if limits.is_empty() { "" } else { "," };
+            format!("{} in {}{comma}{limits}", with_article(quantity.name()), either(&units))
         }
         Shape::Object(properties) => {
             let keys: Vec<&str> = properties.keys().map(String::as_str).collect();
-            format!("an object with the keys {}", listed(&keys))
+            format!("an object with the keys {}", keys.join(", "))
         }
         Shape::List if schema["minItems"].as_u64().unwrap_or(0) > 0 => {
             "a list with at least one element".into()
@@ -31,11 +33,6 @@ pub fn allowed(schema: &Value) -> String {
         Shape::Plain => plain(schema),
         Shape::Any => "any value".into(),
     }
-}
-
-/// `a, b, c`.
-pub fn listed(words: &[&str]) -> String {
-    words.join(", ")
 }
 
 /// `a, b or c`.
@@ -63,7 +60,7 @@ fn plain(schema: &Value) -> String {
 fn limits(schema: &Value, least: &str, above: &str, most: &str) -> String {
     let text = |key: &str| match &schema[key] {
         Value::String(text) => Some(text.clone()),
-        Value::Number(number) => Some(number.to_string()),
+        Value::Number(number) => Some(number_text(number)),
         _ => None,
     };
     let lower = text(least).map(|limit| format!(" from {limit}"));

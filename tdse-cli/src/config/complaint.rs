@@ -4,6 +4,8 @@ use std::fmt;
 
 use serde_json::Value;
 
+use super::quantity;
+
 /// One fault of a configuration.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Complaint {
@@ -35,6 +37,8 @@ pub enum Fix {
     },
     /// The same value under this key.
     Key(String),
+    /// The key taken out.
+    LeaveOut,
     /// What to do, where no value of the configuration is to blame.
     Words(String),
 }
@@ -69,7 +73,10 @@ impl Complaint {
 
 /// JSON text, cut after 80 characters: long values are named, not repeated.
 fn shortened(value: &Value) -> String {
-    let text = value.to_string();
+    let text = match value {
+        Value::Number(number) => quantity::number_text(number),
+        _ => value.to_string(),
+    };
     match text.char_indices().nth(80) {
         Some((end, _)) => format!("{}…", &text[..end]),
         None => text,
@@ -96,6 +103,7 @@ impl fmt::Display for Fix {
             Self::Value(value) => write!(f, "try {value}"),
             Self::Elsewhere { place, value } => write!(f, "at {place} try {value}"),
             Self::Key(key) => write!(f, "as its key try {}", Value::from(key.as_str())),
+            Self::LeaveOut => f.write_str("leave it out"),
             Self::Words(words) => f.write_str(words),
         }
     }

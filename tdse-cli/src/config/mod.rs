@@ -7,6 +7,7 @@ pub mod allowed;
 pub mod complaint;
 pub mod files;
 pub mod identity;
+pub mod library;
 pub mod overrides;
 pub mod pointer;
 pub mod quantity;
@@ -24,6 +25,7 @@ use serde_json::{Value, json};
 
 pub use complaint::{Complaint, Complaints, Fix};
 pub use files::Files;
+pub use library::Library;
 pub use request::Request;
 
 /// Reads the configuration of one point; `files` is its folder, or what a result keeps.
@@ -32,7 +34,7 @@ pub use request::Request;
 /// Every fault found, in file order.
 pub fn read(text: &str, sets: &[String], files: impl Into<Files>) -> Result<Request, Complaints> {
     let tree = parse(text, sets)?;
-    let request = request(&tree, &files.into())?;
+    let request = request(&tree, &Library::new(files.into()))?;
     match &request.written.scan {
         Some(axes) if !axes.is_empty() => {
             let complaint = Complaint::new("/scan", tree.get("scan"), "is a scan where one point is wanted");
@@ -56,12 +58,12 @@ pub fn parse(text: &str, sets: &[String]) -> Result<Value, Complaints> {
 ///
 /// # Errors
 /// Every fault found, in file order.
-pub fn request(tree: &Value, files: &Files) -> Result<Request, Complaints> {
+pub fn request(tree: &Value, library: &Library) -> Result<Request, Complaints> {
     structure::check(tree)?;
     let written = serde_json::from_value(tree.clone()).map_err(|error| {
         Complaint::new("", None, error.to_string())
             .allowed("what the schema says")
             .fix(Fix::Words(String::new()))
     })?;
-    validate::validate(written, tree, files)
+    validate::validate(written, tree, library)
 }

@@ -14,7 +14,7 @@ pub fn apply(tree: &mut Value, sets: &[String]) -> Result<(), Complaints> {
     for set in sets {
         match split(set) {
             Ok((place, value)) if tree.pointer(place).is_some() || schema::at(tree, place).is_some() => {
-                pointer::put(tree, place, value);
+                schema::put(tree, place, value);
             }
             Ok((place, value)) => found.push(leads_nowhere(tree, place, &value)),
             Err(complaints) => found.extend(complaints.0),

@@ -50,3 +50,8 @@ pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Opti
     let distance = |candidate: &&str| strsim::damerau_levenshtein(&lower, &candidate.to_lowercase());
     known.into_iter().min_by_key(distance)
 }
+
+/// Whether one spelling may be meant for the other: at least half of the letters agree.
+pub fn is_near(word: &str, known: &str) -> bool {
+    strsim::normalized_damerau_levenshtein(&word.to_lowercase(), known) >= 0.5
+}

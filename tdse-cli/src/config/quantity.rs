@@ -102,6 +102,14 @@ pub fn digits(number: f64) -> String {
     }
 }
 
+/// A JSON number in its shortest spelling: `1e14`, not `100000000000000.0`.
+pub fn number_text(number: &serde_json::Number) -> String {
+    match number.as_f64() {
+        Some(value) if number.is_f64() => digits(value),
+        _ => number.to_string(),
+    }
+}
+
 /// The nearest number with this many significant decimal digits.
 pub fn rounded(number: f64, significant: usize) -> f64 {
     format!("{number:.*e}", significant.saturating_sub(1)).parse().unwrap_or(number)

@@ -17,7 +17,7 @@ pub fn repaired(schema: &Value, value: &Value) -> Value {
 fn guess(schema: &Value, value: &Value) -> Option<Value> {
     match (Shape::of(schema), value) {
         (Shape::Quantity(quantity), Value::Number(number)) => {
-            Some(format!("{number} {}", quantity.units()[0].symbol).into())
+            Some(format!("{} {}", quantity::number_text(number), quantity.units()[0].symbol).into())
         }
         (Shape::Quantity(quantity), Value::String(text)) => with_unit(quantity, text).map(Value::from),
         (Shape::Word(words), Value::String(text)) => nearest(text, words).map(Value::from),

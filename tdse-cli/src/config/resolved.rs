@@ -7,7 +7,7 @@ use tdse_core::units::Quantity;
 use super::quantity::digits;
 use super::raw::{self, Energy, Length, Time};
 use super::request::{Outputs, Request};
-use super::schema::without_nulls;
+use super::schema::tidy;
 
 /// What was found and chosen for a request.
 #[derive(Clone, Copy, Debug)]
@@ -29,7 +29,7 @@ pub fn resolved(request: &Request, chosen: &Chosen) -> Value {
     numerics(&mut written.numerics, chosen.numerics);
     outputs(&mut written.outputs, chosen.outputs);
     let mut tree = serde_json::to_value(written).unwrap_or_default();
-    without_nulls(&mut tree);
+    tidy(&mut tree);
     tree
 }
 

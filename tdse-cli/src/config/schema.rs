@@ -28,7 +28,7 @@ fn generate() -> Value {
 
 /// Optional means that a key may be left out, never that it may be null; widths of integers are of no interest.
 fn simplify(schema: &mut Value) {
-    without_nulls(schema);
+    tidy(schema);
     match schema {
         Value::Object(map) => {
             map.shift_remove("format");
@@ -52,16 +52,22 @@ fn simplify(schema: &mut Value) {
     }
 }
 
-/// Drops what serde writes for options without value.
-pub fn without_nulls(value: &mut Value) {
+/// Drops what serde writes for options without value, and the fraction it writes for whole numbers.
+pub fn tidy(value: &mut Value) {
     match value {
+        Value::Number(number) => {
+            let whole = number.as_f64().filter(|x| number.is_f64() && x.fract() == 0.0 && x.abs() < 1e15);
+            if let Some(whole) = whole {
+                *value = json!(whole as i64);
+            }
+        }
         Value::Object(map) => {
             map.retain(|_, child| !child.is_null());
-            map.values_mut().for_each(without_nulls);
+            map.values_mut().for_each(tidy);
         }
         Value::Array(list) => {
             list.retain(|child| !child.is_null());
-            list.iter_mut().for_each(without_nulls);
+            list.iter_mut().for_each(tidy);
         }
         _ => {}
     }
@@ -86,6 +92,19 @@ pub fn at(tree: &Value, pointer: &str) -> Option<&'static Value> {
         }
     }
     Some(schema)
+}
+
+/// Writes `value` at a place that [`at`] knows; a choice by `kind` on the way that is not written yet is its default.
+pub fn put(tree: &mut Value, pointer: &str, value: Value) {
+    for (end, _) in pointer.match_indices('/').skip(1) {
+        let ancestor = &pointer[..end];
+        let default = at(tree, ancestor).and_then(|schema| schema.get("default"));
+        let absent = tree.pointer(ancestor).is_none();
+        if let Some(default) = default.filter(|default| absent && default.get("kind").is_some()) {
+            pointer::put(tree, ancestor, default.clone());
+        }
+    }
+    pointer::put(tree, pointer, value);
 }
 
 /// Every place of `tree` where something is written or may be, notes aside, in the order of the schema.

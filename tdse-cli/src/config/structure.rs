@@ -149,21 +149,22 @@ fn unknown_key(
     key: &str,
 ) -> Complaint {
     let here = pointer::join(place, key);
-    let value = &map[key];
+    let complaint = |reason| Complaint::new(&here, Some(&map[key]), reason);
+    let mut rest = map.clone();
+    rest.shift_remove(key);
+    let left_out = match place {
+        "" => Fix::LeaveOut,
+        _ => Fix::Elsewhere { place: place.into(), value: rest.into() },
+    };
     if is_planned(&here) {
-        let mut rest = map.clone();
-        rest.shift_remove(key);
-        return Complaint::new(here, Some(value), "is not available in this version")
-            .allowed("the key left out")
-            .fix(Fix::Elsewhere { place: place.into(), value: rest.into() });
+        return complaint("is not available in this version").allowed("the key left out").fix(left_out);
     }
-    let free = properties.keys().map(String::as_str).filter(|known| !map.contains_key(*known));
-    let fix = pointer::nearest(key, free)
-        .map_or_else(|| Fix::Words("leave it out".into()), |known| Fix::Key(known.into()));
     let keys: Vec<&str> = properties.keys().map(String::as_str).collect();
-    Complaint::new(here, Some(value), "stands under an unknown key")
-        .allowed(format!("the keys {}", allowed::listed(&keys)))
-        .fix(fix)
+    let free = keys.iter().copied().filter(|known| !map.contains_key(*known));
+    let near = pointer::nearest(key, free).filter(|known| pointer::is_near(key, known));
+    complaint("stands under an unknown key")
+        .allowed(format!("the keys {}", keys.join(", ")))
+        .fix(near.map_or(left_out, |known| Fix::Key(known.into())))
 }
 
 /// Places of the configuration that a later version will know.
@@ -223,7 +224,7 @@ fn has_type(value: &Value, name: &str) -> bool {
 /// A value by its JSON type.
 fn described(value: &Value) -> &'static str {
     match value {
-        Value::Null => "null",
+        Value::Null => "no value",
         Value::Bool(_) => "a truth value",
         Value::Number(_) => "a number",
         Value::String(_) => "a text",

@@ -21,19 +21,41 @@ fn tree(text: &str) -> serde_json::Result<Value> {
 
 fn complaint(text: &str, error: &serde_json::Error) -> Complaint {
     let (line, column) = (error.line(), error.column());
-    let written = text.lines().nth(line.saturating_sub(1)).unwrap_or("").trim();
     let message = error.to_string();
     let what = message.rsplit_once(" at line ").map_or(message.as_str(), |(what, _)| what);
-    Complaint::new(
-        format!("line {line}, column {column}"),
-        Some(&written.into()),
-        format!("is refused: {what}"),
-    )
-    .allowed("JSON (RFC 8259), every key once")
-    .fix(Fix::Words(repair(text, line, column).map_or_else(
-        || "correct this line".into(),
-        |(number, repaired)| format!("write line {number} as {}", repaired.trim()),
-    )))
+    let mut complaint =
+        Complaint::new(format!("line {line}, column {column}"), None, format!("is refused: {what}"))
+            .allowed("JSON (RFC 8259), every key once")
+            .fix(Fix::Words(way_out(text, error)));
+    complaint.written = text.lines().nth(line.saturating_sub(1)).map(|line| format!("`{}`", line.trim()));
+    complaint
+}
+
+fn way_out(text: &str, error: &serde_json::Error) -> String {
+    let repaired = if error.is_syntax() { repair(text, error.line(), error.column()) } else { None };
+    match repaired {
+        Some((number, line)) => format!("write line {number} as `{}`", line.trim()),
+        None if error.is_eof() && tree(&format!("{text}{}", closers(text))).is_ok() => {
+            format!("write `{}` at the end", closers(text))
+        }
+        None => "correct this line".into(),
+    }
+}
+
+/// The brackets that close what `text` leaves open.
+fn closers(text: &str) -> String {
+    let (mut open, mut in_string, mut escaped) = (Vec::new(), false, false);
+    for c in text.chars() {
+        match c {
+            '"' if !escaped => in_string = !in_string,
+            '{' if !in_string => open.push('}'),
+            '[' if !in_string => open.push(']'),
+            '}' | ']' if !in_string => drop(open.pop()),
+            _ => {}
+        }
+        escaped = c == '\\' && !escaped;
+    }
+    open.into_iter().rev().collect()
 }
 
 /// Number and text of the line that makes the whole text readable once one comma is added or taken out.
@@ -133,13 +155,22 @@ mod tests {
     fn broken_text_is_refused_with_line_column_and_a_line_that_passes() {
         assert_eq!(
             message("{\n  \"a\": 1\n  \"b\": 2\n}"),
-            "line 3, column 3: \"\\\"b\\\": 2\" is refused: expected `,` or `}`; allowed: JSON (RFC 8259), every key \
-             once; write line 2 as \"a\": 1,"
+            "line 3, column 3: `\"b\": 2` is refused: expected `,` or `}`; allowed: JSON (RFC 8259), every key once; \
+             write line 2 as `\"a\": 1,`"
         );
         assert_eq!(
             message("{\n  \"a\": 1,\n}"),
-            "line 3, column 1: \"}\" is refused: trailing comma; allowed: JSON (RFC 8259), every key once; write \
-             line 2 as \"a\": 1"
+            "line 3, column 1: `}` is refused: trailing comma; allowed: JSON (RFC 8259), every key once; write line 2 \
+             as `\"a\": 1`"
+        );
+    }
+
+    #[test]
+    fn text_that_ends_early_is_refused_with_the_brackets_it_lacks() {
+        assert_eq!(
+            message("{\"a\": [\"}\\\"\""),
+            "line 1, column 12: `{\"a\": [\"}\\\"\"` is refused: EOF while parsing a list; allowed: JSON (RFC 8259), \
+             every key once; write `]}` at the end"
         );
     }
 
@@ -147,8 +178,8 @@ mod tests {
     fn a_repeated_key_is_refused() {
         assert_eq!(
             message("{\"phase\": 1, \"phase\": 2}"),
-            "line 1, column 20: \"{\\\"phase\\\": 1, \\\"phase\\\": 2}\" is refused: key \"phase\" is repeated; \
-             allowed: JSON (RFC 8259), every key once; correct this line"
+            "line 1, column 20: `{\"phase\": 1, \"phase\": 2}` is refused: key \"phase\" is repeated; allowed: JSON \
+             (RFC 8259), every key once; correct this line"
         );
     }
 

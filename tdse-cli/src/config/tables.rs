@@ -1,6 +1,7 @@
 //! CSV tables: a header with units, `#` comments, rising first column, at least four rows.
 
 use std::path::Path;
+use std::sync::Arc;
 
 use csv::{ReaderBuilder, StringRecord, Trim};
 use sha2::{Digest, Sha256};
@@ -18,14 +19,14 @@ pub struct Input {
     /// Name in the result: the file's own, with the start of its hash.
     pub name: String,
     /// The whole text.
-    pub contents: String,
+    pub contents: Arc<str>,
     /// SHA-256 of the contents, hexadecimal.
     pub sha256: String,
 }
 
 impl Input {
     /// Names and hashes the contents of `file`, which the object at `user` names.
-    pub fn new(user: &str, file: &str, contents: String) -> Self {
+    pub fn new(user: &str, file: &str, contents: Arc<str>) -> Self {
         let sha256 = format!("{:x}", Sha256::digest(contents.as_bytes()));
         let mark = format!("-{}", &sha256[..8]);
         let stem = Path::new(file).file_stem().map_or("table".into(), |stem| stem.to_string_lossy());

@@ -4,7 +4,7 @@ use serde_json::{Value, json};
 
 use crate::config::complaint::{Complaint, Complaints, Fix};
 use crate::config::raw;
-use crate::config::{self, Files, Request, pointer, resolved, schema, structure};
+use crate::config::{self, Files, Library, Request, resolved, schema, structure};
 
 pub use super::axis::{Axis, Coordinates};
 
@@ -44,10 +44,10 @@ pub fn read_scan(
     is_reserved: fn(&str) -> bool,
 ) -> Result<ScanRequest, Complaints> {
     let tree = config::parse(text, sets)?;
-    let files = files.into();
+    let library = Library::new(files.into());
     let mut axes = axes(&tree, is_reserved)?;
     let shape = shape(&tree, &mut axes)?;
-    let points = points(&tree, &axes, &shape, &files)?;
+    let points = points(&tree, &axes, &shape, &library)?;
     Ok(ScanRequest { axes, shape, points })
 }
 
@@ -150,7 +150,7 @@ fn unequal(tree: &Value, place: &str, own: usize, others: usize) -> Complaint {
     complaint.allowed("equal numbers of values along axes that move together").fix(fix)
 }
 
-fn points(tree: &Value, axes: &[Axis], shape: &[usize], files: &Files) -> Result<Vec<Point>, Complaints> {
+fn points(tree: &Value, axes: &[Axis], shape: &[usize], library: &Library) -> Result<Vec<Point>, Complaints> {
     let mut base = tree.clone();
     if let Value::Object(map) = &mut base {
         map.shift_remove("scan");
@@ -162,11 +162,11 @@ fn points(tree: &Value, axes: &[Axis], shape: &[usize], files: &Files) -> Result
         let values = || axes.iter().map(|axis| (axis, &axis.values[position[axis.dimension]]));
         let mut point = base.clone();
         for (axis, value) in values() {
-            pointer::put(&mut point, &axis.parameter, value.clone());
+            schema::put(&mut point, &axis.parameter, value.clone());
         }
         let label =
             values().map(|(axis, value)| format!("{} = {value}", axis.name)).collect::<Vec<_>>().join(", ");
-        match config::request(&point, files) {
+        match config::request(&point, library) {
             Ok(request) => points.push(Point { label, text: resolved::text(&point), request }),
             Err(complaints) => faults.push((label, complaints)),
         }

@@ -17,10 +17,12 @@ pub struct Axis {
     #[schemars(example = &"cep")]
     pub name: Option<String>,
     /// First value.
-    #[schemars(schema_with = "end")]
+    #[serde(default)]
+    #[schemars(schema_with = "end", example = "0 deg")]
     pub from: Option<Value>,
     /// Last value.
-    #[schemars(schema_with = "end")]
+    #[serde(default)]
+    #[schemars(schema_with = "end", example = "345 deg")]
     pub to: Option<Value>,
     /// Number of values, both ends counted.
     #[schemars(range(min = 2, max = 1_000_000), example = 24)]

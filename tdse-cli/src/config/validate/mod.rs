@@ -9,7 +9,7 @@ mod table;
 use serde_json::Value;
 
 use super::complaint::{Complaint, Complaints, Fix};
-use super::files::Files;
+use super::library::Library;
 use super::pointer::join;
 use super::raw;
 use super::request::Request;
@@ -20,8 +20,8 @@ use super::tables::Input;
 ///
 /// # Errors
 /// Every fault found, in file order.
-pub fn validate(written: raw::Configuration, tree: &Value, files: &Files) -> Result<Request, Complaints> {
-    let mut check = Check { tree, files, found: Vec::new(), inputs: Vec::new() };
+pub fn validate(written: raw::Configuration, tree: &Value, library: &Library) -> Result<Request, Complaints> {
+    let mut check = Check { tree, library, found: Vec::new(), inputs: Vec::new() };
     let atom = atom::atom(&mut check, &written.atom);
     let field = field::field(&mut check, &written.field, written.atom.dimensions);
     let (outputs, record) = outputs::outputs(&mut check, &written.outputs);
@@ -45,7 +45,7 @@ pub fn validate(written: raw::Configuration, tree: &Value, files: &Files) -> Res
 /// What a check looks at and what it has found.
 struct Check<'a> {
     tree: &'a Value,
-    files: &'a Files,
+    library: &'a Library,
     found: Vec<Complaint>,
     inputs: Vec<Input>,
 }

@@ -8,7 +8,7 @@ use tdse_core::cubic::Cubic;
 use super::Check;
 use crate::config::complaint::Fix;
 use crate::config::pointer::{join, nearest};
-use crate::config::tables::{self, Input, Layout};
+use crate::config::tables::{Input, Layout};
 
 impl Check<'_> {
     /// The table that the object at `user` names, kept among the inputs.
@@ -19,13 +19,14 @@ impl Check<'_> {
         sha256: Option<&String>,
         layout: Layout,
     ) -> Option<Arc<Cubic>> {
-        let input = match self.files.contents(file) {
-            Ok(contents) => Input::new(user, file, contents),
+        let table = match self.library.table(file, layout) {
+            Ok(table) => table,
             Err(error) => {
                 self.unreadable(user, file, &error);
                 return None;
             }
         };
+        let input = Input::new(user, file, table.contents);
         if sha256.is_some_and(|wanted| *wanted != input.sha256) {
             self.complain(
                 &join(user, "sha256"),
@@ -34,10 +35,9 @@ impl Check<'_> {
                 Fix::Value(Value::from(input.sha256.as_str())),
             );
         }
-        let cubic = tables::read(&input.contents, layout);
         self.inputs.push(input);
-        match cubic {
-            Ok(cubic) => Some(Arc::new(cubic)),
+        match table.curve {
+            Ok(curve) => Some(curve),
             Err(fault) => {
                 let fix = Fix::Words(format!("correct line {} of the file", fault.line));
                 let reason = format!("has a fault in line {}: {}", fault.line, fault.reason);
@@ -48,10 +48,14 @@ impl Check<'_> {
     }
 
     fn unreadable(&mut self, user: &str, file: &str, error: &std::io::Error) {
-        let tables = self.files.tables();
+        let tables = self.library.names();
         let fix = nearest(file, tables.iter().map(String::as_str))
             .map_or_else(|| Fix::Words("put the file there".into()), |table| Fix::Value(table.into()));
+        let reason = match error.kind() {
+            std::io::ErrorKind::NotFound => "no such file".into(),
+            _ => error.to_string(),
+        };
         let allowed = "the path of a CSV file, relative to the configuration's folder";
-        self.complain(&join(user, "file"), format!("cannot be read ({})", error.kind()), allowed, fix);
+        self.complain(&join(user, "file"), format!("cannot be read ({reason})"), allowed, fix);
     }
 }
