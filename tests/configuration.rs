@@ -253,6 +253,12 @@ fn a_fault_of_a_table_is_found_by_file_line_and_value() {
         ("time [fs],electric_field [V/m]\n0,1\n1,x\n", "has a fault in line 3: \"x\" is not a number"),
         ("time [fs],electric_field [V/m]\n0,1\n1,nan\n", "has a fault in line 3: \"nan\" is not a number"),
         ("time [fs],electric_field [V/m]\n# c\n0,1\n0,2\n", "has a fault in line 4: \"0\" does not rise"),
+        ("time [fs],electric_field [V/m]\n0,1\n# c\n\n0,2\n", "has a fault in line 5: \"0\" does not rise"),
+        ("time [fs],electric_field [V/m]\r\n0,1\r\n1,\r\n", "has a fault in line 3: \"\" is not a number"),
+        (
+            "\u{feff}time [fs],electric_field [V/m]\n0,1\n1,?\n",
+            "has a fault in line 3: \"?\" is not a number",
+        ),
         ("time [fs],electric_field [V/m]\n0,1,2\n", "has a fault in line 2: \"0\" has 3 columns"),
         ("time [fs],electric_field [V/m]\n0,1\n1,2\n2,3\n", "has a fault in line 4: is the end"),
     ];

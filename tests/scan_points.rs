@@ -121,10 +121,9 @@ fn without_axes_there_is_one_point() {
 
 #[test]
 fn coordinates_are_numbers_where_they_can_be() {
-    let tree = json!({ "field": { "pulses": [{ "envelope": { "kind": "sin2" } }] } });
     let coordinates = |parameter: &str, values: Value| {
         let scan = scan(&json!([{ "parameter": parameter, "values": values }]));
-        scan.axes[0].coordinates(&tree)
+        scan.axes[0].coordinates.clone()
     };
     let numbers = |values: &[f64], unit| Coordinates::Numbers { values: values.to_vec(), unit };
     assert_eq!(coordinates(PHASE, json!(["0 deg", "45 deg"])), numbers(&[0.0, 45.0], Some("deg")));

@@ -1,6 +1,6 @@
 //! From the text of a configuration to a checked [`Request`], and back to text that leaves nothing open.
 //!
-//! Text → [`syntax`] → [`overrides`] → [`structure`] (against [`mod@schema`]) → [`raw`] → [`validate`] → [`request`];
+//! Text → [`syntax`] → [`overrides`] → [`structure`] (against [`mod@schema`]) → [`raw`] → [`validate`] → [`mod@request`];
 //! once numerics are chosen, [`mod@resolved`] → [`mod@identity`].
 
 pub mod allowed;

@@ -88,7 +88,11 @@ pub struct TableFault {
 }
 
 /// Reads a table in atomic units.
+///
+/// # Errors
+/// The first fault from the top.
 pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
+    let source = Source { contents };
     let mut reader = ReaderBuilder::new()
         .comment(Some(b'#'))
         .trim(Trim::All)
@@ -96,75 +100,92 @@ pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
         .has_headers(false)
         .from_reader(contents.as_bytes());
     let mut records = reader.records();
-    let no_row = |what: &str| TableFault {
-        line: contents.lines().count() as u64,
-        reason: "is the end".into(),
-        allowed: what.into(),
-    };
-    let header = records.next().ok_or_else(|| no_row(layout.header))?.map_err(|error| unreadable(&error))?;
-    let factors = units(&header, layout)?;
+    let header = records.next().ok_or_else(|| source.too_short(layout.header))?;
+    let factors = source.units(&source.record(header)?, layout)?;
     let mut columns = [Vec::new(), Vec::new()];
     for record in records {
-        let record = record.map_err(|error| unreadable(&error))?;
-        let row = row(&record)?;
-        if columns[0].last().is_some_and(|before| row[0] * factors[0] <= *before) {
-            return Err(fault(&record, format!("{:?} does not rise", &record[0]), "rising values"));
+        let record = source.record(record)?;
+        let row = source.row(&record, factors)?;
+        if columns[0].last().is_some_and(|before| row[0] <= *before) {
+            return Err(source.fault(&record, format!("{:?} does not rise", &record[0]), "rising values"));
         }
-        for ((column, number), factor) in columns.iter_mut().zip(row).zip(factors) {
-            column.push(number * factor);
+        for (column, value) in columns.iter_mut().zip(row) {
+            column.push(value);
         }
     }
     let [x, y] = columns;
-    if x.len() < 4 { Err(no_row("at least 4 rows of numbers")) } else { Ok(Cubic::new(x, y)) }
+    if x.len() < 4 { Err(source.too_short("at least 4 rows of numbers")) } else { Ok(Cubic::new(x, y)) }
 }
 
-/// Factors to atomic units of both columns.
-fn units(header: &StringRecord, layout: Layout) -> Result<[f64; 2], TableFault> {
-    width(header)?;
-    let mut factors = [0.0; 2];
-    for (i, column) in layout.columns.into_iter().enumerate() {
-        let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
-        let unit = unit.filter(|(name, _)| name.trim() == column.name);
-        let unit = unit.and_then(|(_, symbol)| column.quantity.unit(symbol.trim()));
-        let symbols: Vec<&str> = column.quantity.units().iter().map(|unit| unit.symbol).collect();
-        let allowed = format!("a header such as {}, with the unit {}", layout.header, either(&symbols));
-        factors[i] = unit
-            .ok_or_else(|| {
-                fault(header, format!("{:?} is not {} and its unit", &header[i], column.name), allowed)
-            })?
-            .factor;
-    }
-    Ok(factors)
+/// The text of a table, for faults by line.
+struct Source<'a> {
+    contents: &'a str,
 }
 
-fn row(record: &StringRecord) -> Result<[f64; 2], TableFault> {
-    width(record)?;
-    let number = |text: &str| {
-        let number = text.parse::<f64>().ok().filter(|number| number.is_finite());
-        number
-            .ok_or_else(|| fault(record, format!("{text:?} is not a number"), "a finite number such as 0.5"))
-    };
-    Ok([number(&record[0])?, number(&record[1])?])
-}
-
-fn width(record: &StringRecord) -> Result<(), TableFault> {
-    match record.len() {
-        2 => Ok(()),
-        n => {
-            Err(fault(record, format!("{:?} has {n} columns", &record[0]), "two columns, parted by a comma"))
+impl Source<'_> {
+    /// Factors to atomic units of both columns.
+    fn units(&self, header: &StringRecord, layout: Layout) -> Result<[f64; 2], TableFault> {
+        self.width(header)?;
+        let mut factors = [0.0; 2];
+        for (i, column) in layout.columns.into_iter().enumerate() {
+            let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
+            let unit = unit.filter(|(name, _)| name.trim() == column.name);
+            let unit = unit.and_then(|(_, symbol)| column.quantity.unit(symbol.trim()));
+            let symbols: Vec<&str> = column.quantity.units().iter().map(|unit| unit.symbol).collect();
+            let reason = format!("{:?} is not {} and its unit", &header[i], column.name);
+            let allowed = format!("a header such as {}, with the unit {}", layout.header, either(&symbols));
+            factors[i] = unit.ok_or_else(|| self.fault(header, reason, allowed))?.factor;
         }
+        Ok(factors)
     }
-}
 
-fn fault(record: &StringRecord, reason: String, allowed: impl Into<String>) -> TableFault {
-    TableFault { line: record.position().map_or(0, csv::Position::line), reason, allowed: allowed.into() }
-}
+    /// Both values of a row in atomic units.
+    fn row(&self, record: &StringRecord, factors: [f64; 2]) -> Result<[f64; 2], TableFault> {
+        self.width(record)?;
+        let value = |text: &str, factor: f64| {
+            let value =
+                text.parse().ok().map(|number: f64| number * factor).filter(|value| value.is_finite());
+            let reason = || format!("{text:?} is not a number");
+            value.ok_or_else(|| self.fault(record, reason(), "a finite number such as 0.5"))
+        };
+        Ok([value(&record[0], factors[0])?, value(&record[1], factors[1])?])
+    }
 
-fn unreadable(error: &csv::Error) -> TableFault {
-    let line = error.position().map_or(0, csv::Position::line);
-    TableFault {
-        line,
-        reason: error.to_string(),
-        allowed: "comma-separated values (RFC 4180) in UTF-8".into(),
+    fn width(&self, record: &StringRecord) -> Result<(), TableFault> {
+        let reason = match record.len() {
+            2 => return Ok(()),
+            n => format!("{:?} has {n} columns", &record[0]),
+        };
+        Err(self.fault(record, reason, "two columns, parted by a comma"))
+    }
+
+    fn record(&self, record: csv::Result<StringRecord>) -> Result<StringRecord, TableFault> {
+        record.map_err(|error| TableFault {
+            line: self.line(error.position()),
+            reason: error.to_string(),
+            allowed: "comma-separated values (RFC 4180)".into(),
+        })
+    }
+
+    fn fault(&self, record: &StringRecord, reason: String, allowed: impl Into<String>) -> TableFault {
+        TableFault { line: self.line(record.position()), reason, allowed: allowed.into() }
+    }
+
+    fn too_short(&self, wanted: &str) -> TableFault {
+        let line = self.contents.lines().count() as u64;
+        TableFault { line, reason: "is the end".into(), allowed: wanted.into() }
+    }
+
+    /// Line of a record. The reader's position stands before the line ends, comments and empty lines that it skips.
+    fn line(&self, position: Option<&csv::Position>) -> u64 {
+        let mut start = position.map_or(0, |position| position.byte() as usize);
+        while let Some(rest) = self.contents.get(start..) {
+            match rest.as_bytes().first() {
+                Some(b'\r' | b'\n') => start += 1,
+                Some(b'#') => start += rest.find('\n').unwrap_or(rest.len()),
+                _ => break,
+            }
+        }
+        1 + self.contents.bytes().take(start).filter(|byte| *byte == b'\n').count() as u64
     }
 }

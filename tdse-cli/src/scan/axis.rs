@@ -23,6 +23,8 @@ pub struct Axis {
     pub dimension: usize,
     /// The values, as they are written into each point.
     pub values: Vec<Value>,
+    /// The same for results.
+    pub coordinates: Coordinates,
 }
 
 /// Values of an axis as results show them.
@@ -39,23 +41,23 @@ pub enum Coordinates {
     Words(Vec<String>),
 }
 
-impl Axis {
+impl Coordinates {
     /// Numbers where every value is one, with or without unit; else words.
-    pub fn coordinates(&self, tree: &Value) -> Coordinates {
-        let numbers: Option<Vec<f64>> = self.values.iter().map(Value::as_f64).collect();
+    fn of(values: &[Value], schema: &Value) -> Self {
+        let numbers: Option<Vec<f64>> = values.iter().map(Value::as_f64).collect();
         if let Some(values) = numbers {
-            return Coordinates::Numbers { values, unit: None };
+            return Self::Numbers { values, unit: None };
         }
-        let parsed: Option<Vec<Parsed>> = schema::at(tree, &self.parameter).and_then(|schema| {
-            let Shape::Quantity(quantity) = Shape::of(schema) else { return None };
-            self.values.iter().map(|value| quantity::parse(quantity, value.as_str()?).ok()).collect()
-        });
-        if let Some([first, ..]) = parsed.as_deref() {
-            let values = parsed.iter().flatten().map(|value| number_in(first.unit, *value)).collect();
-            return Coordinates::Numbers { values, unit: Some(first.unit.symbol) };
+        if let Shape::Quantity(quantity) = Shape::of(schema) {
+            let parsed = values.iter().map(|value| quantity::parse(quantity, value.as_str()?).ok());
+            if let Some([first, rest @ ..]) = parsed.collect::<Option<Vec<Parsed>>>().as_deref() {
+                let rest = rest.iter().map(|value| number_in(first.unit, *value));
+                let values = std::iter::once(first.number).chain(rest).collect();
+                return Self::Numbers { values, unit: Some(first.unit.symbol) };
+            }
         }
         let word = |value: &Value| value.as_str().map_or_else(|| value.to_string(), str::to_owned);
-        Coordinates::Words(self.values.iter().map(word).collect())
+        Self::Words(values.iter().map(word).collect())
     }
 }
 
@@ -81,7 +83,8 @@ pub fn axis(
         }
         _ => return Err(neither_way(tree, raw, place)),
     };
-    Ok(Axis { name, parameter: raw.parameter.clone(), dimension: 0, values })
+    let coordinates = Coordinates::of(&values, schema);
+    Ok(Axis { name, parameter: raw.parameter.clone(), dimension: 0, values, coordinates })
 }
 
 /// Schema of what the axis varies.

@@ -175,7 +175,7 @@ fn points(tree: &Value, axes: &[Axis], shape: &[usize], library: &Library) -> Re
 }
 
 /// Row-major position of a point: the last dimension is fastest.
-fn position(mut index: usize, shape: &[usize]) -> Vec<usize> {
+pub fn position(mut index: usize, shape: &[usize]) -> Vec<usize> {
     let mut position = vec![0; shape.len()];
     for (place, length) in position.iter_mut().zip(shape).rev() {
         *place = index % length;

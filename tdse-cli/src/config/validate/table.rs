@@ -1,5 +1,6 @@
 //! Reading the tables that a configuration names.
 
+use std::io::ErrorKind;
 use std::sync::Arc;
 
 use serde_json::Value;
@@ -49,11 +50,11 @@ impl Check<'_> {
 
     fn unreadable(&mut self, user: &str, file: &str, error: &std::io::Error) {
         let tables = self.library.names();
-        let fix = nearest(file, tables.iter().map(String::as_str))
-            .map_or_else(|| Fix::Words("put the file there".into()), |table| Fix::Value(table.into()));
-        let reason = match error.kind() {
-            std::io::ErrorKind::NotFound => "no such file".into(),
-            _ => error.to_string(),
+        let near = nearest(file, tables.iter().map(String::as_str));
+        let (reason, fix) = match (error.kind(), near) {
+            (ErrorKind::NotFound, Some(table)) => ("no such file".into(), Fix::Value(table.into())),
+            (ErrorKind::NotFound, None) => ("no such file".into(), Fix::Words("put the file there".into())),
+            _ => (error.to_string(), Fix::Words("make it a readable file in UTF-8".into())),
         };
         let allowed = "the path of a CSV file, relative to the configuration's folder";
         self.complain(&join(user, "file"), format!("cannot be read ({reason})"), allowed, fix);
