@@ -16,6 +16,7 @@
 pub mod absorber;
 pub mod choose;
 pub mod cubic;
+pub mod elements;
 pub mod field;
 pub mod grid;
 pub mod potential;

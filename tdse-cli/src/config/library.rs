@@ -1,0 +1,55 @@
+//! Tables that are read once, however many points of a scan use them.
+
+use std::cell::RefCell;
+use std::collections::BTreeMap;
+use std::io;
+use std::sync::Arc;
+
+use tdse_core::cubic::Cubic;
+
+use super::files::Files;
+use super::tables::{self, Layout, TableFault};
+
+/// The files of a configuration, and the tables read from them so far.
+#[derive(Debug)]
+pub struct Library {
+    files: Files,
+    read: RefCell<BTreeMap<(String, &'static str), Table>>,
+}
+
+/// A table: its text, and the curve through it.
+#[derive(Clone, Debug)]
+pub struct Table {
+    /// Contents of the file.
+    pub contents: Arc<str>,
+    /// The curve, atomic units.
+    pub curve: Result<Arc<Cubic>, TableFault>,
+}
+
+impl Library {
+    /// A library of these files, nothing read yet.
+    pub fn new(files: Files) -> Self {
+        Self { files, read: RefCell::default() }
+    }
+
+    /// The table in `file`.
+    ///
+    /// # Errors
+    /// If the file cannot be read; faults of what it holds are told by [`Table::curve`].
+    pub fn table(&self, file: &str, layout: Layout) -> io::Result<Table> {
+        let key = (file.to_owned(), layout.header);
+        if let Some(table) = self.read.borrow().get(&key) {
+            return Ok(table.clone());
+        }
+        let contents: Arc<str> = self.files.contents(file)?.into();
+        let curve = tables::read(&contents, layout).map(Arc::new);
+        let table = Table { contents, curve };
+        self.read.borrow_mut().insert(key, table.clone());
+        Ok(table)
+    }
+
+    /// Names of the tables there are.
+    pub fn names(&self) -> Vec<String> {
+        self.files.tables()
+    }
+}

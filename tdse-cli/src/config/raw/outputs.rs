@@ -1,0 +1,115 @@
+//! `outputs` and `models`.
+
+use schemars::JsonSchema;
+use serde::{Deserialize, Serialize};
+use serde_json::json;
+
+use super::{Energy, Time};
+
+/// What is derived from a run and written.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Outputs {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Spectrum of the harmonics with its phase.
+    #[schemars(example = json!({ "max_energy": "120 eV" }))]
+    pub harmonics: Option<Harmonics>,
+    /// Time-frequency map of the dipole acceleration (Gabor transform).
+    #[schemars(example = json!({}))]
+    pub time_frequency: Option<TimeFrequency>,
+    /// Populations of bound states in time.
+    #[schemars(example = json!({ "states": 4 }))]
+    pub populations: Option<Populations>,
+}
+
+/// Spectrum of the harmonics.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Harmonics {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// End of the energy axis, which starts at 0; chosen beyond the classical cutoff if left out.
+    #[schemars(example = "120 eV", extend("x-exclusive-minimum" = "0 eV", "x-maximum" = "100 keV"))]
+    pub max_energy: Option<Energy>,
+    /// Step of the energy axis; chosen from the length of the run if left out.
+    #[schemars(example = "0.05 eV", extend("x-exclusive-minimum" = "0 eV"))]
+    pub energy_step: Option<Energy>,
+    /// Window laid over the acceleration before it is transformed.
+    #[serde(default)]
+    pub window: Window,
+}
+
+/// Window over the whole run.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(tag = "kind", rename_all = "snake_case", deny_unknown_fields)]
+pub enum Window {
+    /// None: the spectrum is the radiated one.
+    None {
+        /// Anything worth remembering.
+        note: Option<String>,
+    },
+    /// Hann window.
+    Hann {
+        /// Anything worth remembering.
+        note: Option<String>,
+    },
+    /// Blackman window.
+    Blackman {
+        /// Anything worth remembering.
+        note: Option<String>,
+    },
+    /// 1, but for a fall to zero as the square of a cosine at the end.
+    Taper {
+        /// Anything worth remembering.
+        note: Option<String>,
+        /// Length of the fall.
+        #[schemars(example = "3 fs", extend("x-exclusive-minimum" = "0 fs"))]
+        length: Time,
+    },
+}
+
+impl Default for Window {
+    fn default() -> Self {
+        Self::None { note: None }
+    }
+}
+
+/// Time-frequency map with a Gaussian window.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct TimeFrequency {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Full width at half maximum of the window's square; chosen if left out.
+    #[schemars(example = "0.3 fs", extend("x-exclusive-minimum" = "0 fs"))]
+    pub window_length: Option<Time>,
+    /// End of the energy axis, which starts at 0; that of the harmonics if left out.
+    #[schemars(example = "120 eV", extend("x-exclusive-minimum" = "0 eV", "x-maximum" = "100 keV"))]
+    pub max_energy: Option<Energy>,
+    /// Step of the energy axis; chosen if left out.
+    #[schemars(example = "0.5 eV", extend("x-exclusive-minimum" = "0 eV"))]
+    pub energy_step: Option<Energy>,
+    /// Step of the time axis; chosen if left out.
+    #[schemars(example = "0.05 fs", extend("x-exclusive-minimum" = "0 fs"))]
+    pub time_step: Option<Time>,
+}
+
+/// Populations of bound states in time.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Populations {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Number of states, from the lowest.
+    #[schemars(range(min = 1, max = 1000), example = 4)]
+    pub states: u32,
+}
+
+/// Simpler models; none in this version.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Models {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+}

@@ -1,0 +1,142 @@
+//! The resolved configuration: nothing left to choose, and what the user wrote in the user's own words.
+
+use serde_json::Value;
+use tdse_core::problem::{Absorber, Gauge, Numerics, Scheme};
+use tdse_core::units::Quantity;
+
+use super::quantity::digits;
+use super::raw::{self, Energy, Length, Time};
+use super::request::{Outputs, Request};
+use super::schema::tidy;
+
+/// What was found and chosen for a request.
+#[derive(Clone, Copy, Debug)]
+pub struct Chosen<'a> {
+    /// The tuned softening, bohr; `None` where none was tuned.
+    pub softening: Option<f64>,
+    /// Every choice of numerics.
+    pub numerics: &'a Numerics,
+    /// The outputs of the request with their defaults filled in.
+    pub outputs: &'a Outputs,
+}
+
+/// The configuration that says it all; read again and resolved again it gives itself.
+pub fn resolved(request: &Request, chosen: &Chosen) -> Value {
+    let mut written = request.written.clone();
+    written.scan = None;
+    atom(&mut written.atom, chosen.softening);
+    inputs(&mut written, request);
+    numerics(&mut written.numerics, chosen.numerics);
+    outputs(&mut written.outputs, chosen.outputs);
+    let mut tree = serde_json::to_value(written).unwrap_or_default();
+    tidy(&mut tree);
+    tree
+}
+
+/// Text of a resolved configuration.
+pub fn text(resolved: &Value) -> String {
+    format!("{resolved:#}\n")
+}
+
+fn atom(atom: &mut raw::Atom, tuned: Option<f64>) {
+    atom.element = None;
+    atom.ionization_energy = None;
+    if let raw::Potential::SoftCoulomb { softening, .. } | raw::Potential::Screened { softening, .. } =
+        &mut atom.potential
+        && softening.is_none()
+    {
+        *softening = tuned.map(|a| Length(spelled(a, Quantity::Length, "au")));
+    }
+}
+
+fn inputs(written: &mut raw::Configuration, request: &Request) {
+    for input in &request.inputs {
+        match (&mut written.atom.potential, &mut written.field.sampled) {
+            (raw::Potential::Sampled { file, sha256, .. }, _) if input.user == "/atom/potential" => {
+                (*file, *sha256) = (input.reference(), Some(input.sha256.clone()));
+            }
+            (_, Some(sampled)) if input.user == "/field/sampled" => {
+                (sampled.file, sampled.sha256) = (input.reference(), Some(input.sha256.clone()));
+            }
+            _ => {}
+        }
+    }
+}
+
+fn numerics(written: &mut raw::Numerics, chosen: &Numerics) {
+    length(&mut written.spacing, chosen.grid.x.spacing);
+    length(&mut written.extent, chosen.grid.x.extent());
+    time(&mut written.time_step, chosen.time_step);
+    time(&mut written.trailing_time, chosen.trailing_time);
+    written.scheme = Some(match chosen.scheme {
+        Scheme::FourthOrder => raw::Scheme::FourthOrder,
+        Scheme::Strang => raw::Scheme::Strang,
+    });
+    written.gauge = Some(match chosen.gauge {
+        Gauge::Length => raw::Gauge::Length,
+        Gauge::Velocity => raw::Gauge::Velocity,
+    });
+    written.absorber = Some(absorber(written.absorber.take(), chosen.absorber));
+    written.common = false;
+}
+
+fn absorber(written: Option<raw::Absorber>, chosen: Absorber) -> raw::Absorber {
+    let (note, mut width) = match written {
+        Some(raw::Absorber::Smooth { note, width }) => (note, width),
+        Some(raw::Absorber::None { note }) => (note, None),
+        None => (None, None),
+    };
+    match chosen {
+        Absorber::None => raw::Absorber::None { note },
+        Absorber::Smooth { width: value } => {
+            length(&mut width, value);
+            raw::Absorber::Smooth { note, width }
+        }
+    }
+}
+
+fn outputs(written: &mut raw::Outputs, filled: &Outputs) {
+    if let (Some(written), Some(filled)) = (&mut written.harmonics, &filled.harmonics) {
+        fill_energy(&mut written.max_energy, filled.max_energy);
+        fill_energy(&mut written.energy_step, filled.energy_step);
+    }
+    if let (Some(written), Some(filled)) = (&mut written.time_frequency, &filled.time_frequency) {
+        fill_time(&mut written.window_length, filled.window_length);
+        fill_energy(&mut written.max_energy, filled.max_energy);
+        fill_energy(&mut written.energy_step, filled.energy_step);
+        fill_time(&mut written.time_step, filled.time_step);
+    }
+}
+
+fn length(written: &mut Option<Length>, value: f64) {
+    if written.as_ref().map(Length::value) != Some(value) {
+        *written = Some(Length(spelled(value, Quantity::Length, "au")));
+    }
+}
+
+fn time(written: &mut Option<Time>, value: f64) {
+    if written.as_ref().map(Time::value) != Some(value) {
+        *written = Some(Time(spelled(value, Quantity::Time, "au")));
+    }
+}
+
+fn fill_energy(written: &mut Option<Energy>, value: Option<f64>) {
+    if let (None, Some(value)) = (&written, value) {
+        *written = Some(Energy(spelled(value, Quantity::Energy, "eV")));
+    }
+}
+
+fn fill_time(written: &mut Option<Time>, value: Option<f64>) {
+    if let (None, Some(value)) = (&written, value) {
+        *written = Some(Time(spelled(value, Quantity::Time, "fs")));
+    }
+}
+
+/// A value in atomic units with the unit asked for if it reads back bit by bit, else with `au`, which always does.
+fn spelled(value: f64, quantity: Quantity, symbol: &str) -> String {
+    let number = quantity.unit(symbol).map(|unit| (value / unit.factor, unit.factor));
+    match number {
+        Some((number, factor)) if number * factor == value => format!("{} {symbol}", digits(number)),
+        _ => format!("{} au", digits(value)),
+    }
+}

@@ -1,0 +1,191 @@
+//! CSV tables: a header with units, `#` comments, rising first column, at least four rows.
+
+use std::path::Path;
+use std::sync::Arc;
+
+use csv::{ReaderBuilder, StringRecord, Trim};
+use sha2::{Digest, Sha256};
+use tdse_core::cubic::Cubic;
+use tdse_core::units::Quantity;
+
+use super::allowed::either;
+use super::files::INPUTS;
+
+/// A table kept with a result.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Input {
+    /// JSON Pointer to the object that names the file.
+    pub user: String,
+    /// Name in the result: the file's own, with the start of its hash.
+    pub name: String,
+    /// The whole text.
+    pub contents: Arc<str>,
+    /// SHA-256 of the contents, hexadecimal.
+    pub sha256: String,
+}
+
+impl Input {
+    /// Names and hashes the contents of `file`, which the object at `user` names.
+    pub fn new(user: &str, file: &str, contents: Arc<str>) -> Self {
+        let sha256 = format!("{:x}", Sha256::digest(contents.as_bytes()));
+        let mark = format!("-{}", &sha256[..8]);
+        let stem = Path::new(file).file_stem().map_or("table".into(), |stem| stem.to_string_lossy());
+        let stem = stem.strip_suffix(&mark).unwrap_or(&stem);
+        Self { user: user.into(), name: format!("{stem}{mark}.csv"), contents, sha256 }
+    }
+
+    /// How a resolved configuration refers to it.
+    pub fn reference(&self) -> String {
+        format!("{INPUTS}{}", self.name)
+    }
+}
+
+/// What a column holds.
+#[derive(Clone, Copy, Debug)]
+pub struct Column {
+    /// Name in the header.
+    pub name: &'static str,
+    /// Quantity of its unit.
+    pub quantity: Quantity,
+}
+
+/// What a table holds.
+#[derive(Clone, Copy, Debug)]
+pub struct Layout {
+    /// The rising column and the one interpolated.
+    pub columns: [Column; 2],
+    /// An example of the header.
+    pub header: &'static str,
+}
+
+/// Electric field over time.
+pub const FIELD: Layout = Layout {
+    columns: [
+        Column { name: "time", quantity: Quantity::Time },
+        Column { name: "electric_field", quantity: Quantity::ElectricField },
+    ],
+    header: "time [fs],electric_field [V/m]",
+};
+
+/// Potential energy over position.
+pub const POTENTIAL: Layout = Layout {
+    columns: [
+        Column { name: "position", quantity: Quantity::Length },
+        Column { name: "potential", quantity: Quantity::Energy },
+    ],
+    header: "position [bohr],potential [eV]",
+};
+
+/// What is wrong with a table, where, and what belongs there.
+#[derive(Clone, Debug, PartialEq)]
+pub struct TableFault {
+    /// Line in the file, from 1.
+    pub line: u64,
+    /// What is wrong, with the text concerned.
+    pub reason: String,
+    /// What may stand there.
+    pub allowed: String,
+}
+
+/// Reads a table in atomic units.
+///
+/// # Errors
+/// The first fault from the top.
+pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
+    let source = Source { contents };
+    let mut reader = ReaderBuilder::new()
+        .comment(Some(b'#'))
+        .trim(Trim::All)
+        .flexible(true)
+        .has_headers(false)
+        .from_reader(contents.as_bytes());
+    let mut records = reader.records();
+    let header = records.next().ok_or_else(|| source.too_short(layout.header))?;
+    let factors = source.units(&source.record(header)?, layout)?;
+    let mut columns = [Vec::new(), Vec::new()];
+    for record in records {
+        let record = source.record(record)?;
+        let row = source.row(&record, factors)?;
+        if columns[0].last().is_some_and(|before| row[0] <= *before) {
+            return Err(source.fault(&record, format!("{:?} does not rise", &record[0]), "rising values"));
+        }
+        for (column, value) in columns.iter_mut().zip(row) {
+            column.push(value);
+        }
+    }
+    let [x, y] = columns;
+    if x.len() < 4 { Err(source.too_short("at least 4 rows of numbers")) } else { Ok(Cubic::new(x, y)) }
+}
+
+/// The text of a table, for faults by line.
+struct Source<'a> {
+    contents: &'a str,
+}
+
+impl Source<'_> {
+    /// Factors to atomic units of both columns.
+    fn units(&self, header: &StringRecord, layout: Layout) -> Result<[f64; 2], TableFault> {
+        self.width(header)?;
+        let mut factors = [0.0; 2];
+        for (i, column) in layout.columns.into_iter().enumerate() {
+            let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
+            let unit = unit.filter(|(name, _)| name.trim() == column.name);
+            let unit = unit.and_then(|(_, symbol)| column.quantity.unit(symbol.trim()));
+            let symbols: Vec<&str> = column.quantity.units().iter().map(|unit| unit.symbol).collect();
+            let reason = format!("{:?} is not {} and its unit", &header[i], column.name);
+            let allowed = format!("a header such as {}, with the unit {}", layout.header, either(&symbols));
+            factors[i] = unit.ok_or_else(|| self.fault(header, reason, allowed))?.factor;
+        }
+        Ok(factors)
+    }
+
+    /// Both values of a row in atomic units.
+    fn row(&self, record: &StringRecord, factors: [f64; 2]) -> Result<[f64; 2], TableFault> {
+        self.width(record)?;
+        let value = |text: &str, factor: f64| {
+            let value =
+                text.parse().ok().map(|number: f64| number * factor).filter(|value| value.is_finite());
+            let reason = || format!("{text:?} is not a number");
+            value.ok_or_else(|| self.fault(record, reason(), "a finite number such as 0.5"))
+        };
+        Ok([value(&record[0], factors[0])?, value(&record[1], factors[1])?])
+    }
+
+    fn width(&self, record: &StringRecord) -> Result<(), TableFault> {
+        let reason = match record.len() {
+            2 => return Ok(()),
+            n => format!("{:?} has {n} columns", &record[0]),
+        };
+        Err(self.fault(record, reason, "two columns, parted by a comma"))
+    }
+
+    fn record(&self, record: csv::Result<StringRecord>) -> Result<StringRecord, TableFault> {
+        record.map_err(|error| TableFault {
+            line: self.line(error.position()),
+            reason: error.to_string(),
+            allowed: "comma-separated values (RFC 4180)".into(),
+        })
+    }
+
+    fn fault(&self, record: &StringRecord, reason: String, allowed: impl Into<String>) -> TableFault {
+        TableFault { line: self.line(record.position()), reason, allowed: allowed.into() }
+    }
+
+    fn too_short(&self, wanted: &str) -> TableFault {
+        let line = self.contents.lines().count() as u64;
+        TableFault { line, reason: "is the end".into(), allowed: wanted.into() }
+    }
+
+    /// Line of a record. The reader's position stands before the line ends, comments and empty lines that it skips.
+    fn line(&self, position: Option<&csv::Position>) -> u64 {
+        let mut start = position.map_or(0, |position| position.byte() as usize);
+        while let Some(rest) = self.contents.get(start..) {
+            match rest.as_bytes().first() {
+                Some(b'\r' | b'\n') => start += 1,
+                Some(b'#') => start += rest.find('\n').unwrap_or(rest.len()),
+                _ => break,
+            }
+        }
+        1 + self.contents.bytes().take(start).filter(|byte| *byte == b'\n').count() as u64
+    }
+}

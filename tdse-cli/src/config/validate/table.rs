@@ -1,0 +1,62 @@
+//! Reading the tables that a configuration names.
+
+use std::io::ErrorKind;
+use std::sync::Arc;
+
+use serde_json::Value;
+use tdse_core::cubic::Cubic;
+
+use super::Check;
+use crate::config::complaint::Fix;
+use crate::config::pointer::{join, nearest};
+use crate::config::tables::{Input, Layout};
+
+impl Check<'_> {
+    /// The table that the object at `user` names, kept among the inputs.
+    pub(super) fn table(
+        &mut self,
+        user: &str,
+        file: &str,
+        sha256: Option<&String>,
+        layout: Layout,
+    ) -> Option<Arc<Cubic>> {
+        let table = match self.library.table(file, layout) {
+            Ok(table) => table,
+            Err(error) => {
+                self.unreadable(user, file, &error);
+                return None;
+            }
+        };
+        let input = Input::new(user, file, table.contents);
+        if sha256.is_some_and(|wanted| *wanted != input.sha256) {
+            self.complain(
+                &join(user, "sha256"),
+                format!("is not the SHA-256 of {file:?}"),
+                "the SHA-256 of the contents, or the key left out",
+                Fix::Value(Value::from(input.sha256.as_str())),
+            );
+        }
+        self.inputs.push(input);
+        match table.curve {
+            Ok(curve) => Some(curve),
+            Err(fault) => {
+                let fix = Fix::Words(format!("correct line {} of the file", fault.line));
+                let reason = format!("has a fault in line {}: {}", fault.line, fault.reason);
+                self.complain(&join(user, "file"), reason, fault.allowed, fix);
+                None
+            }
+        }
+    }
+
+    fn unreadable(&mut self, user: &str, file: &str, error: &std::io::Error) {
+        let tables = self.library.names();
+        let near = nearest(file, tables.iter().map(String::as_str));
+        let (reason, fix) = match (error.kind(), near) {
+            (ErrorKind::NotFound, Some(table)) => ("no such file".into(), Fix::Value(table.into())),
+            (ErrorKind::NotFound, None) => ("no such file".into(), Fix::Words("put the file there".into())),
+            _ => (error.to_string(), Fix::Words("make it a readable file in UTF-8".into())),
+        };
+        let allowed = "the path of a CSV file, relative to the configuration's folder";
+        self.complain(&join(user, "file"), format!("cannot be read ({reason})"), allowed, fix);
+    }
+}

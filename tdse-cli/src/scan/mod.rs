@@ -1,0 +1,4 @@
+//! Scans: many points from one configuration.
+
+mod axis;
+pub mod points;

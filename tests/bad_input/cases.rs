@@ -1,0 +1,455 @@
+//! Wrong configurations of one point, and what is said of them.
+
+/// Changes to the sound configuration, and what is said of the result.
+pub struct Case {
+    /// What is wrong.
+    pub name: &'static str,
+    /// Pointer, and JSON to write there; `None` takes the key out.
+    pub edits: &'static [(&'static str, Option<&'static str>)],
+    /// The whole message, line by line.
+    pub says: &'static [&'static str],
+}
+
+/// Every case.
+pub const CASES: &[Case] = &[
+    Case {
+        name: "unknown key",
+        edits: &[("/field/pulses/0/wavelenght", Some(r#""800 nm""#)), ("/field/pulses/0/wavelength", None)],
+        says: &[
+            r#"/field/pulses/0/wavelenght: "800 nm" stands under an unknown key; allowed: the keys note, wavelength, photon_energy, intensity, peak_field, envelope, phase, delay, chirp, ellipticity, angle; as its key try "wavelength""#,
+        ],
+    },
+    Case {
+        name: "unknown key at the top",
+        edits: &[("/fields", Some("{}"))],
+        says: &[
+            "/fields: {} stands under an unknown key; allowed: the keys $schema, note, title, atom, field, numerics, outputs, models, scan; leave it out",
+        ],
+    },
+    Case {
+        name: "key of another kind",
+        edits: &[("/field/pulses/0/envelope/fwhm", Some(r#""6 fs""#))],
+        says: &[
+            r#"/field/pulses/0/envelope/fwhm: "6 fs" stands under an unknown key; allowed: the keys kind, note, cycles, duration; at /field/pulses/0/envelope try {"kind":"sin2","cycles":4}"#,
+        ],
+    },
+    Case {
+        name: "bare number",
+        edits: &[("/field/pulses/0/wavelength", Some("800"))],
+        says: &[
+            r#"/field/pulses/0/wavelength: 800 has no unit; allowed: a length in nm, um, µm, angstrom, pm, m, bohr or au, from 1 nm to 100 um; try "800 nm""#,
+        ],
+    },
+    Case {
+        name: "bare number for an intensity",
+        edits: &[("/field/pulses/0/intensity", Some("1e14"))],
+        says: &[
+            r#"/field/pulses/0/intensity: 1e14 has no unit; allowed: an intensity in W/cm^2, TW/cm^2, PW/cm^2 or W/m^2, above 0 W/cm^2, up to 1e18 W/cm^2; try "1e14 W/cm^2""#,
+        ],
+    },
+    Case {
+        name: "unit of another quantity",
+        edits: &[("/field/pulses/0/wavelength", Some(r#""1.55 eV""#))],
+        says: &[
+            r#"/field/pulses/0/wavelength: "1.55 eV" has a unit of energy, not of length; allowed: a length in nm, um, µm, angstrom, pm, m, bohr or au, from 1 nm to 100 um; try "800 nm""#,
+        ],
+    },
+    Case {
+        name: "unknown unit",
+        edits: &[("/field/pulses/0/intensity", Some(r#""1e14 W/cm2""#))],
+        says: &[
+            r#"/field/pulses/0/intensity: "1e14 W/cm2" has the unknown unit "W/cm2"; allowed: an intensity in W/cm^2, TW/cm^2, PW/cm^2 or W/m^2, above 0 W/cm^2, up to 1e18 W/cm^2; try "1e14 W/cm^2""#,
+        ],
+    },
+    Case {
+        name: "no space before the unit",
+        edits: &[("/field/pulses/0/wavelength", Some(r#""800nm""#))],
+        says: &[
+            r#"/field/pulses/0/wavelength: "800nm" is not a number, a space and a unit; allowed: a length in nm, um, µm, angstrom, pm, m, bohr or au, from 1 nm to 100 um; try "800 nm""#,
+        ],
+    },
+    Case {
+        name: "quantity without unit",
+        edits: &[("/field/pulses/0/phase", Some(r#""90""#))],
+        says: &[
+            r#"/field/pulses/0/phase: "90" is not a number, a space and a unit; allowed: an angle in deg, rad, mrad, pi or au; try "90 deg""#,
+        ],
+    },
+    Case {
+        name: "word for a number",
+        edits: &[("/field/pulses/0/phase", Some(r#""inf deg""#))],
+        says: &[
+            r#"/field/pulses/0/phase: "inf deg" is not a number, a space and a unit; allowed: an angle in deg, rad, mrad, pi or au; try "0 deg""#,
+        ],
+    },
+    Case {
+        name: "too large for double precision",
+        edits: &[("/field/pulses/0/delay", Some(r#""1e300 s""#))],
+        says: &[
+            r#"/field/pulses/0/delay: "1e300 s" is too large; allowed: a time in fs, as, ps, s or au; try "0 fs""#,
+        ],
+    },
+    Case {
+        name: "au of intensity",
+        edits: &[("/field/pulses/0/intensity", Some(r#""3 au""#))],
+        says: &[
+            r#"/field/pulses/0/intensity: "3 au" is ambiguous: two atomic units of intensity exist, 3.509e16 W/cm^2 (peak field 1 a.u.) and 6.436e15 W/cm^2 (hartree per bohr^2 and atomic unit of time); allowed: an intensity in W/cm^2, TW/cm^2, PW/cm^2 or W/m^2, above 0 W/cm^2, up to 1e18 W/cm^2; try "1.5e14 W/cm^2""#,
+        ],
+    },
+    Case {
+        name: "negative intensity",
+        edits: &[("/field/pulses/0/intensity", Some(r#""-1e14 W/cm^2""#))],
+        says: &[
+            r#"/field/pulses/0/intensity: "-1e14 W/cm^2" is out of range; allowed: an intensity in W/cm^2, TW/cm^2, PW/cm^2 or W/m^2, above 0 W/cm^2, up to 1e18 W/cm^2; try "1.5e14 W/cm^2""#,
+        ],
+    },
+    Case {
+        name: "intensity zero",
+        edits: &[("/field/pulses/0/intensity", Some(r#""0 W/cm^2""#))],
+        says: &[
+            r#"/field/pulses/0/intensity: "0 W/cm^2" is out of range; allowed: an intensity in W/cm^2, TW/cm^2, PW/cm^2 or W/m^2, above 0 W/cm^2, up to 1e18 W/cm^2; try "1.5e14 W/cm^2""#,
+        ],
+    },
+    Case {
+        name: "wavelength out of range",
+        edits: &[("/field/pulses/0/wavelength", Some(r#""800 m""#))],
+        says: &[
+            r#"/field/pulses/0/wavelength: "800 m" is out of range; allowed: a length in nm, um, µm, angstrom, pm, m, bohr or au, from 1 nm to 100 um; try "800 nm""#,
+        ],
+    },
+    Case {
+        name: "wavelength and photon energy",
+        edits: &[("/field/pulses/0/photon_energy", Some(r#""1.55 eV""#))],
+        says: &[
+            r#"/field/pulses/0/photon_energy: "1.55 eV" stands beside wavelength "800 nm"; allowed: one of wavelength and photon_energy; at /field/pulses/0 try {"wavelength":"800 nm","intensity":"1e14 W/cm^2","envelope":{"kind":"sin2","cycles":4}}"#,
+        ],
+    },
+    Case {
+        name: "neither wavelength nor photon energy",
+        edits: &[("/field/pulses/0/wavelength", None)],
+        says: &[
+            r#"/field/pulses/0/wavelength: is missing, and so is photon_energy; allowed: one of wavelength and photon_energy; try "800 nm""#,
+        ],
+    },
+    Case {
+        name: "intensity and peak field",
+        edits: &[("/field/pulses/0/peak_field", Some(r#""0.05 au""#))],
+        says: &[
+            r#"/field/pulses/0/peak_field: "0.05 au" stands beside intensity "1e14 W/cm^2"; allowed: one of intensity and peak_field; at /field/pulses/0 try {"wavelength":"800 nm","intensity":"1e14 W/cm^2","envelope":{"kind":"sin2","cycles":4}}"#,
+        ],
+    },
+    Case {
+        name: "neither intensity nor peak field",
+        edits: &[("/field/pulses/0/intensity", None)],
+        says: &[
+            r#"/field/pulses/0/intensity: is missing, and so is peak_field; allowed: one of intensity and peak_field; try "1.5e14 W/cm^2""#,
+        ],
+    },
+    Case {
+        name: "cycles and duration",
+        edits: &[("/field/pulses/0/envelope/duration", Some(r#""10 fs""#))],
+        says: &[
+            r#"/field/pulses/0/envelope/duration: "10 fs" stands beside cycles 4; allowed: one of cycles and duration; at /field/pulses/0/envelope try {"kind":"sin2","cycles":4}"#,
+        ],
+    },
+    Case {
+        name: "neither cycles nor duration",
+        edits: &[("/field/pulses/0/envelope/cycles", None)],
+        says: &[
+            "/field/pulses/0/envelope/cycles: is missing, and so is duration; allowed: one of cycles and duration; try 6",
+        ],
+    },
+    Case {
+        name: "envelope shorter than a cycle",
+        edits: &[("/field/pulses/0/envelope/cycles", Some("0.5"))],
+        says: &[
+            "/field/pulses/0/envelope/cycles: 0.5 is out of range; allowed: a number from 1 to 10000; try 6",
+        ],
+    },
+    Case {
+        name: "duration shorter than a cycle",
+        edits: &[("/field/pulses/0/envelope", Some(r#"{"kind": "sin2", "duration": "2 fs"}"#))],
+        says: &[
+            r#"/field/pulses/0/envelope/duration: "2 fs" is shorter than a cycle; allowed: at least one cycle, 2.669 fs; try "16.01 fs""#,
+        ],
+    },
+    Case {
+        name: "unknown envelope",
+        edits: &[("/field/pulses/0/envelope/kind", Some(r#""sine2""#))],
+        says: &[
+            r#"/field/pulses/0/envelope/kind: "sine2" is unknown; allowed: "sin2", "gaussian" or "flat_top"; try "sin2""#,
+        ],
+    },
+    Case {
+        name: "envelope as a word",
+        edits: &[("/field/pulses/0/envelope", Some(r#""gaussian""#))],
+        says: &[
+            r#"/field/pulses/0/envelope: "gaussian" is a text; allowed: an object whose "kind" is "sin2", "gaussian" or "flat_top"; try {"kind":"gaussian","fwhm":"6 fs"}"#,
+        ],
+    },
+    Case {
+        name: "envelope without kind",
+        edits: &[("/field/pulses/0/envelope/kind", None)],
+        says: &[
+            r#"/field/pulses/0/envelope/kind: is missing; allowed: "sin2", "gaussian" or "flat_top"; try "sin2""#,
+        ],
+    },
+    Case {
+        name: "missing envelope",
+        edits: &[("/field/pulses/0/envelope", None)],
+        says: &[
+            r#"/field/pulses/0/envelope: is missing; allowed: an object whose "kind" is "sin2", "gaussian" or "flat_top"; try {"kind":"sin2","cycles":6}"#,
+        ],
+    },
+    Case {
+        name: "chirp through zero frequency",
+        edits: &[("/field/pulses/0/chirp", Some(r#""-1 rad/fs^2""#))],
+        says: &[
+            r#"/field/pulses/0/chirp: "-1 rad/fs^2" makes the instantaneous frequency negative within the envelope; allowed: a chirp between 0 and -0.441 rad/fs^2; try "-0.221 rad/fs^2""#,
+        ],
+    },
+    Case {
+        name: "ellipticity above 1",
+        edits: &[("/field/pulses/0/ellipticity", Some("1.5"))],
+        says: &["/field/pulses/0/ellipticity: 1.5 is out of range; allowed: a number from -1 to 1; try 0"],
+    },
+    Case {
+        name: "ellipticity in one dimension",
+        edits: &[("/field/pulses/0/ellipticity", Some("0.3"))],
+        says: &["/field/pulses/0/ellipticity: 0.3 needs two dimensions; allowed: 0 in one dimension; try 0"],
+    },
+    Case {
+        name: "angle in one dimension",
+        edits: &[("/field/pulses/0/angle", Some(r#""30 deg""#))],
+        says: &[
+            r#"/field/pulses/0/angle: "30 deg" needs two dimensions; allowed: 0 deg in one dimension; try "0 deg""#,
+        ],
+    },
+    Case {
+        name: "no field",
+        edits: &[("/field/pulses", Some("[]"))],
+        says: &[
+            r#"/field/pulses: [] holds no pulse, and no field is sampled; allowed: at least one pulse; try [{"wavelength":"800 nm","intensity":"1e14 W/cm^2","envelope":{"kind":"sin2","cycles":6}}]"#,
+        ],
+    },
+    Case {
+        name: "pulse instead of a list",
+        edits: &[("/field/pulses", Some(r#"{"wavelength": "800 nm"}"#))],
+        says: &[
+            r#"/field/pulses: {"wavelength":"800 nm"} is an object; allowed: a list; try [{"wavelength":"800 nm","intensity":"1e14 W/cm^2","envelope":{"kind":"sin2","cycles":6}}]"#,
+        ],
+    },
+    Case {
+        name: "missing atom",
+        edits: &[("/atom", None)],
+        says: &[
+            r#"/atom: is missing; allowed: an object with the keys note, dimensions, potential, ionization_energy, element, state; try {"potential":{"kind":"soft_coulomb"},"element":"Ar"}"#,
+        ],
+    },
+    Case {
+        name: "two dimensions",
+        edits: &[("/atom/dimensions", Some("2"))],
+        says: &["/atom/dimensions: 2 is not available in this version; allowed: 1; try 1"],
+    },
+    Case {
+        name: "three dimensions",
+        edits: &[("/atom/dimensions", Some("3"))],
+        says: &["/atom/dimensions: 3 is out of range; allowed: a whole number from 1 to 2; try 1"],
+    },
+    Case {
+        name: "softening and ionization energy",
+        edits: &[("/atom/potential/softening", Some(r#""1.4 bohr""#))],
+        says: &[
+            r#"/atom/ionization_energy: "15.7596 eV" stands beside /atom/potential/softening "1.4 bohr"; allowed: one of softening, ionization_energy and element; at /atom/potential try {"kind":"soft_coulomb","charge":1}"#,
+        ],
+    },
+    Case {
+        name: "ionization energy and element",
+        edits: &[("/atom/element", Some(r#""Ar""#))],
+        says: &[
+            r#"/atom/element: "Ar" stands beside ionization_energy "15.7596 eV"; allowed: one of ionization_energy and element; at /atom try {"dimensions":1,"potential":{"kind":"soft_coulomb","charge":1},"ionization_energy":"15.7596 eV","state":{"kind":"single","number":0}}"#,
+        ],
+    },
+    Case {
+        name: "softening without value or target",
+        edits: &[("/atom/ionization_energy", None)],
+        says: &[
+            r#"/atom/potential/softening: is missing, and nothing tunes it; allowed: one of softening, /atom/ionization_energy and /atom/element; try "1.414 bohr""#,
+        ],
+    },
+    Case {
+        name: "unknown element",
+        edits: &[("/atom/ionization_energy", None), ("/atom/element", Some(r#""Argon""#))],
+        says: &[
+            r#"/atom/element: "Argon" is unknown; allowed: "H", "He", "Ne", "Ar", "Kr" or "Xe"; try "Ar""#,
+        ],
+    },
+    Case {
+        name: "nothing to tune",
+        edits: &[("/atom/potential", Some(r#"{"kind": "poschl_teller", "lambda": 1, "width": "1 bohr"}"#))],
+        says: &[
+            r#"/atom/ionization_energy: "15.7596 eV" stands beside a potential without softening; allowed: the key only with soft_coulomb and screened; at /atom try {"dimensions":1,"potential":{"kind":"poschl_teller","lambda":1,"width":"1 bohr"},"state":{"kind":"single","number":0}}"#,
+        ],
+    },
+    Case {
+        name: "missing width",
+        edits: &[
+            ("/atom/ionization_energy", None),
+            ("/atom/potential", Some(r#"{"kind": "poschl_teller", "lambda": 1}"#)),
+        ],
+        says: &[
+            r#"/atom/potential/width: is missing; allowed: a length in nm, um, µm, angstrom, pm, m, bohr or au, above 0 bohr; try "1 bohr""#,
+        ],
+    },
+    Case {
+        name: "lambda zero",
+        edits: &[
+            ("/atom/ionization_energy", None),
+            ("/atom/potential", Some(r#"{"kind": "poschl_teller", "lambda": 0, "width": "1 bohr"}"#)),
+        ],
+        says: &["/atom/potential/lambda: 0 is out of range; allowed: a number above 0, up to 1000; try 1"],
+    },
+    Case {
+        name: "charge as text",
+        edits: &[("/atom/potential/charge", Some(r#""2""#))],
+        says: &[r#"/atom/potential/charge: "2" is a text; allowed: a number above 0, up to 100; try 2"#],
+    },
+    Case {
+        name: "state number not whole",
+        edits: &[("/atom/state/number", Some("0.5"))],
+        says: &[
+            "/atom/state/number: 0.5 is not a whole number; allowed: a whole number from 0 to 1000; try 0",
+        ],
+    },
+    Case {
+        name: "superposition without members",
+        edits: &[("/atom/state", Some(r#"{"kind": "superposition", "terms": []}"#))],
+        says: &[
+            r#"/atom/state/terms: [] is empty; allowed: a list with at least one element; try [{"number":0},{"number":1}]"#,
+        ],
+    },
+    Case {
+        name: "repeated member",
+        edits: &[(
+            "/atom/state",
+            Some(r#"{"kind": "superposition", "terms": [{"number": 0}, {"number": 0}]}"#),
+        )],
+        says: &["/atom/state/terms/1/number: 0 is repeated; allowed: every state at most once; try 1"],
+    },
+    Case {
+        name: "weights all zero",
+        edits: &[(
+            "/atom/state",
+            Some(r#"{"kind": "superposition", "terms": [{"number": 0, "weight": 0}]}"#),
+        )],
+        says: &[
+            "/atom/state/terms/0/weight: 0 is 0, and so is every other; allowed: at least one weight above 0; try 1",
+        ],
+    },
+    Case {
+        name: "negative weight",
+        edits: &[(
+            "/atom/state",
+            Some(r#"{"kind": "superposition", "terms": [{"number": 0, "weight": -1}]}"#),
+        )],
+        says: &["/atom/state/terms/0/weight: -1 is out of range; allowed: a number from 0 to 1000000; try 1"],
+    },
+    Case {
+        name: "missing file",
+        edits: &[("/field/sampled", Some(r#"{"file": "pulses.csv"}"#))],
+        says: &[
+            r#"/field/sampled/file: "pulses.csv" cannot be read (no such file); allowed: the path of a CSV file, relative to the configuration's folder; try "pulse.csv""#,
+        ],
+    },
+    Case {
+        name: "wrong hash",
+        edits: &[("/field/sampled", Some(r#"{"file": "pulse.csv", "sha256": "00"}"#))],
+        says: &[
+            r#"/field/sampled/sha256: "00" is not the SHA-256 of "pulse.csv"; allowed: the SHA-256 of the contents, or the key left out; try "e1fca66ebd2196442421e3b89201e94fe33d2a6f38955e0e92e995295695edf0""#,
+        ],
+    },
+    Case {
+        name: "accuracy out of range",
+        edits: &[("/numerics/accuracy", Some("2"))],
+        says: &["/numerics/accuracy: 2 is out of range; allowed: a number from 1e-10 to 0.1; try 0.0001"],
+    },
+    Case {
+        name: "unknown scheme",
+        edits: &[("/numerics/scheme", Some(r#""fourthorder""#))],
+        says: &[
+            r#"/numerics/scheme: "fourthorder" is unknown; allowed: "fourth_order" or "strang"; try "fourth_order""#,
+        ],
+    },
+    Case {
+        name: "null",
+        edits: &[("/numerics/spacing", Some("null"))],
+        says: &[
+            r#"/numerics/spacing: null is no value; allowed: a length in nm, um, µm, angstrom, pm, m, bohr or au, above 0 bohr; try "0.4 bohr""#,
+        ],
+    },
+    Case {
+        name: "number for a truth value",
+        edits: &[("/numerics/common", Some("1"))],
+        says: &["/numerics/common: 1 is a number; allowed: true or false; try false"],
+    },
+    Case {
+        name: "negative trailing time",
+        edits: &[("/numerics/trailing_time", Some(r#""-1 fs""#))],
+        says: &[
+            r#"/numerics/trailing_time: "-1 fs" is out of range; allowed: a time in fs, as, ps, s or au, from 0 fs; try "2 fs""#,
+        ],
+    },
+    Case {
+        name: "energy step beyond the axis",
+        edits: &[("/outputs/harmonics/energy_step", Some(r#""1 keV""#))],
+        says: &[
+            r#"/outputs/harmonics/energy_step: "1 keV" does not fit max_energy "60 eV"; allowed: a step that divides the axis into 1 to 1000000 parts; try "0.06 eV""#,
+        ],
+    },
+    Case {
+        name: "window without length",
+        edits: &[("/outputs/harmonics/window", Some(r#"{"kind": "taper"}"#))],
+        says: &[
+            r#"/outputs/harmonics/window/length: is missing; allowed: a time in fs, as, ps, s or au, above 0 fs; try "3 fs""#,
+        ],
+    },
+    Case {
+        name: "electrons",
+        edits: &[("/outputs/photoelectrons", Some(r#"{"max_energy": "100 eV"}"#))],
+        says: &[
+            r#"/outputs/photoelectrons: {"max_energy":"100 eV"} is not available in this version; allowed: the key left out; at /outputs try {"harmonics":{"max_energy":"60 eV"}}"#,
+        ],
+    },
+    Case {
+        name: "models",
+        edits: &[("/models", Some(r#"{"three_step": {}}"#))],
+        says: &[
+            "/models/three_step: {} is not available in this version; allowed: the key left out; at /models try {}",
+        ],
+    },
+    Case {
+        name: "scan for one point",
+        edits: &[(
+            "/scan",
+            Some(r#"[{"parameter": "/field/pulses/0/phase", "from": "0 deg", "to": "90 deg", "points": 2}]"#),
+        )],
+        says: &[
+            r#"/scan: [{"parameter":"/field/pulses/0/phase","from":"0 deg","to":"90 deg","points":2}] is a scan where one point is wanted; allowed: no axis; try []"#,
+        ],
+    },
+    Case {
+        name: "several faults",
+        edits: &[
+            ("/numerics/accuracy", Some("0")),
+            ("/field/pulses/0/phase", Some("90")),
+            ("/atom/state/number", Some("-1")),
+            ("/colour", Some("true")),
+        ],
+        says: &[
+            "/atom/state/number: -1 is out of range; allowed: a whole number from 0 to 1000; try 0",
+            r#"/field/pulses/0/phase: 90 has no unit; allowed: an angle in deg, rad, mrad, pi or au; try "90 deg""#,
+            "/numerics/accuracy: 0 is out of range; allowed: a number from 1e-10 to 0.1; try 0.0001",
+            "/colour: true stands under an unknown key; allowed: the keys $schema, note, title, atom, field, numerics, outputs, models, scan; leave it out",
+        ],
+    },
+];
