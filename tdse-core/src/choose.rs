@@ -1,6 +1,15 @@
-//! Numerics from physics: what a user did not pin is chosen by simple stated rules.
+//! Numerics from physics: what a user did not pin is chosen by simple stated rules, what was pinned is judged.
+//!
+//! Choices stand on coarse ladders and come from envelope maxima, never from a phase, so neighbours in a scan share them.
 
-use crate::problem::{Absorber, Gauge, Scheme};
+mod judge;
+mod ladder;
+mod rules;
+
+use crate::grid::{Axis, Grid, good_length};
+use crate::potential::Potential;
+use crate::problem::{Absorber, Gauge, InitialState, Numerics, Problem, Scheme};
+use crate::stationary::{StationaryError, level};
 
 /// What the user fixed; `None` leaves the choice to the rules.
 #[derive(Clone, Copy, Debug, PartialEq, Default)]
@@ -39,4 +48,173 @@ impl From<Absorber> for PinnedAbsorber {
             Absorber::Smooth { width } => Self::Width(width),
         }
     }
+}
+
+/// What the rules need to know of a model atom; found once per atom, without a grid.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct AtomFacts {
+    /// Energy of the initial state, of a superposition its lowest member, hartree.
+    pub initial_energy: f64,
+    /// Energy of the highest member of the initial state, hartree.
+    pub highest_energy: f64,
+    /// Distance from zero at which the highest member has decayed by e⁻²⁰, bohr.
+    pub reach: f64,
+}
+
+impl AtomFacts {
+    /// Facts of `potential` with this initial state.
+    ///
+    /// # Errors
+    /// [`StationaryError::NoSuchState`] where the initial state names one that is not bound.
+    pub fn new(potential: &Potential, initial: &InitialState) -> Result<Self, StationaryError> {
+        let lowest = match initial {
+            InitialState::Single(number) => *number,
+            InitialState::Superposition(terms) => terms.iter().map(|t| t.number).min().unwrap_or(0),
+        };
+        let highest = level(potential, initial.highest())?;
+        Ok(Self {
+            initial_energy: level(potential, lowest)?.energy,
+            highest_energy: highest.energy,
+            reach: highest.reach,
+        })
+    }
+
+    /// Ionization energy -E of the initial state, hartree.
+    pub fn ionization_energy(&self) -> f64 {
+        -self.initial_energy
+    }
+}
+
+/// What is asked of the numerics.
+#[derive(Clone, Copy, Debug)]
+pub struct Wish<'a> {
+    /// Atom and field.
+    pub problem: &'a Problem,
+    /// Facts of the atom.
+    pub facts: &'a AtomFacts,
+    /// What the user fixed.
+    pub pins: &'a Pins,
+    /// Error asked for, relative to the dipole acceleration.
+    pub accuracy: f64,
+    /// Largest photon energy that is written, hartree, where the user gave one.
+    pub max_photon: Option<f64>,
+}
+
+/// A choice of numerics.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Knob {
+    /// Grid spacing, bohr.
+    Spacing,
+    /// Length of the box, bohr.
+    Extent,
+    /// Absorber: width per side, bohr.
+    Absorber,
+    /// Time step, a.u.
+    TimeStep,
+    /// Splitting.
+    Scheme,
+    /// Gauge.
+    Gauge,
+    /// Field-free time after the field, a.u.
+    TrailingTime,
+}
+
+/// Why a choice is what it is.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Reason {
+    /// The choice.
+    pub knob: Knob,
+    /// The reason, one sentence.
+    pub why: String,
+}
+
+/// How bad a pinned value is.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Verdict {
+    /// It may miss the accuracy asked.
+    Doubtful,
+    /// It is known to miss it.
+    Inadequate,
+    /// It cannot be computed at all.
+    Impossible,
+}
+
+/// A pinned value, or a field, that the rules object to.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Finding {
+    /// The choice concerned; `None` for the field itself.
+    pub knob: Option<Knob>,
+    /// How bad.
+    pub verdict: Verdict,
+    /// What is wrong, with numbers and units.
+    pub reason: String,
+    /// What is allowed.
+    pub allowed: String,
+    /// A value that passes, in the knob's unit; zero where none does.
+    pub passes: f64,
+}
+
+/// Chosen numerics with their reasons and objections.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Choice {
+    /// The numerics.
+    pub numerics: Numerics,
+    /// Why, one entry per [`Knob`].
+    pub reasons: Vec<Reason>,
+    /// Objections to what was pinned.
+    pub findings: Vec<Finding>,
+}
+
+/// Chooses what was not pinned, in well under a millisecond.
+pub fn choose(wish: &Wish) -> Choice {
+    let needs = rules::Needs::of(wish);
+    let pins = wish.pins;
+    let spacing = pins.spacing.unwrap_or_else(|| ladder::at_most(needs.spacing));
+    let absorber = match pins.absorber {
+        None if needs.absorber_width > 0.0 => {
+            Absorber::Smooth { width: ladder::at_least(needs.absorber_width) }
+        }
+        Some(PinnedAbsorber::Smooth) => {
+            Absorber::Smooth { width: ladder::at_least(needs.absorber_width.max(rules::NARROWEST_ABSORBER)) }
+        }
+        Some(PinnedAbsorber::Width(width)) => Absorber::Smooth { width },
+        None | Some(PinnedAbsorber::None) => Absorber::None,
+    };
+    let extent = pins.extent.unwrap_or(2.0 * (needs.inner(absorber) + absorber.width()));
+    // A resolved extent is n Δx; its rounding must not add a point.
+    let points = good_length((extent / spacing * (1.0 - 1e-12)).ceil() as usize);
+    let scheme = pins.scheme.unwrap_or(Scheme::FourthOrder);
+    let axis = Axis { points, spacing };
+    let longest = needs.time_step(scheme, axis.largest_momentum());
+    let numerics = Numerics {
+        grid: Grid { x: axis, y: None },
+        time_step: pins.time_step.unwrap_or_else(|| ladder::at_most(longest)),
+        scheme,
+        gauge: pins.gauge.unwrap_or(Gauge::Length),
+        absorber,
+        trailing_time: pins.trailing_time.unwrap_or(0.0),
+    };
+    let reasons = needs.reasons(pins, &numerics);
+    let findings = judge::judge(wish, &needs, &numerics);
+    Choice { numerics, reasons, findings }
+}
+
+/// The strictest of several choices: serves all of them.
+///
+/// # Panics
+/// If there is none.
+pub fn strictest(all: &[Numerics]) -> Numerics {
+    let mut common = all[0].clone();
+    let mut extent = 0.0f64;
+    for one in all {
+        common.grid.x.spacing = common.grid.x.spacing.min(one.grid.x.spacing);
+        extent = extent.max(one.grid.x.extent());
+        common.time_step = common.time_step.min(one.time_step);
+        common.trailing_time = common.trailing_time.max(one.trailing_time);
+        if one.absorber.width() > common.absorber.width() {
+            common.absorber = one.absorber;
+        }
+    }
+    common.grid.x.points = good_length((extent / common.grid.x.spacing * (1.0 - 1e-12)).ceil() as usize);
+    common
 }

@@ -1,0 +1,140 @@
+//! Objections to what the user pinned, and to a field that leaves electrons moving.
+
+use super::rules::Needs;
+use super::{Finding, Knob, Verdict, Wish, ladder};
+use crate::absorber::slowest_momentum;
+use crate::problem::{Absorber, Numerics};
+use crate::step::resonant_step;
+
+/// Part of the needed momentum below which a spacing is inadequate rather than doubtful.
+const COARSE: f64 = 0.6;
+/// Vector potential left at the end of a field, as part of its largest value, that raises a doubt.
+const LEFT_OVER: f64 = 1e-6;
+
+pub(super) fn judge(wish: &Wish, needs: &Needs, numerics: &Numerics) -> Vec<Finding> {
+    [
+        spacing(needs, numerics),
+        extent(needs, numerics),
+        domain(wish, numerics),
+        absorber(needs, numerics),
+        time_step(needs, numerics),
+        left_over_potential(wish),
+    ]
+    .into_iter()
+    .flatten()
+    .collect()
+}
+
+fn spacing(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
+    let held = numerics.grid.x.largest_momentum();
+    if held >= needs.momentum {
+        return None;
+    }
+    let verdict = if held < COARSE * needs.momentum { Verdict::Inadequate } else { Verdict::Doubtful };
+    Some(Finding {
+        knob: Some(Knob::Spacing),
+        verdict,
+        reason: format!("holds momenta up to {held:.2} / bohr where {:.2} / bohr are needed", needs.momentum),
+        allowed: format!("at most {:.4} bohr", needs.spacing),
+        passes: ladder::at_most(needs.spacing),
+    })
+}
+
+fn extent(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
+    let (extent, width) = (numerics.grid.x.extent(), numerics.absorber.width());
+    let passes = ladder::at_least(2.0 * (needs.inner(numerics.absorber) + width));
+    let allowed = format!("at least {:.1} bohr", 2.0 * (needs.inner(numerics.absorber) + width));
+    let inner = 0.5 * extent - width;
+    let finding =
+        |verdict, reason| Some(Finding { knob: Some(Knob::Extent), verdict, reason, allowed, passes });
+    if inner <= 0.0 {
+        let reason = format!("leaves no room between two absorbers of {width} bohr each");
+        return finding(Verdict::Impossible, reason);
+    }
+    let wanted = needs.inner(numerics.absorber);
+    if inner < 0.5 * wanted {
+        let reason = format!("leaves {inner:.1} bohr to each side where electrons need {wanted:.1} bohr");
+        return finding(Verdict::Inadequate, reason);
+    }
+    if inner < 0.8 * wanted {
+        let reason = format!("leaves {inner:.1} bohr to each side where electrons may need {wanted:.1} bohr");
+        return finding(Verdict::Doubtful, reason);
+    }
+    None
+}
+
+/// A sampled potential is not known outside its table.
+fn domain(wish: &Wish, numerics: &Numerics) -> Option<Finding> {
+    let (first, last) = wish.problem.potential.domain();
+    let edge = 0.5 * numerics.grid.x.extent();
+    (edge > last || -edge < first).then(|| Finding {
+        knob: Some(Knob::Extent),
+        verdict: Verdict::Impossible,
+        reason: format!(
+            "reaches {edge:.1} bohr to each side; the potential's table ends at {first} and {last} bohr"
+        ),
+        allowed: format!("a box within the table, or a table over at least {edge:.1} bohr to each side"),
+        passes: 2.0 * last.min(-first).max(0.0),
+    })
+}
+
+fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
+    let passes = ladder::at_least(needs.absorber_width.max(super::rules::NARROWEST_ABSORBER));
+    match numerics.absorber {
+        Absorber::Smooth { width } if width < 0.7 * needs.absorber_width => Some(Finding {
+            knob: Some(Knob::Absorber),
+            verdict: if width < 0.25 * needs.absorber_width {
+                Verdict::Inadequate
+            } else {
+                Verdict::Doubtful
+            },
+            reason: format!("reflects electrons slower than {:.3} / bohr", slowest_momentum(width)),
+            allowed: format!("at least {:.1} bohr", needs.absorber_width),
+            passes,
+        }),
+        _ => None,
+    }
+}
+
+fn time_step(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
+    let largest = numerics.grid.x.largest_momentum();
+    let resonance = resonant_step(largest, needs.binding);
+    let longest = needs.time_step(numerics.scheme, largest);
+    let step = numerics.time_step;
+    let finding = |verdict, reason, limit: f64| {
+        Some(Finding {
+            knob: Some(Knob::TimeStep),
+            verdict,
+            reason,
+            allowed: format!("below {limit:.4} au"),
+            passes: ladder::at_most(longest),
+        })
+    };
+    if step >= resonance {
+        let reason = format!(
+            "is above the splitting's resonance at {resonance:.4} au for momenta up to {largest:.2} / bohr"
+        );
+        return finding(Verdict::Inadequate, reason, resonance);
+    }
+    if step > 1.3 * longest {
+        let reason = format!("is longer than the {longest:.4} au that the accuracy asks for");
+        return finding(Verdict::Doubtful, reason, longest);
+    }
+    None
+}
+
+fn left_over_potential(wish: &Wish) -> Option<Finding> {
+    let field = &wish.problem.field;
+    let left = field.vector_potential(field.interval().1)[0].abs();
+    let largest = super::rules::Strength::of(field).vector_potential;
+    (left > LEFT_OVER * largest && left > 0.0).then(|| Finding {
+        knob: None,
+        verdict: Verdict::Doubtful,
+        reason: format!(
+            "the field leaves a vector potential of {left:.2e} a.u., {:.1e} of its largest: momenta at the end are kinetic",
+            left / largest
+        ),
+        allowed: "a field without net area".into(),
+        passes: 0.0,
+    })
+}

@@ -1,0 +1,275 @@
+//! The rules: what an accuracy asks of grid, absorber and step. Every constant is common practice, checked by the tests
+//! of the shipped scenarios, with no single source unless one is named.
+
+use super::{Knob, Pins, Reason, Wish};
+use crate::absorber::{slowest_momentum, width_for};
+use crate::field::Field;
+use crate::potential::Potential;
+use crate::problem::{Absorber, Gauge, Numerics, Scheme};
+use crate::step::resonant_step;
+
+/// Narrowest absorber worth having, bohr.
+pub(super) const NARROWEST_ABSORBER: f64 = 20.0;
+/// Slowest momentum that must leave at an accuracy of 1e-4, 1/bohr; it falls with the fourth root of the accuracy.
+const SLOWEST_MOMENTUM: f64 = 0.11;
+/// Part of the resonant step that is used.
+const BELOW_RESONANCE: f64 = 0.9;
+/// Largest momentum of a classical electron after backscattering, in units of the vector potential's maximum:
+/// drift √5 (10 Up; Paulus et al., J. Phys. B 27, L703 (1994)) plus quiver 1.
+const FASTEST: f64 = 3.24;
+
+/// Maxima of the field over all envelopes, free of phases and delays.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) struct Strength {
+    /// Σ E0, a.u.
+    pub(super) field: f64,
+    /// Σ E0/ω, a.u.
+    pub(super) vector_potential: f64,
+    /// Σ E0/ω², bohr.
+    pub(super) quiver: f64,
+    /// Highest photon energy, hartree.
+    pub(super) photon: f64,
+}
+
+impl Strength {
+    pub(super) fn of(field: &Field) -> Self {
+        let mut sum = Self { field: 0.0, vector_potential: 0.0, quiver: 0.0, photon: 0.0 };
+        for pulse in &field.pulses {
+            sum.field += pulse.peak_field;
+            sum.vector_potential += pulse.peak_field / pulse.frequency;
+            sum.quiver += pulse.quiver_amplitude();
+            let chirped = pulse.frequency + pulse.chirp.abs() * pulse.envelope.half_length();
+            sum.photon = sum.photon.max(chirped);
+        }
+        if let Some(sampled) = &field.sampled {
+            sum.add_table(sampled);
+        }
+        sum
+    }
+
+    /// Largest |E| and |A| of a table, and the largest excursion ∫A about its mean motion.
+    fn add_table(&mut self, sampled: &crate::field::SampledField) {
+        let alone = Field { pulses: Vec::new(), sampled: Some(sampled.clone()) };
+        let (start, end) = alone.interval();
+        let count = 4096;
+        let h = (end - start) / f64::from(count);
+        let (mut x, mut field, mut potential, mut low, mut high) = (0.0f64, 0.0f64, 0.0f64, 0.0f64, 0.0f64);
+        for i in 0..=count {
+            let (a, e) = alone.potential_and_field(start + f64::from(i) * h);
+            (field, potential) = (field.max(e[0].abs()), potential.max(a[0].abs()));
+            x += a[0] * h;
+            (low, high) = (low.min(x), high.max(x));
+        }
+        self.field += field;
+        self.vector_potential += potential;
+        self.quiver += 0.5 * (high - low);
+        self.photon = self.photon.max(if potential > 0.0 { field / potential } else { 0.0 });
+    }
+}
+
+/// What the accuracy asks for, before ladders and pins.
+#[derive(Clone, Debug, PartialEq)]
+pub(super) struct Needs {
+    /// Largest spacing, bohr.
+    pub(super) spacing: f64,
+    /// Momentum the grid must hold, 1/bohr.
+    pub(super) momentum: f64,
+    /// Distance from zero the atom and its returning electrons take, bohr.
+    pub(super) atom_reach: f64,
+    /// Distance the fastest electrons come in the whole run, bohr: needed without an absorber.
+    pub(super) flight: f64,
+    /// Absorber's width per side, bohr; zero where none is needed.
+    pub(super) absorber_width: f64,
+    /// Binding energy, hartree.
+    pub(super) binding: f64,
+    /// Frequency of small oscillations at the bottom of the potential, hartree.
+    pub(super) stiffness: f64,
+    /// Largest photon energy to resolve in time, hartree.
+    pub(super) photon: f64,
+    accuracy: f64,
+    strength: Strength,
+}
+
+impl Needs {
+    pub(super) fn of(wish: &Wish) -> Self {
+        let potential = &wish.problem.potential;
+        let strength = Strength::of(&wish.problem.field);
+        let digits = -wish.accuracy.ln();
+        let (start, end) = wish.problem.field.interval();
+        let duration = end - start + wish.pins.trailing_time.unwrap_or(0.0);
+        let confined = potential.is_confining();
+        let depth = if confined { wish.facts.highest_energy } else { -potential.value(bottom(potential)) };
+        let free = (2.0 * (strength.photon + wish.facts.highest_energy).max(0.0)).sqrt();
+        let fastest = FASTEST * strength.vector_potential + free;
+        let swing = if confined { strength.field * duration } else { 0.0 };
+        let analytic = analytic_length(potential);
+        let at_rest = (2.0 * depth.max(0.0)).sqrt() + digits / analytic;
+        let momentum = at_rest.max(fastest + 0.4 * digits / analytic) + swing;
+        let stiffness = stiffness(potential);
+        // The wave function outside decays by e^{-20} at the level's reach; the accuracy asks for a part of that.
+        let bound = wish.facts.reach * (digits / 20.0).min(1.0) + swing / stiffness.max(1e-3);
+        let needs_absorber = !confined && strength.field > 0.0;
+        let slowest = SLOWEST_MOMENTUM * (wish.accuracy / 1e-4).powf(0.25);
+        Self {
+            spacing: std::f64::consts::PI / momentum,
+            momentum,
+            atom_reach: bound.max(2.0 * strength.quiver) + strength.quiver + 20.0,
+            flight: bound + (strength.vector_potential * 2.0 + free) * duration + 20.0,
+            absorber_width: if needs_absorber { width_for(slowest) } else { 0.0 },
+            binding: wish.facts.ionization_energy(),
+            stiffness,
+            photon: wish.max_photon.unwrap_or(0.0).max(strength.photon),
+            accuracy: wish.accuracy,
+            strength,
+        }
+    }
+
+    /// Half the box without its absorber, bohr.
+    pub(super) fn inner(&self, absorber: Absorber) -> f64 {
+        match absorber {
+            Absorber::Smooth { .. } => self.atom_reach,
+            Absorber::None if self.absorber_width > 0.0 => self.flight.max(self.atom_reach),
+            Absorber::None => self.atom_reach,
+        }
+    }
+
+    /// Longest time step for a scheme on a grid that holds momenta up to `largest`.
+    pub(super) fn time_step(&self, scheme: Scheme, largest: f64) -> f64 {
+        let resonance = BELOW_RESONANCE * resonant_step(largest, self.binding);
+        let accurate = self.accurate_step(scheme);
+        let sampled =
+            if self.photon > 0.0 { std::f64::consts::PI / (2.0 * self.photon) } else { f64::INFINITY };
+        resonance.min(accurate).min(sampled)
+    }
+
+    /// Step at which the measured error constants (0.02 (τΩ)⁴ and 0.3 (τΩ)², with Ω the stiffness) leave a factor of
+    /// ten to the accuracy.
+    fn accurate_step(&self, scheme: Scheme) -> f64 {
+        match scheme {
+            Scheme::FourthOrder => (self.accuracy / 0.2).powf(0.25) / self.stiffness,
+            Scheme::Strang => (self.accuracy / 3.0).sqrt() / self.stiffness,
+        }
+    }
+
+    pub(super) fn reasons(&self, pins: &Pins, numerics: &Numerics) -> Vec<Reason> {
+        let reason = |knob, pinned: bool, why: String| Reason {
+            knob,
+            why: if pinned { "pinned by the configuration".into() } else { why },
+        };
+        let axis = numerics.grid.x;
+        vec![
+            reason(
+                Knob::Spacing,
+                pins.spacing.is_some(),
+                format!(
+                    "momenta up to {:.2} / bohr: the bound state, and electrons of up to {FASTEST} times the largest \
+                     vector potential {:.3} a.u.",
+                    self.momentum, self.strength.vector_potential
+                ),
+            ),
+            reason(Knob::Extent, pins.extent.is_some(), self.extent_reason(numerics)),
+            reason(Knob::Absorber, pins.absorber.is_some(), self.absorber_reason(numerics)),
+            reason(
+                Knob::TimeStep,
+                pins.time_step.is_some(),
+                format!(
+                    "below the splitting's resonance at {:.4} a.u. (2 pi / (k_max^2/2 + Ip)), and {:.4} a.u. for the \
+                     accuracy asked (error constant measured on the atom's stiffness {:.3} hartree)",
+                    resonant_step(axis.largest_momentum(), self.binding),
+                    self.accurate_step(numerics.scheme),
+                    self.stiffness
+                ),
+            ),
+            reason(
+                Knob::Scheme,
+                pins.scheme.is_some(),
+                "fourth order: about a tenth of the work of second order at equal error".into(),
+            ),
+            reason(
+                Knob::Gauge,
+                pins.gauge.is_some(),
+                match numerics.gauge {
+                    Gauge::Length => "length: no momentum shift, moments of the field-free atom".into(),
+                    Gauge::Velocity => "velocity".into(),
+                },
+            ),
+            reason(
+                Knob::TrailingTime,
+                pins.trailing_time.is_some(),
+                "none: the window, not the run, brings the acceleration to zero".into(),
+            ),
+        ]
+    }
+
+    fn extent_reason(&self, numerics: &Numerics) -> String {
+        let points = numerics.grid.x.points;
+        match numerics.absorber {
+            Absorber::None if self.absorber_width > 0.0 => {
+                format!(
+                    "nothing leaves: the fastest electrons come {:.0} bohr far; {points} points",
+                    self.flight
+                )
+            }
+            Absorber::None => {
+                format!("the bound state, {:.0} bohr to each side; {points} points", self.atom_reach)
+            }
+            Absorber::Smooth { width } => format!(
+                "bound state and returning electrons, {:.0} bohr to each side (quiver amplitude {:.1} bohr), and \
+                 the absorber, {width:.0} bohr; {points} points",
+                self.atom_reach, self.strength.quiver
+            ),
+        }
+    }
+
+    fn absorber_reason(&self, numerics: &Numerics) -> String {
+        match numerics.absorber {
+            Absorber::None => "none: nothing comes near the edge".into(),
+            Absorber::Smooth { width } => format!(
+                "takes in momenta from {:.3} / bohr on with 0.6 % reflection and less above (Manolopoulos 2002)",
+                slowest_momentum(width)
+            ),
+        }
+    }
+}
+
+/// Position of the lowest potential energy, bohr.
+pub(super) fn bottom(potential: &Potential) -> f64 {
+    match potential {
+        Potential::Sampled(table) => {
+            let (x, v) = table.points();
+            (0..v.len()).min_by(|&i, &j| v[i].total_cmp(&v[j])).map_or(0.0, |i| x[i])
+        }
+        _ => 0.0,
+    }
+}
+
+/// Distance of the potential's nearest singularity from the real axis, bohr: wave functions fall as e^{-k…} with it in
+/// momentum. A Gaussian well and a harmonic potential have none; a width serves in its place.
+fn analytic_length(potential: &Potential) -> f64 {
+    match potential {
+        Potential::SoftCoulomb { softening, .. } | Potential::Screened { softening, .. } => *softening,
+        Potential::PoschlTeller { width, .. } => std::f64::consts::FRAC_PI_2 * width,
+        Potential::GaussianWell { width, .. } => 1.5 * width,
+        Potential::Harmonic { frequency } => 1.5 / frequency.sqrt(),
+        Potential::Sampled(table) => 2.0 * table.spacing(),
+    }
+}
+
+/// √V'' at the bottom, hartree.
+fn stiffness(potential: &Potential) -> f64 {
+    match potential {
+        Potential::SoftCoulomb { charge, softening } | Potential::Screened { charge, softening, .. } => {
+            (charge / softening.powi(3)).sqrt()
+        }
+        Potential::PoschlTeller { lambda, width } => (lambda * (lambda + 1.0)).sqrt() / (width * width),
+        Potential::GaussianWell { depth, width } => depth.sqrt() / width,
+        Potential::Harmonic { frequency } => *frequency,
+        Potential::Sampled(table) => {
+            let (x, h) = (bottom(potential), table.spacing());
+            ((potential.value_and_slope(x + h).1 - potential.value_and_slope(x - h).1) / (2.0 * h))
+                .abs()
+                .sqrt()
+        }
+    }
+    .max(0.05)
+}
