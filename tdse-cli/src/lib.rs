@@ -3,6 +3,7 @@
 //! The physics lives in [`tdse_core`]; this crate turns one configuration file into checked, self-describing results.
 
 pub mod config;
+pub mod derive;
 pub mod report;
 pub mod scan;
 pub mod store;

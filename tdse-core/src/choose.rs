@@ -3,7 +3,7 @@
 //! Choices stand on coarse ladders and come from envelope maxima, never from a phase, so neighbours in a scan share them.
 
 mod judge;
-mod ladder;
+pub mod ladder;
 mod rules;
 
 use crate::grid::{Axis, Grid, good_length};

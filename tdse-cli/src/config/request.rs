@@ -5,6 +5,7 @@ use tdse_core::elements::Element;
 use tdse_core::field::Field;
 use tdse_core::potential::Potential;
 use tdse_core::problem::{InitialState, Record};
+use tdse_core::spectrum::Window;
 
 use super::raw;
 use super::tables::Input;
@@ -149,24 +150,10 @@ pub struct Harmonics {
     pub max_energy: Option<f64>,
     /// Step of the energy axis, hartree.
     pub energy_step: Option<f64>,
+    /// Highest order of the yields.
+    pub max_order: Option<u32>,
     /// Window over the acceleration.
     pub window: Window,
-}
-
-/// Window over the whole run.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum Window {
-    /// 1 everywhere.
-    None,
-    /// Hann window.
-    Hann,
-    /// Blackman window.
-    Blackman,
-    /// 1, falling to zero as the square of a cosine over the last `length`, a.u. of time.
-    Taper {
-        /// Length of the fall, a.u. of time.
-        length: f64,
-    },
 }
 
 /// Time-frequency map with a Gaussian window.

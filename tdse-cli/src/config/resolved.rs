@@ -99,6 +99,7 @@ fn outputs(written: &mut raw::Outputs, filled: &Outputs) {
     if let (Some(written), Some(filled)) = (&mut written.harmonics, &filled.harmonics) {
         fill_energy(&mut written.max_energy, filled.max_energy);
         fill_energy(&mut written.energy_step, filled.energy_step);
+        written.max_order = written.max_order.or(filled.max_order);
     }
     if let (Some(written), Some(filled)) = (&mut written.time_frequency, &filled.time_frequency) {
         fill_time(&mut written.window_length, filled.window_length);

@@ -1,4 +1,11 @@
-//! Scans: many points from one configuration.
+//! Scans: their points, what each needs before it can run, and the atoms that points share.
 
-mod axis;
+pub mod atoms;
+pub mod axis;
+pub mod cost;
+pub mod defaults;
+pub mod facts;
+pub mod objections;
 pub mod points;
+pub mod prepare;
+pub mod source;

@@ -105,6 +105,11 @@ impl Contents {
         of_scan.map(ScanDimension::length).or_else(|| Some(self.get(group, dimension)?.shape()[0]))
     }
 
+    /// Takes a group out with all that is in it.
+    pub fn remove_group(&mut self, group: &str) {
+        self.groups.remove(group);
+    }
+
     /// Attaches a remark to a group, such as the name of the window used.
     ///
     /// # Panics

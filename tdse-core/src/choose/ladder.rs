@@ -4,14 +4,17 @@
 const RUNGS: [f64; 10] = [1.0, 1.25, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 8.0];
 
 /// Largest rung that is not above `value`.
-pub(super) fn at_most(value: f64) -> f64 {
+///
+/// # Panics
+/// If `value` is not a positive number.
+pub fn at_most(value: f64) -> f64 {
     let decade = decade(value);
     let rung = RUNGS.iter().rev().map(|r| r * decade).find(|r| *r <= value * (1.0 + 1e-12));
     rung.unwrap_or(decade)
 }
 
-/// Smallest rung that is not below `value`.
-pub(super) fn at_least(value: f64) -> f64 {
+/// Smallest rung that is not below `value`. Panics as [`at_most`].
+pub fn at_least(value: f64) -> f64 {
     let decade = decade(value);
     let rung = RUNGS.iter().map(|r| r * decade).find(|r| *r >= value * (1.0 - 1e-12));
     rung.unwrap_or(10.0 * decade)

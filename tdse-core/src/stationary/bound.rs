@@ -3,7 +3,8 @@
 use nalgebra::{DMatrix, DVector, SymmetricEigen};
 use num_complex::Complex;
 
-use super::{StationaryError, count_below, level};
+use super::level::rough_level;
+use super::{StationaryError, count_below};
 use crate::grid::{Grid, Transform};
 use crate::potential::{Potential, PotentialOnGrid};
 
@@ -35,8 +36,9 @@ pub fn bound_states(
 ) -> Result<BoundStates, StationaryError> {
     let mut guesses = Vec::with_capacity(count);
     let positions: Vec<f64> = grid.x.positions().collect();
+    let half = 0.5 * grid.x.extent();
     for number in 0..count {
-        guesses.push(level(potential, number)?.wave_function(potential, &positions));
+        guesses.push(rough_level(potential, number, half)?.wave_function(potential, &positions));
     }
     let hamiltonian = Hamiltonian::new(PotentialOnGrid::sample(potential, grid).values, grid);
     lowest(&hamiltonian, guesses, count)

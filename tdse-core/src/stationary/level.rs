@@ -124,6 +124,15 @@ pub fn level(potential: &Potential, number: usize) -> Result<Level, StationaryEr
     Err(StationaryError::NotConverged { what: "a bound level", reached: change, wanted, unit: "hartree" })
 }
 
+/// Level `number` to 1e-8 hartree or so with both ends at ±`reach`: a start for an iteration on a grid of that box.
+pub(super) fn rough_level(
+    potential: &Potential,
+    number: usize,
+    reach: f64,
+) -> Result<Level, StationaryError> {
+    Ok(Level { number, energy: locate(potential, number, reach)?, reach })
+}
+
 /// A reach to start from: the whole range of a short-range potential, grown later as the state needs.
 fn first_reach(potential: &Potential) -> f64 {
     let range = match potential {

@@ -35,6 +35,9 @@ pub struct Harmonics {
     /// Step of the energy axis; chosen from the length of the run if left out.
     #[schemars(example = "0.05 eV", extend("x-exclusive-minimum" = "0 eV"))]
     pub energy_step: Option<Energy>,
+    /// Highest order whose yield is written; as far as the energy axis goes if left out.
+    #[schemars(range(min = 1, max = 100_000), example = 61)]
+    pub max_order: Option<u32>,
     /// Window laid over the acceleration before it is transformed.
     #[serde(default)]
     pub window: Window,
@@ -44,12 +47,12 @@ pub struct Harmonics {
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
 #[serde(tag = "kind", rename_all = "snake_case", deny_unknown_fields)]
 pub enum Window {
-    /// None: the spectrum is the radiated one.
+    /// 1 throughout: the radiated spectrum, where the acceleration has died down by the end.
     None {
         /// Anything worth remembering.
         note: Option<String>,
     },
-    /// Hann window.
+    /// sin^2 from zero to zero.
     Hann {
         /// Anything worth remembering.
         note: Option<String>,
@@ -59,11 +62,11 @@ pub enum Window {
         /// Anything worth remembering.
         note: Option<String>,
     },
-    /// 1, but for a fall to zero as the square of a cosine at the end.
+    /// 1, falling to zero as sin^2 at both ends.
     Taper {
         /// Anything worth remembering.
         note: Option<String>,
-        /// Length of the fall.
+        /// Length of each flank.
         #[schemars(example = "3 fs", extend("x-exclusive-minimum" = "0 fs"))]
         length: Time,
     },
@@ -71,7 +74,7 @@ pub enum Window {
 
 impl Default for Window {
     fn default() -> Self {
-        Self::None { note: None }
+        Self::Hann { note: None }
     }
 }
 

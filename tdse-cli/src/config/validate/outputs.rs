@@ -2,11 +2,12 @@
 
 use serde_json::json;
 use tdse_core::problem::Record;
+use tdse_core::spectrum::Window;
 
 use super::Check;
 use crate::config::complaint::Fix;
 use crate::config::raw::{self, Energy, Time};
-use crate::config::request::{Harmonics, Outputs, TimeFrequency, Window};
+use crate::config::request::{Harmonics, Outputs, TimeFrequency};
 
 /// More points than this on an energy axis are a slip of the pen (a limit of our own).
 const MOST_POINTS: f64 = 1e6;
@@ -51,6 +52,7 @@ fn harmonics(raw: &raw::Harmonics) -> Harmonics {
     Harmonics {
         max_energy: raw.max_energy.as_ref().map(Energy::value),
         energy_step: raw.energy_step.as_ref().map(Energy::value),
+        max_order: raw.max_order,
         window: window(&raw.window),
     }
 }

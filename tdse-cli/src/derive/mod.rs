@@ -1,0 +1,32 @@
+//! From recorded series to the contents of a result, in the units of its files.
+//!
+//! [`record()`] puts in what was propagated, [`derive()`] what follows from it. Deriving reads the recorded arrays as a file
+//! holds them, so a result derived anew has the same bits as one derived at once.
+
+mod recorded;
+mod spectra;
+
+pub use recorded::record;
+pub use spectra::derive;
+
+use tdse_core::units::{FIELD_V_PER_M, HARTREE_EV, TIME_FS, VECTOR_POTENTIAL_V_S_PER_M};
+
+/// hartree → eV.
+fn electronvolts(value: f64) -> f64 {
+    value * HARTREE_EV
+}
+
+/// a.u. of time → fs.
+fn femtoseconds(value: f64) -> f64 {
+    value * TIME_FS
+}
+
+/// a.u. of field → V/m.
+fn volts_per_metre(value: f64) -> f64 {
+    value * FIELD_V_PER_M
+}
+
+/// a.u. of vector potential → V s/m.
+fn volt_seconds_per_metre(value: f64) -> f64 {
+    value * VECTOR_POTENTIAL_V_S_PER_M
+}

@@ -1,0 +1,100 @@
+//! What a run recorded.
+
+use ndarray::Array2;
+use tdse_core::problem::InitialState;
+use tdse_core::simulate::{Atom, Plan, State};
+use tdse_core::spectrum::twice_integrated;
+
+use super::{electronvolts, femtoseconds, volt_seconds_per_metre, volts_per_metre};
+use crate::scan::prepare::Point;
+use crate::store::table::Status;
+use crate::store::{Contents, Provenance};
+
+/// Field, dynamics, populations and headline numbers of a finished run.
+///
+/// # Panics
+/// If the run is not finished.
+pub fn record(point: &Point, atom: &Atom, plan: &Plan, state: &State, provenance: Provenance) -> Contents {
+    assert_eq!(state.series.norm.len(), plan.schedule().steps + 1, "the run is finished");
+    let mut contents = Contents::new(provenance);
+    field(&mut contents, plan);
+    dynamics(&mut contents, point, atom, plan, state);
+    populations(&mut contents, point, atom, plan, state);
+    summary(&mut contents, point, atom, plan, state);
+    contents
+}
+
+fn times(plan: &Plan) -> Vec<f64> {
+    plan.schedule().times().into_iter().map(femtoseconds).collect()
+}
+
+fn field(contents: &mut Contents, plan: &Plan) {
+    contents.insert("field", "time", times(plan));
+    let electric: Vec<f64> = plan.electric_field().iter().map(|e| volts_per_metre(e[0])).collect();
+    contents.insert("field", "electric_field", electric);
+    let potential: Vec<f64> = plan.vector_potential().iter().map(|a| volt_seconds_per_metre(a[0])).collect();
+    contents.insert("field", "vector_potential", potential);
+}
+
+/// d²d/dt² = ⟨∇V⟩ + E(t) N(0), and the dipole from it.
+fn dynamics(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
+    let (series, grid) = (&state.series, point.job.numerics.grid);
+    let norm = series.norm[0];
+    let acceleration: Vec<f64> =
+        series.gradient.iter().zip(plan.electric_field()).map(|(g, e)| g[0] + e[0] * norm).collect();
+    let start = atom.wave_function(&point.job.problem.initial);
+    let (dipole, velocity) = start_of_dipole(&start, grid.x, grid.cell());
+    let step = plan.schedule().time_step;
+    contents.insert("dynamics", "time", times(plan));
+    contents.insert("dynamics", "dipole", twice_integrated(&acceleration, step, dipole, velocity));
+    contents.insert("dynamics", "dipole_acceleration", acceleration);
+    contents.insert("dynamics", "norm", series.norm.clone());
+}
+
+/// d = -⟨x⟩ and dd/dt = -⟨p⟩ of a wave function, A = 0.
+fn start_of_dipole(psi: &[num_complex::Complex<f64>], axis: tdse_core::grid::Axis, cell: f64) -> (f64, f64) {
+    let position: f64 = psi.iter().zip(axis.positions()).map(|(p, x)| p.norm_sqr() * x).sum();
+    let transform = tdse_core::grid::Transform::new(psi.len());
+    let mut waves = psi.to_vec();
+    transform.forward(&mut waves, &mut transform.make_scratch());
+    let momentum: f64 = waves.iter().zip(axis.momenta()).map(|(p, k)| p.norm_sqr() * k).sum();
+    (-position * cell, -momentum * cell / psi.len() as f64)
+}
+
+fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
+    let count = point.job.record.populations;
+    if count == 0 {
+        return;
+    }
+    let (series, schedule) = (&state.series, plan.schedule());
+    let samples = series.population_steps.len();
+    let numbers: Vec<i64> = (0..count as i64).collect();
+    let times: Vec<f64> = series.population_steps.iter().map(|&n| femtoseconds(schedule.time(n))).collect();
+    let energies: Vec<f64> = atom.bound.energies[..count].iter().map(|&e| electronvolts(e)).collect();
+    contents.insert("populations", "state", numbers);
+    contents.insert("populations", "time", times);
+    contents.insert("populations", "energy", energies);
+    let rows = Array2::from_shape_fn((count, samples), |(s, t)| series.populations[t * count + s]);
+    contents.insert("populations", "populations", rows.into_dyn());
+    contents.remark("populations", "gauge", "length");
+}
+
+fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
+    let bound: Vec<f64> = plan.populations(state, &atom.bound);
+    let below_zero = atom.bound.energies.iter().zip(&bound).filter(|(energy, _)| **energy < 0.0);
+    let confining = point.job.problem.potential.is_confining();
+    let total = if confining { state.series.norm[state.step] } else { below_zero.map(|(_, p)| p).sum() };
+    let lowest = match &point.job.problem.initial {
+        InitialState::Single(number) => *number,
+        InitialState::Superposition(terms) => terms.iter().map(|t| t.number).min().unwrap_or(0),
+    };
+    let doubts = &point.doubts;
+    let status = if doubts.is_empty() { Status::Done } else { Status::Doubtful };
+    contents.insert("summary", "ionization_probability", (1.0 - total).max(0.0));
+    contents.insert("summary", "initial_energy", electronvolts(atom.bound.energies[lowest]));
+    contents.insert("summary", "final_norm", state.series.norm[state.step]);
+    contents.insert("summary", "bound_population", total);
+    contents.insert("summary", "initial_population", bound[lowest]);
+    contents.insert("summary", "status", status as i64);
+    contents.insert("summary", "reason", doubts.join("\n"));
+}

@@ -1,0 +1,224 @@
+//! From a configuration to points that are ready to run: atoms tuned, numerics chosen, everything judged.
+//!
+//! A point runs from its resolved text, read again, so what is computed is what the text says.
+
+use serde_json::Value;
+use tdse_core::choose::{AtomFacts, Choice, Wish, choose, strictest};
+use tdse_core::problem::{Numerics, Problem, Record};
+use tdse_core::simulate::Schedule;
+
+use super::defaults::{self, Scales};
+use super::facts::Facts;
+use super::objections;
+use super::points::{self, Axis, ScanRequest};
+use super::source::Source;
+use crate::config::complaint::{Complaint, Complaints};
+use crate::config::request::{Outputs, Sharing};
+use crate::config::resolved::{self, Chosen};
+use crate::config::tables::Input;
+use crate::config::{self, Files, Library, Request, identity};
+use crate::store;
+
+/// Raised whenever result bits change.
+pub const NUMERICS_VERSION: u32 = 1;
+
+/// A request whose every point is ready.
+#[derive(Clone, Debug)]
+pub struct Prepared {
+    /// Title.
+    pub title: String,
+    /// Configuration as written.
+    pub input: String,
+    /// Overrides from the command line.
+    pub overrides: Vec<String>,
+    /// Scan axes; none for a single run.
+    pub axes: Vec<Axis>,
+    /// Lengths of the scan's dimensions.
+    pub shape: Vec<usize>,
+    /// Points, last dimension fastest.
+    pub points: Vec<Point>,
+}
+
+/// A point that is ready to run.
+#[derive(Clone, Debug)]
+pub struct Point {
+    /// Values of the scan axes, for people.
+    pub label: String,
+    /// Hash of what decides its bits, 16 hexadecimal digits.
+    pub identity: String,
+    /// Resolved configuration.
+    pub configuration: String,
+    /// What that asks for.
+    pub job: Job,
+    /// What numerics were chosen from.
+    pub facts: AtomFacts,
+    /// Why each choice of numerics is what it is.
+    pub choice: Choice,
+    /// Doubts known before it runs.
+    pub doubts: Vec<String>,
+}
+
+/// What a resolved configuration asks for.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Job {
+    /// Atom, state and field.
+    pub problem: Problem,
+    /// How it is computed.
+    pub numerics: Numerics,
+    /// What is recorded.
+    pub record: Record,
+    /// What is derived, nothing left open.
+    pub outputs: Outputs,
+    /// Tables it uses.
+    pub inputs: Vec<Input>,
+}
+
+impl Job {
+    /// Bound states the run needs at least.
+    pub fn states(&self) -> usize {
+        (self.problem.initial.highest() + 1).max(self.record.populations)
+    }
+}
+
+/// A point on its way.
+struct Draft<'a> {
+    source: &'a points::Point,
+    tree: Value,
+    softening: Option<f64>,
+    problem: Problem,
+    facts: AtomFacts,
+    choice: Choice,
+}
+
+/// Reads a configuration and makes every point of it ready.
+///
+/// # Errors
+/// Every complaint about the file, the scan, or any point.
+pub fn prepare(source: &Source, sets: &[String]) -> Result<Prepared, Complaints> {
+    let ScanRequest { axes, shape, points } =
+        points::read_scan(&source.text, sets, source.files.clone(), store::is_reserved_name)?;
+    let mut facts = Facts::new();
+    let mut drafts = Vec::with_capacity(points.len());
+    let mut found = Vec::new();
+    for point in &points {
+        match draft(point, &mut facts) {
+            Ok(draft) => drafts.push(draft),
+            Err(complaints) => found.extend(complaints.0.into_iter().map(|c| located(c, point))),
+        }
+    }
+    share(&mut drafts);
+    let mut doubts = Vec::with_capacity(drafts.len());
+    for draft in &drafts {
+        let (complaints, doubt) =
+            objections::sort(&draft.source.request, &draft.tree, &draft.choice.findings);
+        found.extend(complaints.into_iter().map(|c| located(c, draft.source)));
+        doubts.push(doubt);
+    }
+    if !found.is_empty() {
+        return Err(Complaints(found));
+    }
+    let scales: Vec<Scales> = drafts.iter().map(scales).collect();
+    let title = points.first().map(|point| point.request.title.clone()).unwrap_or_default();
+    let ready = drafts.into_iter().zip(doubts).map(|(draft, doubts)| finish(draft, doubts, &scales));
+    Ok(Prepared {
+        title,
+        input: source.text.clone(),
+        overrides: sets.to_vec(),
+        axes,
+        shape,
+        points: ready.collect::<Result<_, _>>()?,
+    })
+}
+
+/// Adds the point's values to a complaint, where there is a scan.
+fn located(mut complaint: Complaint, point: &points::Point) -> Complaint {
+    if !point.label.is_empty() {
+        complaint.point = Some(point.label.clone());
+    }
+    complaint
+}
+
+/// Tunes the atom and chooses the numerics of one point.
+fn draft<'a>(point: &'a points::Point, facts: &mut Facts) -> Result<Draft<'a>, Complaints> {
+    let request = &point.request;
+    let tree: Value = serde_json::from_str(&point.text).unwrap_or_default();
+    let complain = |error| Complaints::from(objections::stationary(request, &tree, &error));
+    let softening = facts.softening(&request.atom).map_err(complain)?;
+    let potential = request.atom.potential.with_softening(softening.unwrap_or_default());
+    let found = facts.of(&potential, &request.atom).map_err(complain)?;
+    if let Err(error) = facts.binds(&potential, request.record.populations.max(1)) {
+        return Err(objections::populations(&tree, &error)
+            .unwrap_or_else(|| objections::stationary(request, &tree, &error))
+            .into());
+    }
+    let problem = Problem { potential, initial: request.atom.initial.clone(), field: request.field.clone() };
+    let max_photon = request.outputs.harmonics.and_then(|h| h.max_energy);
+    let wish = Wish {
+        problem: &problem,
+        facts: &found,
+        pins: &request.pins,
+        accuracy: request.accuracy,
+        max_photon,
+    };
+    let choice = choose(&wish);
+    Ok(Draft { source: point, tree, softening, problem, facts: found, choice })
+}
+
+/// Where the configuration asks for it, gives all points the strictest numerics.
+fn share(drafts: &mut [Draft]) {
+    if drafts.first().is_some_and(|draft| draft.source.request.sharing == Sharing::Common) {
+        let all: Vec<Numerics> = drafts.iter().map(|draft| draft.choice.numerics.clone()).collect();
+        let common = strictest(&all);
+        for draft in drafts {
+            draft.choice.numerics = common.clone();
+        }
+    }
+}
+
+fn scales(draft: &Draft) -> Scales {
+    let (field, numerics) = (&draft.problem.field, &draft.choice.numerics);
+    let schedule = Schedule::new(field, numerics.time_step, numerics.trailing_time);
+    let length = schedule.time_step * schedule.steps as f64;
+    let photon = field.pulses.first().map_or(20.0 * std::f64::consts::PI / length, |pulse| pulse.frequency);
+    Scales {
+        cutoff: defaults::classical_cutoff(field, draft.facts.ionization_energy(), photon),
+        photon,
+        length,
+        resolved: std::f64::consts::PI / numerics.time_step,
+    }
+}
+
+/// Writes the resolved text and reads it again.
+fn finish(draft: Draft, doubts: Vec<String>, scales: &[Scales]) -> Result<Point, Complaints> {
+    let request = &draft.source.request;
+    let outputs = defaults::fill(&request.outputs, scales);
+    let chosen = Chosen { softening: draft.softening, numerics: &draft.choice.numerics, outputs: &outputs };
+    let tree = resolved::resolved(request, &chosen);
+    let stored = request.inputs.iter().map(|i| (i.name.clone(), i.contents.to_string())).collect();
+    let read = config::request(&tree, &Library::new(Files::Stored(stored)))?;
+    let job = job(&read, &draft.choice.numerics);
+    Ok(Point {
+        label: draft.source.label.clone(),
+        identity: identity::identity(&tree, job.record, NUMERICS_VERSION),
+        configuration: resolved::text(&tree),
+        job,
+        facts: draft.facts,
+        choice: draft.choice,
+        doubts,
+    })
+}
+
+/// The job of a resolved request; its numerics are all pinned, so they are the chosen ones.
+fn job(request: &Request, numerics: &Numerics) -> Job {
+    Job {
+        problem: Problem {
+            potential: request.atom.potential.with_softening(0.0),
+            initial: request.atom.initial.clone(),
+            field: request.field.clone(),
+        },
+        numerics: numerics.clone(),
+        record: request.record,
+        outputs: request.outputs.clone(),
+        inputs: request.inputs.clone(),
+    }
+}
