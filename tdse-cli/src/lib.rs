@@ -2,8 +2,10 @@
 //!
 //! The physics lives in [`tdse_core`]; this crate turns one configuration file into checked, self-describing results.
 
+pub mod command;
 pub mod config;
 pub mod derive;
 pub mod report;
 pub mod scan;
 pub mod store;
+pub mod text;

@@ -21,6 +21,7 @@ pub mod field;
 pub mod grid;
 pub mod potential;
 pub mod problem;
+pub mod quantities;
 pub mod simulate;
 pub mod spectrum;
 pub mod stationary;

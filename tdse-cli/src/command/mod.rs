@@ -1,0 +1,4 @@
+//! The commands of the program.
+
+pub mod check;
+pub mod states;
