@@ -22,7 +22,8 @@ fn shipped() -> Vec<PathBuf> {
 #[test]
 fn shipped_configurations_are_ready_and_resolve_to_themselves() {
     for path in shipped() {
-        let prepared = prepare(&source(&path).unwrap(), &[]).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
+        let prepared =
+            prepare(&source(&path).unwrap(), &[]).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
         for point in [prepared.points.first(), prepared.points.last()].into_iter().flatten() {
             let inputs = point.job.inputs.iter().map(|i| (i.name.clone(), i.contents.to_string())).collect();
             let again = Source { text: point.configuration.clone(), files: Files::Stored(inputs) };

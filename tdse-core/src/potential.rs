@@ -105,6 +105,16 @@ impl Potential {
         }
     }
 
+    /// Jump of dV/dr at r = 0, hartree/bohr: zero for a smooth potential.
+    pub fn kink(&self) -> f64 {
+        match self {
+            Self::Screened { charge, softening, screening_length } => {
+                2.0 * charge / (softening * screening_length)
+            }
+            _ => 0.0,
+        }
+    }
+
     /// Range of r where the potential is defined, bohr.
     pub fn domain(&self) -> (f64, f64) {
         match self {
@@ -142,6 +152,21 @@ impl PotentialOnGrid {
                 }
             }
         }
+        if !plane {
+            on_grid.round_off_kink(potential.kink(), grid.x.spacing);
+        }
         on_grid
+    }
+
+    /// A kink of V in the middle of the grid, between two points, makes sums over the grid err by h²/24 times the
+    /// jump of the summand's slope (Euler–Maclaurin, midpoint rule on both sides; Abramowitz, Stegun, 23.1.31). Taken
+    /// off at the two points beside it, in V and in its gradient, the error is O(h⁴).
+    fn round_off_kink(&mut self, jump: f64, spacing: f64) {
+        let right = self.values.len() / 2;
+        for j in [right - 1, right] {
+            self.values[j] -= jump * spacing / 48.0;
+        }
+        self.gradient[0][right - 1] += jump / 24.0;
+        self.gradient[0][right] -= jump / 24.0;
     }
 }

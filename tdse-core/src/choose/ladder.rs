@@ -1,29 +1,27 @@
 //! The coarse ladder that choices stand on.
 
 /// Rungs of a decade.
-const RUNGS: [f64; 10] = [1.0, 1.25, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 8.0];
+const RUNGS: [&str; 10] = ["1", "1.25", "1.5", "2", "2.5", "3", "4", "5", "6", "8"];
 
 /// Largest rung that is not above `value`.
 ///
 /// # Panics
 /// If `value` is not a positive number.
 pub fn at_most(value: f64) -> f64 {
-    let decade = decade(value);
-    let rung = RUNGS.iter().rev().map(|r| r * decade).find(|r| *r <= value * (1.0 + 1e-12));
-    rung.unwrap_or(decade)
+    rungs_around(value).filter(|rung| *rung <= value * (1.0 + 1e-12)).fold(0.0, f64::max)
 }
 
 /// Smallest rung that is not below `value`. Panics as [`at_most`].
 pub fn at_least(value: f64) -> f64 {
-    let decade = decade(value);
-    let rung = RUNGS.iter().map(|r| r * decade).find(|r| *r >= value * (1.0 - 1e-12));
-    rung.unwrap_or(10.0 * decade)
+    rungs_around(value).filter(|rung| *rung >= value * (1.0 - 1e-12)).fold(f64::INFINITY, f64::min)
 }
 
-fn decade(value: f64) -> f64 {
+/// The rungs of the value's decade and the next one, as their decimal text reads: 0.15, not 1.5 times 0.1.
+fn rungs_around(value: f64) -> impl Iterator<Item = f64> {
     assert!(value > 0.0 && value.is_finite(), "a ladder needs a positive number, got {value}");
-    // Written out as text and read back, so that 0.1 is 0.1 and not 10^-1 with a rounding error.
-    format!("1e{}", value.log10().floor()).parse().unwrap_or(1.0)
+    let decade = value.log10().floor() as i32;
+    (decade - 1..=decade + 1)
+        .flat_map(|decade| RUNGS.iter().filter_map(move |rung| format!("{rung}e{decade}").parse().ok()))
 }
 
 #[cfg(test)]

@@ -106,6 +106,7 @@ impl Needs {
         let at_rest = (2.0 * depth.max(0.0)).sqrt() + digits / analytic;
         let momentum = at_rest.max(fastest + 0.4 * digits / analytic) + swing;
         let stiffness = stiffness(potential);
+        let momentum = momentum.max(std::f64::consts::PI / kink_spacing(potential, wish.accuracy));
         // The wave function outside decays by e^{-20} at the level's reach; the accuracy asks for a part of that.
         let bound = wish.facts.reach * (digits / 20.0).min(1.0) + swing / stiffness.max(1e-3);
         let needs_absorber = !confined && strength.field > 0.0;
@@ -253,6 +254,12 @@ fn analytic_length(potential: &Potential) -> f64 {
         Potential::Harmonic { frequency } => 1.5 / frequency.sqrt(),
         Potential::Sampled(table) => 2.0 * table.spacing(),
     }
+}
+
+/// Spacing at which the error of a kink, measured as 4 J h⁴ for a jump J of V', meets the accuracy.
+fn kink_spacing(potential: &Potential, accuracy: f64) -> f64 {
+    let jump = potential.kink();
+    if jump == 0.0 { f64::INFINITY } else { (accuracy / (4.0 * jump)).powf(0.25) }
 }
 
 /// √V'' at the bottom, hartree.

@@ -130,7 +130,14 @@ pub(super) fn rough_level(
     number: usize,
     reach: f64,
 ) -> Result<Level, StationaryError> {
-    Ok(Level { number, energy: locate(potential, number, reach)?, reach })
+    let energy = locate(potential, number, reach)?;
+    // No further out than the wave function is worth: it would overflow on the way in.
+    let mut far = first_reach(potential).min(reach);
+    while far < reach && meshes(potential, far, 1.0 / 8.0).iter().any(|mesh| mesh.decay(energy) < 2.0 * DECAY)
+    {
+        far = (1.5 * far).min(reach);
+    }
+    Ok(Level { number, energy, reach: far })
 }
 
 /// A reach to start from: the whole range of a short-range potential, grown later as the state needs.
