@@ -56,7 +56,9 @@ fn one_size(c: &mut Criterion, gauge: Gauge, points: usize) {
             }
             elapsed += start.elapsed();
             // Keeps the numbers finite; outside the measured time.
-            data.iter_mut().for_each(|d| *d *= scale);
+            for d in &mut data {
+                *d *= scale;
+            }
         }
         elapsed
     };
@@ -74,9 +76,13 @@ fn one_size(c: &mut Criterion, gauge: Gauge, points: usize) {
     });
 }
 
-criterion_group! {
-    name = step;
-    config = Criterion::default().sample_size(10).warm_up_time(Duration::from_millis(200)).measurement_time(Duration::from_millis(500));
-    targets = ratios
+mod group {
+    #![allow(missing_docs, reason = "the macro makes a public function")]
+    use super::{Criterion, Duration, criterion_group, ratios};
+    criterion_group! {
+        name = step;
+        config = Criterion::default().sample_size(10).warm_up_time(Duration::from_millis(200)).measurement_time(Duration::from_millis(500));
+        targets = ratios
+    }
 }
-criterion_main!(step);
+criterion_main!(group::step);

@@ -285,7 +285,7 @@ fn overrides_are_applied_in_order_and_may_add_known_keys() {
     assert_close(request.field.pulses[0].phase, std::f64::consts::FRAC_PI_2);
     assert_eq!((request.title.as_str(), request.atom.initial), ("a=b", InitialState::Single(2)));
     let window = request.outputs.harmonics.map(|harmonics| harmonics.window);
-    assert_eq!(window, Some(tdse_cli::config::request::Window::Hann));
+    assert_eq!(window, Some(tdse_core::spectrum::Window::Hann));
 }
 
 #[test]

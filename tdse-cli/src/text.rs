@@ -34,9 +34,9 @@ pub fn duration(seconds: f64) -> String {
     match whole {
         _ if seconds < 0.095 => format!("{:.0} ms", (seconds * 1e3).max(1.0)),
         _ if seconds < 10.0 => format!("{seconds:.1} s"),
-        ..60 => format!("{whole} s"),
-        ..3600 => format!("{} min {} s", whole / 60, whole % 60),
-        ..86_400 => format!("{} h {} min", whole / 3600, whole / 60 % 60),
+        0..60 => format!("{whole} s"),
+        60..3600 => format!("{} min {} s", whole / 60, whole % 60),
+        3600..86_400 => format!("{} h {} min", whole / 3600, whole / 60 % 60),
         _ => format!("{} d {} h", whole / 86_400, whole / 3600 % 24),
     }
 }

@@ -2,6 +2,7 @@
 
 use ndarray::Array2;
 use tdse_core::problem::InitialState;
+use tdse_core::quantities::classical_cutoff;
 use tdse_core::simulate::{Atom, Plan, State};
 use tdse_core::spectrum::twice_integrated;
 
@@ -92,9 +93,21 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, sta
     let status = if doubts.is_empty() { Status::Done } else { Status::Doubtful };
     contents.insert("summary", "ionization_probability", (1.0 - total).max(0.0));
     contents.insert("summary", "initial_energy", electronvolts(atom.bound.energies[lowest]));
+    contents.insert("summary", "classical_cutoff", classical(point));
     contents.insert("summary", "final_norm", state.series.norm[state.step]);
     contents.insert("summary", "bound_population", total);
     contents.insert("summary", "initial_population", bound[lowest]);
     contents.insert("summary", "status", status as i64);
     contents.insert("summary", "reason", doubts.join("\n"));
+}
+
+/// Ip + 3.17 Up with the vector potentials of all pulses added up, eV; NaN where nothing is bound or no pulse is there.
+fn classical(point: &Point) -> f64 {
+    let pulses = &point.job.problem.field.pulses;
+    let potential: f64 = pulses.iter().map(|pulse| pulse.peak_field / pulse.frequency).sum();
+    let energy = point.facts.ionization_energy();
+    if energy <= 0.0 || pulses.is_empty() {
+        return f64::NAN;
+    }
+    electronvolts(classical_cutoff(energy, 0.25 * potential * potential))
 }

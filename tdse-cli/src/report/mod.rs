@@ -13,6 +13,7 @@ mod ends;
 pub mod field;
 pub mod figure;
 pub mod font;
+pub mod gallery;
 pub mod harmonics;
 pub mod map;
 pub mod number;

@@ -13,7 +13,7 @@ use crate::config::request::{AtomPotential, AtomRequest};
 #[derive(Debug, Default)]
 pub struct Facts {
     tuned: HashMap<String, Result<f64, StationaryError>>,
-    facts: HashMap<String, Result<AtomFacts, StationaryError>>,
+    atoms: HashMap<String, Result<AtomFacts, StationaryError>>,
     bound: HashMap<String, Option<StationaryError>>,
 }
 
@@ -48,7 +48,7 @@ impl Facts {
     /// [`StationaryError::NoSuchState`] where the initial state is not bound.
     pub fn of(&mut self, potential: &Potential, atom: &AtomRequest) -> Result<AtomFacts, StationaryError> {
         let key = format!("{potential:?} {:?}", atom.initial);
-        self.facts.entry(key).or_insert_with(|| AtomFacts::new(potential, &atom.initial)).clone()
+        self.atoms.entry(key).or_insert_with(|| AtomFacts::new(potential, &atom.initial)).clone()
     }
 
     /// Whether the atom binds `states` states.

@@ -128,9 +128,8 @@ impl Needs {
     /// Half the box without its absorber, bohr.
     pub(super) fn inner(&self, absorber: Absorber) -> f64 {
         match absorber {
-            Absorber::Smooth { .. } => self.atom_reach,
             Absorber::None if self.absorber_width > 0.0 => self.flight.max(self.atom_reach),
-            Absorber::None => self.atom_reach,
+            Absorber::None | Absorber::Smooth { .. } => self.atom_reach,
         }
     }
 
@@ -169,7 +168,7 @@ impl Needs {
                 ),
             ),
             reason(Knob::Extent, pins.extent.is_some(), self.extent_reason(numerics)),
-            reason(Knob::Absorber, pins.absorber.is_some(), self.absorber_reason(numerics)),
+            reason(Knob::Absorber, pins.absorber.is_some(), absorber_reason(numerics.absorber)),
             reason(
                 Knob::TimeStep,
                 pins.time_step.is_some(),
@@ -221,15 +220,15 @@ impl Needs {
             ),
         }
     }
+}
 
-    fn absorber_reason(&self, numerics: &Numerics) -> String {
-        match numerics.absorber {
-            Absorber::None => "none: nothing comes near the edge".into(),
-            Absorber::Smooth { width } => format!(
-                "takes in momenta from {:.3} / bohr on with 0.6 % reflection and less above (Manolopoulos 2002)",
-                slowest_momentum(width)
-            ),
-        }
+fn absorber_reason(absorber: Absorber) -> String {
+    match absorber {
+        Absorber::None => "none: nothing comes near the edge".into(),
+        Absorber::Smooth { width } => format!(
+            "takes in momenta from {:.3} / bohr on with 0.6 % reflection and less above (Manolopoulos 2002)",
+            slowest_momentum(width)
+        ),
     }
 }
 

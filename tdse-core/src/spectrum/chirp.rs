@@ -39,7 +39,9 @@ impl FourierSum {
             kernel[length - n] = chirp[n].conj();
         }
         transform.forward(&mut kernel, &mut transform.make_scratch());
-        kernel.iter_mut().for_each(|k| *k /= length as f64);
+        for k in &mut kernel {
+            *k /= length as f64;
+        }
         Self { samples, start, step, chirp, kernel, transform, frequencies }
     }
 

@@ -2,6 +2,8 @@
 
 use std::f64::consts::LN_2;
 
+use num_complex::Complex;
+
 use super::chirp::FourierSum;
 use super::harmonics::EnergyAxis;
 use crate::simulate::Schedule;
@@ -53,7 +55,7 @@ pub fn gabor(acceleration: &[f64], schedule: &Schedule, wanted: &TimeFrequency) 
             })
             .collect();
         map.times.push(schedule.start + centre);
-        map.intensity.extend(sum.evaluate(&part).iter().map(|a| a.norm_sqr()));
+        map.intensity.extend(sum.evaluate(&part).iter().map(Complex::norm_sqr));
     }
     map
 }

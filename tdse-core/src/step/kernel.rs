@@ -3,6 +3,11 @@
 //! Written once over `pulp`'s vectors and run with the widest instructions the processor has, so the same executable
 //! gives the same bits wherever the instruction set is the same. Sums run block by block in a fixed order.
 
+#![expect(
+    clippy::inline_always,
+    reason = "vector code must be inlined into the function that pulp dispatches to"
+)]
+
 use num_complex::Complex;
 use pulp::{Arch, Simd, WithSimd, bytemuck};
 

@@ -129,7 +129,7 @@ impl Line {
             edge: self.edge_blocks,
         });
         self.transform.forward(psi, &mut work.scratch);
-        let top = self.top_of(psi);
+        let top = top_of(psi);
         if let Some(fraction) = self.splitting.middle {
             self.kinetic_factor(psi, drive.potential_integral[0][0], drive.square_integral[0], work);
             self.transform.inverse(psi, &mut work.scratch);
@@ -149,7 +149,7 @@ impl Line {
         let mut copy = psi.to_vec();
         self.transform.forward(&mut copy, &mut work.scratch);
         let sums = self.arch.dispatch(Sum { psi, gradient: &self.gradient, edge: self.edge_blocks });
-        self.moments(sums, self.top_of(&copy))
+        self.moments(sums, top_of(&copy))
     }
 
     /// Turns ψ at a time when the field is `field` into the open form.
@@ -211,12 +211,6 @@ impl Line {
         self.arch.dispatch(MultiplyRamp { psi: high, table: &self.kinetic[half..], ramp: ramp_high });
     }
 
-    /// Σ|ψ_k|² over the upper quarter of the momenta, both signs.
-    fn top_of(&self, transformed: &[Complex<f64>]) -> f64 {
-        let n = transformed.len();
-        transformed[n / 2 - n / 8..n / 2 + n / 8].iter().map(Complex::norm_sqr).sum()
-    }
-
     fn moments(&self, sums: Sums, top: f64) -> Moments {
         let cell = self.grid.cell();
         Moments {
@@ -226,4 +220,10 @@ impl Line {
             top: top * cell / self.grid.x.points as f64,
         }
     }
+}
+
+/// Σ|ψ_k|² over the upper quarter of the momenta, both signs.
+fn top_of(transformed: &[Complex<f64>]) -> f64 {
+    let n = transformed.len();
+    transformed[n / 2 - n / 8..n / 2 + n / 8].iter().map(Complex::norm_sqr).sum()
 }

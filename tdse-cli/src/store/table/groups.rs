@@ -134,6 +134,12 @@ pub static GROUPS: &[Group] = &[
             value("ionization_probability", NUMBER, &[], "Ionization probability"),
             value("initial_energy", "eV", &[], "Energy of the initial state on the grid"),
             value("cutoff_energy", "eV", &[], "Measured cutoff of the harmonic spectrum"),
+            value(
+                "classical_cutoff",
+                "eV",
+                &[],
+                "Cutoff by the classical law Ip + 3.17 Up, all pulses together",
+            ),
             value("final_norm", NUMBER, &[], "Norm in the box at the end"),
             value("bound_population", NUMBER, &[], "Population of all bound states at the end"),
             value("initial_population", NUMBER, &[], "Population of the initial state at the end"),

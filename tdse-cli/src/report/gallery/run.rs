@@ -1,0 +1,118 @@
+//! Pictures of one run.
+
+use super::super::field::FieldPicture;
+use super::super::harmonics::HarmonicPicture;
+use super::super::populations::PopulationPicture;
+use super::super::time_frequency::TimeFrequencyPicture;
+use super::super::{field, harmonics, populations, time_frequency};
+use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, slice};
+use crate::store::{Contents, Values};
+
+pub(super) fn pictures(contents: &Contents) -> Vec<Drawn> {
+    [spectrum(contents), laser(contents), map(contents), motion(contents)].into_iter().flatten().collect()
+}
+
+fn spectrum(contents: &Contents) -> Option<Drawn> {
+    let photon_energy = slice(contents, "harmonics", "photon_energy");
+    if photon_energy.is_empty() {
+        return None;
+    }
+    let number = |name: &str| slice(contents, "summary", name).first().copied().filter(|v| v.is_finite());
+    let window = remark(contents, "harmonics", "window");
+    Some(Drawn {
+        name: "harmonics".into(),
+        svg: harmonics::draw(&HarmonicPicture {
+            title: &contents.provenance.title,
+            photon_energy,
+            spectrum: slice(contents, "harmonics", "spectrum"),
+            quantity: SPECTRUM,
+            fundamental: fundamental(contents),
+            cutoff_law: number("classical_cutoff"),
+            measured_cutoff: number("cutoff_energy"),
+            window,
+        }),
+        caption: format!("Harmonic spectrum of the dipole acceleration, window {window}."),
+        alternative:
+            "Logarithmic spectrum against photon energy, with the classical and the measured cutoff marked."
+                .into(),
+    })
+}
+
+fn laser(contents: &Contents) -> Option<Drawn> {
+    let time = slice(contents, "field", "time");
+    if time.is_empty() {
+        return None;
+    }
+    Some(Drawn {
+        name: "field".into(),
+        svg: field::draw(&FieldPicture {
+            title: &contents.provenance.title,
+            time,
+            electric_field: &[("", slice(contents, "field", "electric_field"))],
+            vector_potential: &[("", slice(contents, "field", "vector_potential"))],
+        }),
+        caption: "Electric field and vector potential.".into(),
+        alternative: "Electric field above, vector potential below, against time.".into(),
+    })
+}
+
+fn map(contents: &Contents) -> Option<Drawn> {
+    let group = "time_frequency";
+    let (time, photon_energy) = (slice(contents, group, "time"), slice(contents, group, "photon_energy"));
+    let intensity = contents.real(group, "intensity")?;
+    // The picture wants the energy first, the file has the time first.
+    let turned: Vec<f64> = intensity.t().iter().copied().collect();
+    let window = remark(contents, group, "window");
+    Some(Drawn {
+        name: "time_frequency".into(),
+        svg: time_frequency::draw(&TimeFrequencyPicture {
+            title: &contents.provenance.title,
+            time,
+            photon_energy,
+            intensity: &turned,
+            quantity: SPECTRUM,
+            decades: MAP_DECADES,
+            window,
+        }),
+        caption: "When each photon energy is emitted: Gabor transform of the dipole acceleration.".into(),
+        alternative: "Map of the emission over time and photon energy, logarithmic shades.".into(),
+    })
+}
+
+/// Norm and populations; the norm is thinned to the populations' times.
+fn motion(contents: &Contents) -> Option<Drawn> {
+    let all = slice(contents, "dynamics", "time");
+    let norm = slice(contents, "dynamics", "norm");
+    let time = match slice(contents, "populations", "time") {
+        [] => all,
+        times => times,
+    };
+    if time.is_empty() {
+        return None;
+    }
+    let at = |t: f64| norm.get(all.partition_point(|x| *x < t)).or(norm.last()).copied().unwrap_or(f64::NAN);
+    let thinned: Vec<f64> = time.iter().map(|&t| at(t)).collect();
+    let rows = contents.real("populations", "populations");
+    let names: Vec<String> = match contents.get("populations", "state") {
+        Some(Values::Integer(numbers)) => numbers.iter().map(|n| format!("state {n}")).collect(),
+        _ => Vec::new(),
+    };
+    let rows: Vec<Vec<f64>> = rows
+        .map(|rows| rows.outer_iter().map(|row| row.iter().copied().collect()).collect())
+        .unwrap_or_default();
+    let states: Vec<(&str, &[f64])> =
+        names.iter().map(String::as_str).zip(rows.iter().map(Vec::as_slice)).collect();
+    Some(Drawn {
+        name: "populations".into(),
+        svg: populations::draw(&PopulationPicture {
+            title: &contents.provenance.title,
+            time,
+            norm: &thinned,
+            states: &states,
+        }),
+        caption:
+            "Norm in the box and populations of field-free bound states (length gauge while the field is on)."
+                .into(),
+        alternative: "Norm and populations against time.".into(),
+    })
+}
