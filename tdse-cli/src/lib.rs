@@ -5,6 +5,7 @@
 pub mod command;
 pub mod config;
 pub mod derive;
+pub mod progress;
 pub mod report;
 pub mod scan;
 pub mod store;

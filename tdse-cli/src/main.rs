@@ -1,3 +1,7 @@
 //! The program `tdse`.
 
-fn main() {}
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    tdse_cli::command::run_program()
+}

@@ -10,4 +10,4 @@ pub use chirp::FourierSum;
 pub use cutoff::{Cutoff, measured_cutoff};
 pub use dipole::twice_integrated;
 pub use harmonics::{EnergyAxis, Harmonics, Window, harmonics, order_yields, radiated_energy};
-pub use time_frequency::{GaborMap, TimeFrequency, gabor};
+pub use time_frequency::{GaborMap, TAPER, TimeFrequency, gabor};

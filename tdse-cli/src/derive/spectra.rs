@@ -3,7 +3,7 @@
 use ndarray::Array2;
 use tdse_core::simulate::Schedule;
 use tdse_core::spectrum::{
-    EnergyAxis, TimeFrequency, gabor, harmonics, measured_cutoff, order_yields, radiated_energy,
+    EnergyAxis, TAPER, TimeFrequency, gabor, harmonics, measured_cutoff, order_yields, radiated_energy,
 };
 
 use super::{electronvolts, femtoseconds};
@@ -112,9 +112,9 @@ fn map(contents: &mut Contents, wanted: &request::TimeFrequency, acceleration: &
     let map = Array2::from_shape_fn(shape, |(t, e)| found.intensity[t * shape.1 + e]);
     contents.insert(group, "intensity", map.into_dyn());
     let length = femtoseconds(settings.window_length);
-    contents.remark(
-        group,
-        "window",
-        &format!("gaussian, {length:.4} fs full width at half maximum of its square"),
+    let window = format!(
+        "gaussian, {length:.4} fs full width at half maximum of its square; ends tapered over {:.4} fs",
+        TAPER * length
     );
+    contents.remark(group, "window", &window);
 }

@@ -22,6 +22,23 @@ pub(super) fn create(path: &Path, fill: impl FnOnce(&Node) -> Result<(), Error>)
     made
 }
 
+/// Makes a file of these bytes at `path`, in the same way.
+pub(super) fn write(path: &Path, bytes: &[u8]) -> Result<(), Error> {
+    let partial = partial(path);
+    let made = fs::write(&partial, bytes)
+        .map_err(Error::io("write", &partial))
+        .and_then(|()| publish(&partial, path));
+    if made.is_err() {
+        let _ = fs::remove_file(&partial);
+    }
+    made
+}
+
+/// Whether this is the name of a file that is not finished.
+pub(super) fn is_partial(name: &str) -> bool {
+    Path::new(name).extension().is_some_and(|extension| extension == "partial")
+}
+
 /// `NAME.HOST-PID.partial` in the same folder, so that no two processes share it and renaming stays on one disk.
 fn partial(path: &Path) -> PathBuf {
     let mut name = path.file_name().map_or_else(OsString::new, OsString::from);

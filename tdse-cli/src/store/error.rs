@@ -4,6 +4,7 @@ use std::fmt;
 use std::io;
 use std::path::{Path, PathBuf};
 
+use super::folder::Difference;
 use super::hdf5::{self, Failure};
 
 /// Why a result could not be written, read or gathered. Every message names the file.
@@ -47,6 +48,13 @@ pub enum Error {
         found: i64,
         /// The highest version this program reads.
         known: i64,
+    },
+    /// A folder holds the results of another request.
+    OtherRequest {
+        /// The folder.
+        path: PathBuf,
+        /// Where the requests differ.
+        differences: Vec<Difference>,
     },
     /// A scan axis has a name that a file cannot give it.
     AxisName {
@@ -97,6 +105,11 @@ impl fmt::Display for Error {
                  this one reads up to {known}",
                 path.display()
             ),
+            Self::OtherRequest { path, differences } => {
+                write!(f, "{} holds the results of another request", path.display())?;
+                differences.iter().try_for_each(|difference| write!(f, "\n{difference}"))?;
+                write!(f, "\nonly scan, outputs, title and notes may change; give another folder")
+            }
             Self::AxisName { name, reason } => {
                 write!(
                     f,

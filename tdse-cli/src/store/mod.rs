@@ -4,15 +4,18 @@
 //! * [`Contents`] is a result in memory, checked against the table as it is filled.
 //! * [`write()`] puts one on disk whole or not at all; [`read()`] gets it back exactly.
 //! * [`gather()`] stacks the files of a scan's points into one, scan axes first.
+//! * [`Folder`] is where all of a request's files lie; [`differences()`] compares two results.
 //!
 //! All numbers are in the units of the table, which are those of the file. Only the module `hdf5` calls the
 //! HDF5 library; that library holds one global lock, so threads gain nothing here.
 
 mod atomic;
 mod axes;
+mod compare;
 mod contents;
 mod entry;
 mod error;
+mod folder;
 mod gather;
 mod group;
 mod hdf5;
@@ -25,8 +28,10 @@ mod write;
 
 pub use atomic::host_name;
 pub use axes::{ScanAxis, ScanDimension};
+pub use compare::differences;
 pub use contents::{Contents, Group};
 pub use error::Error;
+pub use folder::{AxisValues, Claim, Difference, FailedPoint, Folder, Request, Row, TableAxis};
 pub use gather::{Gathering, Point, gather};
 pub use provenance::Provenance;
 pub use read::{read, read_groups};

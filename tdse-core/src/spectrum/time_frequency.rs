@@ -5,7 +5,7 @@ use std::f64::consts::LN_2;
 use num_complex::Complex;
 
 use super::chirp::FourierSum;
-use super::harmonics::EnergyAxis;
+use super::harmonics::{EnergyAxis, Window};
 use crate::simulate::Schedule;
 
 /// What map is wanted.
@@ -30,7 +30,13 @@ pub struct GaborMap {
     pub intensity: Vec<f64>,
 }
 
+/// Flanks of the taper that brings the series to zero at both ends, in window lengths.
+pub const TAPER: f64 = 2.0;
+
 /// Gabor map (Gabor, J. IEE 93, 429 (1946)) of a recorded acceleration over the whole run.
+///
+/// The series is first brought to zero at both ends over [`TAPER`] window lengths: an acceleration that has not died
+/// down by the end would fake a burst there.
 ///
 /// # Panics
 /// If `acceleration` does not belong to `schedule`, or a length of `wanted` is not positive.
@@ -43,6 +49,12 @@ pub fn gabor(acceleration: &[f64], schedule: &Schedule, wanted: &TimeFrequency) 
     let reach = ((6.5 * sigma / tau).ceil() as usize).clamp(1, last);
     let samples = (2 * reach + 1).min(last + 1);
     let count = (last as f64 * tau / wanted.time_step + 1e-9).floor() as usize + 1;
+    let (length, taper) = (tau * last as f64, Window::Taper { length: TAPER * wanted.window_length });
+    let tapered: Vec<f64> = acceleration
+        .iter()
+        .enumerate()
+        .map(|(n, a)| a * taper.weight(n as f64 * tau, length) * tau)
+        .collect();
     let sum = FourierSum::new(samples, 0.0, tau, wanted.axis.points, wanted.axis.step);
     let mut map = GaborMap { times: Vec::with_capacity(count), axis: wanted.axis, intensity: Vec::new() };
     for i in 0..count {
@@ -51,7 +63,7 @@ pub fn gabor(acceleration: &[f64], schedule: &Schedule, wanted: &TimeFrequency) 
         let part: Vec<f64> = (first..first + samples)
             .map(|n| {
                 let u = (n as f64 * tau - centre) / sigma;
-                acceleration[n] * (-0.5 * u * u).exp() * tau
+                tapered[n] * (-0.5 * u * u).exp()
             })
             .collect();
         map.times.push(schedule.start + centre);

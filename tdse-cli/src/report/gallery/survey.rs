@@ -36,7 +36,12 @@ impl Parameter {
             Values::Integer(numbers) => (numbers.iter().map(|&n| n as f64).collect(), Vec::new()),
             Values::Text(words) => (Vec::new(), words.iter().cloned().collect()),
         };
-        Self { name: name.clone(), unit: units.clone().unwrap_or_default(), numbers, words }
+        Self {
+            name: name.clone(),
+            unit: units.clone().unwrap_or_default().replace("**2", "²"),
+            numbers,
+            words,
+        }
     }
 
     fn axis(&self) -> Axis<'_> {

@@ -1,0 +1,73 @@
+//! Options of the commands.
+
+use std::num::NonZeroUsize;
+use std::path::PathBuf;
+
+use clap::Args;
+
+use super::exit::Trouble;
+use crate::scan::prepare::{Prepared, prepare};
+use crate::scan::run::Shard;
+use crate::scan::source::source;
+
+/// A configuration with changes.
+#[derive(Debug, Args)]
+pub struct Asked {
+    /// Configuration in JSON, or the .h5 file of a result, which runs again
+    #[arg(value_name = "CONFIG")]
+    pub config: PathBuf,
+    /// Change one place of the configuration (repeatable), as in --set '/field/pulses/0/phase=90 deg'
+    #[arg(long = "set", value_name = "POINTER=VALUE")]
+    pub sets: Vec<String>,
+}
+
+impl Asked {
+    /// Reads and judges it, every point of it.
+    ///
+    /// # Errors
+    /// Refused with one line per complaint.
+    pub fn prepare(&self) -> Result<Prepared, Trouble> {
+        let source = source(&self.config).map_err(Trouble::refused)?;
+        prepare(&source, &self.sets).map_err(Trouble::refused)
+    }
+}
+
+/// A folder of results.
+#[derive(Debug, Args)]
+pub struct Place {
+    /// Folder that `tdse run` filled
+    #[arg(value_name = "DIR")]
+    pub dir: PathBuf,
+}
+
+/// What `run` takes.
+#[derive(Debug, Args)]
+pub struct RunOptions {
+    /// What to compute.
+    #[command(flatten)]
+    pub asked: Asked,
+    /// Folder for the results; made where it is absent, continued where it holds the same request
+    #[arg(long, value_name = "DIR")]
+    pub out: PathBuf,
+    /// Points computed at once [default: the cores of the batch job, else of the machine]
+    #[arg(long, value_name = "N", value_parser = jobs)]
+    pub jobs: Option<NonZeroUsize>,
+    /// Take only every N-th point, beginning with the K-th
+    #[arg(long, value_name = "K/N", value_parser = shard)]
+    pub shard: Option<Shard>,
+    /// Compute failed points again
+    #[arg(long)]
+    pub retry: bool,
+    /// Say nothing but errors
+    #[arg(long)]
+    pub quiet: bool,
+}
+
+fn jobs(text: &str) -> Result<NonZeroUsize, String> {
+    text.parse().map_err(|_| "allowed: a whole number, at least 1".into())
+}
+
+fn shard(text: &str) -> Result<Shard, String> {
+    let parts = text.split_once('/').and_then(|(k, n)| Some((k.parse().ok()?, n.parse().ok()?)));
+    parts.and_then(|(k, n)| Shard::new(k, n)).ok_or_else(|| "allowed: K/N with 1 <= K <= N".into())
+}

@@ -1,0 +1,189 @@
+//! `tdse run`: computes what is missing, gathers, draws.
+
+use std::env;
+use std::io::{IsTerminal, stderr};
+use std::time::Instant;
+
+use super::exit::{Exit, Trouble};
+use super::headline::headline;
+use super::options::RunOptions;
+use super::output::data;
+use super::report;
+use crate::progress::{Audience, Counts, Event, Reporter, Wish, voice};
+use crate::scan::asked;
+use crate::scan::gathering::gather_all;
+use crate::scan::ledger::{Ledger, Standing};
+use crate::scan::prepare::Prepared;
+use crate::scan::run::{self, Retry, Shared, Stop, at_once, machine, name, tasks};
+use crate::store::{Claim, Folder, Request};
+
+/// A request in its folder, ready to be computed.
+struct Work<'a> {
+    options: &'a RunOptions,
+    prepared: Prepared,
+    request: Request,
+    ledger: Ledger,
+    reporter: Reporter,
+    stop: Stop,
+    start_time: String,
+}
+
+/// Runs, or continues.
+///
+/// # Errors
+/// Refused where the configuration or the folder is; incomplete where the machine does not let it finish.
+pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
+    let mut work = Work::begin(options)?;
+    let before = work.ledger.standings();
+    work.ledger.write(&work.request, &before).map_err(Trouble::refused)?;
+    work.compute(&before)?;
+    let standings = work.ledger.standings_after(before);
+    let counts = work.counts(&standings);
+    let signal = work.stop.signal();
+    work.reporter.tell(&Event::Ended { counts, signal: signal.map(run::Signal::name) });
+    work.ledger.write(&work.request, &standings).map_err(Trouble::incomplete)?;
+    if let Some(signal) = signal {
+        let there = standings.iter().filter(|standing| standing.is_there()).count();
+        let text = format!("{there} of {} points are there; continue with the same command", standings.len());
+        work.note(format!("stopped by {}: {text}", signal.name()));
+        return Ok(Exit::Stopped(signal));
+    }
+    work.finish(&standings)
+}
+
+impl<'a> Work<'a> {
+    /// Judges everything, then takes the folder.
+    fn begin(options: &'a RunOptions) -> Result<Self, Trouble> {
+        let start_time = run::now();
+        let prepared = options.asked.prepare()?;
+        let request = asked::request(&prepared).map_err(Trouble::refused)?;
+        let claimed = Folder::claim(&options.out, &request, &asked::inputs(&prepared));
+        let (folder, claim) = claimed.map_err(Trouble::refused)?;
+        let audience = if stderr().is_terminal() { Audience::Terminal } else { Audience::Pipe };
+        let wish = if options.quiet { Wish::Quiet } else { Wish::Talk };
+        let voice = voice(audience, env::var("TERM").ok().as_deref(), wish);
+        let reporter = Reporter::new(voice, &folder.log()).map_err(Trouble::refused)?;
+        let stop = Stop::on_signals().map_err(Trouble::refused)?;
+        let ledger = Ledger::new(folder, &prepared);
+        let work = Self { options, prepared, request, ledger, reporter, stop, start_time };
+        if let Claim::Changed { parts, kept } = claim {
+            let parts = if parts.is_empty() { "version".into() } else { parts.join(" and ") };
+            let kept = kept.file_name().unwrap_or_default().to_string_lossy();
+            work.note(format!(
+                "changed {parts}: points that belong are kept, the request before is in {kept}"
+            ));
+        }
+        Ok(work)
+    }
+
+    fn note(&self, text: String) {
+        self.reporter.tell(&Event::Noted { text });
+    }
+
+    /// Whether the point is asked of this process.
+    fn is_own(&self, index: usize) -> bool {
+        self.options.shard.is_none_or(|shard| shard.holds(index))
+    }
+
+    fn compute(&self, before: &[Standing]) -> Result<(), Trouble> {
+        let retry = if self.options.retry { Retry::Failed } else { Retry::Never };
+        let tasks = tasks(&self.prepared, &self.ledger, before, self.options.shard, retry);
+        let jobs = at_once(machine::jobs(self.options.jobs), &tasks);
+        self.reporter.tell(&Event::Began {
+            version: env!("CARGO_PKG_VERSION"),
+            points: self.prepared.points.len(),
+            jobs,
+            steps: tasks.iter().map(|task| task.cost.steps).max().unwrap_or(0),
+            work: tasks.iter().filter(|task| task.recorded.is_none()).map(|task| task.cost.seconds).sum(),
+            due: tasks.iter().map(|task| task.points.len()).sum(),
+        });
+        self.remark_on(before, retry);
+        let (prepared, ledger, reporter, stop) = (&self.prepared, &self.ledger, &self.reporter, &self.stop);
+        let shared = Shared { prepared, ledger, reporter, stop, atoms: crate::scan::atoms::Atoms::new() };
+        run::run(&shared, &tasks, jobs).map_err(Trouble::incomplete)
+    }
+
+    /// Says what was found before computing starts.
+    fn remark_on(&self, before: &[Standing], retry: Retry) {
+        let (mut kept, mut failed) = (0, 0);
+        for (index, standing) in before.iter().enumerate().filter(|(index, _)| self.is_own(*index)) {
+            match standing {
+                Standing::Done | Standing::Doubtful(_) => {
+                    kept += 1;
+                    self.reporter.tell(&Event::Kept { point: name(&self.prepared, index) });
+                }
+                Standing::Failed(_) => failed += 1,
+                Standing::Unusable(reason) => self.note(format!("computed again: {reason}")),
+                Standing::Stale | Standing::Missing => {}
+            }
+        }
+        if kept > 0 {
+            self.note(format!("{kept} of {} points are there already", before.len()));
+        }
+        if failed > 0 && retry == Retry::Never {
+            let all = before.len();
+            self.note(format!("{failed} of {all} points failed before; --retry computes them again"));
+        }
+    }
+
+    fn counts(&self, standings: &[Standing]) -> Counts {
+        let count =
+            |wanted: fn(&Standing) -> bool| standings.iter().filter(|standing| wanted(standing)).count();
+        let failed = count(|standing| matches!(standing, Standing::Failed(_)));
+        Counts { failed, missing: count(|standing| !standing.is_final()), ..self.reporter.counts() }
+    }
+
+    /// Gathers, draws, and says how it ended.
+    fn finish(&self, standings: &[Standing]) -> Result<Exit, Trouble> {
+        let mut own = standings.iter().enumerate().filter(|(index, _)| self.is_own(*index));
+        let exit =
+            if own.all(|(_, standing)| standing.is_there()) { Exit::Complete } else { Exit::Incomplete };
+        self.remark_on_doubts(standings);
+        let all = standings.len();
+        let missing = standings.iter().filter(|standing| !standing.is_final()).count();
+        if self.stop.is_due() {
+            self.note(format!("{missing} of {all} points are missing; continue with the same command"));
+            return Ok(Exit::Incomplete);
+        }
+        if self.options.shard.is_some() && missing > 0 {
+            self.note(format!("{missing} of {all} points are left to other shards; the last one gathers"));
+            return Ok(exit);
+        }
+        let start = Instant::now();
+        gather_all(&self.ledger, &self.request, standings, &self.start_time).map_err(Trouble::incomplete)?;
+        let path = self.ledger.folder.result();
+        let seconds = start.elapsed().as_secs_f64();
+        self.reporter.tell(&Event::Gathered { path: path.display().to_string(), seconds });
+        report::draw(&self.ledger.folder).map_err(Trouble::incomplete)?;
+        data(self.ending(standings)?);
+        Ok(exit)
+    }
+
+    fn remark_on_doubts(&self, standings: &[Standing]) {
+        let doubts = standings.iter().filter(|standing| matches!(standing, Standing::Doubtful(_)));
+        match (doubts.clone().count(), standings) {
+            (0, _) => {}
+            (_, [single]) => single.reason().lines().for_each(|doubt| self.note(format!("doubt: {doubt}"))),
+            (many, all) => {
+                self.note(format!("{many} of {} points are doubtful; tdse status says why", all.len()));
+            }
+        }
+    }
+
+    /// Numbers of a single run; where the result of a scan lies.
+    fn ending(&self, standings: &[Standing]) -> Result<String, Trouble> {
+        let path = self.ledger.folder.result();
+        if let [standing] = standings {
+            let numbers = if standing.is_there() {
+                headline(&path).map_err(Trouble::incomplete)?
+            } else {
+                String::new()
+            };
+            return Ok(format!("{numbers}{}\n", path.display()));
+        }
+        let there = standings.iter().filter(|standing| standing.is_there()).count();
+        let failed = standings.iter().filter(|standing| matches!(standing, Standing::Failed(_))).count();
+        let failed = if failed > 0 { format!(", {failed} failed") } else { String::new() };
+        Ok(format!("{there} of {} points{failed}: {}\n", standings.len(), path.display()))
+    }
+}

@@ -1,0 +1,11 @@
+//! The program from outside: what it computes, keeps, refuses, and says.
+//!
+//! All configurations are invented for these tests, on small grids; what they must show is bit-equality between two
+//! ways of asking for the same thing, counted from the folders' logs.
+
+mod continuing;
+mod faults;
+mod fixture;
+mod same_bits;
+mod signals;
+mod talk;
