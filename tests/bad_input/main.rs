@@ -3,6 +3,7 @@
 //! The configurations are invented for these tests.
 
 mod cases;
+mod physics;
 mod scans;
 
 use std::path::Path;

@@ -65,3 +65,20 @@ fn a_signal_stops_in_time_and_the_same_command_continues_to_the_same_bits() {
         assert_same_bits(&place.path("whole/result.h5"), &place.path(&out).join("result.h5"));
     }
 }
+
+#[test]
+fn a_kill_leaves_whole_points_that_are_kept() {
+    let place = Place::new();
+    long(&place);
+    place.tdse("run scan.json --out whole").with(0);
+    let ended = stopped(&place, "out", "-KILL");
+    assert_eq!(ended.status, None, "killed");
+    let done = files(&place.path("out/points"))
+        .iter()
+        .filter(|path| path.extension().is_some_and(|e| e == "h5"))
+        .count();
+    assert!((1..8).contains(&done), "{done} of 8 points before the kill");
+    place.tdse("run scan.json --out out").with(0);
+    assert_eq!(place.counts("out"), [8 - done, 0, done, 0]);
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
+}

@@ -24,6 +24,7 @@ pub fn derive(point: &Point, contents: &mut Contents) {
     for group in DERIVED {
         contents.remove_group(group);
     }
+    contents.remove("summary", "cutoff_energy");
     let job = &point.job;
     let numerics = &job.numerics;
     let schedule = Schedule::new(&job.problem.field, numerics.time_step, numerics.trailing_time);

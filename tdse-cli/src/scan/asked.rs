@@ -3,12 +3,14 @@
 use std::collections::BTreeMap;
 
 use serde_json::{Value, json};
+use tdse_core::units::Quantity;
 
 use super::points::{Axis, Coordinates, position};
 use super::prepare::{NUMERICS_VERSION, Prepared};
 use crate::config::complaint::Complaints;
 use crate::config::files::INPUTS;
-use crate::config::{self, pointer};
+use crate::config::structure::Shape;
+use crate::config::{self, pointer, schema};
 use crate::store::{AxisValues, Request, TableAxis};
 
 /// What `request.json` says of a request.
@@ -16,14 +18,15 @@ use crate::store::{AxisValues, Request, TableAxis};
 /// # Errors
 /// None for a request that was prepared: its text was read before.
 pub fn request(prepared: &Prepared) -> Result<Request, Complaints> {
+    let tree = config::parse(&prepared.input, &prepared.overrides)?;
     Ok(Request {
         version: env!("CARGO_PKG_VERSION").into(),
         numerics_version: NUMERICS_VERSION,
         title: prepared.title.clone(),
         input: prepared.input.clone(),
         overrides: prepared.overrides.clone(),
-        configuration: portable(prepared)?,
-        scan: dimensions(prepared),
+        scan: dimensions(prepared, &tree),
+        configuration: portable(prepared, tree),
     })
 }
 
@@ -33,32 +36,46 @@ pub fn inputs(prepared: &Prepared) -> BTreeMap<String, String> {
     inputs.map(|input| (input.name.clone(), input.contents.to_string())).collect()
 }
 
-fn dimensions(prepared: &Prepared) -> Vec<Vec<TableAxis>> {
+fn dimensions(prepared: &Prepared, tree: &Value) -> Vec<Vec<TableAxis>> {
     let along = |dimension: usize| prepared.axes.iter().filter(move |axis| axis.dimension == dimension);
-    (0..prepared.shape.len()).map(|dimension| along(dimension).map(table_axis).collect()).collect()
+    (0..prepared.shape.len())
+        .map(|dimension| along(dimension).map(|axis| table_axis(axis, tree)).collect())
+        .collect()
 }
 
-fn table_axis(axis: &Axis) -> TableAxis {
+fn table_axis(axis: &Axis, tree: &Value) -> TableAxis {
+    let quantity = match schema::at(tree, &axis.parameter).map(Shape::of) {
+        Some(Shape::Quantity(quantity)) => Some(quantity),
+        _ => None,
+    };
     let (units, values) = match &axis.coordinates {
         Coordinates::Numbers { values, unit } => {
-            (Some(unit.map_or("1".into(), spelled)), AxisValues::Numbers(values.clone()))
+            let units =
+                quantity.zip(*unit).map_or("1".into(), |(quantity, symbol)| spelled(quantity, symbol));
+            (Some(units), AxisValues::Numbers(values.clone()))
         }
         Coordinates::Words(words) => (None, AxisValues::Words(words.clone())),
     };
-    TableAxis { name: axis.name.clone(), long_name: axis.parameter.clone(), units, values }
+    TableAxis { name: axis.name.clone(), long_name: axis.name.clone(), units, values }
 }
 
-/// A unit of configurations as the Python library pint reads it.
-fn spelled(symbol: &str) -> String {
-    match symbol {
-        "pi" => "pi * rad".into(),
+/// A unit of configurations as the Python library pint reads it, where `au` is the astronomical unit.
+fn spelled(quantity: Quantity, symbol: &str) -> String {
+    match (symbol, quantity) {
+        ("au", Quantity::Length) => "bohr".into(),
+        ("au", Quantity::Energy) => "hartree".into(),
+        ("au", Quantity::Time) => "atomic_unit_of_time".into(),
+        ("au", Quantity::ElectricField) => "hartree / elementary_charge / bohr".into(),
+        ("au", Quantity::Angle) => "rad".into(),
+        ("au", Quantity::Chirp) => "rad / atomic_unit_of_time**2".into(),
+        ("as", _) => "attosecond".into(),
+        ("pi", _) => "pi * rad".into(),
         _ => symbol.replace('^', "**"),
     }
 }
 
 /// The configuration with its overrides applied and every table named as results keep it.
-fn portable(prepared: &Prepared) -> Result<Value, Complaints> {
-    let mut tree = config::parse(&prepared.input, &prepared.overrides)?;
+fn portable(prepared: &Prepared, mut tree: Value) -> Value {
     let names = names(prepared, &tree);
     let mut scan = tree.get_mut("scan").map(Value::take);
     rename(&mut tree, &names);
@@ -74,7 +91,7 @@ fn portable(prepared: &Prepared) -> Result<Value, Complaints> {
     if let Some(scan) = scan {
         tree["scan"] = scan;
     }
-    Ok(tree)
+    tree
 }
 
 /// Names in results by the paths as written.
@@ -115,5 +132,18 @@ fn rename(value: &mut Value, names: &BTreeMap<String, String>) {
 fn replace(value: &mut Value, names: &BTreeMap<String, String>) {
     if let Some(name) = value.as_str().and_then(|written| names.get(written)) {
         *value = json!(name);
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_atomic_unit_is_spelled_by_its_quantity() {
+        assert_eq!(spelled(Quantity::Length, "au"), "bohr");
+        assert_eq!(spelled(Quantity::Time, "as"), "attosecond");
+        assert_eq!(spelled(Quantity::Intensity, "W/cm^2"), "W/cm**2");
+        assert_eq!(spelled(Quantity::Chirp, "rad/fs^2"), "rad/fs**2");
     }
 }

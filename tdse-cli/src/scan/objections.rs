@@ -4,6 +4,7 @@ use serde_json::{Value, json};
 use tdse_core::choose::{Finding, Knob, Verdict};
 use tdse_core::problem::InitialState;
 use tdse_core::stationary::StationaryError;
+use tdse_core::units::HARTREE_EV;
 
 use crate::config::complaint::{Complaint, Fix};
 use crate::config::quantity::digits;
@@ -78,12 +79,19 @@ pub fn stationary(request: &Request, tree: &Value, error: &StationaryError) -> C
                 _ => complaint.allowed(format!("0 to {}", bound - 1)).fix(Fix::Value(json!(bound - 1))),
             }
         }
-        StationaryError::OutOfReach { .. } => {
+        StationaryError::OutOfReach { number, lowest, highest, .. } => {
             let keys = ["/atom/ionization_energy", "/atom/element"];
             let place = keys.into_iter().find(|key| tree.pointer(key).is_some()).unwrap_or("/atom");
-            Complaint::new(place, tree.pointer(place), error.to_string())
-                .allowed("an energy within these")
-                .fix(Fix::Words("choose another state or potential".into()))
+            let [least, most] = [highest, lowest].map(|energy| -energy * HARTREE_EV);
+            let reason = format!("is out of reach of state {number}: no softening gives it that energy");
+            let complaint = Complaint::new(place, tree.pointer(place), reason);
+            let complaint =
+                complaint.allowed(format!("{least:.4} to {most:.4} eV, or another state or potential"));
+            let middle = json!(format!("{:.3} eV", 0.5 * (least + most)));
+            match place {
+                "/atom/ionization_energy" => complaint.fix(Fix::Value(middle)),
+                _ => complaint.fix(Fix::Words("choose another state or potential".into())),
+            }
         }
         StationaryError::NotConverged { .. } => Complaint::new("/atom", None, error.to_string())
             .allowed("a potential that is smooth on the scale of a thousandth of its width")

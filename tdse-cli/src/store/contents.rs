@@ -110,6 +110,13 @@ impl Contents {
         self.groups.remove(group);
     }
 
+    /// Takes one array out.
+    pub fn remove(&mut self, group: &str, name: &str) {
+        if let Some(group) = self.groups.get_mut(group) {
+            group.arrays.remove(name);
+        }
+    }
+
     /// Attaches a remark to a group, such as the name of the window used.
     ///
     /// # Panics

@@ -70,8 +70,8 @@ pub fn tune_softening(atom: &Softenable, number: usize, energy: f64) -> Result<f
             energy,
             smallest,
             largest,
-            lowest: at_low,
-            highest: at_high,
+            lowest: energy_at(smallest)?,
+            highest: energy_at(largest)?,
         });
     }
     let mut failure = None;

@@ -128,7 +128,7 @@ pub fn origin() -> Provenance {
     Provenance {
         version: env!("CARGO_PKG_VERSION").into(),
         commit: option_env!("TDSE_COMMIT").unwrap_or("unknown").into(),
-        instruction_set: machine::instruction_sets(),
+        instruction_set: tdse_core::step::instruction_set().into(),
         host_cores: machine::cores().to_string(),
         ..Provenance::default()
     }

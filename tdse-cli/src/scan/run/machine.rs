@@ -1,4 +1,4 @@
-//! What the machine gives: cores, memory, instruction sets.
+//! What the machine gives: cores and memory.
 
 use std::num::NonZeroUsize;
 use std::{env, fs, thread};
@@ -48,22 +48,6 @@ fn free_memory() -> Option<u64> {
 fn available(meminfo: &str) -> Option<u64> {
     let line = meminfo.lines().find_map(|line| line.strip_prefix("MemAvailable:"))?;
     line.trim().strip_suffix("kB")?.trim().parse::<u64>().ok().map(|kilobytes| kilobytes * 1024)
-}
-
-/// The instruction sets of this processor from which the kernels and transforms take the widest they know.
-pub fn instruction_sets() -> String {
-    #[cfg(target_arch = "x86_64")]
-    let found = [
-        ("avx512f", is_x86_feature_detected!("avx512f")),
-        ("avx2", is_x86_feature_detected!("avx2")),
-        ("fma", is_x86_feature_detected!("fma")),
-        ("avx", is_x86_feature_detected!("avx")),
-        ("sse4.1", is_x86_feature_detected!("sse4.1")),
-    ];
-    #[cfg(not(target_arch = "x86_64"))]
-    let found: [(&str, bool); 0] = [];
-    let names = found.iter().filter(|(_, there)| *there).map(|(name, _)| *name);
-    std::iter::once(env::consts::ARCH).chain(names).collect::<Vec<_>>().join(" ")
 }
 
 #[cfg(test)]
