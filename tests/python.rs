@@ -7,6 +7,7 @@ use std::error::Error;
 use std::io::Write;
 use std::path::{Path, PathBuf};
 use std::process::Command;
+use std::sync::Mutex;
 use std::{env, fs, io};
 
 use sha2::{Digest, Sha256};
@@ -15,9 +16,7 @@ type Outcome<T> = Result<T, Box<dyn Error>>;
 
 #[test]
 fn python_opens_every_file_of_a_run() -> Outcome<()> {
-    if env::var_os("TDSE_SKIP_PYTHON").is_some() {
-        // Straight to stderr: what the test harness captures, nobody sees.
-        writeln!(io::stderr(), "python_opens_every_file_of_a_run: SKIPPED, because TDSE_SKIP_PYTHON is set")?;
+    if skipped()? {
         return Ok(());
     }
     let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("..");
@@ -32,6 +31,40 @@ fn python_opens_every_file_of_a_run() -> Outcome<()> {
     let script = root.join("tests/python/open_everywhere.py");
     run(Command::new(python).arg(script).arg(out.join("result.h5")).args(points))?;
     Ok(())
+}
+
+/// A small scan over two axes (invented), gathered: every group opens, and points are found by the values of the axes.
+#[test]
+fn xarray_selects_from_a_scan_by_value() -> Outcome<()> {
+    if skipped()? {
+        return Ok(());
+    }
+    let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("..");
+    let scratch = tempfile::tempdir()?;
+    let out = scratch.path().join("out");
+    let scan = r#"/scan=[
+        {"parameter": "/field/pulses/0/intensity", "name": "intensity", "values": ["2e13 W/cm^2", "4e13 W/cm^2"]},
+        {"parameter": "/field/pulses/0/phase", "name": "cep", "from": "0 deg", "to": "180 deg", "points": 3}
+    ]"#;
+    let mut program = Command::new(env!("CARGO_BIN_EXE_tdse"));
+    program.arg("run").arg(root.join("configs/quickstart.json")).arg("--out").arg(&out);
+    run(program.args(["--set", scan, "--set", "/field/pulses/0/envelope/cycles=2"]))?;
+    let python = python_with(&root.join("tests/python/requirements.txt"))?;
+    let result = out.join("result.h5");
+    for script in ["open_everywhere.py", "select_by_value.py"] {
+        run(Command::new(&python).arg(root.join("tests/python").join(script)).arg(&result))?;
+    }
+    Ok(())
+}
+
+/// Whether the user asked to leave these tests out, which is said.
+fn skipped() -> io::Result<bool> {
+    let asked = env::var_os("TDSE_SKIP_PYTHON").is_some();
+    if asked {
+        // Straight to stderr: what the test harness captures, nobody sees.
+        writeln!(io::stderr(), "tests/python.rs: SKIPPED, because TDSE_SKIP_PYTHON is set")?;
+    }
+    Ok(asked)
 }
 
 /// Every `DIR/xx/<id>.h5`.
@@ -49,6 +82,9 @@ fn point_files(dir: &Path) -> Outcome<Vec<PathBuf>> {
 /// A Python that has the given requirements. Made once for each text of them and each version of Python; a half-made
 /// one has no `ready` mark and is made anew.
 fn python_with(requirements: &Path) -> Outcome<PathBuf> {
+    // Tests run at the same time; one makes the environment, the others wait.
+    static MAKING: Mutex<()> = Mutex::new(());
+    let _making = MAKING.lock();
     let version = run(Command::new("python3").arg("--version"))?;
     let hash = Sha256::new().chain_update(version).chain_update(fs::read(requirements)?).finalize();
     let home = Path::new(env!("CARGO_TARGET_TMPDIR")).join(format!("python-{:.16}", format!("{hash:x}")));
