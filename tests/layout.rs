@@ -52,10 +52,11 @@ fn point(photon: f64, cep: f64) -> Contents {
     }
     result.insert("field", "electric_field", some(&[times], cep));
     result.insert("field", "vector_potential", some(&[times], cep + 1.0));
-    for (seed, name) in ["dipole_acceleration", "dipole", "norm", "initial_population"].iter().enumerate() {
+    for (seed, name) in ["dipole_acceleration", "dipole", "norm"].iter().enumerate() {
         result.insert("dynamics", name, some(&[times], seed as f64));
     }
     result.insert("populations", "energy", vec![-13.6, -7.5, -4.0]);
+    result.insert("populations", "initial_population", some(&[times], 4.0));
     result.insert("populations", "populations", some(&[3, times], 5.0));
     spectra(&mut result, "harmonics", photon, cep);
     spectra(&mut result, "models/strong_field/harmonics", photon, cep + 0.5);

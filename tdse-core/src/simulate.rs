@@ -7,7 +7,7 @@ use num_complex::Complex;
 use crate::field::Field;
 use crate::grid::Grid;
 use crate::potential::{Potential, PotentialOnGrid};
-use crate::problem::{Gauge, InitialState, Numerics, Problem, Record};
+use crate::problem::{InitialState, Numerics, Problem, Record};
 use crate::stationary::{BoundStates, StationaryError, bound_states};
 use crate::step::{Drive, Line, LineWorkspace, Moments};
 
@@ -94,7 +94,6 @@ pub struct Plan {
     atom: Arc<Atom>,
     initial: Vec<Complex<f64>>,
     grid: Grid,
-    gauge: Gauge,
     line: Line,
     schedule: Schedule,
     drives: Vec<Drive>,
@@ -163,7 +162,6 @@ impl Plan {
             atom,
             initial,
             grid: numerics.grid,
-            gauge: numerics.gauge,
             line,
             schedule,
             drives,
@@ -202,14 +200,13 @@ impl Plan {
 
     /// ψ of the state in length gauge, free of the splitting's open form, into `out`.
     pub fn wave_function(&self, state: &State, out: &mut [Complex<f64>]) {
+        self.close_into(state, out, &mut self.line.make_workspace());
+    }
+
+    fn close_into(&self, state: &State, out: &mut [Complex<f64>], work: &mut LineWorkspace) {
         out.copy_from_slice(&state.psi);
-        self.line.close(out, self.drives[state.step].field[0]);
-        let a = self.vector_potential[state.step][0];
-        if self.gauge == Gauge::Velocity && a != 0.0 {
-            for (p, x) in out.iter_mut().zip(self.grid.x.positions()) {
-                *p *= Complex::cis(a * x);
-            }
-        }
+        let (field, potential) = (self.drives[state.step].field[0], self.vector_potential[state.step][0]);
+        self.line.close(out, field, potential, work);
     }
 
     /// |⟨n|ψ⟩|² for every bound state of `states`, in length gauge.
@@ -261,19 +258,22 @@ pub struct Series {
     pub top: Vec<f64>,
     /// Step numbers at which populations were taken.
     pub population_steps: Vec<usize>,
-    /// Populations, one row per entry of `population_steps`, flat.
+    /// |⟨ψ(0)|ψ⟩|² at those steps.
+    pub initial_population: Vec<f64>,
+    /// Populations of the bound states recorded, one row per entry of `population_steps`, flat.
     pub populations: Vec<f64>,
 }
 
 impl Series {
     fn with_capacity(samples: usize, populations: usize) -> Self {
-        let rows = if populations == 0 { 0 } else { POPULATION_SAMPLES + 2 };
+        let rows = POPULATION_SAMPLES + 2;
         Self {
             gradient: Vec::with_capacity(samples),
             norm: Vec::with_capacity(samples),
             edge: Vec::with_capacity(samples),
             top: Vec::with_capacity(samples),
             population_steps: Vec::with_capacity(rows),
+            initial_population: Vec::with_capacity(rows),
             populations: Vec::with_capacity(rows * populations),
         }
     }
@@ -312,12 +312,13 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
 }
 
 fn record_populations(plan: &Plan, state: &mut State, work: &mut Workspace) {
-    let due = state.step.is_multiple_of(plan.stride) || state.step == plan.schedule.steps;
-    if plan.populations == 0 || !due {
+    if !state.step.is_multiple_of(plan.stride) && state.step != plan.schedule.steps {
         return;
     }
-    plan.wave_function(state, &mut work.psi);
+    plan.close_into(state, &mut work.psi, &mut work.line);
+    let overlap: Complex<f64> = plan.initial.iter().zip(&work.psi).map(|(i, p)| i.conj() * p).sum();
     state.series.population_steps.push(state.step);
+    state.series.initial_population.push((overlap * plan.grid.cell()).norm_sqr());
     for bound in &plan.atom.bound.states[..plan.populations] {
         state.series.populations.push(population(bound, &work.psi, plan.grid.cell()));
     }

@@ -64,20 +64,21 @@ fn start_of_dipole(psi: &[num_complex::Complex<f64>], axis: tdse_core::grid::Axi
 
 fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
     let count = point.job.record.populations;
-    if count == 0 {
-        return;
-    }
     let (series, schedule) = (&state.series, plan.schedule());
     let samples = series.population_steps.len();
     let numbers: Vec<i64> = (0..count as i64).collect();
     let times: Vec<f64> = series.population_steps.iter().map(|&n| femtoseconds(schedule.time(n))).collect();
     let energies: Vec<f64> = atom.bound.energies[..count].iter().map(|&e| electronvolts(e)).collect();
-    contents.insert("populations", "state", numbers);
     contents.insert("populations", "time", times);
+    contents.insert("populations", "initial_population", series.initial_population.clone());
+    contents.remark("populations", "gauge", "length");
+    if count == 0 {
+        return;
+    }
+    contents.insert("populations", "state", numbers);
     contents.insert("populations", "energy", energies);
     let rows = Array2::from_shape_fn((count, samples), |(s, t)| series.populations[t * count + s]);
     contents.insert("populations", "populations", rows.into_dyn());
-    contents.remark("populations", "gauge", "length");
 }
 
 fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
@@ -96,7 +97,8 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, sta
     contents.insert("summary", "classical_cutoff", classical(point));
     contents.insert("summary", "final_norm", state.series.norm[state.step]);
     contents.insert("summary", "bound_population", total);
-    contents.insert("summary", "initial_population", bound[lowest]);
+    let initial = state.series.initial_population.last().copied().unwrap_or(f64::NAN);
+    contents.insert("summary", "initial_population", initial);
     contents.insert("summary", "status", status as i64);
     contents.insert("summary", "reason", doubts.join("\n"));
 }

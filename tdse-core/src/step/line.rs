@@ -26,7 +26,8 @@ pub struct Line {
     time_step: f64,
     splitting: Splitting,
     transform: Transform,
-    potential: Vec<f64>,
+    /// e^{-iwτV}: what an open ψ lacks, but for the field.
+    closing: Vec<Complex<f64>>,
     /// V' twice at every point, beside the two parts of ψ.
     gradient: Vec<[f64; 2]>,
     /// e^{-2iwτV} e^{-τW}: the closing factor of one step, the opening one of the next, and the absorber.
@@ -88,7 +89,7 @@ impl Line {
             time_step: tau,
             splitting,
             transform: Transform::new(axis.points),
-            potential: values,
+            closing: values.iter().map(|v| Complex::cis(-splitting.outer * tau * v)).collect(),
             gradient: gradient.iter().map(|&g| [g, g]).collect(),
             outer,
             middle,
@@ -154,20 +155,22 @@ impl Line {
 
     /// Turns ψ at a time when the field is `field` into the open form.
     pub fn open(&self, psi: &mut [Complex<f64>], field: f64) {
-        self.half_step_phase(psi, field, 1.0);
-    }
-
-    /// Turns the open form at a time when the field is `field` into ψ.
-    pub fn close(&self, psi: &mut [Complex<f64>], field: f64) {
-        self.half_step_phase(psi, field, -1.0);
-    }
-
-    fn half_step_phase(&self, psi: &mut [Complex<f64>], field: f64, sign: f64) {
         let field = if self.gauge == Gauge::Length { field } else { 0.0 };
-        let factor = sign * self.splitting.outer * self.time_step;
-        for ((p, v), x) in psi.iter_mut().zip(&self.potential).zip(self.grid.x.positions()) {
-            *p *= Complex::cis(factor * (v + field * x));
+        let rate = self.splitting.outer * self.time_step * field;
+        for ((p, c), x) in psi.iter_mut().zip(&self.closing).zip(self.grid.x.positions()) {
+            *p *= c.conj() * Complex::cis(rate * x);
         }
+    }
+
+    /// Turns the open form at a time of this `field` and vector `potential` into ψ in length gauge.
+    pub fn close(&self, psi: &mut [Complex<f64>], field: f64, potential: f64, work: &mut LineWorkspace) {
+        let rate = match self.gauge {
+            Gauge::Length => -self.splitting.outer * self.time_step * field,
+            // ψ_length = e^{iAx} ψ_velocity.
+            Gauge::Velocity => potential,
+        };
+        work.ramp.set(rate * self.grid.x.position(0), rate * self.grid.x.spacing);
+        self.arch.dispatch(MultiplyRamp { psi, table: &self.closing, ramp: &work.ramp });
     }
 
     /// e^{-i duration·field·x + i extra} in length gauge, e^{i extra} in velocity gauge.

@@ -100,8 +100,11 @@ fn motion(contents: &Contents) -> Option<Drawn> {
     let rows: Vec<Vec<f64>> = rows
         .map(|rows| rows.outer_iter().map(|row| row.iter().copied().collect()).collect())
         .unwrap_or_default();
-    let states: Vec<(&str, &[f64])> =
+    let mut states: Vec<(&str, &[f64])> =
         names.iter().map(String::as_str).zip(rows.iter().map(Vec::as_slice)).collect();
+    if states.is_empty() {
+        states.push(("initial state", slice(contents, "populations", "initial_population")));
+    }
     Some(Drawn {
         name: "populations".into(),
         svg: populations::draw(&PopulationPicture {
