@@ -230,3 +230,104 @@ fn top_of(transformed: &[Complex<f64>]) -> f64 {
     let n = transformed.len();
     transformed[n / 2 - n / 8..n / 2 + n / 8].iter().map(Complex::norm_sqr).sum()
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::potential::Potential;
+    use crate::problem::Scheme;
+
+    type C = Complex<f64>;
+
+    fn numerics(scheme: Scheme, gauge: Gauge) -> Numerics {
+        Numerics {
+            grid: Grid::line(96, 0.4),
+            time_step: 0.1,
+            scheme,
+            gauge,
+            absorber: Absorber::Smooth { width: 8.0 },
+            trailing_time: 0.0,
+        }
+    }
+
+    const DRIVE: Drive = Drive {
+        field: [0.07, 0.0],
+        middle_field: [0.05, 0.0],
+        potential_integral: [[0.011, 0.0], [0.007, 0.0]],
+        square_integral: [0.002, 0.001],
+    };
+
+    fn packet(grid: Grid) -> Vec<C> {
+        grid.x.positions().map(|x| C::cis(0.7 * x) * (-0.1 * (x - 1.0) * (x - 1.0)).exp()).collect()
+    }
+
+    /// The step as the formulas say it, with an exponential at every point: the truth for the fast one.
+    fn plain_step(potential: &Potential, numerics: &Numerics, psi: &mut Vec<C>) {
+        let (axis, tau) = (numerics.grid.x, numerics.time_step);
+        let length = numerics.gauge == Gauge::Length;
+        let field = |e: [f64; 2]| if length { e[0] } else { 0.0 };
+        let damping = absorber::strength(axis, numerics.absorber.width());
+        let kinetic = |psi: &mut Vec<C>, duration: f64, a: f64, a2: f64| {
+            let transform = Transform::new(axis.points);
+            let mut scratch = transform.make_scratch();
+            transform.forward(psi, &mut scratch);
+            for (p, k) in psi.iter_mut().zip(axis.momenta()) {
+                let shift = if length { 0.0 } else { k * a + 0.5 * a2 };
+                *p *= C::cis(-(0.5 * k * k * duration + shift)) / axis.points as f64;
+            }
+            transform.inverse(psi, &mut scratch);
+        };
+        let local = |psi: &mut Vec<C>, duration: f64, e: f64, correction: f64| {
+            for (p, x) in psi.iter_mut().zip(axis.positions()) {
+                let (v, slope) = potential.value_and_slope(x);
+                let (v, slope) = (v + x * e, slope + e);
+                *p *= C::cis(-duration * (v - correction * slope * slope));
+            }
+        };
+        let outer = if numerics.scheme == Scheme::FourthOrder { 1.0 / 6.0 } else { 0.5 };
+        local(psi, 2.0 * outer * tau, field(DRIVE.field), 0.0);
+        for (p, w) in psi.iter_mut().zip(damping) {
+            *p *= (-tau * w).exp();
+        }
+        let [[a, _], [b, _]] = DRIVE.potential_integral;
+        let [a2, b2] = DRIVE.square_integral;
+        match numerics.scheme {
+            Scheme::FourthOrder => {
+                kinetic(psi, 0.5 * tau, a, a2);
+                local(psi, 2.0 / 3.0 * tau, field(DRIVE.middle_field), tau * tau / 48.0);
+                kinetic(psi, 0.5 * tau, b, b2);
+            }
+            Scheme::Strang => kinetic(psi, tau, a + b, a2 + b2),
+        }
+    }
+
+    #[test]
+    fn the_step_is_what_its_formulas_say_and_its_workspace_is_scratch() {
+        let potential = Potential::SoftCoulomb { charge: 1.0, softening: 1.2 };
+        for scheme in [Scheme::FourthOrder, Scheme::Strang] {
+            for gauge in [Gauge::Length, Gauge::Velocity] {
+                let numerics = numerics(scheme, gauge);
+                let line = Line::new(&PotentialOnGrid::sample(&potential, &numerics.grid), &numerics);
+                let (mut fast, mut plain) = (packet(numerics.grid), packet(numerics.grid));
+                let mut work = line.make_workspace();
+                work.scratch.fill(C::new(f64::NAN, f64::NAN));
+                for ramp in work.momentum_ramps.iter_mut().chain([&mut work.ramp]) {
+                    ramp.coarse.fill(C::new(f64::NAN, f64::NAN));
+                    ramp.fine.fill(C::new(f64::NAN, f64::NAN));
+                }
+                let moments = line.step(&mut fast, &DRIVE, &mut work);
+                let before = packet(numerics.grid);
+                plain_step(&potential, &numerics, &mut plain);
+                for (a, b) in fast.iter().zip(&plain) {
+                    assert!((a - b).norm() < 1e-13, "{scheme:?}, {gauge:?}: {a} against {b}");
+                }
+                let sum = |f: &dyn Fn(f64) -> f64| -> f64 {
+                    let density = before.iter().map(C::norm_sqr);
+                    density.zip(numerics.grid.x.positions()).map(|(d, x)| d * f(x)).sum::<f64>() * 0.4
+                };
+                assert!((moments.norm - sum(&|_| 1.0)).abs() < 1e-13);
+                assert!((moments.gradient[0] - sum(&|x| potential.value_and_slope(x).1)).abs() < 1e-13);
+            }
+        }
+    }
+}
