@@ -380,6 +380,7 @@ fn numbers_read_well() {
 fn page_is_well_formed_and_says_everything() {
     let (_, svg) = demo::all().swap_remove(0);
     let html = page::render(&Page {
+        notes: vec![],
         title: HOSTILE,
         headline: vec![
             Quantity { name: HOSTILE, value: 61.8437, unit: "eV", error: Some(0.123) },

@@ -141,11 +141,19 @@ fn tuned_softenings_give_the_ionization_energies_of_the_elements() {
     }
 }
 
-/// Levels come complete: as many states below zero as the shooting solution has nodes at threshold.
+/// Oscillation theorem (Landau, Lifshitz, Quantum Mechanics, §21): state n has n nodes, so none is missing in between.
 #[test]
 fn every_state_below_zero_is_found() {
     let start = std::time::Instant::now();
-    let found = bound_states_below(&soft(2f64.sqrt()), &Grid::line(768, 0.4)).unwrap();
+    let found = bound_states_below(&soft(2f64.sqrt()), &Grid::line(768, 0.4), 1).unwrap();
+    for (n, state) in found.states.iter().enumerate() {
+        // Below a millionth of the maximum, signs are rounding.
+        let largest = state.iter().fold(0.0, |m: f64, v| m.max(v.abs()));
+        let signs: Vec<bool> = state.iter().filter(|v| v.abs() > 1e-6 * largest).map(|v| *v > 0.0).collect();
+        let nodes = signs.windows(2).filter(|w| w[0] != w[1]).count();
+        assert_eq!(nodes, n, "a state is missing below state {n}");
+    }
+    assert!(found.energies.last().is_some_and(|&e| e > -0.01), "nothing is left out below the threshold");
     println!("{} states in {:?}: {:?}", found.energies.len(), start.elapsed(), found.energies);
     assert!(found.energies.windows(2).all(|w| w[0] < w[1]));
     for (i, a) in found.states.iter().enumerate() {

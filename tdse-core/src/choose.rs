@@ -165,6 +165,9 @@ pub struct Choice {
     pub findings: Vec<Finding>,
 }
 
+/// More points than any machine holds; a grid stops here, and is refused by whoever knows the machine.
+const MOST_POINTS: f64 = 1e12;
+
 /// Chooses what was not pinned, in well under a millisecond.
 pub fn choose(wish: &Wish) -> Choice {
     let needs = rules::Needs::of(wish);
@@ -182,7 +185,7 @@ pub fn choose(wish: &Wish) -> Choice {
     };
     let extent = pins.extent.unwrap_or(2.0 * (needs.inner(absorber) + absorber.width()));
     // A resolved extent is n Δx; its rounding must not add a point.
-    let points = good_length((extent / spacing * (1.0 - 1e-12)).ceil() as usize);
+    let points = good_length((extent / spacing * (1.0 - 1e-12)).ceil().min(MOST_POINTS) as usize);
     let scheme = pins.scheme.unwrap_or(Scheme::FourthOrder);
     let axis = Axis { points, spacing };
     let longest = needs.time_step(scheme, axis.largest_momentum());

@@ -8,7 +8,7 @@ use crate::field::Field;
 use crate::grid::Grid;
 use crate::potential::{Potential, PotentialOnGrid};
 use crate::problem::{InitialState, Numerics, Problem, Record};
-use crate::stationary::{BoundStates, StationaryError, bound_states};
+use crate::stationary::{BoundStates, StationaryError, bound_states_below};
 use crate::step::{Drive, Line, LineWorkspace, Moments};
 
 /// Most population samples kept of a run.
@@ -19,16 +19,16 @@ const POPULATION_SAMPLES: usize = 512;
 pub struct Atom {
     /// Potential and gradient.
     pub potential: PotentialOnGrid,
-    /// Its bound states, as many as were asked for.
+    /// Its bound states: every one below zero, and as many as were asked for in any case.
     pub bound: BoundStates,
 }
 
 impl Atom {
-    /// Atom with its `states` lowest bound states.
+    /// Atom with every state below zero, and the `states` lowest in any case.
     pub fn new(potential: &Potential, grid: &Grid, states: usize) -> Result<Self, StationaryError> {
         Ok(Self {
             potential: PotentialOnGrid::sample(potential, grid),
-            bound: bound_states(potential, grid, states)?,
+            bound: bound_states_below(potential, grid, states)?,
         })
     }
 

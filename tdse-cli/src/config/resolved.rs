@@ -136,7 +136,8 @@ fn fill_time(written: &mut Option<Time>, value: Option<f64>) {
 /// A value in atomic units with the unit asked for if it reads back bit by bit, else with `au`, which always does.
 fn spelled(value: f64, quantity: Quantity, symbol: &str) -> String {
     let number = quantity.unit(symbol).map(|unit| (value / unit.factor, unit.factor));
-    match number {
+    let rounded = number.and_then(|(number, factor)| Some((format!("{number:.11e}").parse().ok()?, factor)));
+    match rounded.filter(|(number, factor): &(f64, f64)| number * factor == value).or(number) {
         Some((number, factor)) if number * factor == value => format!("{} {symbol}", digits(number)),
         _ => format!("{} au", digits(value)),
     }

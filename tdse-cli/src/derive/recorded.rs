@@ -86,14 +86,14 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, sta
     let below_zero = atom.bound.energies.iter().zip(&bound).filter(|(energy, _)| **energy < 0.0);
     let confining = point.job.problem.potential.is_confining();
     let total = if confining { state.series.norm[state.step] } else { below_zero.map(|(_, p)| p).sum() };
-    let lowest = match &point.job.problem.initial {
-        InitialState::Single(number) => *number,
-        InitialState::Superposition(terms) => terms.iter().map(|t| t.number).min().unwrap_or(0),
-    };
     let doubts = &point.doubts;
     let status = if doubts.is_empty() { Status::Done } else { Status::Doubtful };
     contents.insert("summary", "ionization_probability", (1.0 - total).max(0.0));
-    contents.insert("summary", "initial_energy", electronvolts(atom.bound.energies[lowest]));
+    contents.insert(
+        "summary",
+        "initial_energy",
+        electronvolts(mean_energy(&point.job.problem.initial, &atom.bound.energies)),
+    );
     contents.insert("summary", "classical_cutoff", classical(point));
     contents.insert("summary", "final_norm", state.series.norm[state.step]);
     contents.insert("summary", "bound_population", total);
@@ -101,6 +101,17 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, sta
     contents.insert("summary", "initial_population", initial);
     contents.insert("summary", "status", status as i64);
     contents.insert("summary", "reason", doubts.join("\n"));
+}
+
+/// Energy of the initial state; of a superposition the mean.
+fn mean_energy(initial: &InitialState, energies: &[f64]) -> f64 {
+    match initial {
+        InitialState::Single(number) => energies[*number],
+        InitialState::Superposition(terms) => {
+            let total: f64 = terms.iter().map(|term| term.weight).sum();
+            terms.iter().map(|term| term.weight * energies[term.number]).sum::<f64>() / total
+        }
+    }
 }
 
 /// Ip + 3.17 Up with the vector potentials of all pulses added up, eV; NaN where nothing is bound or no pulse is there.

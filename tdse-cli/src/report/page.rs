@@ -34,6 +34,8 @@ pub struct Page<'a> {
     pub title: &'a str,
     /// The numbers one came for.
     pub headline: Vec<Quantity<'a>>,
+    /// What else a reader should know before the pictures.
+    pub notes: Vec<String>,
     /// Pictures in order.
     pub pictures: Vec<Picture<'a>>,
     /// What makes the numbers doubtful.
@@ -77,6 +79,9 @@ pub fn render(page: &Page<'_>) -> String {
     headline(&mut html, &page.headline);
     let _ = writeln!(html, "<p class=\"caution\" role=\"note\">{CAUTION}</p>");
     doubts(&mut html, &page.doubts);
+    for note in &page.notes {
+        let _ = writeln!(html, "<p>{}</p>", escape(note));
+    }
     pictures(&mut html, &page.pictures);
     provenance(&mut html, &page.provenance);
     html.push_str("</main>\n</body>\n</html>\n");

@@ -2,6 +2,7 @@
 
 use super::prepare::Job;
 use tdse_core::simulate::Schedule;
+use tdse_core::stationary::count_below;
 
 /// Nanoseconds per point, binary logarithm of the number of points, and step (two transform pairs and what goes with
 /// them), as measured on one core of a server processor; an estimate only, replaced by measured times as a scan goes.
@@ -23,16 +24,31 @@ pub struct Cost {
 /// Estimated cost of a point.
 pub fn cost(job: &Job) -> Cost {
     let numerics = &job.numerics;
-    let points = numerics.grid.len();
-    let steps = Schedule::new(&job.problem.field, numerics.time_step, numerics.trailing_time).steps;
-    let log = (points as f64).log2();
-    // ψ, scratch and factors, the bound states with their iteration, fields and series.
-    let states = job.states().max(8);
-    let bytes = points * (16 * 8 + 8 * 5 * states) + steps * (12 * 8 + 6 * 8);
-    Cost {
-        steps,
-        points,
-        seconds: steps as f64 * points as f64 * log * NANOSECONDS * 1e-9,
-        bytes: bytes as u64,
-    }
+    let grid = numerics.grid;
+    let schedule = Schedule::new(&job.problem.field, numerics.time_step, numerics.trailing_time);
+    let (points, steps) = (grid.len() as f64, schedule.steps as f64);
+    // ψ, scratch and factors; the bound states with their iteration; fields and series; the map.
+    let states = bound(job).max(8) as f64;
+    let per_point = 16.0 * 8.0 + 8.0 * 6.0 * states;
+    let bytes = points * per_point + steps * 18.0 * 8.0 + 16.0 * map(job, steps * schedule.time_step);
+    let seconds = steps * points * points.log2() * NANOSECONDS * 1e-9;
+    Cost { steps: schedule.steps, points: grid.len(), seconds, bytes: bytes as u64 }
+}
+
+/// Bound states of the run: every one below zero in its box, and as many as it names.
+fn bound(job: &Job) -> usize {
+    let potential = &job.problem.potential;
+    let half = 0.5 * job.numerics.grid.x.extent();
+    // A box that no machine holds needs no count.
+    let below = if potential.is_confining() || half > 1e6 { 0 } else { count_below(potential, 0.0, half) };
+    below.max(job.states())
+}
+
+/// Values of the time-frequency map.
+fn map(job: &Job, length: f64) -> f64 {
+    let Some(map) = &job.outputs.time_frequency else {
+        return 0.0;
+    };
+    let ratio = |whole: f64, step: Option<f64>| step.map_or(0.0, |step| whole / step + 1.0);
+    ratio(length, map.time_step) * ratio(map.max_energy.unwrap_or_default(), map.energy_step)
 }

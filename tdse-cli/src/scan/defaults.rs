@@ -15,6 +15,13 @@ const WINDOW: f64 = 0.12;
 /// Times of a map per optical period.
 const TIMES: f64 = 50.0;
 
+/// End of a default energy axis at the most, eV: within what the schema allows.
+const HIGHEST: f64 = 8e4;
+/// Finest default step of an energy axis, eV.
+const FINEST: f64 = 1e-3;
+/// Most orders, as the schema has it.
+const MOST_ORDERS: f64 = 1e5;
+
 /// What the defaults of one point are made from.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Scales {
@@ -42,12 +49,12 @@ pub fn fill(outputs: &Outputs, points: &[Scales]) -> Outputs {
     let smallest = |f: fn(&Scales) -> f64| points.iter().map(f).fold(f64::INFINITY, f64::min);
     let in_ev = |value: f64| value * HARTREE_EV;
     let max_energy = || {
-        let wanted = ladder::at_least(in_ev(BEYOND * largest(|p| p.cutoff)));
+        let wanted = ladder::at_least(in_ev(BEYOND * largest(|p| p.cutoff))).min(HIGHEST);
         Some(energy(wanted.min(ladder::at_most(in_ev(smallest(|p| p.resolved))))))
     };
     let energy_step = || {
         let width = 2.0 * std::f64::consts::PI / largest(|p| p.length);
-        Some(energy(ladder::at_most(in_ev(width / PER_WIDTH))))
+        Some(energy(ladder::at_most(in_ev(width / PER_WIDTH)).max(FINEST)))
     };
     let period = 2.0 * std::f64::consts::PI / largest(|p| p.photon);
     let harmonics = outputs.harmonics.map(|h| {
@@ -56,7 +63,7 @@ pub fn fill(outputs: &Outputs, points: &[Scales]) -> Outputs {
         Harmonics {
             max_energy,
             energy_step: h.energy_step.or_else(energy_step),
-            max_order: h.max_order.or(Some(orders.floor().max(1.0) as u32)),
+            max_order: h.max_order.or(Some(orders.floor().clamp(1.0, MOST_ORDERS) as u32)),
             ..h
         }
     });

@@ -5,7 +5,7 @@ use std::collections::HashMap;
 
 use tdse_core::choose::AtomFacts;
 use tdse_core::potential::Potential;
-use tdse_core::stationary::{Softenable, StationaryError, level, tune_softening};
+use tdse_core::stationary::{Softenable, StationaryError, tune_softening};
 
 use crate::config::request::{AtomPotential, AtomRequest};
 
@@ -14,7 +14,6 @@ use crate::config::request::{AtomPotential, AtomRequest};
 pub struct Facts {
     tuned: HashMap<String, Result<f64, StationaryError>>,
     atoms: HashMap<String, Result<AtomFacts, StationaryError>>,
-    bound: HashMap<String, Option<StationaryError>>,
 }
 
 impl Facts {
@@ -49,15 +48,5 @@ impl Facts {
     pub fn of(&mut self, potential: &Potential, atom: &AtomRequest) -> Result<AtomFacts, StationaryError> {
         let key = format!("{potential:?} {:?}", atom.initial);
         self.atoms.entry(key).or_insert_with(|| AtomFacts::new(potential, &atom.initial)).clone()
-    }
-
-    /// Whether the atom binds `states` states.
-    ///
-    /// # Errors
-    /// [`StationaryError::NoSuchState`] where it does not.
-    pub fn binds(&mut self, potential: &Potential, states: usize) -> Result<(), StationaryError> {
-        let key = format!("{potential:?} {states}");
-        let check = || level(potential, states.saturating_sub(1)).err();
-        self.bound.entry(key).or_insert_with(check).clone().map_or(Ok(()), Err)
     }
 }

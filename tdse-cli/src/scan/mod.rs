@@ -8,6 +8,7 @@ pub mod defaults;
 pub mod facts;
 pub mod gathering;
 pub mod ledger;
+pub mod limits;
 pub mod objections;
 pub mod points;
 pub mod prepare;

@@ -99,13 +99,10 @@ pub fn stationary(request: &Request, tree: &Value, error: &StationaryError) -> C
     }
 }
 
-/// More populations than states.
-pub fn populations(tree: &Value, error: &StationaryError) -> Option<Complaint> {
-    let StationaryError::NoSuchState { bound, .. } = error else {
-        return None;
-    };
+/// More populations than there are states.
+pub fn populations(tree: &Value, bound: usize) -> Complaint {
     let place = "/outputs/populations/states";
-    let reason = format!("asks for states that do not exist: this potential binds {bound}");
+    let reason = format!("asks for states that do not exist: this potential binds {bound} in its box");
     let complaint = Complaint::new(place, tree.pointer(place), reason);
-    Some(complaint.allowed(format!("1 to {bound}")).fix(Fix::Value(json!(bound))))
+    complaint.allowed(format!("1 to {bound}")).fix(Fix::Value(json!(bound)))
 }

@@ -6,11 +6,14 @@ use serde_json::Value;
 use tdse_core::choose::{AtomFacts, Choice, Wish, choose, strictest};
 use tdse_core::problem::{Numerics, Problem, Record};
 use tdse_core::simulate::Schedule;
+use tdse_core::stationary::count_below;
 
 use super::defaults::{self, Scales};
 use super::facts::Facts;
+use super::limits;
 use super::objections;
 use super::points::{self, Axis, ScanRequest};
+use super::run::machine;
 use super::source::Source;
 use crate::config::complaint::{Complaint, Complaints};
 use crate::config::request::{Outputs, Sharing};
@@ -119,7 +122,8 @@ pub fn prepare(source: &Source, sets: &[String]) -> Result<Prepared, Complaints>
     }
     let scales: Vec<Scales> = drafts.iter().map(scales).collect();
     let title = points.first().map(|point| point.request.title.clone()).unwrap_or_default();
-    let ready = drafts.into_iter().zip(doubts).map(|(draft, doubts)| finish(draft, doubts, &scales));
+    let free = machine::free_memory();
+    let ready = drafts.into_iter().zip(doubts).map(|(draft, doubts)| finish(draft, doubts, &scales, free));
     Ok(Prepared {
         title,
         input: source.text.clone(),
@@ -146,11 +150,6 @@ fn draft<'a>(point: &'a points::Point, facts: &mut Facts) -> Result<Draft<'a>, C
     let softening = facts.softening(&request.atom).map_err(complain)?;
     let potential = request.atom.potential.with_softening(softening.unwrap_or_default());
     let found = facts.of(&potential, &request.atom).map_err(complain)?;
-    if let Err(error) = facts.binds(&potential, request.record.populations.max(1)) {
-        return Err(objections::populations(&tree, &error)
-            .unwrap_or_else(|| objections::stationary(request, &tree, &error))
-            .into());
-    }
     let problem = Problem { potential, initial: request.atom.initial.clone(), field: request.field.clone() };
     let max_photon = request.outputs.harmonics.and_then(|h| h.max_energy);
     let wish = Wish {
@@ -161,6 +160,13 @@ fn draft<'a>(point: &'a points::Point, facts: &mut Facts) -> Result<Draft<'a>, C
         max_photon,
     };
     let choice = choose(&wish);
+    let (asked, half) = (request.record.populations, 0.5 * choice.numerics.grid.x.extent());
+    if asked > 1 && !problem.potential.is_confining() && half < 1e6 {
+        let bound = count_below(&problem.potential, 0.0, half);
+        if asked > bound {
+            return Err(objections::populations(&tree, bound).into());
+        }
+    }
     Ok(Draft { source: point, tree, softening, problem, facts: found, choice })
 }
 
@@ -189,7 +195,12 @@ fn scales(draft: &Draft) -> Scales {
 }
 
 /// Writes the resolved text and reads it again.
-fn finish(draft: Draft, doubts: Vec<String>, scales: &[Scales]) -> Result<Point, Complaints> {
+fn finish(
+    draft: Draft,
+    doubts: Vec<String>,
+    scales: &[Scales],
+    free: Option<u64>,
+) -> Result<Point, Complaints> {
     let request = &draft.source.request;
     let outputs = defaults::fill(&request.outputs, scales);
     let chosen = Chosen { softening: draft.softening, numerics: &draft.choice.numerics, outputs: &outputs };
@@ -197,6 +208,9 @@ fn finish(draft: Draft, doubts: Vec<String>, scales: &[Scales]) -> Result<Point,
     let stored = request.inputs.iter().map(|i| (i.name.clone(), i.contents.to_string())).collect();
     let read = config::request(&tree, &Library::new(Files::Stored(stored)))?;
     let job = job(&read, &draft.choice.numerics);
+    if let Some(complaint) = limits::objection(&job, &draft.tree, free) {
+        return Err(located(complaint, draft.source).into());
+    }
     Ok(Point {
         label: draft.source.label.clone(),
         identity: identity::identity(&tree, job.record, NUMERICS_VERSION),

@@ -125,6 +125,7 @@ fn time_step(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
 
 fn left_over_potential(wish: &Wish) -> Option<Finding> {
     let field = &wish.problem.field;
+    field.sampled.as_ref()?;
     let left = field.vector_potential(field.interval().1)[0].abs();
     let largest = super::rules::Strength::of(field).vector_potential;
     (left > LEFT_OVER * largest && left > 0.0).then(|| Finding {
@@ -134,7 +135,7 @@ fn left_over_potential(wish: &Wish) -> Option<Finding> {
             "the field leaves a vector potential of {left:.2e} a.u., {:.1e} of its largest: momenta at the end are kinetic",
             left / largest
         ),
-        allowed: "a field without net area".into(),
+        allowed: "a table whose field has no net area".into(),
         passes: 0.0,
     })
 }

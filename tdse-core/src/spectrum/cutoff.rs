@@ -6,6 +6,10 @@ const FEWEST: usize = 3;
 const PLATEAU: f64 = 0.5;
 /// Decades below the plateau's median down to which the fall is fitted: further down it steepens.
 const FALL: f64 = 3.0;
+/// Fewest orders of a plateau.
+const LENGTH: f64 = 4.0;
+/// Steepest slope of a plateau, decades per order.
+const LEVEL: f64 = -0.2;
 /// Decades per order by which the fall must be steeper than the plateau.
 const STEEPER: f64 = 0.1;
 
@@ -40,6 +44,7 @@ pub fn measured_cutoff(yields: &[f64]) -> Option<Cutoff> {
         .map(|knee| fit(&points, knee))
         .filter(|fit| fit.fall_slope < fit.plateau_slope - STEEPER)
         .min_by(|a, b| a.scatter.total_cmp(&b.scatter))
+        .filter(|fit| fit.plateau_slope > LEVEL && fit.order - points[0].0 >= LENGTH)
 }
 
 fn median(values: &[f64]) -> f64 {

@@ -92,8 +92,8 @@ impl Harmonics {
     }
 }
 
-/// a(ω) of a recorded acceleration, evaluated right on `axis` (trapezoidal rule in time, which for a windowed series is
-/// exact to all orders).
+/// a(ω) of a recorded acceleration, evaluated right on `axis` (trapezoidal rule in time, which converges fast
+/// for a series that a window brings to zero smoothly).
 ///
 /// # Panics
 /// If `acceleration` does not belong to `schedule`.

@@ -35,8 +35,8 @@ pub const TAPER: f64 = 2.0;
 
 /// Gabor map (Gabor, J. IEE 93, 429 (1946)) of a recorded acceleration over the whole run.
 ///
-/// The series is first brought to zero at both ends over [`TAPER`] window lengths: an acceleration that has not died
-/// down by the end would fake a burst there.
+/// The series is first brought to zero at both ends over [`TAPER`] window lengths, and the map keeps to what lies between:
+/// an acceleration that has not died down by the end would fake a burst there.
 ///
 /// # Panics
 /// If `acceleration` does not belong to `schedule`, or a length of `wanted` is not positive.
@@ -44,12 +44,14 @@ pub fn gabor(acceleration: &[f64], schedule: &Schedule, wanted: &TimeFrequency) 
     assert_eq!(acceleration.len(), schedule.steps + 1, "one sample per time");
     assert!(wanted.window_length > 0.0 && wanted.time_step > 0.0, "positive lengths");
     let (tau, last) = (schedule.time_step, schedule.steps);
+    let length = tau * last as f64;
     let sigma = wanted.window_length / (2.0 * LN_2.sqrt());
     // Beyond 6.5 σ the window is below 1e-9.
     let reach = ((6.5 * sigma / tau).ceil() as usize).clamp(1, last);
     let samples = (2 * reach + 1).min(last + 1);
-    let count = (last as f64 * tau / wanted.time_step + 1e-9).floor() as usize + 1;
-    let (length, taper) = (tau * last as f64, Window::Taper { length: TAPER * wanted.window_length });
+    let flank = TAPER * wanted.window_length;
+    let count = ((length - 2.0 * flank) / wanted.time_step + 1e-9).floor().max(0.0) as usize + 1;
+    let taper = Window::Taper { length: flank };
     let tapered: Vec<f64> = acceleration
         .iter()
         .enumerate()
@@ -58,7 +60,7 @@ pub fn gabor(acceleration: &[f64], schedule: &Schedule, wanted: &TimeFrequency) 
     let sum = FourierSum::new(samples, 0.0, tau, wanted.axis.points, wanted.axis.step);
     let mut map = GaborMap { times: Vec::with_capacity(count), axis: wanted.axis, intensity: Vec::new() };
     for i in 0..count {
-        let centre = i as f64 * wanted.time_step;
+        let centre = flank.min(0.5 * length) + i as f64 * wanted.time_step;
         let first = ((centre / tau).round() as usize).saturating_sub(reach).min(last + 1 - samples);
         let part: Vec<f64> = (first..first + samples)
             .map(|n| {

@@ -44,9 +44,11 @@ pub struct Pulse {
     pub envelope: Envelope,
     /// Carrier-envelope phase; 0 puts a crest of the field at the envelope's centre.
     #[serde(default = "zero_angle")]
+    #[schemars(example = "90 deg", extend("x-minimum" = "-36000 deg", "x-maximum" = "36000 deg"))]
     pub phase: Angle,
     /// Time of the envelope's centre.
     #[serde(default = "no_delay")]
+    #[schemars(example = "1.5 fs", extend("x-minimum" = "-10 ps", "x-maximum" = "10 ps"))]
     pub delay: Time,
     /// Linear chirp: the instantaneous frequency rises by this much per time; up for positive values.
     #[serde(default = "no_chirp")]

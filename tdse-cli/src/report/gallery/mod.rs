@@ -36,6 +36,7 @@ pub fn page(contents: &Contents, pictures: &[Drawn]) -> String {
     page::render(&Page {
         title,
         headline: headline(contents),
+        notes: notes(contents),
         pictures: shown.collect(),
         doubts: doubts(contents),
         provenance: vec![
@@ -47,6 +48,17 @@ pub fn page(contents: &Contents, pictures: &[Drawn]) -> String {
             ("ended", &provenance.end_time),
         ],
     })
+}
+
+/// What a scan's page leaves to the pages of its points.
+fn notes(contents: &Contents) -> Vec<String> {
+    let each = "`tdse report DIR --point N` draws one point with its field, spectrum and time-frequency map";
+    match contents.scan().len() {
+        0 => Vec::new(),
+        1 => vec![format!("{each}.")],
+        2 => vec![format!("Maps of every number of the summary; {each}.")],
+        n => vec![format!("A scan over {n} dimensions is not drawn as a whole; {each}.")],
+    }
 }
 
 /// Headline numbers of a single run; a scan has them as pictures.

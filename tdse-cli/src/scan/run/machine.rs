@@ -35,7 +35,7 @@ fn fit(jobs: usize, bytes: u64, free: u64) -> usize {
 }
 
 /// Free memory in bytes: of the machine, or of the control group where that is less; none where neither is known.
-fn free_memory() -> Option<u64> {
+pub fn free_memory() -> Option<u64> {
     let machine = fs::read_to_string("/proc/meminfo").ok().and_then(|text| available(&text));
     let number = |name: &str| fs::read_to_string(format!("/sys/fs/cgroup/{name}")).ok()?.trim().parse().ok();
     let limit = number("memory.max");

@@ -132,7 +132,7 @@ pub static GROUPS: &[Group] = &[
         auxiliary: &[],
         datasets: &[
             value("ionization_probability", NUMBER, &[], "Ionization probability"),
-            value("initial_energy", "eV", &[], "Energy of the initial state on the grid"),
+            value("initial_energy", "eV", &[], "Mean energy of the initial state on the grid"),
             value("cutoff_energy", "eV", &[], "Measured cutoff of the harmonic spectrum"),
             value(
                 "classical_cutoff",
