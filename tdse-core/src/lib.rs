@@ -8,6 +8,7 @@
 //! centre of a pulse without delay. Intensity is cycle-averaged at the envelope's peak, ½ ε₀ c E0², whatever the
 //! ellipticity. Fourier transforms in space are forward e^{-ikx}; spectra use a(ω) = ∫ a(t) w(t) e^{iωt} dt.
 //! The dipole acceleration is d²d/dt² = ⟨∇V⟩ + E(t) N(0), with the initial norm: what an absorber took is still driven.
+//! Scattering states have incoming-wave boundary condition and ∫ψ_k* ψ_k' dx = δ(k - k'), so that ∫|a(k)|² dk is a norm.
 //! Arrays over a grid are flat with shape `[ny, nx]`; vectors are `[f64; 2]`, the second component zero in 1D.
 //!
 //! A wrong call by a programmer panics with the broken inequality; wrong input is a `Result`.
@@ -19,6 +20,7 @@ pub mod cubic;
 pub mod elements;
 pub mod field;
 pub mod grid;
+pub mod outgoing;
 pub mod potential;
 pub mod problem;
 pub mod quantities;

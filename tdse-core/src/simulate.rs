@@ -6,9 +6,10 @@ use num_complex::Complex;
 
 use crate::field::Field;
 use crate::grid::Grid;
+use crate::outgoing::{Collector, CollectorScratch, Edges, Motion, Outgoing};
 use crate::potential::{Potential, PotentialOnGrid};
 use crate::problem::{InitialState, Numerics, Problem, Record};
-use crate::stationary::{BoundStates, StationaryError, bound_states_below};
+use crate::stationary::{BoundStates, ScatteringStates, StationaryError, bound_states_below};
 use crate::step::{Drive, Line, LineWorkspace, Moments};
 
 /// Most population samples kept of a run.
@@ -101,6 +102,7 @@ pub struct Plan {
     vector_potential: Vec<[f64; 2]>,
     populations: usize,
     stride: usize,
+    collector: Option<Collector>,
 }
 
 /// The field is too strong for the time step.
@@ -168,7 +170,27 @@ impl Plan {
             vector_potential,
             populations: record.populations,
             stride,
+            collector: None,
         })
+    }
+
+    /// The same plan, which collects what the absorber of `numerics` takes at `momenta`, 1/bohr, in both directions.
+    ///
+    /// # Panics
+    /// If `numerics` has no absorber, or `states` were not made for its grid.
+    #[must_use]
+    pub fn collecting(mut self, numerics: &Numerics, states: &ScatteringStates, momenta: Vec<f64>) -> Self {
+        let width = numerics.absorber.width();
+        assert!(width > 0.0, "only an absorber takes anything");
+        let edges = Edges { axis: self.grid.x, width, time_step: self.schedule.time_step };
+        let motion = Motion::samples(&self.drives, &self.vector_potential, self.schedule.time_step);
+        self.collector = Some(Collector::new(edges, states, momenta, motion));
+        self
+    }
+
+    /// What collects the absorbed amplitude, if anything does.
+    pub fn collector(&self) -> Option<&Collector> {
+        self.collector.as_ref()
     }
 
     /// Times of the run.
@@ -190,12 +212,21 @@ impl Plan {
     pub fn initial_state(&self) -> State {
         let mut psi = self.initial.clone();
         self.line.open(&mut psi, self.drives[0].field[0]);
-        State { psi, step: 0, series: Series::with_capacity(self.schedule.steps + 1, self.populations) }
+        State {
+            psi,
+            step: 0,
+            series: Series::with_capacity(self.schedule.steps + 1, self.populations),
+            outgoing: self.collector.as_ref().map(Collector::start),
+        }
     }
 
     /// Scratch for [`advance`].
     pub fn make_workspace(&self) -> Workspace {
-        Workspace { line: self.line.make_workspace(), psi: vec![Complex::default(); self.grid.len()] }
+        Workspace {
+            line: self.line.make_workspace(),
+            psi: vec![Complex::default(); self.grid.len()],
+            outgoing: self.collector.as_ref().map(Collector::make_scratch).unwrap_or_default(),
+        }
     }
 
     /// ψ of the state in length gauge, free of the splitting's open form, into `out`.
@@ -243,6 +274,8 @@ pub struct State {
     pub step: usize,
     /// What was recorded so far.
     pub series: Series,
+    /// Absorbed amplitude collected so far, where the plan collects it.
+    pub outgoing: Option<Outgoing>,
 }
 
 /// Recorded samples: entry n belongs to time n of the [`Schedule`].
@@ -291,6 +324,7 @@ impl Series {
 pub struct Workspace {
     line: LineWorkspace,
     psi: Vec<Complex<f64>>,
+    outgoing: CollectorScratch,
 }
 
 /// Advances by at most `steps` steps, and takes the last sample when the run is over.
@@ -300,6 +334,7 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
     let end = plan.schedule.steps.min(state.step + steps);
     while state.step < end {
         record_populations(plan, state, work);
+        collect_outgoing(plan, state, work);
         let drive = &plan.drives[state.step];
         let moments = plan.line.step(&mut state.psi, drive, &mut work.line);
         state.series.push(moments);
@@ -307,6 +342,7 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
     }
     if state.step == plan.schedule.steps && state.series.norm.len() == state.step {
         record_populations(plan, state, work);
+        collect_outgoing(plan, state, work);
         state.series.push(plan.line.moments_of(&state.psi, &mut work.line));
     }
 }
@@ -322,6 +358,15 @@ fn record_populations(plan: &Plan, state: &mut State, work: &mut Workspace) {
     for bound in &plan.atom.bound.states[..plan.populations] {
         state.series.populations.push(population(bound, &work.psi, plan.grid.cell()));
     }
+}
+
+fn collect_outgoing(plan: &Plan, state: &mut State, work: &mut Workspace) {
+    let Some(collector) = plan.collector.as_ref().filter(|c| c.is_due(state.step)) else {
+        return;
+    };
+    plan.wave_function(state, &mut work.psi);
+    let outgoing = state.outgoing.as_mut().expect("a state of a plan that collects");
+    collector.collect(outgoing, &work.psi, state.step, &mut work.outgoing);
 }
 
 /// How a run is doing.

@@ -1,13 +1,19 @@
-//! Stationary states: grid-free levels of a model atom, the softening that gives a level, and bound states on a grid.
+//! Stationary states: grid-free levels of a model atom, the softening that gives a level, and bound states on a grid,
+//! scattering states and what one photon does between the two.
 
 mod bound;
 mod level;
 mod magnus;
+mod one_photon;
 mod root;
+mod scattering;
+mod tail;
 mod tune;
 
 pub use bound::{BoundStates, bound_states, bound_states_below};
 pub use level::{Level, count_below, level};
+pub use one_photon::{TransitionDipole, transition_dipole};
+pub use scattering::{NoContinuum, Scattering, ScatteringStates, Side};
 pub use tune::{Softenable, tune_softening};
 
 /// Why a stationary state could not be had.

@@ -7,29 +7,35 @@ const GAUSS: f64 = 0.288_675_134_594_812_9;
 
 /// One interval, walked in either direction: its length, the mean of V over its two Gauss points, and the difference of V between them.
 #[derive(Clone, Copy, Debug)]
-struct Interval {
+pub(crate) struct Interval {
     length: f64,
     mean: f64,
     difference: f64,
 }
 
 impl Interval {
-    fn new(potential: &Potential, from: f64, to: f64) -> Self {
+    pub(crate) fn new(potential: &Potential, from: f64, to: f64) -> Self {
         let (middle, offset) = (0.5 * (from + to), GAUSS * (to - from));
         let first = potential.value(middle - offset);
         let second = potential.value(middle + offset);
         Self { length: (to - from).abs(), mean: 0.5 * (first + second), difference: second - first }
     }
 
-    /// Carries (ψ, ψ') across at energy `energy`: exp of the fourth-order Magnus operator
+    /// Matrix that carries (ψ, ψ') across at energy `energy`: exp of the fourth-order Magnus operator
     /// (Iserles, Nørsett, Phil. Trans. R. Soc. A 357, 983 (1999), eq. 4.6, for this 2×2 system).
-    fn step(&self, [value, slope]: [f64; 2], energy: f64) -> [f64; 2] {
+    #[inline]
+    pub(crate) fn transfer(&self, energy: f64) -> [[f64; 2]; 2] {
         let h = self.length;
         let f = 2.0 * (self.mean - energy);
         let tilt = GAUSS * h * h * self.difference;
         let square = tilt * tilt + h * h * f;
         let (c, s) = cosh_and_sinc(square);
-        [(c - s * tilt) * value + s * h * slope, s * h * f * value + (c + s * tilt) * slope]
+        [[c - s * tilt, s * h], [s * h * f, c + s * tilt]]
+    }
+
+    fn step(&self, [value, slope]: [f64; 2], energy: f64) -> [f64; 2] {
+        let [[a, b], [c, d]] = self.transfer(energy);
+        [a * value + b * slope, c * value + d * slope]
     }
 }
 
