@@ -81,3 +81,12 @@ fn a_scan_over_what_is_derived_propagates_once() {
         assert_same_bits(&place.point("out", index), &place.point(window, 0));
     }
 }
+
+#[test]
+#[ignore = "compares the two results that TDSE_ONE and TDSE_OTHER name; for scripts"]
+fn two_results() {
+    let path = |name| {
+        std::path::PathBuf::from(std::env::var_os(name).unwrap_or_else(|| panic!("{name} is not set")))
+    };
+    assert_same_bits(&path("TDSE_ONE"), &path("TDSE_OTHER"));
+}

@@ -123,6 +123,11 @@ mod tests {
             (&["tdse", "run", "a.json", "--out", "o", "--jobs", "many"], ["'many'", "--jobs", "at least 1"]),
             (&["tdse", "run", "a.json", "--out", "o", "--shard", "3/2"], ["'3/2'", "--shard", "1 <= K <= N"]),
             (&["tdse", "run", "a.json", "--out", "o", "--shard", "0/2"], ["'0/2'", "--shard", "1 <= K <= N"]),
+            (&["tdse", "run", "a.json", "--out", "o", "--within", "2"], ["'2'", "--within", "\"2 h\""]),
+            (
+                &["tdse", "run", "a.json", "--out", "o", "--within", "-1 h"],
+                ["'-1 h'", "--within", "positive"],
+            ),
             (&["tdse", "run", "a.json"], ["required", "--out", "--help"]),
             (&["tdse", "runn", "a.json"], ["'runn'", "run", "--help"]),
         ] {

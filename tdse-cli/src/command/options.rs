@@ -2,10 +2,12 @@
 
 use std::num::NonZeroUsize;
 use std::path::PathBuf;
+use std::time::Duration;
 
 use clap::Args;
 
 use super::exit::Trouble;
+use crate::config::quantity;
 use crate::scan::prepare::{Prepared, prepare};
 use crate::scan::run::Shard;
 use crate::scan::source::source;
@@ -55,6 +57,9 @@ pub struct RunOptions {
     /// Take only every N-th point, beginning with the K-th
     #[arg(long, value_name = "K/N", value_parser = shard)]
     pub shard: Option<Shard>,
+    /// Stop before this much time has passed, with checkpoints, as in --within "2 h" (units: s, min, h, d)
+    #[arg(long, value_name = "TIME", value_parser = time, allow_hyphen_values = true)]
+    pub within: Option<Duration>,
     /// Compute failed points again
     #[arg(long)]
     pub retry: bool,
@@ -70,4 +75,22 @@ fn jobs(text: &str) -> Result<NonZeroUsize, String> {
 fn shard(text: &str) -> Result<Shard, String> {
     let parts = text.split_once('/').and_then(|(k, n)| Some((k.parse().ok()?, n.parse().ok()?)));
     parts.and_then(|(k, n)| Shard::new(k, n)).ok_or_else(|| "allowed: K/N with 1 <= K <= N".into())
+}
+
+/// A number, a space and a unit of time.
+fn time(text: &str) -> Result<Duration, String> {
+    let parsed = text.trim().split_once(' ').and_then(|(number, unit)| {
+        let seconds = match unit.trim_start() {
+            "s" => 1.0,
+            "min" => 60.0,
+            "h" => 3600.0,
+            "d" => 86_400.0,
+            _ => return None,
+        };
+        Some(quantity::number(number)? * seconds)
+    });
+    let duration = parsed.filter(|seconds| *seconds > 0.0).map(Duration::try_from_secs_f64);
+    duration
+        .and_then(Result::ok)
+        .ok_or_else(|| "allowed: a positive number, a space, and s, min, h or d; try \"2 h\"".into())
 }

@@ -2,7 +2,7 @@
 
 use std::env;
 use std::io::{IsTerminal, stderr};
-use std::time::Instant;
+use std::time::{Duration, Instant};
 
 use super::exit::{Exit, Trouble};
 use super::headline::headline;
@@ -28,12 +28,19 @@ struct Work<'a> {
     start_time: String,
 }
 
+/// Of the time given by `--within`, what is left to write checkpoints and end: a tenth, at most this much. Points stop
+/// within 50 ms, and what waits for the disk is one result and one checkpoint per point at once.
+const MARGIN: Duration = Duration::from_secs(20);
+
 /// Runs, or continues.
 ///
 /// # Errors
 /// Refused where the configuration or the folder is; incomplete where the machine does not let it finish.
 pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
-    let mut work = Work::begin(options)?;
+    let deadline = options
+        .within
+        .and_then(|within| Instant::now().checked_add(within.saturating_sub(MARGIN.min(within / 10))));
+    let mut work = Work::begin(options, deadline)?;
     let before = work.ledger.standings();
     work.ledger.write(&work.request, &before).map_err(Trouble::refused)?;
     work.compute(&before)?;
@@ -53,7 +60,7 @@ pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
 
 impl<'a> Work<'a> {
     /// Judges everything, then takes the folder.
-    fn begin(options: &'a RunOptions) -> Result<Self, Trouble> {
+    fn begin(options: &'a RunOptions, deadline: Option<Instant>) -> Result<Self, Trouble> {
         let start_time = run::now();
         let prepared = options.asked.prepare()?;
         let request = asked::request(&prepared).map_err(Trouble::refused)?;
@@ -63,9 +70,13 @@ impl<'a> Work<'a> {
         let wish = if options.quiet { Wish::Quiet } else { Wish::Talk };
         let voice = voice(audience, env::var("TERM").ok().as_deref(), wish);
         let reporter = Reporter::new(voice, &folder.log()).map_err(Trouble::refused)?;
-        let stop = Stop::on_signals().map_err(Trouble::refused)?;
+        let stop = Stop::on_signals().map_err(Trouble::refused)?.at(deadline);
         let ledger = Ledger::new(folder, &prepared);
         let work = Self { options, prepared, request, ledger, reporter, stop, start_time };
+        match work.ledger.folder.sweep() {
+            0 => {}
+            count => work.note(format!("removed {count} unfinished files of processes that are gone")),
+        }
         if let Claim::Changed { parts, kept } = claim {
             let parts = if parts.is_empty() { "version".into() } else { parts.join(" and ") };
             let kept = kept.file_name().unwrap_or_default().to_string_lossy();
@@ -110,6 +121,8 @@ impl<'a> Work<'a> {
             match standing {
                 Standing::Done | Standing::Doubtful(_) => {
                     kept += 1;
+                    // Another process on the folder, or one that was killed, may have left it; it does no harm.
+                    let _ = self.ledger.folder.forget_checkpoint(&self.ledger.rows[index].identity);
                     self.reporter.tell(&Event::Kept { point: name(&self.prepared, index) });
                 }
                 Standing::Failed(_) => failed += 1,
@@ -141,8 +154,9 @@ impl<'a> Work<'a> {
         self.remark_on_doubts(standings);
         let all = standings.len();
         let missing = standings.iter().filter(|standing| !standing.is_final()).count();
-        if self.stop.is_due() {
-            self.note(format!("{missing} of {all} points are missing; continue with the same command"));
+        if missing > 0 && self.stop.is_due() {
+            let why = if self.stop.is_late() { "time is over (--within): " } else { "" };
+            self.note(format!("{why}{missing} of {all} points are missing; continue with the same command"));
             return Ok(Exit::Incomplete);
         }
         if self.options.shard.is_some() && missing > 0 {
@@ -150,6 +164,7 @@ impl<'a> Work<'a> {
             return Ok(exit);
         }
         let start = Instant::now();
+        self.reporter.tell(&Event::Gathering);
         gather_all(&self.ledger, &self.request, standings, &self.start_time).map_err(Trouble::incomplete)?;
         let path = self.ledger.folder.result();
         let seconds = start.elapsed().as_secs_f64();

@@ -43,6 +43,34 @@ pub enum Event {
         #[serde(flatten)]
         point: PointName,
     },
+    /// Computing the point begins.
+    Started {
+        /// Which.
+        #[serde(flatten)]
+        point: PointName,
+    },
+    /// The point goes on from its checkpoint.
+    Continued {
+        /// Which.
+        #[serde(flatten)]
+        point: PointName,
+        /// Steps done before.
+        step: usize,
+    },
+    /// The point's state is on disk.
+    Checkpointed {
+        /// Which.
+        #[serde(flatten)]
+        point: PointName,
+        /// Steps done.
+        step: usize,
+    },
+    /// A file of the point is being written.
+    Writing {
+        /// Which.
+        #[serde(flatten)]
+        point: PointName,
+    },
     /// A point has come to some step; not logged.
     Advanced {
         /// Steps done.
@@ -82,6 +110,8 @@ pub enum Event {
         /// What and why.
         reason: String,
     },
+    /// Everything that exists is being gathered.
+    Gathering,
     /// Everything that exists was gathered.
     Gathered {
         /// Where.

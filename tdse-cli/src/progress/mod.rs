@@ -131,7 +131,12 @@ impl Reporter {
                 self.finished(&mut state, point, &format!("failed: {reason}"));
             }
             Event::Refused { point, reason } => self.error(&format!("{}{reason}", named(point))),
-            Event::Gathered { .. } => {}
+            Event::Started { .. }
+            | Event::Continued { .. }
+            | Event::Checkpointed { .. }
+            | Event::Writing { .. }
+            | Event::Gathering
+            | Event::Gathered { .. } => {}
             Event::Ended { .. } => self.bar.finish_and_clear(),
         }
     }

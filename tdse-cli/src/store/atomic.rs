@@ -1,19 +1,20 @@
 //! Files that appear whole or not at all.
 
-use std::ffi::OsString;
+use std::env;
 use std::fs;
-use std::path::{Path, PathBuf};
-use std::{env, process};
+use std::path::Path;
 
 use super::error::Error;
 use super::hdf5::{File, Node};
+use super::partial;
+use super::pause::{Place, pause};
 
 /// Makes an HDF5 file at `path`, filled by `fill`.
 ///
 /// It is written beside under another name, closed, forced to the disk and renamed, and the folder forced to the
 /// disk. If anything fails, the unfinished file is removed.
 pub(super) fn create(path: &Path, fill: impl FnOnce(&Node) -> Result<(), Error>) -> Result<(), Error> {
-    let partial = partial(path);
+    let partial = partial::beside(path);
     let made = compose(&partial, path, fill).and_then(|()| publish(&partial, path));
     if made.is_err() {
         // The first error is the one to report; a file that is left behind does no harm.
@@ -24,7 +25,7 @@ pub(super) fn create(path: &Path, fill: impl FnOnce(&Node) -> Result<(), Error>)
 
 /// Makes a file of these bytes at `path`, in the same way.
 pub(super) fn write(path: &Path, bytes: &[u8]) -> Result<(), Error> {
-    let partial = partial(path);
+    let partial = partial::beside(path);
     let made = fs::write(&partial, bytes)
         .map_err(Error::io("write", &partial))
         .and_then(|()| publish(&partial, path));
@@ -34,16 +35,10 @@ pub(super) fn write(path: &Path, bytes: &[u8]) -> Result<(), Error> {
     made
 }
 
-/// Whether this is the name of a file that is not finished.
-pub(super) fn is_partial(name: &str) -> bool {
-    Path::new(name).extension().is_some_and(|extension| extension == "partial")
-}
-
-/// `NAME.HOST-PID.partial` in the same folder, so that no two processes share it and renaming stays on one disk.
-fn partial(path: &Path) -> PathBuf {
-    let mut name = path.file_name().map_or_else(OsString::new, OsString::from);
-    name.push(format!(".{}-{}.partial", host_name(), process::id()));
-    path.with_file_name(name)
+/// Makes the folder that a file lies in.
+pub(super) fn make_parent(path: &Path) -> Result<(), Error> {
+    let parent = path.parent().unwrap_or(Path::new(""));
+    fs::create_dir_all(parent).map_err(Error::io("make the folder", parent))
 }
 
 fn compose(partial: &Path, path: &Path, fill: impl FnOnce(&Node) -> Result<(), Error>) -> Result<(), Error> {
@@ -52,6 +47,7 @@ fn compose(partial: &Path, path: &Path, fill: impl FnOnce(&Node) -> Result<(), E
     let file = File::create(partial).map_err(Error::write(path))?;
     let root = file.root().map_err(Error::write(path))?;
     fill(&root)?;
+    pause(Place::Write);
     drop(root);
     file.close().map_err(Error::write(path))
 }

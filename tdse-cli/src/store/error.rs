@@ -49,6 +49,17 @@ pub enum Error {
         /// The highest version this program reads.
         known: i64,
     },
+    /// A checkpoint that something else wrote.
+    OtherOrigin {
+        /// The file.
+        path: PathBuf,
+        /// What differs.
+        what: &'static str,
+        /// That of the file.
+        found: String,
+        /// That of this process.
+        here: String,
+    },
     /// A folder holds the results of another request.
     OtherRequest {
         /// The folder.
@@ -105,6 +116,9 @@ impl fmt::Display for Error {
                  this one reads up to {known}",
                 path.display()
             ),
+            Self::OtherOrigin { path, what, found, here } => {
+                write!(f, "{} cannot be continued: it is of the {what} {found}, not {here}", path.display())
+            }
             Self::OtherRequest { path, differences } => {
                 write!(f, "{} holds the results of another request", path.display())?;
                 differences.iter().try_for_each(|difference| write!(f, "\n{difference}"))?;

@@ -5,6 +5,7 @@ use std::path::{Path, PathBuf};
 use super::axes::{self, ScanDimension};
 use super::contents::Contents;
 use super::error::Error;
+use super::pause::{Place, pause};
 use super::provenance::Provenance;
 use super::read::{read, read_where};
 use super::stack::Stack;
@@ -60,6 +61,7 @@ pub fn gather(path: &Path, gathering: Gathering) -> Result<(), Error> {
         let entry = entry::begin(root, provenance, scan).map_err(Error::write(path))?;
         let mut stack = Stack::new(path, &entry, scan);
         for (number, point) in points.iter().enumerate() {
+            pause(Place::Gather);
             let index = index(number, scan);
             match point {
                 Point::File(file) => {

@@ -4,6 +4,7 @@
 //! * [`Contents`] is a result in memory, checked against the table as it is filled.
 //! * [`write()`] puts one on disk whole or not at all; [`read()`] gets it back exactly.
 //! * [`gather()`] stacks the files of a scan's points into one, scan axes first.
+//! * [`checkpoint`] keeps a run that is not finished.
 //! * [`Folder`] is where all of a request's files lie; [`differences()`] compares two results.
 //!
 //! All numbers are in the units of the table, which are those of the file. Only the module `hdf5` calls the
@@ -11,6 +12,7 @@
 
 mod atomic;
 mod axes;
+pub mod checkpoint;
 mod compare;
 mod contents;
 mod entry;
@@ -19,6 +21,8 @@ mod folder;
 mod gather;
 mod group;
 mod hdf5;
+mod partial;
+mod pause;
 mod provenance;
 mod read;
 mod stack;

@@ -13,8 +13,9 @@ const RESIDUAL: f64 = 1e-11;
 /// Residual that is still accepted where rounding on a fine grid, or a level close to the threshold, allows no better:
 /// the energy is then good to 1e-10 hartree for level distances down to 1e-6 hartree.
 const ACCEPTED: f64 = 1e-8;
-/// Residual that is enough for states only counted in the bound population.
-const LOOSE: f64 = 1e-6;
+/// Rounds for states that are only counted in the bound population: they start from the shooting solution, and mixing
+/// among themselves leaves their sum as it is.
+const ROUNDS: usize = 4;
 /// Most iterations.
 const ITERATIONS: usize = 400;
 
@@ -40,7 +41,7 @@ pub fn bound_states(
 }
 
 /// Every state of `potential` on the grid with an energy below zero, among them those the box squeezes, and the `at_least`
-/// lowest in any case. States beyond those are converged to what their populations need.
+/// lowest in any case. States beyond those are good to what the sum of their populations needs.
 ///
 /// # Errors
 /// As [`bound_states`].
@@ -110,42 +111,50 @@ impl Hamiltonian {
     }
 }
 
-/// Locally optimal block preconditioned conjugate gradients (Knyazev, SIAM J. Sci. Comput. 23, 517 (2001),
-/// algorithm 5.1), the basis orthonormalised in every round.
+/// The first `exact` states converged, the rest improved in a few rounds together with them.
 fn lowest(h: &Hamiltonian, guesses: Vec<Vec<f64>>, exact: usize) -> Result<BoundStates, StationaryError> {
-    let count = guesses.len();
-    let not_converged = |reached| StationaryError::NotConverged {
-        what: "the bound states on the grid",
-        reached,
-        wanted: RESIDUAL,
-        unit: "hartree",
-    };
-    let mut x: Vec<DVector<f64>> = guesses.into_iter().map(DVector::from_vec).collect();
-    orthonormalise(&mut x, 0);
-    if x.len() < count {
-        return Err(not_converged(f64::NAN));
+    let guesses: Vec<DVector<f64>> = guesses.into_iter().map(DVector::from_vec).collect();
+    let (mut states, energies, worst) = improved(h, guesses[..exact].to_vec(), ITERATIONS);
+    if worst > ACCEPTED || worst.is_nan() || states.len() < exact {
+        return Err(StationaryError::NotConverged {
+            what: "the bound states on the grid",
+            reached: worst,
+            wanted: RESIDUAL,
+            unit: "hartree",
+        });
     }
+    let mut found = BoundStates { energies, states: states.iter().map(|v| finished(v, h.cell)).collect() };
+    if guesses.len() > exact {
+        states.extend_from_slice(&guesses[exact..]);
+        let (all, energies, _) = improved(h, states, ROUNDS);
+        found.energies.extend(energies.iter().skip(exact));
+        found.states.extend(all.iter().skip(exact).map(|v| finished(v, h.cell)));
+    }
+    Ok(found)
+}
+
+/// Locally optimal block preconditioned conjugate gradients (Knyazev, SIAM J. Sci. Comput. 23, 517 (2001),
+/// algorithm 5.1), the basis orthonormalised in every round: states, energies, and the largest residual.
+fn improved(h: &Hamiltonian, mut x: Vec<DVector<f64>>, rounds: usize) -> (Vec<DVector<f64>>, Vec<f64>, f64) {
+    orthonormalise(&mut x, 0);
+    let count = x.len();
     let mut directions: Vec<DVector<f64>> = Vec::new();
-    let (mut energies, mut worst, mut best) = (vec![0.0; count], f64::INFINITY, f64::INFINITY);
-    let (mut loose, mut stalled) = (0.0, 0);
-    for _ in 0..ITERATIONS {
+    let (mut energies, mut worst, mut best) = (vec![0.0; count], 0.0, f64::INFINITY);
+    let mut stalled = 0;
+    for _ in 0..rounds {
         let mut basis = x.clone();
         let mut images: Vec<DVector<f64>> = x.iter().map(|v| h.apply(v)).collect();
-        (worst, loose) = (0.0, 0.0);
+        worst = 0.0;
         for i in 0..count {
             energies[i] = x[i].dot(&images[i]);
             let residual = &images[i] - energies[i] * &x[i];
-            let size = if i < exact { &mut worst } else { &mut loose };
-            *size = f64::max(*size, residual.norm());
+            worst = f64::max(worst, residual.norm());
             let shift = energies[i].abs().max(0.05);
             basis.push(h.in_momentum(&residual, |t| 1.0 / (t + shift)));
         }
-        if worst < RESIDUAL && loose < LOOSE {
-            break;
-        }
         stalled = if worst < 0.7 * best { 0 } else { stalled + 1 };
         best = best.min(worst);
-        if best < ACCEPTED && loose < LOOSE && stalled > 12 {
+        if worst < RESIDUAL || (best < ACCEPTED && stalled > 12) {
             break;
         }
         basis.append(&mut directions);
@@ -153,10 +162,7 @@ fn lowest(h: &Hamiltonian, guesses: Vec<Vec<f64>>, exact: usize) -> Result<Bound
         images.extend(basis[count..].iter().map(|v| h.apply(v)));
         (x, directions) = ritz(&basis, &images, count);
     }
-    if worst > ACCEPTED || loose > LOOSE || worst.is_nan() || loose.is_nan() {
-        return Err(not_converged(worst.max(loose)));
-    }
-    Ok(BoundStates { energies, states: x.iter().map(|v| finished(v, h.cell)).collect() })
+    (x, energies, worst)
 }
 
 /// The `count` lowest Ritz vectors of the basis, and their parts outside the first `count` basis vectors.

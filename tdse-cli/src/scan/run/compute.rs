@@ -4,6 +4,7 @@ use std::time::{Duration, Instant};
 
 use tdse_core::simulate::{Failure, Plan, State, advance, health};
 
+use super::keeper::Keeper;
 use super::stop::Stop;
 use super::tasks::Task;
 use super::{Shared, machine};
@@ -42,7 +43,7 @@ pub fn compute(shared: &Shared, task: &Task) -> Result<Outcome, String> {
     let recorded = task.recorded.as_deref().and_then(|path| store::read(path).ok());
     let (how, recorded) = match recorded {
         Some(recorded) => (How::Derived, recorded),
-        None => match propagated(shared, points[0])? {
+        None => match propagated(shared, task.points[0])? {
             Some(recorded) => (How::Propagated, recorded),
             None => return Ok(Outcome::Stopped),
         },
@@ -57,8 +58,9 @@ pub fn compute(shared: &Shared, task: &Task) -> Result<Outcome, String> {
     Ok(Outcome::Whole(how, derived.collect()))
 }
 
-fn propagated(shared: &Shared, point: &Point) -> Result<Option<Contents>, String> {
+fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String> {
     let start = now();
+    let point = &shared.prepared.points[index];
     let job = &point.job;
     let atom = shared.atoms.get(job).map_err(|error| error.to_string())?;
     let plan = Plan::new(&job.problem, atom.clone(), &job.numerics, job.record);
@@ -68,31 +70,35 @@ fn propagated(shared: &Shared, point: &Point) -> Result<Option<Contents>, String
             shared.reporter.tell(&Event::Advanced { step });
         }
     };
-    let state =
-        propagate(&plan, plan.initial_state(), shared.stop, watch).map_err(|error| error.to_string())?;
+    let state = propagate(&plan, &mut Keeper::new(shared, index), shared.stop, watch)
+        .map_err(|error| error.to_string())?;
     let times = (start, now());
     Ok(state.map(|state| derive::record(point, &atom, &plan, &state, provenance(shared, point, times))))
 }
 
-/// Carries a state to the end of its plan; none where it was stopped.
+/// Carries a point to the end of its plan; none where it was stopped, and kept.
 fn propagate(
     plan: &Plan,
-    mut state: State,
+    keeper: &mut Keeper,
     stop: &Stop,
     watch: impl Fn(usize),
 ) -> Result<Option<State>, Failure> {
     let steps = plan.schedule().steps;
+    let mut state = keeper.start(plan);
     let mut work = plan.make_workspace();
     let mut chunk = 16;
     while state.series.norm.len() <= steps {
         if stop.is_due() {
+            keeper.keep(&state);
             return Ok(None);
         }
         let start = Instant::now();
-        advance(plan, &mut state, &mut work, chunk);
+        let now = keeper.limited(&state, chunk);
+        advance(plan, &mut state, &mut work, now);
         health(&state)?;
-        chunk = next_chunk(chunk, start.elapsed());
+        chunk = next_chunk(now, start.elapsed());
         watch(state.step);
+        keeper.keep_in_time(&state);
     }
     Ok(Some(state))
 }

@@ -2,6 +2,7 @@
 
 mod caught;
 mod compute;
+mod keeper;
 pub mod machine;
 mod shard;
 mod stop;
@@ -90,6 +91,7 @@ fn work<'a>(shared: &Shared, task: &'a Task, sender: &SyncSender<Parcel<'a>>) {
         return;
     }
     let start = Instant::now();
+    shared.reporter.tell(&Event::Started { point: shared.name(task.points[0]) });
     let computed = caught(|| compute(shared, task)).unwrap_or_else(Err);
     let result = match computed {
         Ok(Outcome::Stopped) => return,

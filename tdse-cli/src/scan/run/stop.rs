@@ -1,7 +1,8 @@
-//! Signals: the first asks to stop, the second stops at once.
+//! When to stop: at a signal (the second stops at once), at a time, or where nothing more can be written.
 
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, AtomicUsize, Ordering};
+use std::time::Instant;
 use std::{fs, io};
 
 use signal_hook::consts::{SIGHUP, SIGINT, SIGTERM};
@@ -51,6 +52,8 @@ pub struct Stop {
     came: Arc<AtomicUsize>,
     /// Set where nothing more can be written.
     hopeless: AtomicBool,
+    /// Time is over then.
+    deadline: Option<Instant>,
 }
 
 impl Stop {
@@ -75,6 +78,17 @@ impl Stop {
         Signal::ALL.into_iter().find(|signal| signal.number() as usize == came)
     }
 
+    /// The same, and at a time.
+    #[must_use]
+    pub fn at(self, deadline: Option<Instant>) -> Self {
+        Self { deadline, ..self }
+    }
+
+    /// Whether time is over.
+    pub fn is_late(&self) -> bool {
+        self.deadline.is_some_and(|deadline| Instant::now() >= deadline)
+    }
+
     /// Says that to go on is of no use.
     pub fn give_up(&self) {
         self.hopeless.store(true, Ordering::Relaxed);
@@ -82,7 +96,7 @@ impl Stop {
 
     /// Whether to stop, for whatever reason.
     pub fn is_due(&self) -> bool {
-        self.came.load(Ordering::Relaxed) != 0 || self.hopeless.load(Ordering::Relaxed)
+        self.came.load(Ordering::Relaxed) != 0 || self.hopeless.load(Ordering::Relaxed) || self.is_late()
     }
 }
 

@@ -1,12 +1,16 @@
-//! What is to be done: one task per identity, the dearest first.
+//! What is to be done: one task per identity, dear ones first.
 
+use std::cmp::Reverse;
 use std::collections::{BTreeMap, HashSet};
+use std::hash::{DefaultHasher, Hash, Hasher};
 use std::path::PathBuf;
+use std::process;
 
 use super::shard::Shard;
 use crate::scan::cost::{Cost, cost};
 use crate::scan::ledger::{Ledger, Standing};
 use crate::scan::prepare::Prepared;
+use crate::store::host_name;
 
 /// What to do with points that failed before.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -60,7 +64,22 @@ pub fn tasks(
         let recorded = group.iter().find(has_series).map(|index| ledger.path(*index));
         tasks.push(Task { points, recorded, cost: cost(&prepared.points[first].job) });
     }
-    // Points of equal cost in the order of the scan.
-    tasks.sort_by(|a, b| b.cost.seconds.total_cmp(&a.cost.seconds).then(a.points.cmp(&b.points)));
+    // Dear points first, so that none runs alone at the end; among those of about equal cost each process goes its own
+    // way, so that two on one folder seldom compute the same.
+    tasks.sort_by_cached_key(|task| {
+        (Reverse(class(task.cost.seconds)), way(&ledger.rows[task.points[0]].identity))
+    });
     tasks
+}
+
+/// Costs within a factor of two.
+fn class(seconds: f64) -> i32 {
+    seconds.max(1e-9).log2().floor() as i32
+}
+
+/// A number that differs between processes and points.
+fn way(identity: &str) -> u64 {
+    let mut hasher = DefaultHasher::new();
+    (host_name(), process::id(), identity).hash(&mut hasher);
+    hasher.finish()
 }

@@ -38,10 +38,12 @@ fn write(shared: &Shared, parcel: &Parcel, how: How, results: &[Contents]) -> Re
     let mut seconds = parcel.seconds;
     for (&index, contents) in parcel.task.points.iter().zip(results) {
         let path = shared.ledger.path(index);
+        let point = shared.name(index);
+        shared.reporter.tell(&Event::Writing { point: point.clone() });
         shared.ledger.folder.make_room(&path)?;
         store::write(&path, contents)?;
         shared.ledger.folder.forget_failure(&shared.ledger.rows[index].identity)?;
-        let point = shared.name(index);
+        shared.ledger.folder.forget_checkpoint(&shared.ledger.rows[index].identity)?;
         // Further files of a propagation are derived from it.
         shared.reporter.tell(&if how == How::Propagated && index == parcel.task.points[0] {
             Event::Propagated { point, seconds, estimate: parcel.task.cost.seconds }
@@ -64,6 +66,7 @@ fn keep_failure(shared: &Shared, parcel: &Parcel, reason: &str) -> Result<(), st
         configuration: serde_json::from_str(&point.configuration).unwrap_or_default(),
     };
     shared.ledger.folder.keep_failure(&point.identity, &failure)?;
+    shared.ledger.folder.forget_checkpoint(&point.identity)?;
     for &index in &parcel.task.points {
         shared.reporter.tell(&Event::Failed { point: shared.name(index), reason: reason.into() });
     }

@@ -6,9 +6,9 @@ use std::path::{Path, PathBuf};
 
 use serde_json::{Value, json};
 
-use super::{Folder, LAYOUT_VERSION, Request, difference, make_parent, write_json};
-use crate::store::atomic;
+use super::{Folder, LAYOUT_VERSION, Request, difference, write_json};
 use crate::store::error::Error;
+use crate::store::{atomic, partial};
 
 /// How a folder was found.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -56,7 +56,7 @@ impl Folder {
             let path = root.join("inputs").join(name);
             // Names hold the hash of the contents, but a file may have been cut short by hand.
             if fs::read_to_string(&path).ok().as_ref() != Some(text) {
-                make_parent(&path)?;
+                atomic::make_parent(&path)?;
                 atomic::write(&path, text.as_bytes())?;
             }
         }
@@ -102,7 +102,7 @@ impl Folder {
         for entry in fs::read_dir(root).map_err(Error::io("read the folder", root))? {
             let name = entry.map_err(Error::io("read the folder", root))?.file_name();
             // Another process may have written the request by now.
-            if !atomic::is_partial(&name.to_string_lossy()) && !self.request_path().exists() {
+            if !partial::is_partial(&name.to_string_lossy()) && !self.request_path().exists() {
                 let reason = "it is not empty and has no request.json; give an absent or empty folder";
                 return Err(Error::Foreign { path: root.clone(), reason });
             }

@@ -15,6 +15,7 @@ use super::atomic;
 use super::axes::ScanDimension;
 use super::error::Error;
 use super::hdf5::Failure;
+use super::partial;
 
 pub use claim::Claim;
 pub use difference::Difference;
@@ -118,7 +119,7 @@ impl Folder {
 
     /// Puts a file of these bytes into the folder, whole or not at all; folders on the way are made.
     pub fn put(&self, path: &Path, bytes: &[u8]) -> Result<(), Error> {
-        make_parent(path)?;
+        atomic::make_parent(path)?;
         atomic::write(path, bytes)
     }
 
@@ -139,24 +140,38 @@ impl Folder {
     /// Keeps why a point failed.
     pub fn keep_failure(&self, identity: &str, failure: &FailedPoint) -> Result<(), Error> {
         let path = self.failed(identity);
-        make_parent(&path)?;
+        atomic::make_parent(&path)?;
         write_json(&path, failure)
     }
 
     /// Forgets that a point failed, now that it has not.
     pub fn forget_failure(&self, identity: &str) -> Result<(), Error> {
-        let path = self.failed(identity);
-        match fs::remove_file(&path) {
-            Err(error) if error.kind() != std::io::ErrorKind::NotFound => {
-                Err(Error::io("remove", &path)(error))
-            }
-            _ => Ok(()),
-        }
+        remove(&self.failed(identity))
+    }
+
+    /// Removes what processes that are gone left unfinished; how many files.
+    pub fn sweep(&self) -> usize {
+        partial::sweep(&self.root)
+    }
+
+    /// Folder of the checkpoints.
+    pub fn checkpoints(&self) -> PathBuf {
+        self.root.join("checkpoints")
+    }
+
+    /// The checkpoint of a point.
+    pub fn checkpoint(&self, identity: &str) -> PathBuf {
+        self.checkpoints().join(format!("{identity}.checkpoint"))
+    }
+
+    /// Forgets how far a point had come, now that it is final.
+    pub fn forget_checkpoint(&self, identity: &str) -> Result<(), Error> {
+        remove(&self.checkpoint(identity))
     }
 
     /// Makes the folder that a file lies in.
     pub fn make_room(&self, path: &Path) -> Result<(), Error> {
-        make_parent(path)
+        atomic::make_parent(path)
     }
 
     /// Texts of the tables that the configuration names, by name.
@@ -169,7 +184,7 @@ impl Folder {
         for entry in fs::read_dir(&folder).map_err(Error::io("read", &folder))? {
             let path = entry.map_err(Error::io("read", &folder))?.path();
             let name = path.file_name().unwrap_or_default().to_string_lossy().into_owned();
-            if !atomic::is_partial(&name) {
+            if !partial::is_partial(&name) {
                 inputs.insert(name, fs::read_to_string(&path).map_err(Error::io("read", &path))?);
             }
         }
@@ -191,9 +206,12 @@ impl Folder {
     }
 }
 
-fn make_parent(path: &Path) -> Result<(), Error> {
-    let parent = path.parent().unwrap_or(Path::new(""));
-    fs::create_dir_all(parent).map_err(Error::io("make the folder", parent))
+/// Removes a file, which may be gone already.
+fn remove(path: &Path) -> Result<(), Error> {
+    match fs::remove_file(path) {
+        Err(error) if error.kind() != std::io::ErrorKind::NotFound => Err(Error::io("remove", path)(error)),
+        _ => Ok(()),
+    }
 }
 
 fn read_json<T: DeserializeOwned>(path: &Path) -> Result<T, Error> {

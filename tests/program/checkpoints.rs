@@ -1,0 +1,191 @@
+//! Points in flight are kept on disk, and go on from there to the same bits.
+
+use std::fs;
+use std::path::PathBuf;
+use std::process::{Child, Command, Stdio};
+use std::thread::sleep;
+use std::time::{Duration, Instant};
+
+use serde_json::{Value, json};
+
+use crate::fixture::{Ended, Place, assert_same_bits, files, phases};
+
+/// One point that takes seconds.
+fn single(place: &Place) {
+    let mut single = phases("0 deg", "0 deg", 1);
+    single["scan"] = json!([]);
+    single["numerics"] = json!({ "spacing": "0.2 bohr", "extent": "800 bohr" });
+    single["field"]["pulses"][0]["envelope"]["cycles"] = json!(6);
+    place.write("single.json", &single);
+}
+
+/// Starts the run, waits until its log has an event of this kind or the process has ended.
+fn started(place: &Place, line: &str, out: &str, every: &str, event: &str) -> Child {
+    // Whoever runs the tests may ignore signals, and children inherit that.
+    let mut command = Command::new("env");
+    command
+        .arg("--default-signal=HUP,INT,TERM")
+        .arg(env!("CARGO_BIN_EXE_tdse"))
+        .args(line.split_whitespace());
+    command.current_dir(place.path("")).env("TDSE_TEST_CHECKPOINT_EVERY", every);
+    let before = events(place, out, event).len();
+    let mut child =
+        command.stdout(Stdio::piped()).stderr(Stdio::piped()).spawn().expect("the program starts");
+    let start = Instant::now();
+    while events(place, out, event).len() == before && child.try_wait().expect("a state").is_none() {
+        assert!(start.elapsed() < Duration::from_mins(2), "no {event} within two minutes");
+        sleep(Duration::from_millis(2));
+    }
+    child
+}
+
+/// Events of a kind in all logs of a folder.
+fn events(place: &Place, out: &str, kind: &str) -> Vec<Value> {
+    let mut logs = files(&place.path(out).join("log"));
+    logs.sort();
+    let texts = logs.into_iter().map(|log| fs::read_to_string(log).unwrap_or_default());
+    let lines = texts.flat_map(|text| text.lines().map(str::to_owned).collect::<Vec<_>>());
+    let events = lines.filter_map(|line| serde_json::from_str::<Value>(&line).ok());
+    events.filter(|event| event["event"] == kind).collect()
+}
+
+fn end(child: Child, signal: &str) -> Ended {
+    let sent = Command::new("kill").args([signal, &child.id().to_string()]).stderr(Stdio::null()).status();
+    sent.expect("kill");
+    let asked = Instant::now();
+    let ended = Ended::from(child.wait_with_output().expect("an end"));
+    assert!(asked.elapsed() < Duration::from_secs(5), "it took {:?} to stop", asked.elapsed());
+    ended
+}
+
+fn checkpoints(place: &Place, out: &str) -> Vec<PathBuf> {
+    files(&place.path(out).join("checkpoints"))
+}
+
+/// The last step that a folder's logs speak of.
+fn last_step(place: &Place, out: &str, kind: &str) -> u64 {
+    events(place, out, kind).last().and_then(|event| event["step"].as_u64()).expect("a step")
+}
+
+#[test]
+fn a_signal_keeps_points_in_flight_and_they_go_on_to_the_same_bits() {
+    let place = Place::new();
+    single(&place);
+    place.tdse("run single.json --out whole").with(0);
+    for (signal, status) in [("-INT", 130), ("-TERM", 143), ("-HUP", 129)] {
+        let out = format!("out{signal}");
+        let line = format!("run single.json --out {out}");
+        // Waits until it is under way, not while its atom is still made.
+        let child = started(&place, &line, &out, "50", "checkpointed");
+        end(child, signal).with(status);
+        assert_eq!(checkpoints(&place, &out).len(), 1);
+        let step = last_step(&place, &out, "checkpointed");
+        assert!(step > 0);
+        place.tdse(&line).with(0);
+        assert_eq!(last_step(&place, &out, "continued"), step);
+        assert!(checkpoints(&place, &out).is_empty(), "nothing is left of it");
+        assert_same_bits(&place.path("whole/result.h5"), &place.path(&out).join("result.h5"));
+    }
+}
+
+/// Steps between checkpoints drawn once from a hat.
+#[test]
+fn kills_between_checkpoints_at_any_step_cost_no_bit() {
+    let place = Place::new();
+    single(&place);
+    place.tdse("run single.json --out whole").with(0);
+    let line = "run single.json --out out";
+    let mut before = 0;
+    for every in ["1", "37", "5", "113", "64"] {
+        let child = started(&place, line, "out", every, "checkpointed");
+        sleep(Duration::from_millis(60));
+        end(child, "-KILL");
+        let step = last_step(&place, "out", "checkpointed");
+        assert!(step >= before, "step {step} after step {before}");
+        before = step;
+    }
+    assert_eq!(events(&place, "out", "continued").len(), 4);
+    place.tdse(line).with(0);
+    assert_eq!(events(&place, "out", "continued").len(), 5);
+    assert!(checkpoints(&place, "out").is_empty());
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
+}
+
+#[test]
+fn time_that_is_over_stops_with_checkpoints_and_status_1() {
+    let place = Place::new();
+    // Long enough that the time is over under way, however long its atom takes.
+    single(&place);
+    let text = fs::read_to_string(place.path("single.json")).expect("the configuration");
+    let mut long: Value = serde_json::from_str(&text).expect("JSON");
+    long["numerics"]["trailing_time"] = json!("25 fs");
+    place.write("single.json", &long);
+    place.tdse("run single.json --out whole").with(0);
+    let mut command = place.command("run single.json --out out --within");
+    let ended = Ended::from(command.arg("2.5 s").output().expect("the program starts")).with(1);
+    ended.says(&["time is over (--within): 1 of 1 points are missing; continue with the same command"]);
+    assert_eq!(checkpoints(&place, "out").len(), 1);
+    let mut command = place.command("run single.json --out out --within");
+    Ended::from(command.arg("1 h").output().expect("the program starts")).with(0);
+    assert_eq!(events(&place, "out", "continued").len(), 1);
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
+}
+
+#[test]
+fn a_checkpoint_that_cannot_be_used_is_named_and_the_point_computed_from_the_start() {
+    let place = Place::new();
+    single(&place);
+    place.tdse("run single.json --out whole").with(0);
+    let line = "run single.json --out out";
+    end(started(&place, line, "out", "50", "checkpointed"), "-TERM").with(143);
+    let path = checkpoints(&place, "out").remove(0);
+    let whole = fs::read(&path).expect("a checkpoint");
+    let replaced = |from: &str, to: &str| {
+        let at = whole.windows(from.len()).position(|part| part == from.as_bytes()).expect("in the header");
+        [&whole[..at], to.as_bytes(), &whole[at + from.len()..]].concat()
+    };
+    let mut flipped = whole.clone();
+    flipped[whole.len() / 2] ^= 1;
+    for (bytes, words) in [
+        (whole[..whole.len() / 2].to_vec(), "checkpoint is damaged: its checksum does not fit"),
+        (flipped, "checkpoint is damaged: its checksum does not fit"),
+        (b"no checkpoint".to_vec(), "checkpoint was not written by this program"),
+        (replaced("\"layout_version\":1", "\"layout_version\":7"), "has layout version 7"),
+    ] {
+        fs::write(&path, bytes).expect("written");
+        let ended = end(started(&place, line, "out", "none", "noted"), "-KILL");
+        ended.says(&[words, "computed from the start"]);
+    }
+    place.tdse(line).with(0).says(&["computed from the start"]);
+    assert!(events(&place, "out", "continued").is_empty());
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
+}
+
+#[test]
+fn what_a_process_that_is_gone_left_unfinished_is_removed() {
+    let place = Place::new();
+    place.write("scan.json", &phases("0 deg", "90 deg", 4));
+    let mut command = place.command("run scan.json --out out --jobs 1");
+    command.env("TDSE_TEST_PAUSE_WRITE", "2000").stdout(Stdio::null()).stderr(Stdio::null());
+    let mut child = command.spawn().expect("started");
+    let start = Instant::now();
+    let partial = || {
+        files(&place.path("out/points"))
+            .into_iter()
+            .find(|path| path.extension().is_some_and(|e| e == "partial"))
+    };
+    while partial().is_none() {
+        assert!(start.elapsed() < Duration::from_mins(1), "nothing is written");
+        sleep(Duration::from_millis(2));
+    }
+    let left = partial().expect("a file");
+    place.tdse("run scan.json --out out --shard 4/4");
+    assert!(left.exists(), "a file that is being written is left alone");
+    child.kill().expect("killed");
+    child.wait().expect("gone");
+    assert!(left.exists(), "the kill left it");
+    assert!(place.tdse("status out").data.contains("done      1"));
+    place.tdse("run scan.json --out out").with(0).says(&["removed 1 unfinished files"]);
+    assert!(partial().is_none());
+    assert_eq!(place.counts("out"), [3, 0, 1, 0]);
+}
