@@ -44,7 +44,6 @@ pub struct Pulse {
     pub envelope: Envelope,
     /// Carrier-envelope phase; 0 puts a crest of the field at the envelope's centre.
     #[serde(default = "zero_angle")]
-    #[schemars(example = "90 deg", extend("x-minimum" = "-36000 deg", "x-maximum" = "36000 deg"))]
     pub phase: Angle,
     /// Time of the envelope's centre.
     #[serde(default = "no_delay")]
