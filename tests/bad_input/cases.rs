@@ -86,7 +86,7 @@ pub const CASES: &[Case] = &[
         name: "too large for double precision",
         edits: &[("/field/pulses/0/delay", Some(r#""1e300 s""#))],
         says: &[
-            r#"/field/pulses/0/delay: "1e300 s" is too large; allowed: a time in fs, as, ps, s or au; try "0 fs""#,
+            r#"/field/pulses/0/delay: "1e300 s" is too large; allowed: a time in fs, as, ps, s or au, from -10 ps to 10 ps; try "1.5 fs""#,
         ],
     },
     Case {
