@@ -81,8 +81,9 @@ fn configuration(points: usize) -> String {
         "atom": { "potential": { "kind": "soft_coulomb", "softening": "1.4142135623730951 bohr" } },
         "field": { "pulses": [{
             "wavelength": "800 nm", "intensity": "1e14 W/cm^2", "phase": "0 deg",
-            "envelope": { "kind": "sin2", "cycles": 4 }
+            "envelope": { "kind": "sin2", "cycles": 2 }
         }] },
+        "numerics": { "spacing": "0.4 bohr", "extent": "307.2 bohr", "time_step": "0.19 au" },
         "outputs": { "harmonics": { "max_energy": "80 eV", "energy_step": "0.2 eV" } },
         "scan": [{
             "parameter": "/field/pulses/0/phase", "name": "cep", "from": "0 deg", "to": "359 deg", "points": points

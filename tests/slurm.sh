@@ -34,9 +34,10 @@ programs=$(realpath "${CARGO_TARGET_DIR:-target}")/release
 export PATH="$programs:$PATH"
 
 place=$(mktemp -d)
+chmod 755 "$place"
 trap '"$slurm" stop "$place/slurm" || :; rm -rf "$place"' EXIT
 
-# Invented: points of a second each.
+# Invented: points of a third of a second each.
 cat > "$place/scan.json" <<'JSON'
 {
   "title": "Invented for the test of job arrays",
@@ -46,10 +47,10 @@ cat > "$place/scan.json" <<'JSON'
       { "wavelength": "400 nm", "intensity": "1e14 W/cm^2", "envelope": { "kind": "sin2", "cycles": 4 } }
     ]
   },
-  "numerics": { "spacing": "0.1 bohr", "extent": "400 bohr" },
+  "numerics": { "spacing": "0.2 bohr", "extent": "400 bohr" },
   "outputs": { "harmonics": { "max_energy": "40 eV", "energy_step": "0.5 eV" } },
   "scan": [
-    { "parameter": "/field/pulses/0/phase", "name": "cep", "from": "0 deg", "to": "180 deg", "points": 32 }
+    { "parameter": "/field/pulses/0/phase", "name": "cep", "from": "0 deg", "to": "180 deg", "points": 64 }
   ]
 }
 JSON
@@ -83,10 +84,18 @@ tdse status "$place/out"
 tdse status "$place/out" | grep -Eq 'missing +[1-9]' || fail "killed and cancelled tasks left nothing missing"
 [ ! -e "$place/out/result.h5" ] || fail "gathered while points are missing"
 
+# What the logs of the folder say of the three: killed, no end in it; else stopped by the signal that Slurm sends first.
+killed=$( (grep -L '"event":"ended"' "$place"/out/log/*.jsonl || :) | wc -l)
+stopped=$( (grep -l '"signal":"SIGTERM"' "$place"/out/log/*.jsonl || :) | wc -l)
+started=$(ls "$place"/out/log/*.jsonl | wc -l)
+echo "$started processes: $killed killed, $stopped stopped by a signal"
+[ "$killed" -ge 1 ] && [ $((killed + stopped)) = 3 ] && [ "$started" = 9 ] ||
+    fail "not one killed, one cancelled, and one requeued, of eight tasks"
+
 again=$(submit --array=1,2)
 await 60 "end of the second array" is_gone "$again"
 tdse status "$place/out"
-tdse status "$place/out" | grep -Eq 'done +32' || { cat "$place"/tdse-*.log; fail "points are missing"; }
+tdse status "$place/out" | grep -Eq 'done +64' || { cat "$place"/tdse-*.log; fail "points are missing"; }
 [ -e "$place/out/result.h5" ] || fail "nobody gathered"
 grep -hE '"(checkpointed|continued)"' "$place"/out/log/*.jsonl | cut -c1-120 || :
 

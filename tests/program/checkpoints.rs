@@ -10,6 +10,10 @@ use serde_json::{Value, json};
 
 use crate::fixture::{Ended, Place, assert_same_bits, files, phases};
 
+/// Steps between checkpoints.
+const EVERY: &str = "TDSE_TEST_CHECKPOINT_EVERY";
+const EVERY_TEN_MINUTES: [&str; 2] = [EVERY, "none"];
+
 /// One point that takes seconds.
 fn single(place: &Place) {
     let mut single = phases("0 deg", "0 deg", 1);
@@ -20,14 +24,14 @@ fn single(place: &Place) {
 }
 
 /// Starts the run, waits until its log has an event of this kind or the process has ended.
-fn started(place: &Place, line: &str, out: &str, every: &str, event: &str) -> Child {
+fn started(place: &Place, line: &str, out: &str, hook: [&str; 2], event: &str) -> Child {
     // Whoever runs the tests may ignore signals, and children inherit that.
     let mut command = Command::new("env");
     command
         .arg("--default-signal=HUP,INT,TERM")
         .arg(env!("CARGO_BIN_EXE_tdse"))
         .args(line.split_whitespace());
-    command.current_dir(place.path("")).env("TDSE_TEST_CHECKPOINT_EVERY", every);
+    command.current_dir(place.path("")).env(hook[0], hook[1]);
     let before = events(place, out, event).len();
     let mut child =
         command.stdout(Stdio::piped()).stderr(Stdio::piped()).spawn().expect("the program starts");
@@ -76,11 +80,14 @@ fn a_signal_keeps_points_in_flight_and_they_go_on_to_the_same_bits() {
         let out = format!("out{signal}");
         let line = format!("run single.json --out {out}");
         // Waits until it is under way, not while its atom is still made.
-        let child = started(&place, &line, &out, "50", "checkpointed");
+        let child = started(&place, &line, &out, [EVERY, "50"], "checkpointed");
         end(child, signal).with(status);
         assert_eq!(checkpoints(&place, &out).len(), 1);
-        let step = last_step(&place, &out, "checkpointed");
-        assert!(step > 0);
+        // It looks for signals where it keeps the state here, so that the signal's own is the same step once more.
+        let steps: Vec<_> =
+            events(&place, &out, "checkpointed").iter().filter_map(|event| event["step"].as_u64()).collect();
+        let [.., before, step] = steps[..] else { panic!("{steps:?}") };
+        assert_eq!(before, step);
         place.tdse(&line).with(0);
         assert_eq!(last_step(&place, &out, "continued"), step);
         assert!(checkpoints(&place, &out).is_empty(), "nothing is left of it");
@@ -97,7 +104,7 @@ fn kills_between_checkpoints_at_any_step_cost_no_bit() {
     let line = "run single.json --out out";
     let mut before = 0;
     for every in ["1", "37", "5", "113", "64"] {
-        let child = started(&place, line, "out", every, "checkpointed");
+        let child = started(&place, line, "out", [EVERY, every], "checkpointed");
         sleep(Duration::from_millis(60));
         end(child, "-KILL");
         let step = last_step(&place, "out", "checkpointed");
@@ -120,9 +127,11 @@ fn time_that_is_over_stops_with_checkpoints_and_status_1() {
     let mut long: Value = serde_json::from_str(&text).expect("JSON");
     long["numerics"]["trailing_time"] = json!("25 fs");
     place.write("single.json", &long);
+    let start = Instant::now();
     place.tdse("run single.json --out whole").with(0);
+    let time = format!("{:.2} s", 0.6 * start.elapsed().as_secs_f64());
     let mut command = place.command("run single.json --out out --within");
-    let ended = Ended::from(command.arg("2.5 s").output().expect("the program starts")).with(1);
+    let ended = Ended::from(command.arg(time).output().expect("the program starts")).with(1);
     ended.says(&["time is over (--within): 1 of 1 points are missing; continue with the same command"]);
     assert_eq!(checkpoints(&place, "out").len(), 1);
     let mut command = place.command("run single.json --out out --within");
@@ -137,7 +146,7 @@ fn a_checkpoint_that_cannot_be_used_is_named_and_the_point_computed_from_the_sta
     single(&place);
     place.tdse("run single.json --out whole").with(0);
     let line = "run single.json --out out";
-    end(started(&place, line, "out", "50", "checkpointed"), "-TERM").with(143);
+    end(started(&place, line, "out", [EVERY, "50"], "checkpointed"), "-TERM").with(143);
     let path = checkpoints(&place, "out").remove(0);
     let whole = fs::read(&path).expect("a checkpoint");
     let replaced = |from: &str, to: &str| {
@@ -153,7 +162,7 @@ fn a_checkpoint_that_cannot_be_used_is_named_and_the_point_computed_from_the_sta
         (replaced("\"layout_version\":1", "\"layout_version\":7"), "has layout version 7"),
     ] {
         fs::write(&path, bytes).expect("written");
-        let ended = end(started(&place, line, "out", "none", "noted"), "-KILL");
+        let ended = end(started(&place, line, "out", EVERY_TEN_MINUTES, "noted"), "-KILL");
         ended.says(&[words, "computed from the start"]);
     }
     place.tdse(line).with(0).says(&["computed from the start"]);
@@ -188,4 +197,20 @@ fn what_a_process_that_is_gone_left_unfinished_is_removed() {
     place.tdse("run scan.json --out out").with(0).says(&["removed 1 unfinished files"]);
     assert!(partial().is_none());
     assert_eq!(place.counts("out"), [3, 0, 1, 0]);
+}
+
+#[test]
+fn a_signal_while_gathering_stops_in_time_and_leaves_what_was_there() {
+    let place = Place::new();
+    place.write("scan.json", &phases("0 deg", "90 deg", 12));
+    place.tdse("run scan.json --out whole").with(0);
+    let line = "run scan.json --out out";
+    let child = started(&place, line, "out", ["TDSE_TEST_PAUSE_GATHER", "200"], "gathering");
+    end(child, "-TERM").with(143).says(&["stopped while gathering", "continue with the same command"]);
+    let left = files(&place.path("out")).into_iter().map(|path| path.display().to_string());
+    let left: Vec<_> = left.filter(|path| path.contains("result") || path.contains("partial")).collect();
+    assert!(left.is_empty(), "{left:?}");
+    place.tdse(line).with(0);
+    assert_eq!(place.counts("out"), [0, 0, 12, 0]);
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
 }

@@ -55,7 +55,11 @@ pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
         work.note(format!("stopped by {}: {text}", signal.name()));
         return Ok(Exit::Stopped(signal));
     }
-    work.finish(&standings)
+    let ended = work.finish(&standings);
+    match (work.stop.signal(), ended) {
+        (Some(signal), Err(trouble)) => Err(Trouble { exit: Exit::Stopped(signal), ..trouble }),
+        (_, ended) => ended,
+    }
 }
 
 impl<'a> Work<'a> {
@@ -165,7 +169,9 @@ impl<'a> Work<'a> {
         }
         let start = Instant::now();
         self.reporter.tell(&Event::Gathering);
-        gather_all(&self.ledger, &self.request, standings, &self.start_time).map_err(Trouble::incomplete)?;
+        let go_on = || !self.stop.is_due();
+        gather_all(&self.ledger, &self.request, standings, &self.start_time, go_on)
+            .map_err(Trouble::incomplete)?;
         let path = self.ledger.folder.result();
         let seconds = start.elapsed().as_secs_f64();
         self.reporter.tell(&Event::Gathered { path: path.display().to_string(), seconds });

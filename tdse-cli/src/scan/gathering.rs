@@ -2,23 +2,24 @@
 
 use super::ledger::{Ledger, Standing};
 use super::run::{now, origin, spelled};
-use crate::store::{self, Error, Gathering, Point, Provenance, Request, gather, read_groups};
+use crate::store::{self, Error, Gathering, Point, Provenance, Request, gather_while, read_groups};
 
 /// Writes `result.h5` from the points that exist; `start_time` is that of the whole calculation.
 ///
 /// # Errors
-/// As [`store::gather()`].
+/// As [`gather_while`].
 pub fn gather_all(
     ledger: &Ledger,
     request: &Request,
     standings: &[Standing],
     start_time: &str,
+    go_on: impl Fn() -> bool,
 ) -> Result<(), Error> {
     let points = ledger.gatherable(standings);
     let provenance = provenance(ledger, request, &points, start_time)?;
     let scan = request.dimensions();
     let gathering = Gathering { provenance: &provenance, scan: &scan, points: &points };
-    gather(&ledger.folder.result(), gathering)
+    gather_while(&ledger.folder.result(), gathering, go_on)
 }
 
 /// A scan runs again from its request; a single run from its point.

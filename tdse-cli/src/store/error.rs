@@ -67,6 +67,11 @@ pub enum Error {
         /// Where the requests differ.
         differences: Vec<Difference>,
     },
+    /// Gathering was stopped.
+    Stopped {
+        /// The file that was not made.
+        path: PathBuf,
+    },
     /// A scan axis has a name that a file cannot give it.
     AxisName {
         /// The name as given.
@@ -124,6 +129,11 @@ impl fmt::Display for Error {
                 differences.iter().try_for_each(|difference| write!(f, "\n{difference}"))?;
                 write!(f, "\nonly scan, outputs, title and notes may change; give another folder")
             }
+            Self::Stopped { path } => write!(
+                f,
+                "stopped while gathering: all points are kept, {} is as before; continue with the same command",
+                path.display()
+            ),
             Self::AxisName { name, reason } => {
                 write!(
                     f,

@@ -50,6 +50,15 @@ pub enum Point {
 ///
 /// If the number of points is not the product of the lengths of the dimensions.
 pub fn gather(path: &Path, gathering: Gathering) -> Result<(), Error> {
+    gather_while(path, gathering, || true)
+}
+
+/// The same, as long as `go_on` says so, which is asked before every point.
+///
+/// # Panics
+///
+/// As [`gather`].
+pub fn gather_while(path: &Path, gathering: Gathering, go_on: impl Fn() -> bool) -> Result<(), Error> {
     let Gathering { provenance, scan, points } = gathering;
     axes::check(scan)?;
     let expected: usize = scan.iter().map(ScanDimension::length).product();
@@ -62,6 +71,9 @@ pub fn gather(path: &Path, gathering: Gathering) -> Result<(), Error> {
         let mut stack = Stack::new(path, &entry, scan);
         for (number, point) in points.iter().enumerate() {
             pause(Place::Gather);
+            if !go_on() {
+                return Err(Error::Stopped { path: path.into() });
+            }
             let index = index(number, scan);
             match point {
                 Point::File(file) => {

@@ -30,15 +30,15 @@ pub mod table;
 mod values;
 mod write;
 
-pub use atomic::host_name;
+pub use atomic::{Unfinished, host_name, publish};
 pub use axes::{ScanAxis, ScanDimension};
 pub use compare::differences;
 pub use contents::{Contents, Group};
 pub use error::Error;
 pub use folder::{AxisValues, Claim, Difference, FailedPoint, Folder, Request, Row, TableAxis};
-pub use gather::{Gathering, Point, gather};
+pub use gather::{Gathering, Point, gather, gather_while};
 pub use provenance::Provenance;
 pub use read::{read, read_groups};
 pub use table::{Status, is_reserved_name};
 pub use values::Values;
-pub use write::write;
+pub use write::{begin, write};

@@ -2,6 +2,7 @@
 
 use std::path::Path;
 
+use super::atomic::Unfinished;
 use super::contents::{Contents, Group};
 use super::error::Error;
 use super::group::GroupWriter;
@@ -14,6 +15,11 @@ use super::{atomic, entry};
 /// Groups that hold axes only are left out.
 pub fn write(path: &Path, contents: &Contents) -> Result<(), Error> {
     atomic::create(path, |root| put(root, contents).map_err(Error::write(path)))
+}
+
+/// The same in two steps: all but the name; [`publish()`](super::publish()) gives that to many files at once.
+pub fn begin(path: &Path, contents: &Contents) -> Result<Unfinished, Error> {
+    Unfinished::hdf5(path, |root| put(root, contents).map_err(Error::write(path)))
 }
 
 fn put(root: &Node, contents: &Contents) -> Result<(), Failure> {

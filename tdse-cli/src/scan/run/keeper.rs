@@ -119,16 +119,19 @@ impl<'a> Keeper<'a> {
 
 /// The state, if it is one of this plan.
 fn fitting(state: State, first: &State, plan: &Plan) -> Result<State, String> {
-    let samples = state.series.norm.len();
-    let steps = plan.schedule().steps;
-    if state.psi.len() == first.psi.len() && state.step <= steps && samples.wrapping_sub(state.step) <= 1 {
+    let lengths = |state: &State| {
+        let outgoing = state.outgoing.as_ref().map(|outgoing| [outgoing.left.len(), outgoing.right.len()]);
+        (state.psi.len(), outgoing)
+    };
+    let (samples, steps) = (state.series.norm.len(), plan.schedule().steps);
+    if lengths(&state) == lengths(first) && state.step <= steps && samples.wrapping_sub(state.step) <= 1 {
         return Ok(state);
     }
     Err(format!(
-        "a checkpoint of {} numbers, {} steps and {samples} samples is not one of {} numbers and at most {steps} steps",
-        state.psi.len(),
+        "a checkpoint of lengths {:?}, {} steps and {samples} samples does not fit lengths {:?} and {steps} steps",
+        lengths(&state),
         state.step,
-        first.psi.len()
+        lengths(first)
     ))
 }
 

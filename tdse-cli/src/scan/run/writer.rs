@@ -1,12 +1,18 @@
-//! The one thread that writes: results as they come, whole or not at all.
+//! The one thread that writes results as they come, and the one that makes sure they are on disk.
+//!
+//! HDF5 takes a core's time, the disk takes its own: while one batch of files is forced to the disk, the next is written.
 
-use std::sync::mpsc::Receiver;
+use std::sync::mpsc::{Receiver, SyncSender, sync_channel};
+use std::thread;
 
 use super::Shared;
 use super::compute::{How, now};
 use super::tasks::Task;
 use crate::progress::Event;
-use crate::store::{self, Contents, FailedPoint};
+use crate::store::{self, Contents, FailedPoint, Unfinished};
+
+/// Most files that are forced to the disk together, and most that wait for it.
+const BATCH: usize = 16;
 
 /// What a worker hands over.
 pub struct Parcel<'a> {
@@ -18,41 +24,87 @@ pub struct Parcel<'a> {
     pub result: Result<(How, Vec<Contents>), String>,
 }
 
+/// A file of a point that has not its name yet.
+struct Written {
+    index: usize,
+    file: Unfinished,
+    /// What is to be said when it has.
+    event: Event,
+}
+
 /// Writes what comes until all workers are gone. Where the disk refuses, computing is given up: the points that are
 /// not on disk are missing, and run again with the next call.
 pub fn write_all(shared: &Shared, parcels: Receiver<Parcel>) {
-    for parcel in parcels {
-        let written = match &parcel.result {
-            Ok((how, results)) => write(shared, &parcel, *how, results),
-            Err(reason) => keep_failure(shared, &parcel, reason),
-        };
-        if let Err(error) = written {
-            let point = shared.name(parcel.task.points[0]);
-            shared.reporter.tell(&Event::Refused { point, reason: error.to_string() });
-            shared.stop.give_up();
+    let (sender, written) = sync_channel(BATCH);
+    thread::scope(|scope| {
+        scope.spawn(move || publish_all(shared, &written));
+        for parcel in parcels {
+            let done = match &parcel.result {
+                Ok((how, results)) => write(shared, &parcel, *how, results, &sender),
+                Err(reason) => keep_failure(shared, &parcel, reason),
+            };
+            if let Err(error) = done {
+                refuse(shared, parcel.task.points[0], &error);
+            }
         }
-    }
+        drop(sender);
+    });
 }
 
-fn write(shared: &Shared, parcel: &Parcel, how: How, results: &[Contents]) -> Result<(), store::Error> {
+fn refuse(shared: &Shared, index: usize, error: &store::Error) {
+    shared.reporter.tell(&Event::Refused { point: shared.name(index), reason: error.to_string() });
+    shared.stop.give_up();
+}
+
+fn write(
+    shared: &Shared,
+    parcel: &Parcel,
+    how: How,
+    results: &[Contents],
+    sender: &SyncSender<Written>,
+) -> Result<(), store::Error> {
     let mut seconds = parcel.seconds;
     for (&index, contents) in parcel.task.points.iter().zip(results) {
         let path = shared.ledger.path(index);
         let point = shared.name(index);
         shared.reporter.tell(&Event::Writing { point: point.clone() });
         shared.ledger.folder.make_room(&path)?;
-        store::write(&path, contents)?;
-        shared.ledger.folder.forget_failure(&shared.ledger.rows[index].identity)?;
-        shared.ledger.folder.forget_checkpoint(&shared.ledger.rows[index].identity)?;
+        let file = store::begin(&path, contents)?;
         // Further files of a propagation are derived from it.
-        shared.reporter.tell(&if how == How::Propagated && index == parcel.task.points[0] {
+        let event = if how == How::Propagated && index == parcel.task.points[0] {
             Event::Propagated { point, seconds, estimate: parcel.task.cost.seconds }
         } else {
             Event::Derived { point, seconds }
-        });
+        };
         seconds = 0.0;
+        // The other thread leaves only after this one.
+        let _ = sender.send(Written { index, file, event });
     }
     Ok(())
+}
+
+/// Gives files their names, as many at a time as wait.
+fn publish_all(shared: &Shared, written: &Receiver<Written>) {
+    while let Ok(first) = written.recv() {
+        let (mut files, mut said) = (vec![first.file], vec![(first.index, first.event)]);
+        for Written { index, file, event } in written.try_iter().take(BATCH - 1) {
+            files.push(file);
+            said.push((index, event));
+        }
+        for (published, (index, event)) in store::publish(&files).into_iter().zip(said) {
+            match published.and_then(|()| forget(shared, index)) {
+                Ok(()) => shared.reporter.tell(&event),
+                Err(error) => refuse(shared, index, &error),
+            }
+        }
+    }
+}
+
+/// Drops what was kept of the point before it was final.
+fn forget(shared: &Shared, index: usize) -> Result<(), store::Error> {
+    let identity = &shared.ledger.rows[index].identity;
+    shared.ledger.folder.forget_failure(identity)?;
+    shared.ledger.folder.forget_checkpoint(identity)
 }
 
 fn keep_failure(shared: &Shared, parcel: &Parcel, reason: &str) -> Result<(), store::Error> {
