@@ -75,8 +75,15 @@ fn point(photon: f64, cep: f64) -> Contents {
     result.insert("summary", "ionization_probability", 0.25 + cep / 100.0);
     result.insert("summary", "ionization_probability_errors", 1e-5);
     result.insert("summary", "cutoff_energy", 42.0 + cep);
-    for name in ["initial_energy", "classical_cutoff", "final_norm", "bound_population", "initial_population"]
-    {
+    for name in [
+        "initial_energy",
+        "classical_cutoff",
+        "ponderomotive_energy",
+        "first_photon_energy",
+        "final_norm",
+        "bound_population",
+        "initial_population",
+    ] {
         result.insert("summary", name, 0.5);
     }
     result.insert("summary", "status", Status::Done as i64);

@@ -340,7 +340,9 @@ fn missing_points_are_said() {
     let text = |name: &str| demo::all().into_iter().find(|(n, _)| *n == name).unwrap().1;
     assert!(text("scan_spectrum").contains("3 of 24 points missing"));
     assert!(text("scan_two_axes").contains("3 of 108 points missing"));
-    assert!(text("scan_numbers").contains("1 of 24 points missing"));
+    assert!(text("scan_log").contains("1 of 14 points missing"));
+    // The law is there at every point, so that none is missing.
+    assert!(text("scan_numbers").contains("measured: 1 of 24 points have no such number"));
     assert!(lines(&text("scan_spectrum"), "missing").len() > 20);
     assert!(lines(&text("time_frequency"), "missing").is_empty());
 }
@@ -412,5 +414,20 @@ fn page_is_well_formed_and_says_everything() {
             (picture.attribute("aria-label"), picture.attribute("role")),
             (Some(said.as_str()), Some("img"))
         );
+    }
+}
+
+/// Teeth stand at the energies asked for: nω + E - Up, here 2.1 eV, 5.2 eV, 8.3 eV, … (worked by hand).
+#[test]
+fn teeth_of_the_comb_stand_at_the_expected_peaks() {
+    let svg = demo::all().into_iter().find(|(name, _)| *name == "photoelectrons").unwrap().1;
+    // The axis line runs from 0 to 75 eV.
+    let axis = &lines(&svg, "axis bottom")[0];
+    let energy = |x: f64| 75.0 * (x - axis[0].0) / (axis[1].0 - axis[0].0);
+    let teeth: Vec<f64> = lines(&svg, "comb").iter().map(|line| energy(line[0].0)).collect();
+    // The lowest above zero is 7 · 3.1 - 13.6 - 6 = 2.1; the picture ends at 75.
+    assert_eq!(teeth.len(), 24, "{teeth:?}");
+    for (number, tooth) in teeth.iter().enumerate() {
+        assert!((tooth - (2.1 + 3.1 * number as f64)).abs() < 0.05, "tooth {number} at {tooth} eV");
     }
 }

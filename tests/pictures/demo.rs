@@ -1,5 +1,6 @@
 //! Data for looking at pictures. All of it is invented by us: shapes of the right kind, no physics.
 
+use tdse_cli::report::electrons::{ElectronPicture, MomentumPicture, Peaks};
 use tdse_cli::report::figure::{Across, Curve, Figure, Mark, Multiples, Origin, Panel, Trace, Up};
 use tdse_cli::report::harmonics::HarmonicPicture;
 use tdse_cli::report::map::Shading;
@@ -8,7 +9,7 @@ use tdse_cli::report::populations::PopulationPicture;
 use tdse_cli::report::scale::{Kind, Range};
 use tdse_cli::report::scan::{NumberMap, NumberScan, SpectrumScan};
 use tdse_cli::report::time_frequency::TimeFrequencyPicture;
-use tdse_cli::report::{field, figure, harmonics, populations, scan, time_frequency};
+use tdse_cli::report::{electrons, field, figure, harmonics, populations, scan, time_frequency};
 
 /// `count` values from `from` to `to`, ends included.
 pub fn even(from: f64, to: f64, count: usize) -> Vec<f64> {
@@ -68,6 +69,7 @@ pub fn all() -> Vec<(&'static str, String)> {
     });
     pictures.push(("field_two_directions", svg));
     pictures.push(("time_frequency", map_of_bursts()));
+    pictures.extend(electron_pictures());
     pictures.extend([("populations_linear", populations_of(0.4)), ("populations_log", populations_of(1e-4))]);
     pictures.extend(scans());
     pictures.push(("comparison", comparison()));
@@ -86,6 +88,37 @@ fn harmonics_of(photon: f64, cutoff: f64, end: f64, floor: f64) -> String {
         measured_cutoff: Some(cutoff),
         window: "sin² over the whole pulse",
     })
+}
+
+/// Peaks a photon apart up to 10 Up, more to the right than to the left.
+fn electron_pictures() -> [(&'static str, String); 2] {
+    let energy = even(0.0, 75.0, 3000);
+    let peaks = Peaks { photon: 3.1, level: -13.6, ponderomotive: 6.0 };
+    let value = |e: f64, share: f64| {
+        let envelope = if e < 12.0 { -1.2 - 0.25 * e } else { -4.2 - ((e - 36.0).max(0.0) / 12.0).powi(2) };
+        let peak = (std::f64::consts::PI * (e + 13.6 + 6.0) / 3.1).cos().powi(2);
+        share * 10_f64.powf(envelope + 2.0 * (peak - 1.0))
+    };
+    let series = |share: f64| energy.iter().map(|&e| value(e, share)).collect::<Vec<f64>>();
+    let (left, right) = (series(0.2), series(0.8));
+    let spectrum = electrons::draw(&ElectronPicture {
+        title: "Invented data: electrons above threshold",
+        energy: &energy,
+        both: &series(1.0),
+        left: &left,
+        right: &right,
+        peaks: Some(peaks),
+        notes: &["Method: invented.".into()],
+    });
+    let momentum = even(-2.3, 2.3, 2001);
+    let density: Vec<f64> =
+        momentum.iter().map(|p| p.abs() * value(13.6 * p * p, 0.5 + 0.3 * p.signum())).collect();
+    let distribution = electrons::draw_momentum(&MomentumPicture {
+        title: "Invented data: momenta",
+        momentum: &momentum,
+        density: &density,
+    });
+    [("photoelectrons", spectrum), ("momentum", distribution)]
 }
 
 fn map_of_bursts() -> String {
@@ -171,8 +204,9 @@ fn scans() -> Vec<(&'static str, String)> {
 
 fn log_scan() -> (&'static str, String) {
     let intensity: Vec<f64> = even(12.7, 15.3, 14).into_iter().map(|e| 10_f64.powf(e)).collect();
-    let yields: Vec<f64> =
+    let mut yields: Vec<f64> =
         intensity.iter().map(|i| 1e-16 * (i / 1e13).powi(5) / (1.0 + (i / 3e14).powi(4))).collect();
+    yields[4] = f64::NAN;
     let svg = scan::numbers(&NumberScan {
         title: "Invented data: ionization against intensity",
         parameter: Axis { name: "intensity", unit: "W/cm²", values: Values::Log(&intensity) },

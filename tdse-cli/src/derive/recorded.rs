@@ -1,6 +1,7 @@
 //! What a run recorded.
 
 use ndarray::Array2;
+use tdse_core::field::Pulse;
 use tdse_core::problem::InitialState;
 use tdse_core::quantities::classical_cutoff;
 use tdse_core::simulate::{Atom, Plan, State};
@@ -95,6 +96,10 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, sta
         electronvolts(mean_energy(&point.job.problem.initial, &atom.bound.energies)),
     );
     contents.insert("summary", "classical_cutoff", classical(point));
+    let pulses = &point.job.problem.field.pulses;
+    contents.insert("summary", "ponderomotive_energy", electronvolts(ponderomotive(pulses)));
+    let photon = pulses.first().map_or(f64::NAN, |pulse| electronvolts(pulse.frequency));
+    contents.insert("summary", "first_photon_energy", photon);
     contents.insert("summary", "final_norm", state.series.norm[state.step]);
     contents.insert("summary", "bound_population", total);
     let initial = state.series.initial_population.last().copied().unwrap_or(f64::NAN);
@@ -114,13 +119,18 @@ fn mean_energy(initial: &InitialState, energies: &[f64]) -> f64 {
     }
 }
 
-/// Ip + 3.17 Up with the vector potentials of all pulses added up, eV; NaN where nothing is bound or no pulse is there.
+/// Up with the vector potentials of all pulses added up, hartree.
+fn ponderomotive(pulses: &[Pulse]) -> f64 {
+    let potential: f64 = pulses.iter().map(|pulse| pulse.peak_field / pulse.frequency).sum();
+    0.25 * potential * potential
+}
+
+/// Ip + 3.17 Up, eV; NaN where nothing is bound or no pulse is there.
 fn classical(point: &Point) -> f64 {
     let pulses = &point.job.problem.field.pulses;
-    let potential: f64 = pulses.iter().map(|pulse| pulse.peak_field / pulse.frequency).sum();
     let energy = point.facts.ionization_energy();
     if energy <= 0.0 || pulses.is_empty() {
         return f64::NAN;
     }
-    electronvolts(classical_cutoff(energy, 0.25 * potential * potential))
+    electronvolts(classical_cutoff(energy, ponderomotive(pulses)))
 }

@@ -66,12 +66,14 @@ pub struct Panel<'a> {
     pub curves: Vec<Curve<'a>>,
     /// Vertical lines.
     pub marks: Vec<Mark>,
+    /// Teeth along the frame's upper edge.
+    pub comb: Option<Comb>,
 }
 
 impl<'a> Panel<'a> {
     /// A panel of ordinary height without marks.
     pub fn new(name: impl Into<String>, up: Up, curves: Vec<Curve<'a>>) -> Self {
-        Self { name: name.into(), up, height: 230.0, curves, marks: Vec::new() }
+        Self { name: name.into(), up, height: 230.0, curves, marks: Vec::new(), comb: None }
     }
 }
 
@@ -119,6 +121,15 @@ pub struct Mark {
     pub label: String,
     /// Where the value comes from, which sets how it is drawn.
     pub origin: Origin,
+}
+
+/// Values at equal distances, without end: drawn as teeth where they can be told apart.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Comb {
+    /// One of them.
+    pub first: f64,
+    /// Their distance.
+    pub step: f64,
 }
 
 /// Where a marked value comes from.

@@ -2,7 +2,7 @@
 
 use super::axes::{Frame, Side, TEXT, TICK, axis, hairlines};
 use super::ends::{self, End};
-use super::figure::{Above, Curve, Mark, Origin, Panel, Trace, Up};
+use super::figure::{Above, Comb, Curve, Mark, Origin, Panel, Trace, Up};
 use super::font::{Weight, width};
 use super::palette::{INK, STYLES, Style, outline, style};
 use super::scale::{Kind, Range, Scale};
@@ -13,6 +13,9 @@ use super::trace::{inside, trace};
 
 const CURVE: f64 = 1.35;
 const STRIP: f64 = 17.0;
+const TOOTH: f64 = 7.0;
+/// Teeth closer than this blur.
+const CLOSEST_TEETH: f64 = 3.5;
 
 /// What is known of a panel before it is drawn.
 #[derive(Debug)]
@@ -82,6 +85,9 @@ pub fn draw(
         let up = Scale::new(plan.kind, range, frame.bottom, frame.top);
         hairlines(&mut sheet.svg, frame, up, &plan.ticks);
         marks(sheet, &rows, layout.across, outer, frame);
+        if let Some(comb) = panel.comb {
+            teeth(sheet, comb, layout.across, frame);
+        }
         curves(sheet, panel, (layout.across, up), frame);
         axis(&mut sheet.svg, frame, Side::Left, up, &plan.ticks);
     } else {
@@ -187,6 +193,22 @@ fn marks(sheet: &mut Sheet, rows: &[Row<'_>], across: Scale, outer: f64, frame: 
             x + width(&mark.label, TEXT, Weight::Regular) * if anchor == Anchor::Start { 1.0 } else { -1.0 };
         sheet.svg.rectangle((x, y - 11.0), (far, y + 3.0), "#ffffff");
         sheet.svg.text((x, y), &mark.label, Lettering { colour: INK, ..Lettering::new(TEXT, anchor) });
+    }
+    sheet.svg.close();
+}
+
+fn teeth(sheet: &mut Sheet, comb: Comb, across: Scale, frame: Frame) {
+    let Range { low, high } = across.range();
+    let apart = (across.place(low + comb.step) - across.place(low)).abs();
+    if !(comb.step > 0.0 && apart >= CLOSEST_TEETH) {
+        return;
+    }
+    sheet.svg.open("comb");
+    let lowest = ((low - comb.first) / comb.step).ceil() as i64;
+    let highest = ((high - comb.first) / comb.step).floor() as i64;
+    for number in lowest..=highest {
+        let x = across.place(comb.first + number as f64 * comb.step);
+        sheet.svg.line((x, frame.top), (x, frame.top + TOOTH), Stroke::solid(STYLES[1].colour, 1.0));
     }
     sheet.svg.close();
 }

@@ -53,7 +53,7 @@ pub struct NumberScan<'a> {
 }
 
 /// Draws the numbers as marked lines (as markers alone over words). Missing points are left out, the line is broken
-/// there, and a note counts them.
+/// there, and the title counts them; a note counts those that lack this number alone.
 pub fn numbers(scan: &NumberScan<'_>) -> String {
     let mut order: Vec<(usize, f64)> = scan.parameter.numbers().into_iter().enumerate().collect();
     order.sort_by(|a, b| a.1.total_cmp(&b.1));
@@ -67,13 +67,16 @@ pub fn numbers(scan: &NumberScan<'_>) -> String {
         Curve { name: Cow::Borrowed(name), x: Cow::Owned(x), y: Cow::Owned(y), trace }
     });
     let whole = scan.parameter.len();
+    let is_missing = |values: &[f64], i: usize| values.get(i).is_none_or(|v| v.is_nan());
+    let absent = |i: &usize| scan.series.iter().all(|(_, values)| is_missing(values, *i));
+    let missing = (0..whole).filter(absent).count();
     let notes = scan.series.iter().filter_map(|(name, values)| {
-        let missing = whole - values.iter().take(whole).filter(|v| !v.is_nan()).count();
+        let more = (0..whole).filter(|&i| is_missing(values, i)).count() - missing;
         let of = if name.is_empty() { String::new() } else { format!("{name}: ") };
-        (missing > 0).then(|| format!("{of}{missing} of {whole} points missing, left out."))
+        (more > 0).then(|| format!("{of}{more} of {whole} points have no such number, left out."))
     });
     draw_figure(&Figure {
-        title: scan.title,
+        title: &counted(scan.title, missing, whole),
         across: Across {
             kind: scan.parameter.kind(),
             words,

@@ -61,18 +61,21 @@ fn notes(contents: &Contents) -> Vec<String> {
     }
 }
 
-/// Headline numbers of a single run; a scan has them as pictures.
+/// Numbers of a single run, and those that are the same at all points of a scan; the others are pictures.
 fn headline(contents: &Contents) -> Vec<Quantity<'_>> {
-    if !contents.scan().is_empty() {
-        return Vec::new();
-    }
-    let number = |name: &str| contents.real("summary", name).and_then(|array| array.first().copied());
+    let number = |name: &str| shared(slice(contents, "summary", name));
     summary_numbers()
         .filter_map(|(name, long_name, units)| {
             let value = number(name)?;
             Some(Quantity { name: long_name, value, unit: units, error: number(&format!("{name}_errors")) })
         })
         .collect()
+}
+
+/// The one value that all points with a value have.
+fn shared(values: &[f64]) -> Option<f64> {
+    let first = values.iter().copied().find(|value| !value.is_nan())?;
+    values.iter().all(|value| value.is_nan() || *value == first).then_some(first)
 }
 
 /// Names, meanings and units of the real numbers of the summary; the unit of a pure number is empty.

@@ -1,15 +1,29 @@
 //! Pictures of one run.
 
+use super::super::electrons::{ElectronPicture, MomentumPicture, Peaks};
 use super::super::field::FieldPicture;
 use super::super::harmonics::HarmonicPicture;
 use super::super::populations::PopulationPicture;
 use super::super::time_frequency::TimeFrequencyPicture;
-use super::super::{field, harmonics, populations, time_frequency};
+use super::super::{electrons, field, harmonics, populations, time_frequency};
 use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, slice};
 use crate::store::{Contents, Values};
 
 pub(super) fn pictures(contents: &Contents) -> Vec<Drawn> {
-    [spectrum(contents), laser(contents), map(contents), motion(contents)].into_iter().flatten().collect()
+    let drawn = [
+        spectrum(contents),
+        electron_spectrum(contents),
+        momenta(contents),
+        laser(contents),
+        map(contents),
+        motion(contents),
+    ];
+    drawn.into_iter().flatten().collect()
+}
+
+/// A number of the summary that is there.
+fn number(contents: &Contents, name: &str) -> Option<f64> {
+    slice(contents, "summary", name).first().copied().filter(|v| v.is_finite())
 }
 
 fn spectrum(contents: &Contents) -> Option<Drawn> {
@@ -17,7 +31,6 @@ fn spectrum(contents: &Contents) -> Option<Drawn> {
     if photon_energy.is_empty() {
         return None;
     }
-    let number = |name: &str| slice(contents, "summary", name).first().copied().filter(|v| v.is_finite());
     let window = remark(contents, "harmonics", "window");
     Some(Drawn {
         name: "harmonics".into(),
@@ -27,14 +40,65 @@ fn spectrum(contents: &Contents) -> Option<Drawn> {
             spectrum: slice(contents, "harmonics", "spectrum"),
             quantity: SPECTRUM,
             fundamental: fundamental(contents),
-            cutoff_law: number("classical_cutoff"),
-            measured_cutoff: number("cutoff_energy"),
+            cutoff_law: number(contents, "classical_cutoff"),
+            measured_cutoff: number(contents, "cutoff_energy"),
             window,
         }),
         caption: format!("Harmonic spectrum of the dipole acceleration, window {window}."),
         alternative:
             "Logarithmic spectrum against photon energy, with the classical and the measured cutoff marked."
                 .into(),
+    })
+}
+
+fn electron_spectrum(contents: &Contents) -> Option<Drawn> {
+    let group = "photoelectrons";
+    let energy = slice(contents, group, "energy");
+    if energy.is_empty() {
+        return None;
+    }
+    let peaks = || {
+        Some(Peaks {
+            photon: number(contents, "first_photon_energy").filter(|photon| *photon > 0.0)?,
+            level: number(contents, "initial_energy")?,
+            ponderomotive: number(contents, "ponderomotive_energy")?,
+        })
+    };
+    let method = remark(contents, group, "method");
+    let notes = if method.is_empty() { Vec::new() } else { vec![format!("Method: {method}.")] };
+    Some(Drawn {
+        name: group.into(),
+        svg: electrons::draw(&ElectronPicture {
+            title: &contents.provenance.title,
+            energy,
+            both: slice(contents, group, "yield"),
+            left: slice(contents, group, "left"),
+            right: slice(contents, group, "right"),
+            peaks: peaks(),
+            notes: &notes,
+        }),
+        caption: "Photoelectron spectrum: both directions together, and apart.".into(),
+        alternative:
+            "Logarithmic electron spectrum against kinetic energy, with 2 Up, 10 Up and the expected peaks \
+                      marked; below it the electrons to the left and to the right."
+                .into(),
+    })
+}
+
+fn momenta(contents: &Contents) -> Option<Drawn> {
+    let momentum = slice(contents, "momentum", "momentum");
+    if momentum.is_empty() {
+        return None;
+    }
+    Some(Drawn {
+        name: "momentum".into(),
+        svg: electrons::draw_momentum(&MomentumPicture {
+            title: &contents.provenance.title,
+            momentum,
+            density: slice(contents, "momentum", "density"),
+        }),
+        caption: "Momentum distribution of the photoelectrons.".into(),
+        alternative: "Logarithmic probability density against momentum.".into(),
     })
 }
 

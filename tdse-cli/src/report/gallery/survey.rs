@@ -4,7 +4,7 @@ use super::super::figure::Up;
 use super::super::map::Shading;
 use super::super::parameter::{Axis, Values as Spread};
 use super::super::scan::{self, NumberMap, NumberScan, SpectrumScan};
-use super::{Drawn, MAP_DECADES, SPECTRUM, slice, summary_numbers};
+use super::{Drawn, MAP_DECADES, SPECTRUM, shared, slice, summary_numbers};
 use crate::store::{Contents, ScanAxis, ScanDimension, Values};
 
 /// Orders of magnitude above which a number is drawn logarithmically.
@@ -13,7 +13,10 @@ const WIDE: f64 = 100.0;
 pub(super) fn pictures(contents: &Contents) -> Vec<Drawn> {
     let owned: Vec<Parameter> = contents.scan().iter().map(Parameter::of).collect();
     match &owned[..] {
-        [one] => spectrum(contents, one).into_iter().chain(curves(contents, one)).collect(),
+        [one] => {
+            let spectra = SPECTRA.iter().filter_map(|asked| spectrum(contents, one, asked));
+            spectra.chain(curves(contents, one)).collect()
+        }
         [first, second] => maps(contents, first, second),
         _ => Vec::new(),
     }
@@ -68,33 +71,65 @@ impl Parameter {
     }
 }
 
-fn spectrum(contents: &Contents, parameter: &Parameter) -> Option<Drawn> {
-    let energies = slice(contents, "harmonics", "photon_energy");
+/// A spectrum that is drawn as a map over energy and parameter.
+struct Asked {
+    group: &'static str,
+    energy: &'static str,
+    axis: &'static str,
+    spectrum: &'static str,
+    quantity: &'static str,
+    caption: &'static str,
+}
+
+const SPECTRA: [Asked; 2] = [
+    Asked {
+        group: "harmonics",
+        energy: "photon_energy",
+        axis: "photon energy",
+        spectrum: "spectrum",
+        quantity: SPECTRUM,
+        caption: "Harmonic spectra",
+    },
+    Asked {
+        group: "photoelectrons",
+        energy: "energy",
+        axis: "kinetic energy",
+        spectrum: "yield",
+        quantity: "yield (1/eV)",
+        caption: "Photoelectron spectra",
+    },
+];
+
+fn spectrum(contents: &Contents, parameter: &Parameter, asked: &Asked) -> Option<Drawn> {
+    let energies = slice(contents, asked.group, asked.energy);
     if energies.is_empty() {
         return None;
     }
-    let energy = Axis { name: "photon energy", unit: "eV", values: Spread::Linear(energies) };
     Some(Drawn {
-        name: "harmonics".into(),
+        name: asked.group.into(),
         svg: scan::spectrum(&SpectrumScan {
             title: &contents.provenance.title,
             parameter: parameter.axis(),
-            energy,
-            spectrum: slice(contents, "harmonics", "spectrum"),
-            quantity: SPECTRUM,
+            energy: Axis { name: asked.axis, unit: "eV", values: Spread::Linear(energies) },
+            spectrum: slice(contents, asked.group, asked.spectrum),
+            quantity: asked.quantity,
             decades: 2.0 * MAP_DECADES,
         }),
-        caption: format!("Harmonic spectra against {}.", parameter.name),
-        alternative: "Map of the harmonic spectrum over photon energy and the scanned parameter.".into(),
+        caption: format!("{} against {}.", asked.caption, parameter.name),
+        alternative: format!(
+            "Map of {} over energy and the scanned parameter.",
+            asked.caption.to_lowercase()
+        ),
     })
 }
 
-/// Every number of the summary that any point has.
+/// Every number of the summary that is not the same at all points.
 fn numbers(contents: &Contents) -> impl Iterator<Item = (&'static str, String, &[f64])> {
     summary_numbers().filter_map(|(name, long_name, units)| {
         let values = slice(contents, "summary", name);
         let quantity = if units.is_empty() { long_name.into() } else { format!("{long_name} ({units})") };
-        values.iter().any(|v| v.is_finite()).then_some((name, quantity, values))
+        let there = values.iter().any(|v| v.is_finite());
+        (there && shared(values).is_none()).then_some((name, quantity, values))
     })
 }
 

@@ -140,6 +140,8 @@ pub static GROUPS: &[Group] = &[
                 &[],
                 "Cutoff by the classical law Ip + 3.17 Up, all pulses together",
             ),
+            value("ponderomotive_energy", "eV", &[], "Ponderomotive energy Up, all pulses together"),
+            value("first_photon_energy", "eV", &[], "Photon energy of the first pulse"),
             value("final_norm", NUMBER, &[], "Norm in the box at the end"),
             value("bound_population", NUMBER, &[], "Population of all bound states at the end"),
             value("initial_population", NUMBER, &[], "Population of the initial state at the end"),
