@@ -16,6 +16,7 @@
 
 pub mod absorber;
 pub mod choose;
+pub mod compare;
 pub mod cubic;
 pub mod elements;
 pub mod field;
@@ -24,6 +25,7 @@ pub mod outgoing;
 pub mod potential;
 pub mod problem;
 pub mod quantities;
+pub mod refine;
 pub mod simulate;
 pub mod spectrum;
 pub mod stationary;

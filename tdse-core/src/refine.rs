@@ -1,0 +1,315 @@
+//! How sure a number is: the run varied, one choice of numerics at a time, and errors by cause from what comes out.
+//!
+//! Two pure functions: [`variations`] turns numerics into finer ones, [`errors`] turns the values that each of them gave
+//! into error bars. Running them is the caller's business. [`model_atoms`] asks the other question, what the choice of
+//! the model potential does; its spread is no numerical error and is never mixed with one.
+
+mod models;
+
+pub use models::{ModelAtom, model_atoms};
+
+use crate::grid::{Axis, good_length};
+use crate::problem::{Absorber, Numerics, Scheme};
+use crate::step::resonant_step;
+
+/// Factor of the finer time step.
+const STEP: f64 = 0.5;
+/// Factor of the finer spacing.
+const SPACING: f64 = 0.75;
+/// Factor of the larger box, and of the wider absorber.
+const LARGER: f64 = 1.5;
+/// Part of the run by which it is made longer.
+const LONGER: f64 = 0.25;
+/// Part of the resonant step that a finer grid may use.
+const BELOW_RESONANCE: f64 = 0.9;
+/// Factor between an estimate from two runs and the bar: the finer run has an error of its own (common practice).
+const SAFETY: f64 = 1.5;
+
+/// A choice of numerics that is varied alone.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Cause {
+    /// The time step.
+    TimeStep = 0,
+    /// The grid's spacing.
+    Spacing = 1,
+    /// The length of the box.
+    Extent = 2,
+    /// The absorber's width.
+    Absorber = 3,
+    /// The field-free time after the field.
+    TrailingTime = 4,
+}
+
+impl Cause {
+    /// All of them with the word for each, which is that of the configuration.
+    pub const WORDS: [(Self, &'static str); 5] = [
+        (Self::TimeStep, "time_step"),
+        (Self::Spacing, "spacing"),
+        (Self::Extent, "extent"),
+        (Self::Absorber, "absorber"),
+        (Self::TrailingTime, "trailing_time"),
+    ];
+
+    /// The word for it.
+    pub fn word(self) -> &'static str {
+        Self::WORDS[self as usize].1
+    }
+}
+
+/// One run of several that differ in numerics alone.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Variation {
+    /// What was made finer: one choice, none (the run itself, always first), or everything (always last).
+    pub what: Varied,
+    /// The numerics.
+    pub numerics: Numerics,
+}
+
+/// What a variation makes finer.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Varied {
+    /// Nothing: the run as it is.
+    Nothing,
+    /// One choice, told from the run itself.
+    One(Cause),
+    /// One choice, told from the run with the finer time step, because the step would be too long beside it.
+    OneBesideStep(Cause),
+    /// Everything at once.
+    All,
+}
+
+/// The run itself, each choice made finer alone, and all together; `length` is the run's, a.u. of time.
+///
+/// The step is halved, the spacing taken to three quarters, box and absorber made half as large again (the wider
+/// absorber keeps the room between), the run made a quarter longer. Without an absorber there is none to widen.
+pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<Variation> {
+    let finer = |change: fn(&mut Numerics)| {
+        let mut finer = numerics.clone();
+        change(&mut finer);
+        finer
+    };
+    let step = finer(|n| n.time_step *= STEP);
+    let mut spacing = finer(|n| with_spacing(n, SPACING * n.grid.x.spacing));
+    let resonance = resonant_step(spacing.grid.x.largest_momentum(), binding_energy);
+    let is_slow = numerics.time_step < BELOW_RESONANCE * resonance;
+    if !is_slow {
+        spacing.time_step = step.time_step;
+    }
+    let beside = if is_slow { Varied::One } else { Varied::OneBesideStep };
+    let mut longer = numerics.clone();
+    longer.trailing_time += LONGER * length;
+    let mut all = vec![
+        Variation { what: Varied::Nothing, numerics: numerics.clone() },
+        Variation { what: Varied::One(Cause::TimeStep), numerics: step.clone() },
+        Variation { what: beside(Cause::Spacing), numerics: spacing },
+        Variation {
+            what: Varied::One(Cause::Extent),
+            numerics: finer(|n| with_extent(n, LARGER * n.grid.x.extent())),
+        },
+    ];
+    if numerics.absorber.width() > 0.0 {
+        all.push(Variation { what: Varied::One(Cause::Absorber), numerics: finer(widen) });
+    }
+    all.push(Variation { what: Varied::One(Cause::TrailingTime), numerics: longer.clone() });
+    let mut together = Numerics { time_step: step.time_step, ..longer };
+    with_spacing(&mut together, SPACING * numerics.grid.x.spacing);
+    with_extent(&mut together, LARGER * numerics.grid.x.extent());
+    if numerics.absorber.width() > 0.0 {
+        widen(&mut together);
+    }
+    all.push(Variation { what: Varied::All, numerics: together });
+    all
+}
+
+fn with_spacing(numerics: &mut Numerics, spacing: f64) {
+    let extent = numerics.grid.x.extent();
+    numerics.grid.x.spacing = spacing;
+    with_extent(numerics, extent);
+}
+
+fn with_extent(numerics: &mut Numerics, extent: f64) {
+    let spacing = numerics.grid.x.spacing;
+    let points = good_length((extent / spacing * (1.0 - 1e-12)).ceil() as usize);
+    numerics.grid.x = Axis { points, spacing };
+}
+
+fn widen(numerics: &mut Numerics) {
+    let width = numerics.absorber.width();
+    numerics.absorber = Absorber::Smooth { width: LARGER * width };
+    with_extent(numerics, numerics.grid.x.extent() + 2.0 * (LARGER - 1.0) * width);
+}
+
+/// How far a value's neighbours along its axis share its error: the difference of two runs vanishes by chance here and
+/// there, the error does not.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Neighbours {
+    /// Values stand alone.
+    None,
+    /// So many values to each side.
+    Within(usize),
+}
+
+/// Error bars of a set of values.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Errors {
+    /// One bar per value, in its unit; NaN where the value or one needed for it is not there.
+    pub bars: Vec<f64>,
+    /// What each cause alone contributes, one entry per value.
+    pub by_cause: Vec<(Cause, Vec<f64>)>,
+}
+
+impl Errors {
+    /// The cause that contributes most: whose contributions have the largest median beside the bars.
+    pub fn limiting(&self) -> Option<Cause> {
+        let share = |contributions: &[f64]| {
+            let shares = contributions.iter().zip(&self.bars).map(|(part, bar)| part / bar);
+            median(shares.filter(|share| share.is_finite()).collect())
+        };
+        let shares = self.by_cause.iter().filter_map(|(cause, parts)| Some((*cause, share(parts)?)));
+        shares.max_by(|a, b| a.1.total_cmp(&b.1)).map(|(cause, _)| cause)
+    }
+}
+
+fn median(mut values: Vec<f64>) -> Option<f64> {
+    values.sort_by(f64::total_cmp);
+    values.get(values.len() / 2).copied()
+}
+
+/// Error bars of values that each of [`variations`] gave: `values[i]` belongs to `runs[i]`, all of one length.
+///
+/// The contribution of a cause is the difference that making it finer made, for the time step extrapolated by the
+/// splitting's order (Richardson, Phil. Trans. R. Soc. A 210, 307 (1911)). The bar is 1.5 times the larger of the
+/// difference that everything together made and the root of the sum of squares of the contributions, and no smaller
+/// than the root mean square of the differences of its `neighbours`.
+///
+/// # Panics
+/// If the lengths differ, or the first run is not the one as it is.
+pub fn errors(runs: &[Variation], values: &[Vec<f64>], neighbours: Neighbours) -> Errors {
+    assert_eq!(runs.len(), values.len(), "one set of values per run");
+    assert!(values.iter().all(|set| set.len() == values[0].len()), "sets of one length");
+    assert_eq!(runs[0].what, Varied::Nothing, "the run itself comes first");
+    let step = runs.iter().position(|run| run.what == Varied::One(Cause::TimeStep));
+    let order = match runs[0].numerics.scheme {
+        Scheme::FourthOrder => 4,
+        Scheme::Strang => 2,
+    };
+    let (mut by_cause, mut together) = (Vec::new(), None);
+    for (run, set) in runs.iter().zip(values) {
+        match run.what {
+            Varied::Nothing => {}
+            Varied::One(Cause::TimeStep) => {
+                let share = 1.0 / (1.0 - STEP.powi(order));
+                by_cause.push((Cause::TimeStep, smoothed(&differences(set, &values[0], share), neighbours)));
+            }
+            Varied::One(cause) => {
+                by_cause.push((cause, smoothed(&differences(set, &values[0], 1.0), neighbours)));
+            }
+            Varied::OneBesideStep(cause) => {
+                let beside = &values[step.expect("a run with the finer step")];
+                by_cause.push((cause, smoothed(&differences(set, beside, 1.0), neighbours)));
+            }
+            Varied::All => together = Some(smoothed(&differences(set, &values[0], 1.0), neighbours)),
+        }
+    }
+    let bar = |i: usize| {
+        let sum = by_cause.iter().map(|(_, parts)| parts[i] * parts[i]).sum::<f64>().sqrt();
+        let all = together.as_ref().map_or(0.0, |all: &Vec<f64>| all[i]);
+        // `max` would drop a NaN.
+        SAFETY * if all > sum || all.is_nan() { all } else { sum }
+    };
+    let bars = (0..values[0].len()).map(bar).collect();
+    Errors { bars, by_cause }
+}
+
+fn differences(finer: &[f64], coarser: &[f64], share: f64) -> Vec<f64> {
+    finer.iter().zip(coarser).map(|(a, b)| share * (a - b).abs()).collect()
+}
+
+/// Each difference, or the root mean square of its neighbours' where that is larger. NaN stays, and takes no part.
+fn smoothed(differences: &[f64], neighbours: Neighbours) -> Vec<f64> {
+    let Neighbours::Within(reach) = neighbours else {
+        return differences.to_vec();
+    };
+    let around = |i: usize| {
+        let part = &differences[i.saturating_sub(reach)..(i + reach + 1).min(differences.len())];
+        let (sum, count) = part
+            .iter()
+            .filter(|d| d.is_finite())
+            .fold((0.0, 0.0f64), |(sum, count), d| (sum + d * d, count + 1.0));
+        (sum / count.max(1.0)).sqrt()
+    };
+    differences
+        .iter()
+        .enumerate()
+        .map(|(i, d)| if d.is_nan() { f64::NAN } else { d.max(around(i)) })
+        .collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::grid::Grid;
+    use crate::problem::Gauge;
+
+    fn numerics(time_step: f64, absorber: Absorber) -> Numerics {
+        Numerics {
+            grid: Grid { x: Axis { points: 768, spacing: 0.4 }, y: None },
+            time_step,
+            scheme: Scheme::FourthOrder,
+            gauge: Gauge::Length,
+            absorber,
+            trailing_time: 0.0,
+        }
+    }
+
+    #[test]
+    fn each_variation_is_finer_in_what_it_names_and_no_step_meets_a_resonance() {
+        for time_step in [0.05, 0.18] {
+            let coarse = numerics(time_step, Absorber::Smooth { width: 60.0 });
+            let runs = variations(&coarse, 0.5, 400.0);
+            assert_eq!(runs.len(), 7);
+            let (first, last) = (&runs[0].numerics, &runs[6].numerics);
+            assert_eq!(*first, coarse);
+            assert!(last.time_step <= 0.5 * time_step && last.grid.x.spacing <= 0.3 + 1e-12);
+            assert!(last.grid.x.extent() >= 1.5 * 307.2 && last.absorber.width() >= 90.0);
+            assert!(last.trailing_time >= 100.0);
+            for run in &runs {
+                let n = &run.numerics;
+                assert!(n.time_step < resonant_step(n.grid.x.largest_momentum(), 0.5), "{run:?}");
+                assert!(n.grid.x.extent() - 2.0 * n.absorber.width() >= 187.2 - 1e-9, "{run:?}");
+            }
+            let beside = runs.iter().any(|run| matches!(run.what, Varied::OneBesideStep(_)));
+            assert_eq!(beside, time_step > 0.1);
+        }
+        assert_eq!(variations(&numerics(0.1, Absorber::None), 0.5, 400.0).len(), 6);
+    }
+
+    /// Made-up values whose errors are known: 1 + c τ⁴ + d, with d gone on the finer grid.
+    #[test]
+    fn bars_hold_known_errors_and_name_their_cause() {
+        let runs = variations(&numerics(0.05, Absorber::None), 0.5, 400.0);
+        let value = |run: &Variation, step: f64, grid: f64| {
+            1.0 + step * (run.numerics.time_step / 0.05).powi(4)
+                + grid * if run.numerics.grid.x.spacing < 0.35 { 0.01 } else { 1.0 }
+        };
+        for (step, grid, limiting) in [(1e-3, 1e-5, Cause::TimeStep), (1e-6, -3e-4, Cause::Spacing)] {
+            let values: Vec<Vec<f64>> = runs.iter().map(|run| vec![value(run, step, grid); 3]).collect();
+            let found = errors(&runs, &values, Neighbours::Within(1));
+            let truth = (values[0][0] - 1.0).abs();
+            assert!(found.bars.iter().all(|bar| (truth..3.0 * truth).contains(bar)), "{truth}: {found:?}");
+            assert_eq!(found.limiting(), Some(limiting));
+        }
+    }
+
+    #[test]
+    fn a_difference_that_vanishes_by_chance_has_its_neighbours_bar() {
+        let runs = &variations(&numerics(0.05, Absorber::None), 0.5, 400.0)[..2];
+        let values = [vec![1.0; 5], vec![1.1, 0.9, 1.0, 1.1, 0.9]];
+        let alone = errors(runs, &values, Neighbours::None).bars[2];
+        let shared = errors(runs, &values, Neighbours::Within(2)).bars[2];
+        assert!(alone == 0.0 && shared > 0.1, "{alone} and {shared}");
+        let gap = [vec![1.0, f64::NAN, 1.0], vec![1.1, 1.1, 1.1]];
+        let found = errors(runs, &gap, Neighbours::Within(1)).bars;
+        assert!(found[1].is_nan() && found[0] > 0.1 && found[2] > 0.1, "{found:?}");
+    }
+}
