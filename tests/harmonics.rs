@@ -87,7 +87,8 @@ fn flat_top_orders(potential: Potential) -> (Vec<f64>, f64) {
     numerics.absorber = Absorber::Smooth { width: 60.0 };
     let (plan, state) = solve(&ground(potential, field(pulse)), &numerics);
     let all = acceleration(&plan, &state);
-    let schedule = Schedule { start: -8.0 * period, steps: 16 * 2048, ..plan.schedule().clone() };
+    let (start, end) = (-8.0 * period, 8.0 * period);
+    let schedule = Schedule { start, end, steps: 16 * 2048, ..plan.schedule().clone() };
     let plateau = &all[4 * 2048..=20 * 2048];
     let axis = EnergyAxis { step: frequency, points: 14 };
     (harmonics(plateau, &schedule, Window::Blackman, axis).spectrum(), state.series.norm[state.step])

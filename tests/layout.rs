@@ -75,6 +75,17 @@ fn point(photon: f64, cep: f64) -> Contents {
     result.insert("summary", "ionization_probability", 0.25 + cep / 100.0);
     result.insert("summary", "ionization_probability_errors", 1e-5);
     result.insert("summary", "cutoff_energy", 42.0 + cep);
+    result.insert("refinement", "cause", (0..5i64).collect::<Vec<_>>());
+    for name in ["harmonic_yields", "electron_spectrum", "cutoff_energy", "ionization_probability"] {
+        result.insert("refinement", name, some(&[5], cep));
+    }
+    result.remark("refinement", "causes", "0 time_step, 1 spacing, 2 extent, 3 absorber, 4 trailing_time");
+    result.insert("model_atoms", "model", vec![0i64, 1]);
+    result.insert("model_atoms", "order", vec![1i64, 2, 3]);
+    result.insert("model_atoms", "yield", some(&[2, 3], cep));
+    for name in ["cutoff_energy", "ionization_probability"] {
+        result.insert("model_atoms", name, some(&[2], cep));
+    }
     for name in [
         "initial_energy",
         "classical_cutoff",

@@ -6,6 +6,7 @@ pub mod command;
 pub mod config;
 pub mod derive;
 pub mod progress;
+pub mod refine;
 pub mod report;
 pub mod scan;
 pub mod store;

@@ -16,14 +16,14 @@ use crate::step::resonant_step;
 const STEP: f64 = 0.5;
 /// Factor of the finer spacing.
 const SPACING: f64 = 0.75;
-/// Factor of the larger box, and of the wider absorber.
-const LARGER: f64 = 1.5;
+/// Factor of the larger box, and of the wider absorber: half as much again shows too little of their errors.
+const LARGER: f64 = 2.0;
 /// Part of the run by which it is made longer.
 const LONGER: f64 = 0.25;
 /// Part of the resonant step that a finer grid may use.
 const BELOW_RESONANCE: f64 = 0.9;
 /// Factor between an estimate from two runs and the bar: the finer run has an error of its own (common practice).
-const SAFETY: f64 = 1.5;
+const SAFETY: f64 = 2.0;
 
 /// A choice of numerics that is varied alone.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -74,14 +74,15 @@ pub enum Varied {
     One(Cause),
     /// One choice, told from the run with the finer time step, because the step would be too long beside it.
     OneBesideStep(Cause),
-    /// Everything at once.
+    /// Everything but the trailing time, at once.
     All,
 }
 
-/// The run itself, each choice made finer alone, and all together; `length` is the run's, a.u. of time.
+/// The run itself, each choice made finer alone, and all but the trailing time together; `length` is the run's, a.u. of
+/// time. A longer run is left out of the last, since it stretches a window that spans the run.
 ///
-/// The step is halved, the spacing taken to three quarters, box and absorber made half as large again (the wider
-/// absorber keeps the room between), the run made a quarter longer. Without an absorber there is none to widen.
+/// The step is halved, the spacing taken to three quarters, box and absorber doubled (the wider absorber keeps
+/// the room between), the run made a quarter longer. Without an absorber there is none to widen.
 pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<Variation> {
     let finer = |change: fn(&mut Numerics)| {
         let mut finer = numerics.clone();
@@ -110,8 +111,8 @@ pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<
     if numerics.absorber.width() > 0.0 {
         all.push(Variation { what: Varied::One(Cause::Absorber), numerics: finer(widen) });
     }
-    all.push(Variation { what: Varied::One(Cause::TrailingTime), numerics: longer.clone() });
-    let mut together = Numerics { time_step: step.time_step, ..longer };
+    all.push(Variation { what: Varied::One(Cause::TrailingTime), numerics: longer });
+    let mut together = step;
     with_spacing(&mut together, SPACING * numerics.grid.x.spacing);
     with_extent(&mut together, LARGER * numerics.grid.x.extent());
     if numerics.absorber.width() > 0.0 {
@@ -178,9 +179,9 @@ fn median(mut values: Vec<f64>) -> Option<f64> {
 /// Error bars of values that each of [`variations`] gave: `values[i]` belongs to `runs[i]`, all of one length.
 ///
 /// The contribution of a cause is the difference that making it finer made, for the time step extrapolated by the
-/// splitting's order (Richardson, Phil. Trans. R. Soc. A 210, 307 (1911)). The bar is 1.5 times the larger of the
-/// difference that everything together made and the root of the sum of squares of the contributions, and no smaller
-/// than the root mean square of the differences of its `neighbours`.
+/// splitting's order (Richardson, Phil. Trans. R. Soc. A 210, 307 (1911)). A difference is no smaller than the median of the
+/// relative differences of its `neighbours` makes it. The bar is twice the larger of the difference that everything
+/// together made and the root of the sum of squares of the contributions.
 ///
 /// # Panics
 /// If the lengths differ, or the first run is not the one as it is.
@@ -194,21 +195,25 @@ pub fn errors(runs: &[Variation], values: &[Vec<f64>], neighbours: Neighbours) -
         Scheme::Strang => 2,
     };
     let (mut by_cause, mut together) = (Vec::new(), None);
+    let between = |finer: &[f64], coarser: &[f64], share: f64| {
+        let differences: Vec<f64> = finer.iter().zip(coarser).map(|(a, b)| share * (a - b).abs()).collect();
+        smoothed(&differences, &values[0], neighbours)
+    };
     for (run, set) in runs.iter().zip(values) {
         match run.what {
             Varied::Nothing => {}
             Varied::One(Cause::TimeStep) => {
                 let share = 1.0 / (1.0 - STEP.powi(order));
-                by_cause.push((Cause::TimeStep, smoothed(&differences(set, &values[0], share), neighbours)));
+                by_cause.push((Cause::TimeStep, between(set, &values[0], share)));
             }
             Varied::One(cause) => {
-                by_cause.push((cause, smoothed(&differences(set, &values[0], 1.0), neighbours)));
+                by_cause.push((cause, between(set, &values[0], 1.0)));
             }
             Varied::OneBesideStep(cause) => {
                 let beside = &values[step.expect("a run with the finer step")];
-                by_cause.push((cause, smoothed(&differences(set, beside, 1.0), neighbours)));
+                by_cause.push((cause, between(set, beside, 1.0)));
             }
-            Varied::All => together = Some(smoothed(&differences(set, &values[0], 1.0), neighbours)),
+            Varied::All => together = Some(between(set, &values[0], 1.0)),
         }
     }
     let bar = |i: usize| {
@@ -221,28 +226,19 @@ pub fn errors(runs: &[Variation], values: &[Vec<f64>], neighbours: Neighbours) -
     Errors { bars, by_cause }
 }
 
-fn differences(finer: &[f64], coarser: &[f64], share: f64) -> Vec<f64> {
-    finer.iter().zip(coarser).map(|(a, b)| share * (a - b).abs()).collect()
-}
-
-/// Each difference, or the root mean square of its neighbours' where that is larger. NaN stays, and takes no part.
-fn smoothed(differences: &[f64], neighbours: Neighbours) -> Vec<f64> {
+/// Each difference, or what the median of its neighbours' relative differences makes of its value where that is larger.
+/// What is not finite stays, and takes no part.
+fn smoothed(differences: &[f64], values: &[f64], neighbours: Neighbours) -> Vec<f64> {
     let Neighbours::Within(reach) = neighbours else {
         return differences.to_vec();
     };
+    let relative: Vec<f64> = differences.iter().zip(values).map(|(d, v)| d / v.abs()).collect();
     let around = |i: usize| {
-        let part = &differences[i.saturating_sub(reach)..(i + reach + 1).min(differences.len())];
-        let (sum, count) = part
-            .iter()
-            .filter(|d| d.is_finite())
-            .fold((0.0, 0.0f64), |(sum, count), d| (sum + d * d, count + 1.0));
-        (sum / count.max(1.0)).sqrt()
+        let part = &relative[i.saturating_sub(reach)..(i + reach + 1).min(relative.len())];
+        median(part.iter().copied().filter(|r| r.is_finite()).collect()).unwrap_or(0.0)
     };
-    differences
-        .iter()
-        .enumerate()
-        .map(|(i, d)| if d.is_nan() { f64::NAN } else { d.max(around(i)) })
-        .collect()
+    let one = |(i, &d): (usize, &f64)| if d.is_nan() { d } else { d.max(around(i) * values[i].abs()) };
+    differences.iter().enumerate().map(one).collect()
 }
 
 #[cfg(test)]
@@ -271,8 +267,8 @@ mod tests {
             let (first, last) = (&runs[0].numerics, &runs[6].numerics);
             assert_eq!(*first, coarse);
             assert!(last.time_step <= 0.5 * time_step && last.grid.x.spacing <= 0.3 + 1e-12);
-            assert!(last.grid.x.extent() >= 1.5 * 307.2 && last.absorber.width() >= 90.0);
-            assert!(last.trailing_time >= 100.0);
+            assert!(last.grid.x.extent() >= 2.0 * 307.2 && last.absorber.width() >= 120.0);
+            assert!(runs[5].numerics.trailing_time >= 100.0 && last.trailing_time == 0.0);
             for run in &runs {
                 let n = &run.numerics;
                 assert!(n.time_step < resonant_step(n.grid.x.largest_momentum(), 0.5), "{run:?}");

@@ -67,6 +67,9 @@ pub struct Schedule {
     pub steps: usize,
     /// Time when the field has ended, a.u.
     pub field_end: f64,
+    /// Time asked for, a.u.: the last sample lies less than a step behind it, the windows of spectra end there, so that
+    /// they do not change with the step.
+    pub end: f64,
 }
 
 impl Schedule {
@@ -75,7 +78,7 @@ impl Schedule {
         let (start, field_end) = field.interval();
         // A length within rounding of whole steps counts as whole.
         let steps = ((field_end + trailing_time - start) / time_step - 1e-9).ceil().max(1.0);
-        Self { start, time_step, steps: steps as usize, field_end }
+        Self { start, time_step, steps: steps as usize, field_end, end: field_end + trailing_time }
     }
 
     /// Time of sample `n`, a.u.

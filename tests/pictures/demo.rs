@@ -78,10 +78,14 @@ pub fn all() -> Vec<(&'static str, String)> {
 
 fn harmonics_of(photon: f64, cutoff: f64, end: f64, floor: f64) -> String {
     let energy = even(0.0, end, 6000);
+    let spectrum = invented_spectrum(&energy, photon, cutoff, floor);
+    // The error stays where the spectrum falls.
+    let errors: Vec<f64> = spectrum.iter().map(|s| 0.1 * s + 1e3 * floor).collect();
     harmonics::draw(&HarmonicPicture {
         title: "Invented data: phase dependence of the cutoff, 1030 nm compressor output on argon",
         photon_energy: &energy,
-        spectrum: &invented_spectrum(&energy, photon, cutoff, floor),
+        spectrum: &spectrum,
+        errors: &errors,
         quantity: "|a(ω)|² (a.u.)",
         fundamental: Some(photon),
         cutoff_law: Some(cutoff + 0.02 * end),
@@ -105,6 +109,7 @@ fn electron_pictures() -> [(&'static str, String); 2] {
         title: "Invented data: electrons above threshold",
         energy: &energy,
         both: &series(1.0),
+        errors: &[],
         left: &left,
         right: &right,
         peaks: Some(peaks),

@@ -9,6 +9,7 @@ mod disk;
 mod faults;
 mod fixture;
 mod kills;
+mod refining;
 mod same_bits;
 mod signals;
 mod talk;

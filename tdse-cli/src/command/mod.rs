@@ -1,11 +1,13 @@
 //! The command line: one file per command.
 
 pub mod check;
+pub mod compare;
 mod exit;
 pub mod gather;
 mod headline;
 pub mod options;
 pub mod output;
+pub mod refine;
 pub mod report;
 pub mod run;
 pub mod states;
@@ -17,7 +19,7 @@ use clap::error::ErrorKind;
 use clap::{Parser, Subcommand};
 
 pub use exit::{Exit, Trouble};
-use options::{Asked, Place, RunOptions};
+use options::{Asked, Place, RefineOptions, RunOptions};
 
 use crate::config::schema;
 use crate::scan::prepare::Prepared;
@@ -37,6 +39,10 @@ enum Command {
     Check(Asked),
     /// Compute a run or a scan, continue one that stopped, gather and draw the results
     Run(RunOptions),
+    /// Run, repeat with finer numerics, and put an error bar on every number
+    Refine(RefineOptions),
+    /// Compare two results number by number, or the values of one scan with its first
+    Compare(compare::Options),
     /// Say which points of a folder are done, doubtful, failed or missing
     Status(Place),
     /// Build result.h5 from the points that exist
@@ -58,6 +64,8 @@ pub fn run_program() -> ExitCode {
     let ended = match &command {
         Command::Check(asked) => printed(asked, |prepared| Ok(check::text(prepared, machine::jobs(None)))),
         Command::Run(options) => run::run(options),
+        Command::Refine(options) => refine::refine(options),
+        Command::Compare(options) => compare::compare(options),
         Command::Status(place) => status::status(&place.dir),
         Command::Gather(place) => gather::gather(&place.dir),
         Command::Report(options) => report::report(options),

@@ -51,6 +51,14 @@ pub struct RunOptions {
     /// Folder for the results; made where it is absent, continued where it holds the same request
     #[arg(long, value_name = "DIR")]
     pub out: PathBuf,
+    /// How to go about it.
+    #[command(flatten)]
+    pub effort: Effort,
+}
+
+/// How a request is carried out.
+#[derive(Debug, Args)]
+pub struct Effort {
     /// Points computed at once [default: the cores of the batch job, else of the machine]
     #[arg(long, value_name = "N", value_parser = jobs)]
     pub jobs: Option<NonZeroUsize>,
@@ -66,6 +74,17 @@ pub struct RunOptions {
     /// Say nothing but errors
     #[arg(long)]
     pub quiet: bool,
+}
+
+/// What `refine` takes.
+#[derive(Debug, Args)]
+pub struct RefineOptions {
+    /// What to compute, and how.
+    #[command(flatten)]
+    pub run: RunOptions,
+    /// Repeat with other model atoms of the same ionization energy instead, and give the spread
+    #[arg(long)]
+    pub model_atoms: bool,
 }
 
 fn jobs(text: &str) -> Result<NonZeroUsize, String> {

@@ -2,14 +2,16 @@
 
 use std::env;
 use std::io::{IsTerminal, stderr};
+use std::path::Path;
 use std::time::{Duration, Instant};
 
 use super::exit::{Exit, Trouble};
 use super::headline::headline;
-use super::options::RunOptions;
+use super::options::{Effort, RunOptions};
 use super::output::data;
 use super::report;
 use crate::progress::{Audience, Counts, Event, Reporter, Wish, voice};
+use crate::refine;
 use crate::scan::asked;
 use crate::scan::gathering::gather_all;
 use crate::scan::ledger::{Ledger, Standing};
@@ -19,7 +21,7 @@ use crate::store::{Claim, Folder, Request};
 
 /// A request in its folder, ready to be computed.
 struct Work<'a> {
-    options: &'a RunOptions,
+    effort: &'a Effort,
     prepared: Prepared,
     request: Request,
     ledger: Ledger,
@@ -37,10 +39,18 @@ const MARGIN: Duration = Duration::from_secs(20);
 /// # Errors
 /// Refused where the configuration or the folder is; incomplete where the machine does not let it finish.
 pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
-    let deadline = options
+    carry_out(options.asked.prepare()?, &options.out, &options.effort)
+}
+
+/// The same for a request that is ready.
+///
+/// # Errors
+/// As [`run`].
+pub fn carry_out(prepared: Prepared, out: &Path, effort: &Effort) -> Result<Exit, Trouble> {
+    let deadline = effort
         .within
         .and_then(|within| Instant::now().checked_add(within.saturating_sub(MARGIN.min(within / 10))));
-    let mut work = Work::begin(options, deadline)?;
+    let mut work = Work::begin(prepared, out, effort, deadline)?;
     let before = work.ledger.standings();
     work.ledger.write(&work.request, &before).map_err(Trouble::refused)?;
     work.compute(&before)?;
@@ -64,19 +74,23 @@ pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
 
 impl<'a> Work<'a> {
     /// Judges everything, then takes the folder.
-    fn begin(options: &'a RunOptions, deadline: Option<Instant>) -> Result<Self, Trouble> {
+    fn begin(
+        prepared: Prepared,
+        out: &Path,
+        effort: &'a Effort,
+        deadline: Option<Instant>,
+    ) -> Result<Self, Trouble> {
         let start_time = run::now();
-        let prepared = options.asked.prepare()?;
         let request = asked::request(&prepared).map_err(Trouble::refused)?;
-        let claimed = Folder::claim(&options.out, &request, &asked::inputs(&prepared));
+        let claimed = Folder::claim(out, &request, &asked::inputs(&prepared));
         let (folder, claim) = claimed.map_err(Trouble::refused)?;
         let audience = if stderr().is_terminal() { Audience::Terminal } else { Audience::Pipe };
-        let wish = if options.quiet { Wish::Quiet } else { Wish::Talk };
+        let wish = if effort.quiet { Wish::Quiet } else { Wish::Talk };
         let voice = voice(audience, env::var("TERM").ok().as_deref(), wish);
         let reporter = Reporter::new(voice, &folder.log()).map_err(Trouble::refused)?;
         let stop = Stop::on_signals().map_err(Trouble::refused)?.at(deadline);
         let ledger = Ledger::new(folder, &prepared);
-        let work = Self { options, prepared, request, ledger, reporter, stop, start_time };
+        let work = Self { effort, prepared, request, ledger, reporter, stop, start_time };
         match work.ledger.folder.sweep() {
             0 => {}
             count => work.note(format!("removed {count} unfinished files of processes that are gone")),
@@ -97,13 +111,13 @@ impl<'a> Work<'a> {
 
     /// Whether the point is asked of this process.
     fn is_own(&self, index: usize) -> bool {
-        self.options.shard.is_none_or(|shard| shard.holds(index))
+        self.effort.shard.is_none_or(|shard| shard.holds(index))
     }
 
     fn compute(&self, before: &[Standing]) -> Result<(), Trouble> {
-        let retry = if self.options.retry { Retry::Failed } else { Retry::Never };
-        let tasks = tasks(&self.prepared, &self.ledger, before, self.options.shard, retry);
-        let jobs = at_once(machine::jobs(self.options.jobs), &tasks);
+        let retry = if self.effort.retry { Retry::Failed } else { Retry::Never };
+        let tasks = tasks(&self.prepared, &self.ledger, before, self.effort.shard, retry);
+        let jobs = at_once(machine::jobs(self.effort.jobs), &tasks);
         self.reporter.tell(&Event::Began {
             version: env!("CARGO_PKG_VERSION"),
             points: self.prepared.points.len(),
@@ -163,7 +177,7 @@ impl<'a> Work<'a> {
             self.note(format!("{why}{missing} of {all} points are missing; continue with the same command"));
             return Ok(Exit::Incomplete);
         }
-        if self.options.shard.is_some() && missing > 0 {
+        if self.effort.shard.is_some() && missing > 0 {
             self.note(format!("{missing} of {all} points are left to other shards; the last one gathers"));
             return Ok(exit);
         }
@@ -171,6 +185,8 @@ impl<'a> Work<'a> {
         self.reporter.tell(&Event::Gathering);
         let go_on = || !self.stop.is_due();
         gather_all(&self.ledger, &self.request, standings, &self.start_time, go_on)
+            .map_err(Trouble::incomplete)?;
+        refine::restore(self.ledger.folder.root(), &self.prepared, &self.request)
             .map_err(Trouble::incomplete)?;
         let path = self.ledger.folder.result();
         let seconds = start.elapsed().as_secs_f64();

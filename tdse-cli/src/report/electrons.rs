@@ -1,6 +1,6 @@
 //! Photoelectrons of one run: the energy spectrum, both directions together and apart, and the momentum distribution.
 
-use super::figure::{Across, Comb, Curve, Figure, Mark, Origin, Panel, Trace, Up, draw as draw_figure};
+use super::figure::{Across, Band, Comb, Curve, Figure, Mark, Origin, Panel, Trace, Up, draw as draw_figure};
 use super::number::significant;
 use super::scale::{Kind, Range};
 use std::borrow::Cow;
@@ -17,6 +17,8 @@ pub struct ElectronPicture<'a> {
     pub energy: &'a [f64],
     /// Probability per eV, both directions together.
     pub both: &'a [f64],
+    /// Error bars of `both`; empty where there are none.
+    pub errors: &'a [f64],
     /// The same towards negative x; empty where directions were not told apart.
     pub left: &'a [f64],
     /// The same towards positive x; empty where directions were not told apart.
@@ -61,8 +63,10 @@ pub fn draw(picture: &ElectronPicture<'_>) -> String {
         y: Cow::Borrowed(y),
         trace: Trace::Line,
     };
+    let band = Band { errors: picture.errors, meaning: "Band: numerical error bars." };
     let together = Panel {
         marks: picture.peaks.map_or_else(Vec::new, |peaks| peaks.marks()),
+        band: (!picture.errors.is_empty()).then_some(band),
         comb: picture.peaks.map(|peaks| Comb { first: peaks.first(), step: peaks.photon }),
         ..Panel::new("yield (1/eV)", Up::Decades(DECADES), vec![curve("", picture.both)])
     };

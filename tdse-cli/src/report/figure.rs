@@ -68,12 +68,14 @@ pub struct Panel<'a> {
     pub marks: Vec<Mark>,
     /// Teeth along the frame's upper edge.
     pub comb: Option<Comb>,
+    /// Error bars of the first curve.
+    pub band: Option<Band<'a>>,
 }
 
 impl<'a> Panel<'a> {
     /// A panel of ordinary height without marks.
     pub fn new(name: impl Into<String>, up: Up, curves: Vec<Curve<'a>>) -> Self {
-        Self { name: name.into(), up, height: 230.0, curves, marks: Vec::new(), comb: None }
+        Self { name: name.into(), up, height: 230.0, curves, marks: Vec::new(), comb: None, band: None }
     }
 }
 
@@ -132,6 +134,15 @@ pub struct Comb {
     pub step: f64,
 }
 
+/// Error bars of a curve, drawn as a band around it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Band<'a> {
+    /// Bars in the unit of the curve; NaN where there is none.
+    pub errors: &'a [f64],
+    /// What the band means, for a footnote.
+    pub meaning: &'a str,
+}
+
 /// Where a marked value comes from.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Origin {
@@ -160,7 +171,8 @@ pub fn draw(figure: &Figure<'_>) -> String {
         };
         panel::draw(&mut sheet, panel, plan, &layout, (left, right));
     }
-    sheet.notes(&figure.notes);
+    let bands = figure.panels.iter().filter_map(|panel| panel.band.map(|band| band.meaning.to_owned()));
+    sheet.notes(&bands.chain(figure.notes.iter().cloned()).collect::<Vec<_>>());
     sheet.finish()
 }
 

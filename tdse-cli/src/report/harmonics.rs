@@ -1,6 +1,8 @@
 //! The harmonic spectrum of one run.
 
-use super::figure::{Across, Curve, Figure, Mark, Multiples, Origin, Panel, Trace, Up, draw as draw_figure};
+use super::figure::{
+    Across, Band, Curve, Figure, Mark, Multiples, Origin, Panel, Trace, Up, draw as draw_figure,
+};
 use super::number::significant;
 use super::scale::{Kind, Range};
 use std::borrow::Cow;
@@ -17,6 +19,8 @@ pub struct HarmonicPicture<'a> {
     pub photon_energy: &'a [f64],
     /// Spectrum in the unit that `quantity` names.
     pub spectrum: &'a [f64],
+    /// Error bars of the spectrum; empty where there are none.
+    pub errors: &'a [f64],
     /// Name of the spectrum with unit, such as `|a(ω)|² (a.u.)`.
     pub quantity: &'a str,
     /// Photon energy of the first pulse in eV, which the harmonic order counts.
@@ -44,8 +48,12 @@ pub fn draw(picture: &HarmonicPicture<'_>) -> String {
     let marks = marks.into_iter().filter_map(|(energy, name, origin)| {
         energy.map(|at| Mark { at, label: format!("{name} {} eV", significant(at, 4)), origin })
     });
-    let panel =
-        Panel { marks: marks.collect(), ..Panel::new(picture.quantity, Up::Decades(DECADES), vec![curve]) };
+    let band = Band { errors: picture.errors, meaning: "Band: numerical error bars." };
+    let panel = Panel {
+        marks: marks.collect(),
+        band: (!picture.errors.is_empty()).then_some(band),
+        ..Panel::new(picture.quantity, Up::Decades(DECADES), vec![curve])
+    };
     draw_figure(&Figure {
         title: picture.title,
         across: Across {

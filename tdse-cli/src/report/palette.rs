@@ -12,6 +12,8 @@ use std::sync::OnceLock;
 pub const INK: &str = "#1b2330";
 /// Secondary text.
 pub const SOFT: &str = "#566070";
+/// Error bands under a curve.
+pub const BAND: &str = "#f0c48e";
 /// Grid lines.
 pub const HAIR: &str = "#dfe3ea";
 

@@ -2,12 +2,12 @@
 
 use super::axes::{Frame, Side, TEXT, TICK, axis, hairlines};
 use super::ends::{self, End};
-use super::figure::{Above, Comb, Curve, Mark, Origin, Panel, Trace, Up};
+use super::figure::{Above, Band, Comb, Curve, Mark, Origin, Panel, Trace, Up};
 use super::font::{Weight, width};
-use super::palette::{INK, STYLES, Style, outline, style};
+use super::palette::{BAND, INK, STYLES, Style, outline, style};
 use super::scale::{Kind, Range, Scale};
 use super::sheet::{EDGE, Sheet};
-use super::svg::{Anchor, Lettering, Stroke};
+use super::svg::{Anchor, Lettering, Point, Stroke};
 use super::ticks::{Ticks, ticks};
 use super::trace::{inside, trace};
 
@@ -87,6 +87,13 @@ pub fn draw(
         marks(sheet, &rows, layout.across, outer, frame);
         if let Some(comb) = panel.comb {
             teeth(sheet, comb, layout.across, frame);
+        }
+        if let (Some(band), Some(curve)) = (panel.band, panel.curves.first()) {
+            sheet.svg.open("band");
+            for outline in around(curve, band, (layout.across, up), frame) {
+                sheet.svg.patch(&outline, BAND);
+            }
+            sheet.svg.close();
         }
         curves(sheet, panel, (layout.across, up), frame);
         axis(&mut sheet.svg, frame, Side::Left, up, &plan.ticks);
@@ -211,4 +218,44 @@ fn teeth(sheet: &mut Sheet, comb: Comb, across: Scale, frame: Frame) {
         sheet.svg.line((x, frame.top), (x, frame.top + TOOTH), Stroke::solid(STYLES[1].colour, 1.0));
     }
     sheet.svg.close();
+}
+
+/// Outlines of a band: one for every stretch where there are bars, there along the upper edge and back along the lower.
+/// What reaches beyond the frame, on a logarithmic axis also below zero, ends at its edge.
+fn around(curve: &Curve<'_>, band: Band<'_>, (across, up): (Scale, Scale), frame: Frame) -> Vec<Vec<Point>> {
+    let height = |value: f64| match up.place(value) {
+        place if place.is_finite() => place.clamp(frame.top, frame.bottom),
+        _ => frame.bottom,
+    };
+    let places: Vec<Option<[f64; 3]>> = curve
+        .x
+        .iter()
+        .zip(curve.y.iter().zip(band.errors))
+        .map(|(&x, (&y, &error))| {
+            let x = across.place(x);
+            let shown = (y + error).is_finite() && (frame.left..=frame.right).contains(&x);
+            shown.then(|| [x, height(y + error), height(y - error)])
+        })
+        .collect();
+    let stretches = places.chunk_by(|a, b| a.is_some() == b.is_some());
+    let outline = |stretch: &[Option<[f64; 3]>]| {
+        let columns = columns(stretch.iter().flatten().copied());
+        let upper = columns.iter().map(|column| (column[0], column[1]));
+        upper.chain(columns.iter().rev().map(|column| (column[0], column[2]))).collect()
+    };
+    stretches.filter(|stretch| stretch.len() > 1 && stretch[0].is_some()).map(outline).collect()
+}
+
+/// Places closer than half a unit joined: the highest upper and the lowest lower edge of them.
+fn columns(places: impl Iterator<Item = [f64; 3]>) -> Vec<[f64; 3]> {
+    let mut joined: Vec<[f64; 3]> = Vec::new();
+    for [x, high, low] in places {
+        match joined.last_mut() {
+            Some(last) if (x - last[0]).abs() < 0.5 => {
+                (last[1], last[2]) = (last[1].min(high), last[2].max(low));
+            }
+            _ => joined.push([x, high, low]),
+        }
+    }
+    joined
 }

@@ -104,6 +104,12 @@ impl Svg {
             writeln!(self.body, r##"<path fill="{fill}" stroke="#ffffff" stroke-width="0.6" d="{data}"/>"##);
     }
 
+    /// A filled patch without an edge.
+    pub fn patch(&mut self, outline: &[Point], fill: &str) {
+        let data: Vec<String> = outline.iter().map(|(x, y)| format!("{} {}", short(*x), short(*y))).collect();
+        let _ = writeln!(self.body, r#"<path fill="{fill}" d="M{}Z"/>"#, data.join("L"));
+    }
+
     /// Cells of one colour, given by path data in cell units inside [`Svg::open_cells`].
     pub fn cells(&mut self, data: &str, fill: &str) {
         let _ = writeln!(self.body, r#"<path fill="{fill}" d="{data}"/>"#);

@@ -23,7 +23,7 @@ use crate::config::{self, Files, Library, Request, identity};
 use crate::store;
 
 /// Raised whenever result bits change.
-pub const NUMERICS_VERSION: u32 = 1;
+pub const NUMERICS_VERSION: u32 = 2;
 
 /// A request whose every point is ready.
 #[derive(Clone, Debug)]

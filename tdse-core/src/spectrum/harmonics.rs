@@ -35,9 +35,9 @@ impl Window {
         }
     }
 
-    /// w at `time` of a run from 0 to `length`, a.u.
+    /// w at `time` of a run from 0 to `length`, a.u.; what lies behind counts as its end.
     pub fn weight(&self, time: f64, length: f64) -> f64 {
-        let u = time / length;
+        let u = (time / length).min(1.0);
         match self {
             Self::None => 1.0,
             Self::Hann => (PI * u).sin().powi(2),
@@ -107,7 +107,7 @@ pub fn harmonics(acceleration: &[f64], schedule: &Schedule, window: Window, axis
 /// a(t) w(t) τ, the ends halved.
 pub(super) fn windowed(acceleration: &[f64], schedule: &Schedule, window: Window) -> Vec<f64> {
     let (tau, last) = (schedule.time_step, schedule.steps);
-    let length = tau * last as f64;
+    let length = schedule.end - schedule.start;
     let weight =
         |n: usize| window.weight(n as f64 * tau, length) * if n == 0 || n == last { 0.5 } else { 1.0 };
     acceleration.iter().enumerate().map(|(n, a)| a * weight(n) * tau).collect()

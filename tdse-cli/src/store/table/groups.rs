@@ -126,6 +126,32 @@ pub static GROUPS: &[Group] = &[
         ],
     },
     Group {
+        name: "refinement",
+        title: "What each choice of numerics contributes to the errors",
+        signal: "harmonic_yields",
+        auxiliary: &["electron_spectrum"],
+        datasets: &[
+            count("cause", "Choice of numerics that was made finer"),
+            value("harmonic_yields", NUMBER, &["cause"], "Median relative error of the harmonic yields"),
+            value("electron_spectrum", NUMBER, &["cause"], "Median relative error of the electron spectrum"),
+            value("cutoff_energy", "eV", &["cause"], "Error of the measured cutoff"),
+            value("ionization_probability", NUMBER, &["cause"], "Error of the ionization probability"),
+        ],
+    },
+    Group {
+        name: "model_atoms",
+        title: "The same field on other model atoms of the same ionization energy",
+        signal: "ionization_probability",
+        auxiliary: &[],
+        datasets: &[
+            count("model", "Model atom: 0 the one asked for, then those that the attribute names"),
+            count("order", "Harmonic order"),
+            value("yield", "eV", &["model", "order"], "Energy radiated within half a photon of the order"),
+            value("cutoff_energy", "eV", &["model"], "Measured cutoff of the harmonic spectrum"),
+            value("ionization_probability", NUMBER, &["model"], "Ionization probability"),
+        ],
+    },
+    Group {
         name: "summary",
         title: "Headline numbers",
         signal: "ionization_probability",
