@@ -1,8 +1,9 @@
 //! What a scan costs beyond its physics: wall time per point for files, log and threads, and the memory of gathering.
 //!
 //! Ten thousand cheap points on all cores. Rounds of bare computing (the same plans and the same derived spectra,
-//! nothing written) and of `run` take turns, so that what else the machine does falls on both. The last line of each
-//! part is the result. `TDSE_BENCH_POINTS` makes it smaller.
+//! nothing written) and of `run` over the same points take turns, so that what else the machine does falls on both;
+//! the result is the median of the rounds' differences. A round is long enough that its end, where the disk is waited
+//! for, counts little. `TDSE_BENCH_POINTS` makes it smaller.
 
 use std::error::Error;
 use std::path::Path;
@@ -26,8 +27,8 @@ use tdse_core::simulate::{Plan, run as propagate};
 
 type Outcome<T> = Result<T, Box<dyn Error>>;
 
-/// Rounds of each kind.
-const ROUNDS: usize = 10;
+/// Points of a round.
+const ROUND: usize = 250;
 
 fn main() -> Outcome<()> {
     let points = env::var("TDSE_BENCH_POINTS").ok().and_then(|text| text.parse().ok()).unwrap_or(10_000);
@@ -53,24 +54,19 @@ fn main() -> Outcome<()> {
         stop: &stop,
         atoms: Atoms::new(),
     };
-    let (mut bare, mut whole) = ([0.0; 2], [0.0; 2]);
-    for round in all.chunks(points.div_ceil(ROUNDS)) {
+    let mut rounds = Vec::new();
+    for (number, round) in all.chunks(ROUND.min(points)).enumerate() {
         let chosen: Vec<&Point> = round.iter().map(|task| &prepared.points[task.points[0]]).collect();
-        add(&mut bare, || bare_points(&chosen, &shared.atoms, jobs))?;
-        add(&mut whole, || Ok(run::run(&shared, round, jobs)?))?;
+        let bare = || time(round.len(), || bare_points(&chosen, &shared.atoms, jobs));
+        let whole = || time(round.len(), || Ok(run::run(&shared, round, jobs)?));
+        // Each goes first in every second round.
+        rounds.push(if number % 2 == 0 {
+            Round { bare: bare()?, whole: whole()? }
+        } else {
+            Round { whole: whole()?, bare: bare()? }
+        });
     }
-    let each = |sum: [f64; 2]| sum.map(|seconds| seconds * 1e3 / points as f64);
-    let ([bare_wall, bare_core], [wall, core]) = (each(bare), each(whole));
-    println!(
-        "{points} points, {jobs} at once: bare {bare_wall:.3} ms of wall time a point, whole {wall:.3} ms"
-    );
-    println!("time of all cores: bare {bare_core:.3} ms a point, whole {core:.3} ms");
-    println!(
-        "added wall time: {:.3} ms a point ({:.1} % of {:.1} ms on one core)",
-        wall - bare_wall,
-        100.0 * (wall - bare_wall) / bare_core,
-        bare_core
-    );
+    print(&rounds, jobs);
     gathering(&out)
 }
 
@@ -120,13 +116,40 @@ fn bare_points(points: &[&Point], atoms: &Atoms, jobs: usize) -> Outcome<()> {
     Ok(())
 }
 
-/// Adds wall time and the cores' time of the work, s.
-fn add(sums: &mut [f64; 2], work: impl FnOnce() -> Outcome<()>) -> Outcome<()> {
+/// What a point took in a round, ms.
+#[derive(Clone, Copy)]
+struct Took {
+    wall: f64,
+    cores: f64,
+}
+
+/// A round of bare computing, and one of `run` over the same points.
+struct Round {
+    bare: Took,
+    whole: Took,
+}
+
+fn time(points: usize, work: impl FnOnce() -> Outcome<()>) -> Outcome<Took> {
     let (start, used) = (Instant::now(), cores_time()?);
     work()?;
-    sums[0] += start.elapsed().as_secs_f64();
-    sums[1] += cores_time()? - used;
-    Ok(())
+    let each = |seconds: f64| seconds * 1e3 / points as f64;
+    Ok(Took { wall: each(start.elapsed().as_secs_f64()), cores: each(cores_time()? - used) })
+}
+
+fn print(rounds: &[Round], jobs: usize) {
+    let median = |value: fn(&Round) -> f64| {
+        let mut values: Vec<f64> = rounds.iter().map(value).collect();
+        values.sort_by(f64::total_cmp);
+        values[values.len() / 2]
+    };
+    println!("medians of {} rounds, {jobs} points at once, ms a point:", rounds.len());
+    println!("  wall time: bare {:.3}, whole {:.3}", median(|r| r.bare.wall), median(|r| r.whole.wall));
+    println!("  all cores: bare {:.3}, whole {:.3}", median(|r| r.bare.cores), median(|r| r.whole.cores));
+    println!(
+        "  added: {:.3} of wall time, {:.3} of all cores",
+        median(|r| r.whole.wall - r.bare.wall),
+        median(|r| r.whole.cores - r.bare.cores)
+    );
 }
 
 /// Time that the cores have worked for this process, s: fields 14 and 15 of proc(5)'s stat, in ticks of 10 ms.

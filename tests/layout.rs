@@ -10,8 +10,8 @@ use hdf5_metno::filters::Filter;
 use hdf5_metno::types::VarLenUnicode;
 use ndarray::{Array1, Array2, ArrayD, Axis, IxDyn};
 use tdse_cli::store::{
-    Contents, Error, Gathering, Point, Provenance, ScanAxis, ScanDimension, Status, Values, gather, read,
-    read_groups, table, write,
+    Contents, Error, Gathering, Patterns, Point, Provenance, ScanAxis, ScanDimension, Status, Values, gather,
+    publish, read, read_groups, read_headline, table, write,
 };
 
 const PHOTON_ENERGIES: usize = 120;
@@ -165,6 +165,74 @@ fn what_is_written_comes_back_exactly() {
     }
 }
 
+/// Of one point of a scan: what differs between points is numbers, and texts of other lengths.
+fn point_of_scan(number: usize) -> Contents {
+    let mut result = plane_point();
+    spectra(&mut result, "models/three_step/harmonics", 1.55, number as f64);
+    result.insert("harmonics", "spectrum", some(&[2, 6], number as f64));
+    result.insert("summary", "status", (number % 2) as i64);
+    result.insert("summary", "reason", "the box is small".repeat(number % 3));
+    result.insert("summary", "cutoff_energy", if number == 2 { f64::NAN } else { number as f64 });
+    result.provenance.end_time = format!("2026-03-01T12:00:{number:02}Z");
+    result.provenance.configuration = format!("{{ \"note\": \"{}\" }}", "ω".repeat(700 * (number % 4)));
+    result
+}
+
+/// Every object of a file, with its attributes; of arrays also the shape and the type.
+fn skeleton(path: &Path) -> Vec<String> {
+    fn walk(group: &hdf5_metno::Group, found: &mut Vec<String>) {
+        found.push(format!("{} {:?}", group.name(), group.attr_names().unwrap()));
+        for name in group.member_names().unwrap() {
+            let Ok(array) = group.dataset(&name) else {
+                walk(&group.group(&name).unwrap(), found);
+                continue;
+            };
+            let (name, type_of) = (array.name(), array.dtype().unwrap().to_descriptor().unwrap());
+            found.push(format!("{name} {type_of:?} {:?} {:?}", array.shape(), array.attr_names().unwrap()));
+        }
+    }
+    let file = hdf5_metno::File::open(path).unwrap();
+    let mut found = Vec::new();
+    walk(&file.group("/").unwrap(), &mut found);
+    // The library lists them as they happen to lie in the file.
+    found.sort();
+    found
+}
+
+#[test]
+fn files_made_after_a_pattern_are_like_those_made_from_nothing() {
+    let folder = tempfile::tempdir().unwrap();
+    let mut patterns = Patterns::new();
+    let (alone, path) = (folder.path().join("alone.h5"), kept("copy.h5"));
+    for number in 0..9 {
+        // Now and then one that is not like those before.
+        let result = if number % 4 == 3 { plane_point() } else { point_of_scan(number) };
+        for published in publish(&[patterns.begin(&path, &result).unwrap()]) {
+            published.unwrap();
+        }
+        write(&alone, &result).unwrap();
+        assert_identical(&read(&path).unwrap(), &result);
+        assert_eq!(skeleton(&path), skeleton(&alone));
+        let [copied, plain] = [&path, &alone].map(|path| fs::metadata(path).unwrap().len());
+        assert!(copied <= plain + 16384, "{copied} bytes instead of {plain}");
+    }
+}
+
+#[test]
+fn a_point_that_cannot_be_written_leaves_the_pattern_as_it_was() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("point.h5");
+    let mut patterns = Patterns::new();
+    drop(patterns.begin(&path, &point_of_scan(0)).unwrap());
+    let mut bad = point_of_scan(1);
+    bad.provenance.input = "null\0byte".into();
+    let error = patterns.begin(&path, &bad).unwrap_err();
+    assert!(matches!(&error, Error::Write { path: named, .. } if *named == path), "{error}");
+    publish(&[patterns.begin(&path, &point_of_scan(2)).unwrap()]).remove(0).unwrap();
+    assert_identical(&read(&path).unwrap(), &point_of_scan(2));
+    assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 1, "no unfinished file is left");
+}
+
 #[test]
 fn every_dataset_of_the_table_is_in_the_files_of_these_tests() {
     let (line, plane) = (point(1.55, 0.0), plane_point());
@@ -186,6 +254,10 @@ fn single_groups_can_be_read() {
     let names: Vec<_> = part.groups().map(|(name, _)| name).collect();
     assert_eq!(names, ["models/strong_field/harmonics", "summary"]);
     assert_eq!(part.get("summary", "cutoff_energy"), whole.get("summary", "cutoff_energy"));
+    let headline = read_headline(&path).unwrap();
+    assert_eq!(headline.groups().map(|(name, _)| name).collect::<Vec<_>>(), ["summary"]);
+    assert_eq!(headline.get("summary", "cutoff_energy"), whole.get("summary", "cutoff_energy"));
+    assert_eq!(headline.provenance.configuration, whole.provenance.configuration);
 }
 
 fn scan_axis(name: &str, units: Option<&str>, values: impl Into<Values>) -> ScanAxis {
@@ -433,6 +505,8 @@ fn what_others_add_is_passed_over() {
     let file = hdf5_metno::File::open_rw(&path).unwrap();
     file.new_dataset_builder().with_data(&[1.0, 2.0]).create("entry/harmonics/sharpness").unwrap();
     file.create_group("entry/rainbows").unwrap();
+    file.create_group("entry/harmonics/by_colour").unwrap();
+    file.new_dataset_builder().with_data(&[1.0]).create("entry/remarks").unwrap();
     file.group("entry/harmonics").unwrap().new_attr::<f64>().create("rating").unwrap();
     file.close().unwrap();
     assert_identical(&read(&path).unwrap(), &original);

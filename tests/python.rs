@@ -51,9 +51,10 @@ fn xarray_selects_from_a_scan_by_value() -> Outcome<()> {
     run(program.args(["--set", scan, "--set", "/field/pulses/0/envelope/cycles=2"]))?;
     let python = python_with(&root.join("tests/python/requirements.txt"))?;
     let result = out.join("result.h5");
-    for script in ["open_everywhere.py", "select_by_value.py"] {
-        run(Command::new(&python).arg(root.join("tests/python").join(script)).arg(&result))?;
-    }
+    let scripts = root.join("tests/python");
+    run(Command::new(&python).arg(scripts.join("select_by_value.py")).arg(&result))?;
+    let points = point_files(&out.join("points"))?;
+    run(Command::new(&python).arg(scripts.join("open_everywhere.py")).arg(&result).args(points))?;
     Ok(())
 }
 

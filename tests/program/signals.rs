@@ -1,11 +1,11 @@
 //! Stopped by a signal, continued by the same command.
 
 use std::fs;
-use std::process::{Command, Stdio};
+use std::process::{Child, Command, Stdio};
 use std::thread::sleep;
-use std::time::{Duration, Instant};
+use std::time::{Duration, Instant, SystemTime};
 
-use serde_json::json;
+use serde_json::{Value, json};
 
 use crate::fixture::{Ended, Place, assert_same_bits, files, phases};
 
@@ -17,8 +17,8 @@ fn long(place: &Place) {
     place.write("scan.json", &scan);
 }
 
-/// Starts the scan, sends a signal when the first point is on disk, and waits for the end.
-fn stopped(place: &Place, out: &str, signal: &str) -> Ended {
+/// Starts the scan and waits until the first point is on disk.
+fn started(place: &Place, out: &str) -> Child {
     // Whoever runs the tests may ignore signals, and children inherit that.
     let mut command = Command::new("env");
     command.arg("--default-signal=HUP,INT,TERM").arg(env!("CARGO_BIN_EXE_tdse"));
@@ -33,6 +33,12 @@ fn stopped(place: &Place, out: &str, signal: &str) -> Ended {
         assert!(start.elapsed() < Duration::from_mins(2), "no point within two minutes");
         sleep(Duration::from_millis(5));
     }
+    child
+}
+
+/// Starts the scan, sends a signal when the first point is on disk, and waits for the end.
+fn stopped(place: &Place, out: &str, signal: &str) -> Ended {
+    let child = started(place, out);
     let kill = Command::new("kill").args([signal, &child.id().to_string()]).status().expect("kill");
     assert!(kill.success());
     let asked = Instant::now();
@@ -81,4 +87,30 @@ fn a_kill_leaves_whole_points_that_are_kept() {
     place.tdse("run scan.json --out out").with(0);
     assert_eq!(place.counts("out"), [8 - done, 0, done, 0]);
     assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
+}
+
+#[test]
+fn status_counts_the_processes_that_run() {
+    let place = Place::new();
+    long(&place);
+    let mut child = started(&place, "out");
+    let says = |words: &str| {
+        let text = place.tdse("status out").with(0).data;
+        assert!(text.contains(words), "no {words} in\n{text}");
+    };
+    says("with 2 points at once");
+    child.kill().expect("killed");
+    child.wait().expect("an end");
+    says("nothing is running");
+    // The same log as another machine would have left it: of a process out of sight only its age is known.
+    let log = files(&place.path("out/log")).pop().expect("a log");
+    let text = fs::read_to_string(&log).expect("a text");
+    let began = text.lines().find(|line| line.contains("began")).expect("a beginning");
+    let began: Value = serde_json::from_str(began).expect("JSON");
+    let process = began["process"].as_str().expect("what tells the process");
+    fs::write(&log, text.replace(process, "other.example-0badcafe-1")).expect("written");
+    says("with 2 points at once");
+    let old = SystemTime::now() - Duration::from_hours(1);
+    fs::File::options().write(true).open(&log).and_then(|log| log.set_modified(old)).expect("made old");
+    says("nothing is running");
 }

@@ -17,7 +17,7 @@ use crate::scan::gathering::gather_all;
 use crate::scan::ledger::{Ledger, Standing};
 use crate::scan::prepare::Prepared;
 use crate::scan::run::{self, Retry, Shared, Stop, at_once, machine, name, tasks};
-use crate::store::{Claim, Folder, Request};
+use crate::store::{Claim, Folder, Request, process_mark};
 
 /// A request in its folder, ready to be computed.
 struct Work<'a> {
@@ -33,6 +33,9 @@ struct Work<'a> {
 /// Of the time given by `--within`, what is left to write checkpoints and end: a tenth, at most this much. Points stop
 /// within 50 ms, and what waits for the disk is one result and one checkpoint per point at once.
 const MARGIN: Duration = Duration::from_secs(20);
+
+/// After a signal, looking at the points once more goes on for so long.
+const PATIENCE: Duration = Duration::from_secs(2);
 
 /// Runs, or continues.
 ///
@@ -51,10 +54,14 @@ pub fn carry_out(prepared: Prepared, out: &Path, effort: &Effort) -> Result<Exit
         .within
         .and_then(|within| Instant::now().checked_add(within.saturating_sub(MARGIN.min(within / 10))));
     let mut work = Work::begin(prepared, out, effort, deadline)?;
-    let before = work.ledger.standings();
+    let Some(before) = work.ledger.standings_while(|| work.stop.signal().is_none()) else {
+        return Ok(work.left());
+    };
     work.ledger.write(&work.request, &before).map_err(Trouble::refused)?;
     work.compute(&before)?;
-    let standings = work.ledger.standings_after(before);
+    let patience = Instant::now() + PATIENCE;
+    let go_on = || work.stop.signal().is_none() || Instant::now() < patience;
+    let Some(standings) = work.ledger.standings_after(before, go_on) else { return Ok(work.left()) };
     let counts = work.counts(&standings);
     let signal = work.stop.signal();
     work.reporter.tell(&Event::Ended { counts, signal: signal.map(run::Signal::name) });
@@ -109,6 +116,14 @@ impl<'a> Work<'a> {
         self.reporter.tell(&Event::Noted { text });
     }
 
+    /// Leaves at a signal without having looked at all points; `points.csv` stays as it was.
+    fn left(&self) -> Exit {
+        let Some(signal) = self.stop.signal() else { return Exit::Incomplete };
+        self.reporter.tell(&Event::Ended { counts: self.reporter.counts(), signal: Some(signal.name()) });
+        self.note(format!("stopped by {}: continue with the same command", signal.name()));
+        Exit::Stopped(signal)
+    }
+
     /// Whether the point is asked of this process.
     fn is_own(&self, index: usize) -> bool {
         self.effort.shard.is_none_or(|shard| shard.holds(index))
@@ -120,6 +135,7 @@ impl<'a> Work<'a> {
         let jobs = at_once(machine::jobs(self.effort.jobs), &tasks);
         self.reporter.tell(&Event::Began {
             version: env!("CARGO_PKG_VERSION"),
+            process: process_mark(),
             points: self.prepared.points.len(),
             jobs,
             steps: tasks.iter().map(|task| task.cost.steps).max().unwrap_or(0),

@@ -3,17 +3,21 @@
 use std::fmt::Write as _;
 use std::fs;
 use std::path::Path;
+use std::time::Duration;
 
 use serde_json::Value;
 
 use super::exit::{Exit, Trouble};
 use super::output::data;
 use crate::scan::ledger::{Ledger, Standing};
-use crate::store::Folder;
+use crate::store::{Folder, may_run};
 use crate::text::{Table, duration};
 
 /// Most reasons listed of one kind; `points.csv` has them all.
 const MOST: usize = 20;
+
+/// A process elsewhere whose log has said nothing for so long is not counted as running: three checkpoints are overdue.
+const SILENCE: Duration = Duration::from_mins(30);
 
 /// Prints how far a folder has come, also while others compute.
 ///
@@ -67,7 +71,7 @@ fn reasons(ledger: &Ledger, standings: &[Standing]) -> String {
 struct Pace {
     /// Mean time of a point, s.
     seconds: f64,
-    /// Points at once of the processes that have not said that they ended.
+    /// Points at once of the processes that run.
     running: u64,
 }
 
@@ -76,11 +80,15 @@ impl Pace {
     fn of(folder: &Path) -> Option<Self> {
         let (mut total, mut points, mut running) = (0.0, 0_u32, 0);
         for entry in fs::read_dir(folder).ok()?.flatten() {
-            let text = fs::read_to_string(entry.path()).unwrap_or_default();
-            let mut jobs = 0;
+            let path = entry.path();
+            let text = fs::read_to_string(&path).unwrap_or_default();
+            let (mut jobs, mut process) = (0, String::new());
             for event in text.lines().filter_map(|line| serde_json::from_str::<Value>(line).ok()) {
                 match event["event"].as_str() {
-                    Some("began") => jobs = event["jobs"].as_u64().unwrap_or(1),
+                    Some("began") => {
+                        jobs = event["jobs"].as_u64().unwrap_or(1);
+                        event["process"].as_str().unwrap_or_default().clone_into(&mut process);
+                    }
                     Some("ended") => jobs = 0,
                     Some("propagated") => {
                         total += event["seconds"].as_f64().unwrap_or(0.0);
@@ -89,7 +97,9 @@ impl Pace {
                     _ => {}
                 }
             }
-            running += jobs;
+            if jobs > 0 && may_run(&process, &path, SILENCE) {
+                running += jobs;
+            }
         }
         (points > 0).then(|| Self { seconds: total / f64::from(points), running })
     }
@@ -97,7 +107,7 @@ impl Pace {
     fn left(&self, missing: usize) -> String {
         let work = self.seconds * missing as f64;
         match self.running {
-            0 => format!("about {} left on one core; no log says that anything is running", duration(work)),
+            0 => format!("about {} left on one core; nothing is running", duration(work)),
             jobs => format!("about {} left with {jobs} points at once", duration(work / jobs as f64)),
         }
     }

@@ -21,6 +21,8 @@ pub enum Event {
     Began {
         /// Version of the program.
         version: &'static str,
+        /// What tells the process from all others.
+        process: String,
         /// Points of the request.
         points: usize,
         /// Points at once.

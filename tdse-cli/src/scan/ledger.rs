@@ -129,7 +129,7 @@ impl Ledger {
     pub fn standing(&self, index: usize) -> Standing {
         let (row, path) = (&self.rows[index], self.path(index));
         if path.exists() {
-            let read = store::read_groups(&path, &["summary"]);
+            let read = store::read_headline(&path);
             let found =
                 read.map_err(|error| error.to_string()).and_then(|contents| self.judge(row, &contents));
             return found.unwrap_or_else(Standing::Unusable);
@@ -142,10 +142,15 @@ impl Ledger {
         (0..self.rows.len()).map(|index| self.standing(index)).collect()
     }
 
+    /// All of them; none where `go_on` says no before one.
+    pub fn standings_while(&self, go_on: impl Fn() -> bool) -> Option<Vec<Standing>> {
+        (0..self.rows.len()).map(|index| go_on().then(|| self.standing(index))).collect()
+    }
+
     /// The same, looking again only at those that were not there.
-    pub fn standings_after(&self, before: Vec<Standing>) -> Vec<Standing> {
+    pub fn standings_after(&self, before: Vec<Standing>, go_on: impl Fn() -> bool) -> Option<Vec<Standing>> {
         let again = |(index, standing): (usize, Standing)| {
-            if standing.is_there() { standing } else { self.standing(index) }
+            go_on().then(|| if standing.is_there() { standing } else { self.standing(index) })
         };
         before.into_iter().enumerate().map(again).collect()
     }

@@ -1,6 +1,7 @@
 //! Files that appear whole or not at all.
 
 use std::collections::BTreeSet;
+use std::io::Write;
 use std::path::{Path, PathBuf};
 use std::{env, fs, thread};
 
@@ -39,6 +40,19 @@ impl Unfinished {
         pause(Place::Write);
         drop(root);
         file.close().map_err(Error::write(path))?;
+        Ok(this)
+    }
+
+    /// A file of these bytes that is to stand at `path`.
+    pub(super) fn of_bytes(path: &Path, bytes: &[u8]) -> Result<Self, Error> {
+        let this = Self::beside(path);
+        let (first, rest) = bytes.split_at(bytes.len() / 2);
+        let written = fs::File::create(&this.partial).and_then(|mut file| {
+            file.write_all(first)?;
+            pause(Place::Write);
+            file.write_all(rest)
+        });
+        written.map_err(Error::io("write", &this.partial))?;
         Ok(this)
     }
 
@@ -98,9 +112,7 @@ pub(super) fn create(path: &Path, fill: impl FnOnce(&Node) -> Result<(), Error>)
 
 /// Makes a file of these bytes at `path`, in the same way.
 pub(super) fn write(path: &Path, bytes: &[u8]) -> Result<(), Error> {
-    let file = Unfinished::beside(path);
-    fs::write(&file.partial, bytes).map_err(Error::io("write", &file.partial))?;
-    publish(&[file]).into_iter().collect()
+    publish(&[Unfinished::of_bytes(path, bytes)?]).into_iter().collect()
 }
 
 /// Makes the folder that a file lies in.

@@ -7,7 +7,7 @@ use super::contents::Contents;
 use super::error::Error;
 use super::pause::{Place, pause};
 use super::provenance::Provenance;
-use super::read::{read, read_where};
+use super::read::{read, read_arrays};
 use super::stack::Stack;
 use super::table::{self, Status};
 use super::write::write;
@@ -78,7 +78,7 @@ pub fn gather_while(path: &Path, gathering: Gathering, go_on: impl Fn() -> bool)
             match point {
                 Point::File(file) => {
                     let is_stacked = |path: &str| table::group(path).is_some_and(|group| !group.is_series());
-                    stack.add(&index, file, &read_where(file, is_stacked)?)?;
+                    stack.add(&index, file, &read_arrays(file, is_stacked)?)?;
                 }
                 Point::Absent { .. } => stack.add(&index, path, &absent(provenance, point))?,
             }

@@ -16,9 +16,14 @@ const SILENCE: Duration = Duration::from_hours(24);
 /// `NAME.HOST-KERNEL-PID.partial` in the same folder, so that no two processes share it and renaming stays on one disk.
 pub(super) fn beside(path: &Path) -> PathBuf {
     let mut name = path.file_name().map_or_else(OsString::new, OsString::from);
-    let kernel = kernel().unwrap_or_else(|| "unknown".into());
-    name.push(format!(".{}-{kernel}-{}.partial", host_name(), process::id()));
+    name.push(format!(".{}.partial", process_mark()));
     path.with_file_name(name)
+}
+
+/// What tells this process from all others: `HOST-KERNEL-PID`.
+pub fn process_mark() -> String {
+    let kernel = kernel().unwrap_or_else(|| "unknown".into());
+    format!("{}-{kernel}-{}", host_name(), process::id())
 }
 
 /// Whether this is the name of a file that is not finished.
@@ -54,19 +59,25 @@ fn is_abandoned(path: &Path) -> bool {
     if !is_partial(&name) {
         return false;
     }
-    let mut marks = name.trim_end_matches(".partial").rsplit('-');
+    !may_run(name.trim_end_matches(".partial"), path, SILENCE)
+}
+
+/// Whether the process with this mark runs; of one that is out of sight, whether `path`, which it writes, has changed
+/// within `silence`.
+pub fn may_run(mark: &str, path: &Path, silence: Duration) -> bool {
+    let mut marks = mark.rsplit('-');
     let (process, mark) = (marks.next().and_then(|text| text.parse::<u32>().ok()), marks.next());
     match process {
         Some(process) if mark.is_some() && mark == kernel().as_deref() => {
-            !Path::new("/proc").join(process.to_string()).exists()
+            Path::new("/proc").join(process.to_string()).exists()
         }
-        _ => is_silent(path),
+        _ => !is_silent(path, silence),
     }
 }
 
-fn is_silent(path: &Path) -> bool {
+fn is_silent(path: &Path, limit: Duration) -> bool {
     let written = fs::metadata(path).and_then(|data| data.modified());
-    written.ok().and_then(|time| time.elapsed().ok()).is_some_and(|silence| silence > SILENCE)
+    written.ok().and_then(|time| time.elapsed().ok()).is_some_and(|silence| silence > limit)
 }
 
 #[cfg(test)]

@@ -8,7 +8,7 @@ use std::time::Duration;
 /// Where to pause.
 #[derive(Clone, Copy)]
 pub(super) enum Place {
-    /// Before a file is closed.
+    /// Before a file is whole.
     Write,
     /// Before a point is gathered.
     Gather,

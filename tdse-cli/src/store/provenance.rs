@@ -40,6 +40,27 @@ impl Provenance {
     ///
     /// If the name of an input holds a `/`.
     pub(super) fn write(&self, entry: &Node) -> Result<(), Failure> {
+        entry.create("provenance", "NXcollection")?;
+        if !self.inputs.is_empty() {
+            entry.create("provenance/inputs", "NXcollection")?;
+        }
+        for (place, long_name, text) in self.texts() {
+            entry.write(&place, &text.into())?.set("long_name", &Attribute::Text(long_name))?;
+        }
+        Ok(())
+    }
+
+    /// Writes the texts over those of `known`, which has inputs of the same names, where they differ.
+    pub(super) fn overwrite(&self, known: &Self, entry: &Node) -> Result<(), Failure> {
+        let pairs = self.texts().into_iter().zip(known.texts());
+        for ((place, _, text), _) in pairs.filter(|((_, _, text), (_, _, known))| text != known) {
+            entry.overwrite(&place, &text.into())?;
+        }
+        Ok(())
+    }
+
+    /// Every text with its place below `/entry` and words for it.
+    fn texts(&self) -> Vec<(String, &'static str, &str)> {
         let Self {
             title,
             start_time,
@@ -53,26 +74,30 @@ impl Provenance {
             configuration,
             inputs,
         } = self;
-        write_text(entry, "title", "Title", title)?;
-        write_text(entry, "start_time", "Start of the calculation", start_time)?;
-        write_text(entry, "end_time", "End of the calculation", end_time)?;
-        let node = entry.create("provenance", "NXcollection")?;
-        write_text(&node, "version", "Version of the program", version)?;
-        write_text(&node, "commit", "Commit the program was built from", commit)?;
-        write_text(&node, "instruction_set", "Instruction set used", instruction_set)?;
-        write_text(&node, "host_cores", "Cores of the machine", host_cores)?;
-        write_text(&node, "input", "Configuration as written", input)?;
-        write_text(&node, "overrides", "Changes by the command line", overrides)?;
-        write_text(&node, "configuration", "Configuration as resolved", configuration)?;
-        if inputs.is_empty() {
-            return Ok(());
-        }
-        let node = node.create("inputs", "NXcollection")?;
-        for (name, text) in inputs {
+        let fixed = [
+            ("title", "Title", title),
+            ("start_time", "Start of the calculation", start_time),
+            ("end_time", "End of the calculation", end_time),
+            ("provenance/version", "Version of the program", version),
+            ("provenance/commit", "Commit the program was built from", commit),
+            ("provenance/instruction_set", "Instruction set used", instruction_set),
+            ("provenance/host_cores", "Cores of the machine", host_cores),
+            ("provenance/input", "Configuration as written", input),
+            ("provenance/overrides", "Changes by the command line", overrides),
+            ("provenance/configuration", "Configuration as resolved", configuration),
+        ];
+        let fixed = fixed.map(|(place, long_name, text)| (place.to_owned(), long_name, text.as_str()));
+        let inputs = inputs.iter().map(|(name, text)| {
             assert!(!name.contains('/'), "name of an input with a slash: {name}");
-            write_text(&node, name, "Input file", text)?;
-        }
-        Ok(())
+            (format!("provenance/inputs/{name}"), "Input file", text.as_str())
+        });
+        fixed.into_iter().chain(inputs).collect()
+    }
+
+    /// Reads the resolved configuration, which comes back with nothing else.
+    pub(super) fn read_configuration(entry: &Node) -> Result<Self, Failure> {
+        let configuration = read_text(&entry.open("provenance")?, "configuration")?;
+        Ok(Self { configuration, ..Self::default() })
     }
 
     /// Reads the texts back; what is not there is empty.
@@ -100,10 +125,6 @@ impl Provenance {
             inputs,
         })
     }
-}
-
-fn write_text(node: &Node, name: &str, long_name: &str, text: &str) -> Result<(), Failure> {
-    node.write(name, &text.into())?.set("long_name", &Attribute::Text(long_name))
 }
 
 fn read_text(node: &Node, name: &str) -> Result<String, Failure> {

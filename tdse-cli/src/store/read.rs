@@ -21,14 +21,30 @@ pub fn read_groups(path: &Path, groups: &[&str]) -> Result<Contents, Error> {
     read_where(path, |group| groups.contains(&group))
 }
 
-/// Reads the provenance and the groups that `wanted` accepts by their path.
-pub(super) fn read_where(path: &Path, wanted: impl Fn(&str) -> bool) -> Result<Contents, Error> {
+/// Reads the resolved configuration and the group `summary` only: what tells how far a point has come.
+pub fn read_headline(path: &Path) -> Result<Contents, Error> {
+    take(path, Provenance::read_configuration, |group| group == "summary")
+}
+
+/// Reads the groups that `wanted` accepts by their path, no provenance.
+pub(super) fn read_arrays(path: &Path, wanted: impl Fn(&str) -> bool) -> Result<Contents, Error> {
+    take(path, |_| Ok(Provenance::default()), wanted)
+}
+
+fn read_where(path: &Path, wanted: impl Fn(&str) -> bool) -> Result<Contents, Error> {
+    take(path, Provenance::read, wanted)
+}
+
+fn take(
+    path: &Path,
+    provenance: impl Fn(&Node) -> Result<Provenance, Failure>,
+    wanted: impl Fn(&str) -> bool,
+) -> Result<Contents, Error> {
     let file = open(path)?;
     let take = || {
         let entry = file.root()?.open("entry")?;
-        let provenance = Provenance::read(&entry)?;
         let scan = read_scan(&entry)?;
-        let mut contents = Contents::of_scan(provenance, scan).map_err(|error| error.to_string())?;
+        let mut contents = Contents::of_scan(provenance(&entry)?, scan).map_err(|error| error.to_string())?;
         for group in data_groups(&entry)?.iter().filter(|group| wanted(group)) {
             read_group(&entry, group, &mut contents)?;
         }
@@ -65,11 +81,11 @@ fn open(path: &Path) -> Result<File, Error> {
 
 /// The groups of the layout that the file has, in alphabetical order.
 fn data_groups(entry: &Node) -> Result<Vec<String>, Failure> {
-    let mut paths = entry.groups()?;
+    let mut paths = entry.names()?;
     if entry.has("models") {
         let models = entry.open("models")?;
         for model in models.groups()? {
-            let groups = models.open(&model)?.groups()?;
+            let groups = models.open(&model)?.names()?;
             paths.extend(groups.iter().map(|group| format!("models/{model}/{group}")));
         }
     }
@@ -119,7 +135,7 @@ fn join(scan: &mut Vec<ScanDimension>, axis: ScanAxis, place: &[i64]) -> Result<
 /// Reads what the layout knows of one group; what others added is passed over.
 fn read_group(entry: &Node, path: &str, contents: &mut Contents) -> Result<(), Failure> {
     let group = entry.open(path)?;
-    let mut names = group.arrays()?;
+    let mut names = group.names()?;
     names.retain(|name| Member::find(path, name).is_some());
     names.sort_by_key(|name| table::group(path).and_then(|group| group.position(name)).unwrap_or(usize::MAX));
     for name in names {

@@ -34,6 +34,11 @@ impl Values {
         }
     }
 
+    /// The number of elements.
+    pub(super) fn len(&self) -> usize {
+        self.shape().iter().product()
+    }
+
     /// Whether both are the same to the last bit, so that NaN equals itself.
     pub fn is_identical(&self, other: &Self) -> bool {
         match (self, other) {

@@ -2,7 +2,6 @@
 
 use std::path::Path;
 
-use super::atomic::Unfinished;
 use super::contents::{Contents, Group};
 use super::error::Error;
 use super::group::GroupWriter;
@@ -17,12 +16,8 @@ pub fn write(path: &Path, contents: &Contents) -> Result<(), Error> {
     atomic::create(path, |root| put(root, contents).map_err(Error::write(path)))
 }
 
-/// The same in two steps: all but the name; [`publish()`](super::publish()) gives that to many files at once.
-pub fn begin(path: &Path, contents: &Contents) -> Result<Unfinished, Error> {
-    Unfinished::hdf5(path, |root| put(root, contents).map_err(Error::write(path)))
-}
-
-fn put(root: &Node, contents: &Contents) -> Result<(), Failure> {
+/// Fills a file.
+pub(super) fn put(root: &Node, contents: &Contents) -> Result<(), Failure> {
     let entry = entry::begin(root, &contents.provenance, contents.scan())?;
     for (path, group) in contents.groups().filter(|(path, group)| has_values(path, group)) {
         let mut writer = GroupWriter::new(&entry, path, contents.scan())?;
@@ -34,7 +29,8 @@ fn put(root: &Node, contents: &Contents) -> Result<(), Failure> {
     entry::finish(&entry)
 }
 
-fn has_values(path: &str, group: &Group) -> bool {
+/// Whether the file has the group.
+pub(super) fn has_values(path: &str, group: &Group) -> bool {
     let value = |name: &String| {
         let found = table::group(path).and_then(|group| group.dataset(name));
         found.is_none_or(|dataset| dataset.role == Role::Value)

@@ -9,7 +9,7 @@ use super::Shared;
 use super::compute::{How, now};
 use super::tasks::Task;
 use crate::progress::Event;
-use crate::store::{self, Contents, FailedPoint, Unfinished};
+use crate::store::{self, Contents, FailedPoint, Patterns, Unfinished};
 
 /// Most files that are forced to the disk together, and most that wait for it.
 const BATCH: usize = 16;
@@ -38,16 +38,17 @@ pub fn write_all(shared: &Shared, parcels: Receiver<Parcel>) {
     let (sender, written) = sync_channel(BATCH);
     thread::scope(|scope| {
         scope.spawn(move || publish_all(shared, &written));
+        let mut writer = Writer { shared, patterns: Patterns::new(), sender };
         for parcel in parcels {
             let done = match &parcel.result {
-                Ok((how, results)) => write(shared, &parcel, *how, results, &sender),
+                Ok((how, results)) => writer.write(&parcel, *how, results),
                 Err(reason) => keep_failure(shared, &parcel, reason),
             };
             if let Err(error) = done {
                 refuse(shared, parcel.task.points[0], &error);
             }
         }
-        drop(sender);
+        drop(writer);
     });
 }
 
@@ -56,31 +57,35 @@ fn refuse(shared: &Shared, index: usize, error: &store::Error) {
     shared.stop.give_up();
 }
 
-fn write(
-    shared: &Shared,
-    parcel: &Parcel,
-    how: How,
-    results: &[Contents],
-    sender: &SyncSender<Written>,
-) -> Result<(), store::Error> {
-    let mut seconds = parcel.seconds;
-    for (&index, contents) in parcel.task.points.iter().zip(results) {
-        let path = shared.ledger.path(index);
-        let point = shared.name(index);
-        shared.reporter.tell(&Event::Writing { point: point.clone() });
-        shared.ledger.folder.make_room(&path)?;
-        let file = store::begin(&path, contents)?;
-        // Further files of a propagation are derived from it.
-        let event = if how == How::Propagated && index == parcel.task.points[0] {
-            Event::Propagated { point, seconds, estimate: parcel.task.cost.seconds }
-        } else {
-            Event::Derived { point, seconds }
-        };
-        seconds = 0.0;
-        // The other thread leaves only after this one.
-        let _ = sender.send(Written { index, file, event });
+/// Writes files all but their names.
+struct Writer<'a> {
+    shared: &'a Shared<'a>,
+    patterns: Patterns,
+    sender: SyncSender<Written>,
+}
+
+impl Writer<'_> {
+    fn write(&mut self, parcel: &Parcel, how: How, results: &[Contents]) -> Result<(), store::Error> {
+        let Self { shared, patterns, sender } = self;
+        let mut seconds = parcel.seconds;
+        for (&index, contents) in parcel.task.points.iter().zip(results) {
+            let path = shared.ledger.path(index);
+            let point = shared.name(index);
+            shared.reporter.tell(&Event::Writing { point: point.clone() });
+            shared.ledger.folder.make_room(&path)?;
+            let file = patterns.begin(&path, contents)?;
+            // Further files of a propagation are derived from it.
+            let event = if how == How::Propagated && index == parcel.task.points[0] {
+                Event::Propagated { point, seconds, estimate: parcel.task.cost.seconds }
+            } else {
+                Event::Derived { point, seconds }
+            };
+            seconds = 0.0;
+            // The other thread leaves only after this one.
+            let _ = sender.send(Written { index, file, event });
+        }
+        Ok(())
     }
-    Ok(())
 }
 
 /// Gives files their names, as many at a time as wait.

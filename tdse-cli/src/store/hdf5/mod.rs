@@ -1,6 +1,7 @@
 //! The only place that calls the HDF5 library: files, groups, datasets and attributes in the terms of the layout.
 
 mod chunk;
+mod memory;
 mod scales;
 mod terminated;
 
@@ -18,12 +19,24 @@ use super::values::Values;
 pub(super) type Failure = hdf5_metno::Error;
 type Result<T> = std::result::Result<T, Failure>;
 
+/// Whether the array is stored as it is, not compressed.
+pub(super) fn is_plain(values: &Values) -> bool {
+    match values {
+        Values::Real(array) => chunk::shape::<f64>(array.shape()).is_none(),
+        Values::Integer(array) => chunk::shape::<i64>(array.shape()).is_none(),
+        Values::Text(_) => true,
+    }
+}
+
 /// The failure in words: those of the operating system where the library quotes it among addresses and sizes.
 pub(super) fn reason(failure: &Failure) -> String {
     let whole = failure.to_string();
     let quoted = whole.split_once("error message = '").and_then(|(_, rest)| rest.split_once('\''));
     quoted.map_or_else(|| whole.clone(), |(message, _)| message.to_owned())
 }
+
+/// Semi: closing a file that is still in use is an error instead of a broken file.
+const CLOSE_DEGREE: FileCloseDegree = FileCloseDegree::Semi;
 
 /// An open file.
 pub(super) struct File(hdf5_metno::File);
@@ -39,6 +52,23 @@ impl File {
         options().open(path).map(Self)
     }
 
+    /// Makes a file in memory.
+    pub fn in_memory() -> Result<Self> {
+        memory::create().map(Self)
+    }
+
+    /// A file in memory that begins with these bytes, to be changed.
+    pub fn of_bytes(bytes: &[u8]) -> Result<Self> {
+        memory::open(bytes).map(Self)
+    }
+
+    /// Closes a file; its bytes.
+    pub fn into_bytes(self) -> Result<Vec<u8>> {
+        let bytes = memory::bytes(&self.0)?;
+        self.0.close()?;
+        Ok(bytes)
+    }
+
     /// The group `/`.
     pub fn root(&self) -> Result<Node> {
         self.0.group("/").map(Node)
@@ -51,11 +81,11 @@ impl File {
     }
 }
 
-/// Semi: closing a file that is still in use is an error instead of a broken file. No lock: files appear by
-/// renaming, so nobody reads one that is being written, and some file systems of clusters have no locks.
+/// No lock: files appear by renaming, so nobody reads one that is being written, and some file systems of clusters have
+/// no locks.
 fn options() -> hdf5_metno::FileBuilder {
     let mut options = hdf5_metno::File::with_options();
-    options.with_fapl(|access| access.fclose_degree(FileCloseDegree::Semi).file_locking(false));
+    options.with_fapl(|access| access.fclose_degree(CLOSE_DEGREE).file_locking(false));
     options
 }
 
@@ -80,6 +110,11 @@ impl Node {
         self.0.link_exists(name)
     }
 
+    /// Names of the groups and datasets directly in this one.
+    pub fn names(&self) -> Result<Vec<String>> {
+        self.0.member_names()
+    }
+
     /// Names of the groups directly in this one.
     pub fn groups(&self) -> Result<Vec<String>> {
         self.members(LocationType::Group)
@@ -92,7 +127,7 @@ impl Node {
 
     fn members(&self, wanted: LocationType) -> Result<Vec<String>> {
         let mut found = Vec::new();
-        for name in self.0.member_names()? {
+        for name in self.names()? {
             if self.0.loc_type_by_name(&name)? == wanted {
                 found.push(name);
             }
@@ -119,6 +154,16 @@ impl Node {
             None => builder.with_data(&array).create(name),
         };
         dataset.map(Array)
+    }
+
+    /// Writes other values over those of the dataset `name`, a path below this one, of the same shape.
+    pub fn overwrite(&self, name: &str, values: &Values) -> Result<()> {
+        let dataset = self.0.dataset(name)?;
+        match values {
+            Values::Real(array) => dataset.write(&array.as_standard_layout()),
+            Values::Integer(array) => dataset.write(&array.as_standard_layout()),
+            Values::Text(array) => dataset.write(&to_hdf5(array)?),
+        }
     }
 
     /// Makes the dataset `name`, to be filled slab by slab; what is never filled reads as absent.
