@@ -103,7 +103,9 @@ fn bare_points(points: &[&Point], atoms: &Atoms, jobs: usize) -> Outcome<()> {
             let plan = Plan::new(&job.problem, atom.clone(), &job.numerics, job.record);
             let plan = plan.map_err(|error| error.to_string())?;
             let state = propagate(&plan);
-            let mut contents = derive::record(point, &atom, &plan, &state, Provenance::default());
+            let finished =
+                derive::Finished { point, atom: &atom, plan: &plan, state: &state, continuum: None };
+            let mut contents = derive::record(&finished, Provenance::default());
             derive::derive(point, &mut contents);
             std::hint::black_box(&contents);
         }

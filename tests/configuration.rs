@@ -131,12 +131,18 @@ fn resolving_again_changes_nothing_and_keeps_every_bit() {
     for _ in 0..300 {
         let (numerics, outputs, softening) =
             (some_numerics(seed), filled(&request.outputs, seed), 0.5 + number(seed));
-        let chosen = Chosen { softening: Some(softening), numerics: &numerics, outputs: &outputs };
+        let chosen = Chosen {
+            softening: Some(softening),
+            numerics: &numerics,
+            electron_method: None,
+            outputs: &outputs,
+        };
         let once = resolved(&request, &chosen);
         let again =
             read(&text(&once), &[], Path::new("")).unwrap_or_else(|complaints| panic!("{complaints}"));
 
-        let chosen = Chosen { softening: None, numerics: &numerics, outputs: &again.outputs };
+        let chosen =
+            Chosen { softening: None, numerics: &numerics, electron_method: None, outputs: &again.outputs };
         assert_eq!(text(&resolved(&again, &chosen)), text(&once));
 
         assert_eq!(again.field, request.field);
@@ -157,7 +163,10 @@ fn resolved_argon(from: &str) -> Value {
     let request = request(from);
     let numerics = some_numerics(&mut 7);
     let outputs = filled(&request.outputs, &mut 8);
-    resolved(&request, &Chosen { softening: Some(1.25), numerics: &numerics, outputs: &outputs })
+    resolved(
+        &request,
+        &Chosen { softening: Some(1.25), numerics: &numerics, electron_method: None, outputs: &outputs },
+    )
 }
 
 #[test]
@@ -223,7 +232,8 @@ fn a_table_travels_with_the_result() {
     let [input] = request.inputs.as_slice() else { panic!("one table") };
     assert_eq!((&*input.contents, input.user.as_str()), (PULSE, "/field/sampled"));
     let (numerics, outputs) = (some_numerics(&mut 7), filled(&request.outputs, &mut 8));
-    let chosen = Chosen { softening: Some(1.25), numerics: &numerics, outputs: &outputs };
+    let chosen =
+        Chosen { softening: Some(1.25), numerics: &numerics, electron_method: None, outputs: &outputs };
     let once = resolved(&request, &chosen);
     assert_eq!(once["field"]["sampled"]["file"], format!("inputs/{}", input.name));
     assert_eq!(once["field"]["sampled"]["sha256"], input.sha256);

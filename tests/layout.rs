@@ -72,6 +72,10 @@ fn point(photon: f64, cep: f64) -> Contents {
     }
     result.insert("momentum", "momentum", Array1::linspace(-2.0, 2.0, 21));
     result.insert("momentum", "density", some(&[21], cep));
+    result.insert("levels", "state", vec![0, 1]);
+    result.insert("levels", "energy", vec![-13.6, f64::NAN]);
+    result.insert("levels", "population", vec![0.75, f64::NAN]);
+    result.insert("summary", "electron_method", 1);
     result.insert("summary", "ionization_probability", 0.25 + cep / 100.0);
     result.insert("summary", "ionization_probability_errors", 1e-5);
     result.insert("summary", "cutoff_energy", 42.0 + cep);
@@ -94,6 +98,12 @@ fn point(photon: f64, cep: f64) -> Contents {
         "final_norm",
         "bound_population",
         "initial_population",
+        "electron_yield",
+        "asymmetry",
+        "unaccounted_probability",
+        "lowest_clean_momentum",
+        "coulomb_shift",
+        "coulomb_sideband",
     ] {
         result.insert("summary", name, 0.5);
     }

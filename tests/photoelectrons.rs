@@ -273,6 +273,11 @@ fn bound_and_continuum_are_everything() {
         let bound: f64 = finished.plan.populations(&finished.state, &bound).iter().sum();
         let amplitude = finished.amplitude(uniform_momenta(4.0, 0.005));
         let continuum = 0.005 * amplitude.momentum_density().1.iter().sum::<f64>();
+        let by_direction: f64 = amplitude.probability().iter().sum();
+        assert!(
+            (by_direction / continuum - 1.0).abs() < 1e-4,
+            "{potential:?}: {by_direction} and {continuum}"
+        );
         let missing = 1.0 - bound - continuum;
         println!("{potential:?}: bound {bound}, continuum {continuum}, missing {missing:e}");
         assert!(continuum > 1e-3, "{potential:?}: nothing was ionized");

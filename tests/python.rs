@@ -48,7 +48,8 @@ fn xarray_selects_from_a_scan_by_value() -> Outcome<()> {
     ]"#;
     let mut program = Command::new(env!("CARGO_BIN_EXE_tdse"));
     program.arg("run").arg(root.join("configs/quickstart.json")).arg("--out").arg(&out);
-    run(program.args(["--set", scan, "--set", "/field/pulses/0/envelope/cycles=2"]))?;
+    let electrons = r#"/outputs/photoelectrons={"max_energy": "20 eV", "energy_step": "0.2 eV"}"#;
+    run(program.args(["--set", scan, "--set", "/field/pulses/0/envelope/cycles=2", "--set", electrons]))?;
     let python = python_with(&root.join("tests/python/requirements.txt"))?;
     let result = out.join("result.h5");
     let scripts = root.join("tests/python");

@@ -86,6 +86,65 @@ fn the_cutoff_rises_with_the_ponderomotive_energy() {
     }
 }
 
+/// Mirror symmetry: φ → φ + 180° exchanges left and right, and reverses the asymmetry. Bound states are known to 1e-10
+/// hartree, so they are even or odd to some 1e-5, and what is left when they are taken out is symmetric to 1e-6 or so.
+#[test]
+fn a_phase_scan_of_electrons_exchanges_left_and_right() {
+    let folder = tempfile::tempdir().unwrap();
+    let sets = ["/scan/0/points=4", "/scan/0/to=270 deg", "/field/pulses/0/envelope/cycles=2"];
+    let out = run(folder.path(), "electron_asymmetry.json", &sets);
+    let contents = store::read(&out.join("result.h5")).unwrap();
+    let [left, right] = ["left", "right"].map(|side| contents.real("photoelectrons", side).unwrap());
+    let largest = left.iter().chain(right).copied().fold(0.0, f64::max);
+    for (phase, opposite) in [(0, 2), (1, 3), (2, 0), (3, 1)] {
+        let pairs = left.outer_iter().nth(phase).unwrap().into_iter().copied().collect::<Vec<_>>();
+        let mirror = right.outer_iter().nth(opposite).unwrap();
+        let worst = pairs.iter().zip(mirror.iter()).map(|(a, b)| (a - b).abs()).fold(0.0, f64::max);
+        assert!(worst < 1e-6 * largest, "phase {phase}: {:e}", worst / largest);
+    }
+    let asymmetry = number(&contents, "asymmetry");
+    println!("{asymmetry:?}");
+    assert!(asymmetry.iter().any(|a| a.abs() > 0.02), "a two-cycle pulse has a direction: {asymmetry:?}");
+    for (phase, opposite) in [(0, 2), (1, 3)] {
+        assert!((asymmetry[phase] + asymmetry[opposite]).abs() < 1e-6, "{asymmetry:?}");
+    }
+    assert!(number(&contents, "unaccounted_probability").iter().all(|p| p.abs() < 1e-3));
+}
+
+/// Above-threshold peaks stand one photon apart (energy conservation); an extreme-ultraviolet photon makes one peak at
+/// ω - Ip (Einstein, Ann. Phys. 322, 132 (1905)), here 40 - 15.7596 eV, shifted by the slope of the dipole over the
+/// pulse's bandwidth of 3.6 eV by less than 0.5 eV (a bound of our own).
+#[test]
+fn shipped_electron_runs_complete() {
+    let folder = tempfile::tempdir().unwrap();
+    let spectrum = |config: &str| -> (Vec<f64>, Vec<f64>) {
+        let contents = store::read(&run(folder.path(), config, &[]).join("result.h5")).unwrap();
+        let missing = number(&contents, "unaccounted_probability")[0];
+        println!("{config}: {missing:e} unaccounted for");
+        assert!(missing.abs() < 1e-3, "{config}: {missing}");
+        let read = |name: &str| contents.real("photoelectrons", name).unwrap().iter().copied().collect();
+        (read("energy"), read("yield"))
+    };
+    let (energy, yields) = spectrum("above_threshold.json");
+    // The highest point of every photon's width, from a peak on.
+    let top = |from: f64, to: f64| {
+        let range = (0..energy.len()).filter(|&i| energy[i] >= from && energy[i] < to);
+        range.max_by(|&i, &j| yields[i].total_cmp(&yields[j])).map_or(f64::NAN, |i| energy[i])
+    };
+    let photon = 3.0996;
+    let first = top(1.0, 1.0 + photon);
+    let peaks: Vec<f64> = (0..4).map(|n| first + photon * f64::from(n)).collect();
+    for expected in peaks {
+        let found = top(expected - 0.5 * photon, expected + 0.5 * photon);
+        println!("peak at {found} eV, {expected} by whole photons");
+        assert!((found - expected).abs() < 0.1 * photon, "{found} eV against {expected} eV");
+    }
+    let (energy, yields) = spectrum("xuv_ionization.json");
+    let highest = (0..energy.len()).max_by(|&i, &j| yields[i].total_cmp(&yields[j])).unwrap();
+    println!("one photon: peak at {} eV", energy[highest]);
+    assert!((energy[highest] - (40.0 - 15.7596)).abs() < 0.5, "{} eV", energy[highest]);
+}
+
 /// Single runs among the shipped configurations, whole.
 #[test]
 fn shipped_single_runs_complete() {

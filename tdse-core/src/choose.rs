@@ -2,9 +2,14 @@
 //!
 //! Choices stand on coarse ladders and come from envelope maxima, never from a phase, so neighbours in a scan share them.
 
+mod electrons;
 mod judge;
 pub mod ladder;
 mod rules;
+
+pub use electrons::{
+    Electrons, Energies, choose_for_electrons, electron_bytes, electron_work, fastest_electron, tail_of,
+};
 
 use crate::grid::{Axis, Grid, good_length};
 use crate::potential::Potential;
@@ -67,13 +72,9 @@ impl AtomFacts {
     /// # Errors
     /// [`StationaryError::NoSuchState`] where the initial state names one that is not bound.
     pub fn new(potential: &Potential, initial: &InitialState) -> Result<Self, StationaryError> {
-        let lowest = match initial {
-            InitialState::Single(number) => *number,
-            InitialState::Superposition(terms) => terms.iter().map(|t| t.number).min().unwrap_or(0),
-        };
         let highest = level(potential, initial.highest())?;
         Ok(Self {
-            initial_energy: level(potential, lowest)?.energy,
+            initial_energy: level(potential, initial.lowest())?.energy,
             highest_energy: highest.energy,
             reach: highest.reach,
         })
@@ -117,6 +118,8 @@ pub enum Knob {
     Gauge,
     /// Field-free time after the field, a.u.
     TrailingTime,
+    /// Way to the electron spectrum.
+    ElectronMethod,
 }
 
 /// Why a choice is what it is.

@@ -31,6 +31,11 @@ const SAMPLING: f64 = 2.0;
 /// First weights of Gregory's rule of sixth order (textbook; the test below is that it is exact to degree five).
 const GREGORY: [f64; 5] = [95.0 / 288.0, 317.0 / 240.0, 23.0 / 30.0, 793.0 / 720.0, 157.0 / 160.0];
 
+/// Steps between two samples where `largest` is the largest momentum, 1/bohr.
+pub fn sampling_interval(largest: f64, time_step: f64) -> usize {
+    (SAMPLING * 2.0 / (largest * largest) / time_step).floor().max(1.0) as usize
+}
+
 /// What the absorber is, in space and per step.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Edges {
@@ -102,7 +107,7 @@ impl Collector {
         });
         let largest = momenta.iter().copied().fold(0.0, f64::max);
         assert!(largest > 0.0, "momenta to collect at are positive");
-        let interval = (SAMPLING * 2.0 / (largest * largest) / time_step).floor().max(1.0) as usize;
+        let interval = sampling_interval(largest, time_step);
         let scattering = momenta.iter().map(|&k| states.amplitudes(k)).collect();
         Self {
             momenta,

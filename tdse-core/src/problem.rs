@@ -25,6 +25,14 @@ pub enum InitialState {
 }
 
 impl InitialState {
+    /// The lowest state number that takes part.
+    pub fn lowest(&self) -> usize {
+        match self {
+            Self::Single(number) => *number,
+            Self::Superposition(terms) => terms.iter().map(|t| t.number).min().unwrap_or(0),
+        }
+    }
+
     /// The highest state number that takes part.
     pub fn highest(&self) -> usize {
         match self {
@@ -83,6 +91,15 @@ impl Absorber {
             Self::Smooth { width } => *width,
         }
     }
+}
+
+/// Way to the electron spectrum.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum ElectronMethod {
+    /// Projection on scattering states at the end, in a box that nothing leaves.
+    ScatteringStates = 0,
+    /// What the absorber takes, collected coherently, and the rest on scattering states.
+    OutgoingAmplitude = 1,
 }
 
 /// Every choice that fixes the bits of a run.

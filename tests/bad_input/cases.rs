@@ -414,10 +414,50 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
-        name: "electrons",
-        edits: &[("/outputs/photoelectrons", Some(r#"{"max_energy": "100 eV"}"#))],
+        name: "electrons of a harmonic potential",
+        edits: &[
+            ("/outputs/photoelectrons", Some(r#"{"max_energy": "100 eV"}"#)),
+            ("/atom/potential", Some(r#"{"kind": "harmonic", "frequency": "0.5 au"}"#)),
+            ("/atom/ionization_energy", None),
+        ],
         says: &[
-            r#"/outputs/photoelectrons: {"max_energy":"100 eV"} is not available in this version; allowed: the key left out; at /outputs try {"harmonics":{"max_energy":"60 eV"}}"#,
+            r#"/outputs/photoelectrons: {"max_energy":"100 eV"} asks for electrons of an atom that lets none go: a harmonic potential has no continuum; allowed: the key left out; at /outputs try {"harmonics":{"max_energy":"60 eV"}}"#,
+        ],
+    },
+    Case {
+        name: "electron step beyond the axis",
+        edits: &[("/outputs/photoelectrons", Some(r#"{"max_energy": "50 eV", "energy_step": "60 eV"}"#))],
+        says: &[
+            r#"/outputs/photoelectrons/energy_step: "60 eV" does not fit max_energy "50 eV"; allowed: a step that divides the axis into 1 to 1000000 parts; try "0.05 eV""#,
+        ],
+    },
+    Case {
+        name: "scattering states beside an absorber",
+        edits: &[
+            ("/outputs/photoelectrons", Some("{}")),
+            ("/numerics/electron_method", Some(r#""scattering_states""#)),
+            ("/numerics/absorber", Some(r#"{"kind": "smooth"}"#)),
+        ],
+        says: &[
+            r#"/numerics/electron_method: "scattering_states" needs a box that nothing leaves, and /numerics/absorber is smooth; allowed: outgoing_amplitude beside an absorber; try "outgoing_amplitude""#,
+        ],
+    },
+    Case {
+        name: "outgoing amplitude without an absorber",
+        edits: &[
+            ("/outputs/photoelectrons", Some("{}")),
+            ("/numerics/electron_method", Some(r#""outgoing_amplitude""#)),
+            ("/numerics/absorber", Some(r#"{"kind": "none"}"#)),
+        ],
+        says: &[
+            r#"/numerics/electron_method: "outgoing_amplitude" collects what an absorber takes, and /numerics/absorber is none; allowed: scattering_states without an absorber; try "scattering_states""#,
+        ],
+    },
+    Case {
+        name: "a way to no electrons",
+        edits: &[("/numerics/electron_method", Some(r#""scattering_states""#))],
+        says: &[
+            r#"/numerics/electron_method: "scattering_states" has no use without outputs.photoelectrons; allowed: the key left out; at /numerics try {"accuracy":0.0001}"#,
         ],
     },
     Case {

@@ -100,6 +100,19 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
         ],
     ),
     (
+        "spacing too coarse for the electrons",
+        &[
+            ("/outputs/photoelectrons", Some(r#"{ "max_energy": "5 keV" }"#)),
+            ("/numerics/spacing", Some(r#""0.4 bohr""#)),
+        ],
+        &[
+            "/numerics/spacing: \"0.4 bohr\" holds momenta up to 7.85 / bohr where the fastest electrons of the \
+             spectrum have 19.17 / bohr",
+            "allowed: at most 0.1639 bohr, or a lower max_energy",
+            "try \"0.15 bohr\"",
+        ],
+    ),
+    (
         "ionization energy out of reach",
         &[("/atom/ionization_energy", Some(r#""30 eV""#)), ("/atom/state/number", Some("1"))],
         &["/atom/ionization_energy: \"30 eV\" is out of reach of state 1", "allowed: 0.", "try \""],

@@ -7,6 +7,7 @@ use std::thread::sleep;
 use std::time::{Duration, Instant};
 
 use serde_json::{Value, json};
+use tdse_cli::store::read;
 
 use crate::fixture::{Ended, Place, assert_same_bits, files, phases};
 
@@ -93,6 +94,29 @@ fn a_signal_keeps_points_in_flight_and_they_go_on_to_the_same_bits() {
         assert!(checkpoints(&place, &out).is_empty(), "nothing is left of it");
         assert_same_bits(&place.path("whole/result.h5"), &place.path(&out).join("result.h5"));
     }
+}
+
+/// What the absorber took before the stop is in the checkpoint.
+#[test]
+fn collected_electrons_go_on_to_the_same_bits() {
+    let place = Place::new();
+    let mut single = phases("0 deg", "0 deg", 1);
+    single["scan"] = json!([]);
+    single["numerics"] = json!({ "electron_method": "outgoing_amplitude", "trailing_time": "10 fs" });
+    single["outputs"]["photoelectrons"] = json!({ "max_energy": "20 eV", "energy_step": "0.1 eV" });
+    place.write("single.json", &single);
+    place.tdse("run single.json --out whole").with(0);
+    let line = "run single.json --out out";
+    for every in ["50", "33"] {
+        end(started(&place, line, "out", [EVERY, every], "checkpointed"), "-TERM").with(143);
+    }
+    place.tdse(line).with(0);
+    assert_eq!(events(&place, "out", "continued").len(), 2);
+    let [whole, out] = ["whole/result.h5", "out/result.h5"].map(|path| place.path(path));
+    assert_same_bits(&whole, &out);
+    let contents = read(&out).expect("a result");
+    let taken = contents.real("summary", "electron_yield").expect("electrons")[[]];
+    assert!(taken > 1e-3, "{taken}");
 }
 
 /// Steps between checkpoints drawn once from a hat.

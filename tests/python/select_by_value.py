@@ -29,6 +29,17 @@ for engine in ("h5netcdf", "netcdf4"):
             chosen.values, spectrum.values[1, 2][(harmonics.photon_energy >= 5) & (harmonics.photon_energy <= 10)]
         )
         assert np.all(np.isfinite(chosen)) and np.all(chosen >= 0)
+    with xr.open_dataset(sys.argv[1], group="entry/photoelectrons", engine=engine) as electrons:
+        assert electrons["yield"].dims == ("intensity", "cep", "energy"), electrons["yield"].dims
+        assert UNITS.Unit(electrons["yield"].attrs["units"]) == 1 / UNITS.eV
+        chosen = electrons.sel(intensity=4e13, cep=180, method="nearest").sel(energy=slice(1, 10))
+        assert chosen.energy.size > 40 and np.all(chosen["yield"] > 0)
+        np.testing.assert_allclose(chosen["yield"], chosen.left + chosen.right, rtol=1e-12)
+        # phases half a circle apart exchange left and right
+        mirror = electrons.sel(intensity=4e13, cep=0, method="nearest").sel(energy=slice(1, 10))
+        np.testing.assert_allclose(chosen.left, mirror.right, rtol=1e-6, atol=1e-9 * float(chosen["yield"].max()))
+    with xr.open_dataset(sys.argv[1], group="entry/levels", engine=engine) as levels:
+        assert levels.population.dims == ("intensity", "cep", "state"), levels.population.dims
     with xr.open_dataset(sys.argv[1], group="entry/summary", engine=engine) as summary:
         ionized = summary.ionization_probability
         assert ionized.dims == ("intensity", "cep"), ionized.dims

@@ -4,7 +4,7 @@ use std::fmt::Write as _;
 
 use tdse_core::choose::Knob;
 use tdse_core::field::Pulse;
-use tdse_core::problem::{Absorber, Gauge, Scheme};
+use tdse_core::problem::{Absorber, ElectronMethod, Gauge, Scheme};
 use tdse_core::quantities::{
     barrier_suppression_field, classical_cutoff, field_shape, keldysh_parameter, photons_to_ionize,
     pulse_shape,
@@ -152,6 +152,15 @@ fn numerics(point: &Point) -> String {
                 "",
             ),
             Knob::TrailingTime => ("trailing time", number(numerics.trailing_time * TIME_FS), "fs"),
+            Knob::ElectronMethod => (
+                "electron method",
+                match point.job.electron_method {
+                    Some(ElectronMethod::OutgoingAmplitude) => "outgoing_amplitude".into(),
+                    Some(ElectronMethod::ScatteringStates) => "scattering_states".into(),
+                    None => "none".into(),
+                },
+                "",
+            ),
         };
         table.row(name, value, unit, &reason.why);
     }
@@ -171,6 +180,11 @@ fn outputs(point: &Point) -> String {
     if let Some(map) = &outputs.time_frequency {
         let note = format!("window {} fs, every {} fs", fs(map.window_length), fs(map.time_step));
         table.row("time-frequency up to", ev(map.max_energy), "eV", &note);
+    }
+    if let Some(electrons) = &outputs.photoelectrons {
+        let energies = point.job.electrons().map_or(0, |(_, axis)| axis.points);
+        let note = format!("in steps of {} eV, {energies} energies to each side", ev(electrons.energy_step));
+        table.row("electrons up to", ev(electrons.max_energy), "eV", &note);
     }
     if point.job.record.populations > 0 {
         table.row("populations of", point.job.record.populations.to_string(), "states", "");

@@ -1,5 +1,6 @@
 //! `tdse compare`: two results number by number, or the points of one scan with its first.
 
+use std::fmt::Write as _;
 use std::path::{Path, PathBuf};
 
 use clap::Args;
@@ -57,7 +58,8 @@ pub fn compare(options: &Options) -> Result<Exit, Trouble> {
                 return Err(Trouble::refused(format!("--along {name}: no such axis; allowed: {known}")));
             };
             for k in 1..a.scan()[dimension].length() {
-                text += &format!("{name}: value {k} beside value 0\n{}", lines(&along(&a, dimension, k)));
+                let found = lines(&along(&a, dimension, k));
+                let _ = write!(text, "{name}: value {k} beside value 0\n{found}");
             }
         }
         (None, None) => {
@@ -161,7 +163,11 @@ fn zipped(a: Side, b: Side) -> Vec<(Measured, Measured)> {
 
 fn lines(pairs: &[Pair]) -> String {
     let width = pairs.iter().map(|pair| pair.place.len()).max().unwrap_or(0);
-    pairs.iter().map(|pair| format!("  {:width$}  {}\n", pair.place, said(pair))).collect()
+    let mut text = String::new();
+    for pair in pairs {
+        let _ = writeln!(text, "  {:width$}  {}", pair.place, said(pair));
+    }
+    text
 }
 
 fn said(pair: &Pair) -> String {

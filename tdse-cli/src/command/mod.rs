@@ -2,6 +2,7 @@
 
 pub mod check;
 pub mod compare;
+pub mod continuum;
 mod exit;
 pub mod gather;
 mod headline;
@@ -19,7 +20,7 @@ use clap::error::ErrorKind;
 use clap::{Parser, Subcommand};
 
 pub use exit::{Exit, Trouble};
-use options::{Asked, Place, RefineOptions, RunOptions};
+use options::{Asked, Place, RefineOptions, RunOptions, StatesOptions};
 
 use crate::config::schema;
 use crate::scan::prepare::Prepared;
@@ -49,8 +50,8 @@ enum Command {
     Gather(Place),
     /// Draw pictures and one page of a folder's results
     Report(report::Options),
-    /// Print the bound states and the tuned softening
-    States(Asked),
+    /// Print the bound states and the tuned softening, or the scattering states
+    States(StatesOptions),
     /// Print the JSON Schema of the configuration
     Schema,
 }
@@ -69,9 +70,10 @@ pub fn run_program() -> ExitCode {
         Command::Status(place) => status::status(&place.dir),
         Command::Gather(place) => gather::gather(&place.dir),
         Command::Report(options) => report::report(options),
-        Command::States(asked) => {
-            printed(asked, |prepared| states::text(prepared).map_err(Trouble::incomplete))
-        }
+        Command::States(options) => printed(&options.asked, |prepared| match options.continuum {
+            None => states::text(prepared).map_err(Trouble::incomplete),
+            Some(highest) => continuum::text(prepared, highest).map_err(Trouble::incomplete),
+        }),
         Command::Schema => {
             output::data(schema::text());
             Ok(Exit::Complete)

@@ -5,6 +5,7 @@ use std::path::PathBuf;
 use std::time::Duration;
 
 use clap::Args;
+use tdse_core::units::{HARTREE_EV, Quantity};
 
 use super::exit::Trouble;
 use crate::config::quantity;
@@ -32,6 +33,26 @@ impl Asked {
         let source = source(&self.config).map_err(Trouble::refused)?;
         prepare(&source, &self.sets).map_err(Trouble::refused)
     }
+}
+
+/// What to print of an atom.
+#[derive(Debug, Args)]
+pub struct StatesOptions {
+    /// Of what configuration.
+    #[command(flatten)]
+    pub asked: Asked,
+    /// Print the continuum up to this energy instead, as comma-separated values: transmission, reflection, phases, delay,
+    /// and dipole matrix elements with the initial state; as in --continuum "40 eV"
+    #[arg(long, value_name = "MAX_ENERGY", value_parser = energy, allow_hyphen_values = true)]
+    pub continuum: Option<f64>,
+}
+
+/// An energy above zero, hartree.
+fn energy(text: &str) -> Result<f64, String> {
+    let parsed = quantity::parse(Quantity::Energy, text).map(|parsed| parsed.value()).ok();
+    let allowed =
+        "allowed: an energy above 0 eV, up to 100 keV, as a number, a space and a unit; try \"40 eV\"";
+    parsed.filter(|energy| *energy > 0.0 && *energy <= 1e5 / HARTREE_EV).ok_or_else(|| allowed.into())
 }
 
 /// A folder of results.

@@ -41,12 +41,11 @@ pub fn refine(options: &RefineOptions) -> Result<Exit, Trouble> {
     if whole != Exit::Complete {
         return Ok(whole);
     }
-    let text = match &models {
-        Some(models) => spread(&prepared, &refine::attach_models(out, models).map_err(Trouble::incomplete)?),
-        None => {
-            let bars = refine::attach(out, &plan).map_err(Trouble::incomplete)?.unwrap_or_default();
-            judged(&prepared, &plan, &bars)
-        }
+    let text = if let Some(models) = &models {
+        spread(&prepared, &refine::attach_models(out, models).map_err(Trouble::incomplete)?)
+    } else {
+        let bars = refine::attach(out, &plan).map_err(Trouble::incomplete)?.unwrap_or_default();
+        judged(&prepared, &plan, &bars)
     };
     report::draw(&Folder::open(out).map_err(Trouble::incomplete)?).map_err(Trouble::incomplete)?;
     data(format!("{text}{}\n", out.join("result.h5").display()));

@@ -8,7 +8,8 @@ use tdse_core::problem::Record;
 const WITHOUT_EFFECT: [&str; 3] = ["accuracy", "common", "allow_inadequate"];
 
 /// First 16 hexadecimal digits of the SHA-256 of the canonical JSON (RFC 8785) of a resolved configuration's atom, field
-/// and numerics, what is recorded, and the version of the numerics. Tables count by their hash, notes not at all.
+/// and numerics, what is recorded (populations, and the energies of electrons), and the version of the numerics. Tables
+/// count by their hash, notes not at all.
 pub fn identity(resolved: &Value, record: Record, numerics_version: u32) -> String {
     let mut basis = json!({
         "atom": resolved["atom"],
@@ -17,6 +18,9 @@ pub fn identity(resolved: &Value, record: Record, numerics_version: u32) -> Stri
         "record": { "populations": record.populations },
         "numerics_version": numerics_version,
     });
+    if let Some(electrons) = resolved["outputs"].get("photoelectrons") {
+        basis["record"]["photoelectrons"] = electrons.clone();
+    }
     forget(&mut basis);
     if let Value::Object(numerics) = &mut basis["numerics"] {
         numerics.retain(|key, _| !WITHOUT_EFFECT.contains(&key.as_str()));

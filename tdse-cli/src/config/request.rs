@@ -4,7 +4,7 @@ use tdse_core::choose::Pins;
 use tdse_core::elements::Element;
 use tdse_core::field::Field;
 use tdse_core::potential::Potential;
-use tdse_core::problem::{InitialState, Record};
+use tdse_core::problem::{ElectronMethod, InitialState, Record};
 use tdse_core::spectrum::Window;
 
 use super::raw;
@@ -23,6 +23,8 @@ pub struct Request {
     pub record: Record,
     /// Numerics that the user fixed.
     pub pins: Pins,
+    /// Way to the electron spectrum, as far as the user fixed it.
+    pub electron_method: Option<ElectronMethod>,
     /// Error asked for, relative to the largest dipole acceleration.
     pub accuracy: f64,
     /// What to do with pinned numerics that are known to be inadequate.
@@ -69,10 +71,7 @@ pub struct AtomRequest {
 impl AtomRequest {
     /// Number of the state whose binding energy tunes the softening: of a superposition the lowest member.
     pub fn tuned_state(&self) -> usize {
-        match &self.initial {
-            InitialState::Single(number) => *number,
-            InitialState::Superposition(terms) => terms.iter().map(|term| term.number).min().unwrap_or(0),
-        }
+        self.initial.lowest()
     }
 }
 
@@ -141,6 +140,17 @@ pub struct Outputs {
     pub harmonics: Option<Harmonics>,
     /// Time-frequency map.
     pub time_frequency: Option<TimeFrequency>,
+    /// Spectrum of the electrons.
+    pub photoelectrons: Option<Photoelectrons>,
+}
+
+/// Spectrum of the electrons.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Photoelectrons {
+    /// End of the energy axis, hartree.
+    pub max_energy: Option<f64>,
+    /// Step of the energy axis, hartree.
+    pub energy_step: Option<f64>,
 }
 
 /// Spectrum of the harmonics.

@@ -1,7 +1,7 @@
 //! The resolved configuration: nothing left to choose, and what the user wrote in the user's own words.
 
 use serde_json::Value;
-use tdse_core::problem::{Absorber, Gauge, Numerics, Scheme};
+use tdse_core::problem::{Absorber, ElectronMethod, Gauge, Numerics, Scheme};
 use tdse_core::units::Quantity;
 
 use super::quantity::digits;
@@ -16,6 +16,8 @@ pub struct Chosen<'a> {
     pub softening: Option<f64>,
     /// Every choice of numerics.
     pub numerics: &'a Numerics,
+    /// Way to the electron spectrum, where one is asked for.
+    pub electron_method: Option<ElectronMethod>,
     /// The outputs of the request with their defaults filled in.
     pub outputs: &'a Outputs,
 }
@@ -27,6 +29,10 @@ pub fn resolved(request: &Request, chosen: &Chosen) -> Value {
     atom(&mut written.atom, chosen.softening);
     inputs(&mut written, request);
     numerics(&mut written.numerics, chosen.numerics);
+    written.numerics.electron_method = chosen.electron_method.map(|method| match method {
+        ElectronMethod::ScatteringStates => raw::ElectronMethod::ScatteringStates,
+        ElectronMethod::OutgoingAmplitude => raw::ElectronMethod::OutgoingAmplitude,
+    });
     outputs(&mut written.outputs, chosen.outputs);
     let mut tree = serde_json::to_value(written).unwrap_or_default();
     tidy(&mut tree);
@@ -100,6 +106,10 @@ fn outputs(written: &mut raw::Outputs, filled: &Outputs) {
         fill_energy(&mut written.max_energy, filled.max_energy);
         fill_energy(&mut written.energy_step, filled.energy_step);
         written.max_order = written.max_order.or(filled.max_order);
+    }
+    if let (Some(written), Some(filled)) = (&mut written.photoelectrons, &filled.photoelectrons) {
+        fill_energy(&mut written.max_energy, filled.max_energy);
+        fill_energy(&mut written.energy_step, filled.energy_step);
     }
     if let (Some(written), Some(filled)) = (&mut written.time_frequency, &filled.time_frequency) {
         fill_time(&mut written.window_length, filled.window_length);

@@ -169,13 +169,8 @@ fn unknown_key(
 
 /// Places of the configuration that a later version will know.
 fn is_planned(place: &str) -> bool {
-    const PLANNED: [&str; 5] = [
-        "/outputs/photoelectrons",
-        "/numerics/electron_method",
-        "/atom/state/angular_momentum",
-        "/atom/state/parity_x",
-        "/atom/state/parity_y",
-    ];
+    const PLANNED: [&str; 3] =
+        ["/atom/state/angular_momentum", "/atom/state/parity_x", "/atom/state/parity_y"];
     PLANNED.contains(&place) || place.starts_with("/models/")
 }
 

@@ -3,10 +3,11 @@
 //! [`record()`] puts in what was propagated, [`derive()`] what follows from it. Deriving reads the recorded arrays as a file
 //! holds them, so a result derived anew has the same bits as one derived at once.
 
+mod electrons;
 mod recorded;
 mod spectra;
 
-pub use recorded::record;
+pub use recorded::{Finished, record};
 pub use spectra::derive;
 
 use tdse_core::units::{FIELD_V_PER_M, HARTREE_EV, TIME_FS, VECTOR_POTENTIAL_V_S_PER_M};

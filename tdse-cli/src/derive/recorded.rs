@@ -6,23 +6,48 @@ use tdse_core::problem::InitialState;
 use tdse_core::quantities::classical_cutoff;
 use tdse_core::simulate::{Atom, Plan, State};
 use tdse_core::spectrum::twice_integrated;
+use tdse_core::stationary::ScatteringStates;
 
+use super::electrons::electrons;
 use super::{electronvolts, femtoseconds, volt_seconds_per_metre, volts_per_metre};
 use crate::scan::prepare::Point;
 use crate::store::table::Status;
 use crate::store::{Contents, Provenance};
 
-/// Field, dynamics, populations and headline numbers of a finished run.
+/// Bound states listed after the field; where an atom has fewer, NaN stands for them.
+const LEVELS: usize = 10;
+
+/// A run at its end, with what it was made of.
+#[derive(Clone, Copy, Debug)]
+pub struct Finished<'a> {
+    /// What was asked.
+    pub point: &'a Point,
+    /// The atom on its grid.
+    pub atom: &'a Atom,
+    /// The plan.
+    pub plan: &'a Plan,
+    /// Its last state.
+    pub state: &'a State,
+    /// Scattering states, where electrons are asked for.
+    pub continuum: Option<&'a ScatteringStates>,
+}
+
+/// Field, dynamics, populations, electrons and headline numbers of a finished run.
 ///
 /// # Panics
 /// If the run is not finished.
-pub fn record(point: &Point, atom: &Atom, plan: &Plan, state: &State, provenance: Provenance) -> Contents {
+pub fn record(finished: &Finished, provenance: Provenance) -> Contents {
+    let Finished { point, atom, plan, state, continuum } = *finished;
     assert_eq!(state.series.norm.len(), plan.schedule().steps + 1, "the run is finished");
     let mut contents = Contents::new(provenance);
     field(&mut contents, plan);
     dynamics(&mut contents, point, atom, plan, state);
     populations(&mut contents, point, atom, plan, state);
-    summary(&mut contents, point, atom, plan, state);
+    let bound = levels(&mut contents, point, atom, plan, state);
+    summary(&mut contents, point, atom, state, bound);
+    if let (Some(continuum), Some(asked)) = (continuum, point.job.electrons()) {
+        electrons(&mut contents, finished, continuum, asked, bound);
+    }
     contents
 }
 
@@ -82,11 +107,21 @@ fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan,
     contents.insert("populations", "populations", rows.into_dyn());
 }
 
-fn summary(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
-    let bound: Vec<f64> = plan.populations(state, &atom.bound);
-    let below_zero = atom.bound.energies.iter().zip(&bound).filter(|(energy, _)| **energy < 0.0);
+/// Bound states after the field by level; returns the population of all of them.
+fn levels(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) -> f64 {
+    let populations = plan.populations(state, &atom.bound);
     let confining = point.job.problem.potential.is_confining();
-    let total = if confining { state.series.norm[state.step] } else { below_zero.map(|(_, p)| p).sum() };
+    let all = atom.bound.energies.iter().zip(&populations);
+    let bound: Vec<_> = all.filter(|(energy, _)| confining || **energy < 0.0).collect();
+    let level = |n: usize| bound.get(n).map_or((f64::NAN, f64::NAN), |(e, p)| (electronvolts(**e), **p));
+    let (energies, populations): (Vec<_>, Vec<_>) = (0..LEVELS).map(level).unzip();
+    contents.insert("levels", "state", (0..LEVELS as i64).collect::<Vec<_>>());
+    contents.insert("levels", "energy", energies);
+    contents.insert("levels", "population", populations);
+    if confining { state.series.norm[state.step] } else { bound.iter().map(|(_, p)| *p).sum() }
+}
+
+fn summary(contents: &mut Contents, point: &Point, atom: &Atom, state: &State, total: f64) {
     let doubts = &point.doubts;
     let status = if doubts.is_empty() { Status::Done } else { Status::Doubtful };
     contents.insert("summary", "ionization_probability", (1.0 - total).max(0.0));

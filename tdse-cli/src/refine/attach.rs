@@ -5,7 +5,7 @@ use std::path::{Path, PathBuf};
 use ndarray::ArrayD;
 use tdse_core::refine::{Cause, Errors};
 
-use super::bars::{self, Found, Place};
+use super::bars::{self, Counted, Found, Place};
 use serde_json::Value;
 
 use super::models::{ModelPlan, attach_models};
@@ -13,6 +13,9 @@ use super::plan::Plan;
 use crate::scan::prepare::Prepared;
 use crate::store::table;
 use crate::store::{self, Contents, Error, Folder, Request};
+
+/// All energies of an electron spectrum.
+const ALL_ELECTRONS: Counted = Counted { floor: bars::ELECTRON_FLOOR, first: usize::MAX };
 
 /// Where the scan over finer numerics lies in the folder of a request.
 pub fn folder(root: &Path) -> PathBuf {
@@ -90,7 +93,7 @@ pub fn attach(root: &Path, plan: &Plan) -> Result<Option<Vec<Bar>>, Error> {
         bars::relative(values, errors, cause, orders[i])
     });
     causes(&mut base, plan, "electron_spectrum", &electrons, |_, values, errors, cause| {
-        bars::relative(values, errors, cause, usize::MAX)
+        bars::relative(values, errors, cause, ALL_ELECTRONS)
     });
     let alone = |_: usize, _: &[f64], errors: &Errors, cause: Cause| {
         errors.by_cause.iter().find(|(known, _)| *known == cause).map_or(f64::NAN, |(_, parts)| parts[0])
@@ -98,7 +101,7 @@ pub fn attach(root: &Path, plan: &Plan) -> Result<Option<Vec<Bar>>, Error> {
     causes(&mut base, plan, "cutoff_energy", &cutoff, alone);
     causes(&mut base, plan, "ionization_probability", &ionization, alone);
     said.extend(medians(plan, "Harmonic yields up to the cutoff, median relative", &yields, &orders));
-    let all = vec![usize::MAX; plan.repeated.len()];
+    let all = vec![ALL_ELECTRONS; plan.repeated.len()];
     said.extend(medians(plan, "Electron spectrum, median relative", &electrons, &all));
     store::write(&result, &base)?;
     Ok(Some(said))
@@ -127,34 +130,32 @@ fn bar(point: usize, name: &str, (_, values, errors): &Found) -> Option<Bar> {
     })
 }
 
-/// Median relative bars of an array at every repeated point, over so many first values.
-fn medians(plan: &Plan, name: &'static str, found: &[Found], highest: &[usize]) -> Vec<Bar> {
-    let all = plan.repeated.iter().zip(found).zip(highest);
-    all.map(|((point, (_, values, errors)), &highest)| Bar {
+/// Median relative bars of an array at every repeated point, over the values that count.
+fn medians(plan: &Plan, name: &'static str, found: &[Found], counted: &[Counted]) -> Vec<Bar> {
+    let all = plan.repeated.iter().zip(found).zip(counted);
+    all.map(|((point, (_, values, errors)), &counted)| Bar {
         point: point.index,
         name,
         unit: "",
         value: None,
-        error: bars::median(values, &errors.bars, highest),
+        error: bars::median(values, &errors.bars, counted),
         limiting: errors.limiting(),
     })
     .collect()
 }
 
 /// For every repeated point the orders up to its cutoff, or all of them.
-fn highest_orders(base: &Contents, plan: &Plan) -> Vec<usize> {
+fn highest_orders(base: &Contents, plan: &Plan) -> Vec<Counted> {
     let at = |name: &str, index: usize| {
         base.real("summary", name).and_then(|array| array.iter().nth(index).copied()).unwrap_or(f64::NAN)
     };
     let order = |index: usize| at("cutoff_energy", index) / at("first_photon_energy", index);
-    plan.repeated
-        .iter()
-        .map(|point| {
-            Some(order(point.index))
-                .filter(|order| order.is_finite())
-                .map_or(usize::MAX, |order| order as usize)
-        })
-        .collect()
+    let first = |index: usize| match order(index) {
+        order if order.is_finite() => order as usize,
+        _ => usize::MAX,
+    };
+    let counted = |index: usize| Counted { floor: bars::YIELD_FLOOR, first: first(index) };
+    plan.repeated.iter().map(|point| counted(point.index)).collect()
 }
 
 /// Writes what each cause contributes to one quantity, NaN at points that were not repeated.

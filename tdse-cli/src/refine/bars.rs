@@ -6,8 +6,10 @@ use super::plan::Plan;
 use crate::store::table::{self, Role};
 use crate::store::{Contents, Values};
 
-/// Yields below this part of the largest are rounding (double precision squared, with room).
-const FLOOR: f64 = 1e-22;
+/// Harmonic yields below this part of the largest are rounding (double precision squared, with room).
+pub(super) const YIELD_FLOOR: f64 = 1e-22;
+/// Electron peaks below this part of the largest do not count in the median.
+pub(super) const ELECTRON_FLOOR: f64 = 1e-8;
 /// What has no bar: a phase is known up to full turns, the norm in the box is the box's own, and the others follow from
 /// the request alone.
 const WITHOUT: [&str; 5] =
@@ -106,16 +108,26 @@ fn neighbours(contents: &Contents, place: Place) -> Neighbours {
     }
 }
 
-/// Median of what a cause contributes beside the value; see [`median`].
-pub(super) fn relative(values: &[f64], errors: &Errors, cause: Cause, highest: usize) -> f64 {
-    let parts = errors.by_cause.iter().find(|(known, _)| *known == cause);
-    parts.map_or(f64::NAN, |(_, parts)| median(values, parts, highest))
+/// Which of many values count in a median: those above a part of the largest, and so many first ones at most.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) struct Counted {
+    /// Part of the largest.
+    pub floor: f64,
+    /// First values.
+    pub first: usize,
 }
 
-/// Median of errors beside their values, over values above the floor and at most `highest` of them.
-pub(super) fn median(values: &[f64], errors: &[f64], highest: usize) -> f64 {
+/// Median of what a cause contributes beside the value.
+pub(super) fn relative(values: &[f64], errors: &Errors, cause: Cause, counted: Counted) -> f64 {
+    let parts = errors.by_cause.iter().find(|(known, _)| *known == cause);
+    parts.map_or(f64::NAN, |(_, parts)| median(values, parts, counted))
+}
+
+/// Median of errors beside their values.
+pub(super) fn median(values: &[f64], errors: &[f64], counted: Counted) -> f64 {
     let largest = values.iter().copied().filter(|v| v.is_finite()).fold(0.0, f64::max);
-    let pairs = values.iter().zip(errors).take(highest).filter(|(value, _)| **value > FLOOR * largest);
+    let pairs = values.iter().zip(errors).take(counted.first);
+    let pairs = pairs.filter(|(value, _)| **value > counted.floor * largest);
     let mut ratios: Vec<f64> = pairs.map(|(value, error)| error / value).filter(|r| r.is_finite()).collect();
     ratios.sort_by(f64::total_cmp);
     ratios.get(ratios.len() / 2).copied().unwrap_or(f64::NAN)

@@ -64,7 +64,7 @@ impl ModelPlan {
             names.truncate(1);
             names.extend(models.into_iter().map(|model| model.name));
         }
-        let configuration = configuration(prepared, request, &repeated, atoms);
+        let configuration = configuration(prepared, request, &repeated, &atoms);
         Ok(Self { repeated, names, configuration, files: Files::Stored(asked::inputs(prepared)) })
     }
 
@@ -74,7 +74,7 @@ impl ModelPlan {
     }
 }
 
-fn configuration(prepared: &Prepared, request: &Request, repeated: &[usize], atoms: Vec<Value>) -> Value {
+fn configuration(prepared: &Prepared, request: &Request, repeated: &[usize], atoms: &[Value]) -> Value {
     let mut tree = request.configuration.clone();
     let scan = tree.as_object_mut().and_then(|map| map.shift_remove("scan")).unwrap_or_default();
     let first: Value = serde_json::from_str(&prepared.points[repeated[0]].configuration).unwrap_or_default();

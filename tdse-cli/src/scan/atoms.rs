@@ -1,19 +1,21 @@
 //! Atoms on grids, computed once for all points that share them.
 
 use std::collections::HashMap;
-use std::sync::{Arc, Mutex, OnceLock};
+use std::sync::{Arc, Mutex, OnceLock, PoisonError};
 
 use tdse_core::simulate::Atom;
-use tdse_core::stationary::StationaryError;
+use tdse_core::stationary::{NoContinuum, ScatteringStates, StationaryError};
 
 use super::prepare::Job;
 
-type Slot = Arc<OnceLock<Result<Arc<Atom>, StationaryError>>>;
+type Slot<T, E> = Arc<OnceLock<Result<Arc<T>, E>>>;
+type Slots<T, E> = Mutex<HashMap<String, Slot<T, E>>>;
 
-/// Atoms by potential, grid and number of states; safe to share between threads, which wait for one another.
+/// Atoms by potential, grid and number of states, and their scattering states; safe to share between threads, which wait for one another.
 #[derive(Debug, Default)]
 pub struct Atoms {
-    slots: Mutex<HashMap<String, Slot>>,
+    atoms: Slots<Atom, StationaryError>,
+    continua: Slots<ScatteringStates, NoContinuum>,
 }
 
 impl Atoms {
@@ -30,12 +32,24 @@ impl Atoms {
         let states = job.states();
         // Debug output spells every number with all its digits.
         let key = format!("{:?} {:?} {states}", job.problem.potential, job.numerics.grid);
-        let slot = match self.slots.lock() {
-            Ok(mut slots) => slots.entry(key).or_default().clone(),
-            // A thread that panicked while it held the lock left the map as it was.
-            Err(poisoned) => poisoned.into_inner().entry(key).or_default().clone(),
-        };
-        let make = || Atom::new(&job.problem.potential, &job.numerics.grid, states).map(Arc::new);
-        slot.get_or_init(make).clone()
+        let make = || Atom::new(&job.problem.potential, &job.numerics.grid, states);
+        slot(&self.atoms, key).get_or_init(|| make().map(Arc::new)).clone()
     }
+
+    /// Its scattering states.
+    ///
+    /// # Errors
+    /// As [`ScatteringStates::new`].
+    pub fn continuum(&self, job: &Job) -> Result<Arc<ScatteringStates>, NoContinuum> {
+        let (potential, axis) = (&job.problem.potential, job.numerics.grid.x);
+        let make = || ScatteringStates::new(potential, axis);
+        slot(&self.continua, format!("{potential:?} {axis:?}")).get_or_init(|| make().map(Arc::new)).clone()
+    }
+}
+
+/// The slot of a key, made where there is none.
+fn slot<T, E>(slots: &Slots<T, E>, key: String) -> Slot<T, E> {
+    // A thread that panicked while it held the lock left the map as it was.
+    let mut slots = slots.lock().unwrap_or_else(PoisonError::into_inner);
+    slots.entry(key).or_default().clone()
 }

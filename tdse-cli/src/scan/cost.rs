@@ -1,6 +1,8 @@
 //! What a point costs: steps, memory, and time on one core.
 
+use super::electrons::energies;
 use super::prepare::Job;
+use tdse_core::choose::{electron_bytes, electron_work};
 use tdse_core::simulate::Schedule;
 use tdse_core::stationary::count_below;
 
@@ -31,7 +33,13 @@ pub fn cost(job: &Job) -> Cost {
     let states = bound(job).max(8) as f64;
     let per_point = 16.0 * 8.0 + 8.0 * 6.0 * states;
     let bytes = points * per_point + steps * 18.0 * 8.0 + 16.0 * map(job, steps * schedule.time_step);
-    let seconds = steps * points * points.log2() * NANOSECONDS * 1e-9;
+    let (mut work, mut bytes) = (steps * points * points.log2(), bytes);
+    if let Some((method, axis)) = job.electrons() {
+        let energies = energies(axis);
+        work += electron_work(&job.problem, numerics, energies, method)[1];
+        bytes += electron_bytes(&job.problem, numerics, energies, method);
+    }
+    let seconds = work * NANOSECONDS * 1e-9;
     Cost { steps: schedule.steps, points: grid.len(), seconds, bytes: bytes as u64 }
 }
 

@@ -4,7 +4,7 @@ use tdse_core::choose::ladder;
 use tdse_core::field::Field;
 use tdse_core::units::{HARTREE_EV, Quantity};
 
-use crate::config::request::{Harmonics, Outputs, TimeFrequency};
+use crate::config::request::{Harmonics, Outputs, Photoelectrons, TimeFrequency};
 
 /// Part of the classical cutoff by which an axis goes beyond it.
 const BEYOND: f64 = 1.5;
@@ -19,6 +19,8 @@ const TIMES: f64 = 50.0;
 const HIGHEST: f64 = 8e4;
 /// Finest default step of an energy axis, eV.
 const FINEST: f64 = 1e-3;
+/// Fewest energies of a default axis of electrons.
+const FEWEST_ENERGIES: f64 = 100.0;
 /// Most orders, as the schema has it.
 const MOST_ORDERS: f64 = 1e5;
 
@@ -33,6 +35,10 @@ pub struct Scales {
     pub length: f64,
     /// Largest photon energy that the time step resolves, hartree.
     pub resolved: f64,
+    /// Energy of the fastest electrons that matter, hartree.
+    pub electrons: f64,
+    /// Length of the field and what trails it, a.u., before it is rounded to steps.
+    pub duration: f64,
 }
 
 /// Classical cutoff 1.32 Ip + 3.17 Up of all pulses together, hartree (Lewenstein et al., Phys. Rev. A 49, 2117 (1994),
@@ -77,7 +83,20 @@ pub fn fill(outputs: &Outputs, points: &[Scales]) -> Outputs {
             .or_else(|| Some(energy(ladder::at_most(in_ev(0.25 * smallest(|p| p.photon)))))),
         time_step: map.time_step.or_else(|| Some(time(ladder::at_most(femtoseconds(period / TIMES))))),
     });
-    Outputs { harmonics, time_frequency }
+    let photoelectrons = outputs.photoelectrons.map(|electrons| filled(electrons, points));
+    Outputs { harmonics, time_frequency, photoelectrons }
+}
+
+/// Electrons with their axis: beyond the fastest of all points, fine enough for the fringes of the longest.
+pub fn filled(electrons: Photoelectrons, points: &[Scales]) -> Photoelectrons {
+    let largest = |f: fn(&Scales) -> f64| points.iter().map(f).fold(0.0, f64::max);
+    let fastest = (largest(|p| p.electrons) * HARTREE_EV).max(1.0);
+    let max_energy = electrons.max_energy.unwrap_or_else(|| energy(ladder::at_least(fastest).min(HIGHEST)));
+    let fringe = 2.0 * std::f64::consts::PI / largest(|p| p.duration).max(1.0) / PER_WIDTH;
+    let finest = FINEST.min(max_energy * HARTREE_EV / FEWEST_ENERGIES);
+    let wanted = fringe.min(max_energy / FEWEST_ENERGIES) * HARTREE_EV;
+    let step = electrons.energy_step.unwrap_or_else(|| energy(ladder::at_most(wanted.max(finest))));
+    Photoelectrons { max_energy: Some(max_energy), energy_step: Some(step) }
 }
 
 /// Value of a number of eV exactly as its text would be read.

@@ -5,6 +5,7 @@ pub mod atoms;
 pub mod axis;
 pub mod cost;
 pub mod defaults;
+pub mod electrons;
 pub mod facts;
 pub mod gathering;
 pub mod ledger;

@@ -3,7 +3,7 @@
 use serde_json::{Value, json};
 use tdse_core::choose::{Finding, Knob, Verdict};
 use tdse_core::problem::InitialState;
-use tdse_core::stationary::StationaryError;
+use tdse_core::stationary::{NoContinuum, StationaryError};
 use tdse_core::units::HARTREE_EV;
 
 use crate::config::complaint::{Complaint, Fix};
@@ -20,6 +20,7 @@ fn place(knob: Option<Knob>) -> &'static str {
         Some(Knob::Scheme) => "/numerics/scheme",
         Some(Knob::Gauge) => "/numerics/gauge",
         Some(Knob::TrailingTime) => "/numerics/trailing_time",
+        Some(Knob::ElectronMethod) => "/numerics/electron_method",
         None => "/field",
     }
 }
@@ -105,4 +106,15 @@ pub fn populations(tree: &Value, bound: usize) -> Complaint {
     let reason = format!("asks for states that do not exist: this potential binds {bound} in its box");
     let complaint = Complaint::new(place, tree.pointer(place), reason);
     complaint.allowed(format!("1 to {bound}")).fix(Fix::Value(json!(bound)))
+}
+
+/// Electrons of a potential whose table does not reach to where they are free.
+pub fn no_continuum(tree: &Value, error: &NoContinuum) -> Complaint {
+    let place = "/outputs/photoelectrons";
+    let complaint = Complaint::new(place, tree.pointer(place), format!("cannot be had: {error}"));
+    complaint
+        .allowed(
+            "a table that reaches beyond the box, and has fallen to zero or to a Coulomb tail by its ends",
+        )
+        .fix(Fix::Words("lengthen the table, or leave outputs.photoelectrons out".into()))
 }

@@ -3,12 +3,15 @@
 //! A point runs from its resolved text, read again, so what is computed is what the text says.
 
 use serde_json::Value;
-use tdse_core::choose::{AtomFacts, Choice, Wish, choose, strictest};
-use tdse_core::problem::{Numerics, Problem, Record};
+use tdse_core::choose::{AtomFacts, Choice, Electrons, Wish, choose, fastest_electron, strictest};
+use tdse_core::potential::Potential;
+use tdse_core::problem::{ElectronMethod, Numerics, Problem, Record};
 use tdse_core::simulate::Schedule;
-use tdse_core::stationary::count_below;
+use tdse_core::spectrum::EnergyAxis;
+use tdse_core::stationary::{ScatteringStates, count_below};
 
 use super::defaults::{self, Scales};
+use super::electrons::{self, Asked};
 use super::facts::Facts;
 use super::limits;
 use super::objections;
@@ -70,6 +73,8 @@ pub struct Job {
     pub numerics: Numerics,
     /// What is recorded.
     pub record: Record,
+    /// Way to the electron spectrum, where one is asked for.
+    pub electron_method: Option<ElectronMethod>,
     /// What is derived, nothing left open.
     pub outputs: Outputs,
     /// Tables it uses.
@@ -81,6 +86,12 @@ impl Job {
     pub fn states(&self) -> usize {
         (self.problem.initial.highest() + 1).max(self.record.populations)
     }
+
+    /// Method and energies of the electron spectrum, where one is asked for.
+    pub fn electrons(&self) -> Option<(ElectronMethod, EnergyAxis)> {
+        let asked = self.outputs.photoelectrons?;
+        Some((self.electron_method?, EnergyAxis::up_to(asked.max_energy?, asked.energy_step?)))
+    }
 }
 
 /// A point on its way.
@@ -91,6 +102,20 @@ struct Draft<'a> {
     problem: Problem,
     facts: AtomFacts,
     choice: Choice,
+    electron_method: Option<ElectronMethod>,
+}
+
+impl Draft<'_> {
+    fn wish(&self) -> Wish<'_> {
+        let request = &self.source.request;
+        Wish {
+            problem: &self.problem,
+            facts: &self.facts,
+            pins: &request.pins,
+            accuracy: request.accuracy,
+            max_photon: request.outputs.harmonics.and_then(|h| h.max_energy),
+        }
+    }
 }
 
 /// Reads a configuration and makes every point of it ready.
@@ -109,7 +134,9 @@ pub fn prepare(source: &Source, sets: &[String]) -> Result<Prepared, Complaints>
             Err(complaints) => found.extend(complaints.0.into_iter().map(|c| located(c, point))),
         }
     }
+    choose_electrons(&mut drafts);
     share(&mut drafts);
+    found.extend(drafts.iter().filter_map(|draft| Some(located(impossible(draft)?, draft.source))));
     let mut doubts = Vec::with_capacity(drafts.len());
     for draft in &drafts {
         let (complaints, doubt) =
@@ -152,31 +179,65 @@ fn draft<'a>(point: &'a points::Point, facts: &mut Facts) -> Result<Draft<'a>, C
     let found = facts.of(&potential, &request.atom).map_err(complain)?;
     let problem = Problem { potential, initial: request.atom.initial.clone(), field: request.field.clone() };
     let max_photon = request.outputs.harmonics.and_then(|h| h.max_energy);
-    let wish = Wish {
-        problem: &problem,
-        facts: &found,
-        pins: &request.pins,
-        accuracy: request.accuracy,
-        max_photon,
-    };
-    let choice = choose(&wish);
-    let (asked, half) = (request.record.populations, 0.5 * choice.numerics.grid.x.extent());
-    if asked > 1 && !problem.potential.is_confining() && half < 1e6 {
-        let bound = count_below(&problem.potential, 0.0, half);
-        if asked > bound {
-            return Err(objections::populations(&tree, bound).into());
-        }
-    }
-    Ok(Draft { source: point, tree, softening, problem, facts: found, choice })
+    let (pins, accuracy) = (&request.pins, request.accuracy);
+    let choice = choose(&Wish { problem: &problem, facts: &found, pins, accuracy, max_photon });
+    Ok(Draft { source: point, tree, softening, problem, facts: found, choice, electron_method: None })
 }
 
-/// Where the configuration asks for it, gives all points the strictest numerics.
+/// Gives the points that ask for electrons their method, and numerics for it.
+fn choose_electrons(drafts: &mut [Draft]) {
+    let scales: Vec<Scales> = drafts.iter().map(scales).collect();
+    let asking: Vec<usize> = (0..drafts.len())
+        .filter(|&index| drafts[index].source.request.outputs.photoelectrons.is_some())
+        .collect();
+    let asked = asking.iter().filter_map(|&index| {
+        let (draft, request) = (&drafts[index], &drafts[index].source.request);
+        let wanted = request.outputs.photoelectrons?;
+        let filled = defaults::filled(wanted, &scales);
+        let axis = EnergyAxis::up_to(filled.max_energy?, filled.energy_step?);
+        let fastest = scales[index].electrons.max(wanted.max_energy.unwrap_or_default());
+        let electrons = Electrons { energies: electrons::energies(axis), fastest };
+        Some(Asked { wish: draft.wish(), electrons, pinned: request.electron_method })
+    });
+    let chosen = electrons::choose_all(&asked.collect::<Vec<_>>());
+    for (index, (method, choice)) in asking.into_iter().zip(chosen) {
+        drafts[index].electron_method = Some(method);
+        drafts[index].choice = choice;
+    }
+}
+
+/// What the chosen box does not hold, or the atom does not let go.
+fn impossible(draft: &Draft) -> Option<Complaint> {
+    let (potential, axis) = (&draft.problem.potential, draft.choice.numerics.grid.x);
+    let (asked, half) = (draft.source.request.record.populations, 0.5 * axis.extent());
+    if asked > 1 && !potential.is_confining() && half < 1e6 {
+        let bound = count_below(potential, 0.0, half);
+        if asked > bound {
+            return Some(objections::populations(&draft.tree, bound));
+        }
+    }
+    // Only a table can end where waves are not free.
+    let is_table = matches!(potential, Potential::Sampled(_)) && draft.electron_method.is_some();
+    is_table
+        .then(|| ScatteringStates::new(potential, axis).err())
+        .flatten()
+        .map(|error| objections::no_continuum(&draft.tree, &error))
+}
+
+/// Where the configuration asks for it, gives all points of one way to electrons the strictest numerics.
 fn share(drafts: &mut [Draft]) {
     if drafts.first().is_some_and(|draft| draft.source.request.sharing == Sharing::Common) {
-        let all: Vec<Numerics> = drafts.iter().map(|draft| draft.choice.numerics.clone()).collect();
-        let common = strictest(&all);
-        for draft in drafts {
-            draft.choice.numerics = common.clone();
+        let methods = [None, Some(ElectronMethod::ScatteringStates), Some(ElectronMethod::OutgoingAmplitude)];
+        for method in methods {
+            let alike = || drafts.iter().filter(|draft| draft.electron_method == method);
+            let all: Vec<Numerics> = alike().map(|draft| draft.choice.numerics.clone()).collect();
+            if all.is_empty() {
+                continue;
+            }
+            let common = strictest(&all);
+            for draft in drafts.iter_mut().filter(|draft| draft.electron_method == method) {
+                draft.choice.numerics = common.clone();
+            }
         }
     }
 }
@@ -191,6 +252,8 @@ fn scales(draft: &Draft) -> Scales {
         photon,
         length,
         resolved: std::f64::consts::PI / numerics.time_step,
+        electrons: fastest_electron(&draft.problem, &draft.facts),
+        duration: field.interval().1 - field.interval().0 + numerics.trailing_time,
     }
 }
 
@@ -203,7 +266,12 @@ fn finish(
 ) -> Result<Point, Complaints> {
     let request = &draft.source.request;
     let outputs = defaults::fill(&request.outputs, scales);
-    let chosen = Chosen { softening: draft.softening, numerics: &draft.choice.numerics, outputs: &outputs };
+    let chosen = Chosen {
+        softening: draft.softening,
+        numerics: &draft.choice.numerics,
+        electron_method: draft.electron_method,
+        outputs: &outputs,
+    };
     let tree = resolved::resolved(request, &chosen);
     let stored = request.inputs.iter().map(|i| (i.name.clone(), i.contents.to_string())).collect();
     let read = config::request(&tree, &Library::new(Files::Stored(stored)))?;
@@ -232,6 +300,7 @@ fn job(request: &Request, numerics: &Numerics) -> Job {
         },
         numerics: numerics.clone(),
         record: request.record,
+        electron_method: request.electron_method,
         outputs: request.outputs.clone(),
         inputs: request.inputs.clone(),
     }

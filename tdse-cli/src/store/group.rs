@@ -90,8 +90,14 @@ impl<'a> GroupWriter<'a> {
             array.set("units", &Attribute::Text(units))?;
         }
         if let Some(flags) = member.dataset.flags() {
-            array.set("flag_values", &Attribute::Integers(&flags.map(|(status, _)| status as i64)))?;
-            array.set("flag_meanings", &Attribute::Text(&flags.map(|(_, word)| word).join(" ")))?;
+            array.set(
+                "flag_values",
+                &Attribute::Integers(&flags.iter().map(|(number, _)| *number).collect::<Vec<_>>()),
+            )?;
+            array.set(
+                "flag_meanings",
+                &Attribute::Text(&flags.iter().map(|(_, word)| *word).collect::<Vec<_>>().join(" ")),
+            )?;
         }
         let (role, kind) = (member.dataset.role, member.dataset.kind);
         self.written.push(Written { name: name.into(), role, kind, dimensions, array });

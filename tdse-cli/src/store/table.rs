@@ -3,6 +3,8 @@
 //! Writer, reader, gathering, reports, documentation and tests read this table; nothing else knows a name or unit.
 //! Units are written as the Python library pint reads them. A new output is a new line in [`GROUPS`].
 
+use tdse_core::problem::ElectronMethod;
+
 mod groups;
 
 pub use groups::GROUPS;
@@ -97,6 +99,13 @@ impl Status {
     ];
 }
 
+/// Words for the numbers of `summary/electron_method`; whole numbers that a gathered file lacks read as -1.
+const ELECTRON_METHODS: [(i64, &str); 3] = [
+    (-1, "none"),
+    (ElectronMethod::ScatteringStates as i64, "scattering_states"),
+    (ElectronMethod::OutgoingAmplitude as i64, "outgoing_amplitude"),
+];
+
 /// The group at a path below `/entry`: `harmonics`, or `models/NAME/harmonics`.
 pub fn group(path: &str) -> Option<&'static Group> {
     let name = match path.split('/').collect::<Vec<_>>()[..] {
@@ -126,8 +135,12 @@ impl Group {
 
 impl Dataset {
     /// The words for its numbers, where they stand for words.
-    pub fn flags(&self) -> Option<[(Status, &'static str); 4]> {
-        (self.name == "status").then_some(Status::MEANINGS)
+    pub fn flags(&self) -> Option<Vec<(i64, &'static str)>> {
+        match self.name {
+            "status" => Some(Status::MEANINGS.map(|(status, word)| (status as i64, word)).to_vec()),
+            "electron_method" => Some(ELECTRON_METHODS.to_vec()),
+            _ => None,
+        }
     }
 
     /// Axes and unit of an array with `rank` dimensions; none if it cannot have so many.

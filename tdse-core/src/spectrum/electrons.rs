@@ -50,6 +50,16 @@ impl ContinuumAmplitude {
         self
     }
 
+    /// ∫|a|² dk from threshold to the last momentum, by direction: `[left, right]` (trapezoids between the momenta, however
+    /// they are spaced; below the first one the density is taken as constant).
+    pub fn probability(&self) -> [f64; 2] {
+        [&self.left, &self.right].map(|side| {
+            let first = self.momenta.first().zip(side.first()).map_or(0.0, |(k, a)| k * a.norm_sqr());
+            let pairs = self.momenta.windows(2).zip(side.windows(2));
+            first + pairs.map(|(k, a)| 0.5 * (k[1] - k[0]) * (a[0].norm_sqr() + a[1].norm_sqr())).sum::<f64>()
+        })
+    }
+
     /// Momenta of both directions, rising from -k_max to k_max, and |a(k)|² there, bohr.
     pub fn momentum_density(&self) -> (Vec<f64>, Vec<f64>) {
         let backward = self.momenta.iter().zip(&self.left).rev().map(|(k, a)| (-k, a.norm_sqr()));

@@ -21,7 +21,7 @@ use super::quantity;
 pub use atom::{Atom, ElementSymbol, Potential, State, Term};
 pub use field::example as example_pulse;
 pub use field::{Envelope, Field, Pulse, Sampled};
-pub use numerics::{Absorber, Gauge, Numerics, Scheme};
+pub use numerics::{Absorber, ElectronMethod, Gauge, Numerics, Scheme};
 pub use outputs::{Harmonics, Models, Outputs, Populations, TimeFrequency, Window};
 pub use scan::{Axis, Spacing};
 

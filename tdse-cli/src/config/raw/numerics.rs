@@ -35,6 +35,8 @@ pub struct Numerics {
     /// Time without field after the field.
     #[schemars(example = "2 fs", extend("x-minimum" = "0 fs"))]
     pub trailing_time: Option<Time>,
+    /// Way to the electron spectrum.
+    pub electron_method: Option<ElectronMethod>,
     /// Whether all points of a scan share the strictest choice.
     #[serde(default)]
     pub common: bool,
@@ -59,6 +61,7 @@ impl Default for Numerics {
             gauge: None,
             absorber: None,
             trailing_time: None,
+            electron_method: None,
             common: false,
             allow_inadequate: false,
         }
@@ -83,6 +86,16 @@ pub enum Gauge {
     Length,
     /// (p + A)^2/2 + V.
     Velocity,
+}
+
+/// Way to the electron spectrum.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum ElectronMethod {
+    /// Projection on scattering states at the end, in a box that nothing leaves.
+    ScatteringStates,
+    /// What the absorber takes, collected coherently, and the rest on scattering states.
+    OutgoingAmplitude,
 }
 
 /// Edges of the box.

@@ -18,6 +18,9 @@ pub struct Outputs {
     /// Time-frequency map of the dipole acceleration (Gabor transform).
     #[schemars(example = json!({}))]
     pub time_frequency: Option<TimeFrequency>,
+    /// Spectrum of the electrons that leave, by direction.
+    #[schemars(example = json!({ "max_energy": "60 eV" }))]
+    pub photoelectrons: Option<Photoelectrons>,
     /// Populations of bound states in time.
     #[schemars(example = json!({ "states": 4 }))]
     pub populations: Option<Populations>,
@@ -96,6 +99,20 @@ pub struct TimeFrequency {
     /// Step of the time axis; chosen if left out.
     #[schemars(example = "0.05 fs", extend("x-exclusive-minimum" = "0 fs"))]
     pub time_step: Option<Time>,
+}
+
+/// Spectrum of the electrons that leave. Its energies are part of what is recorded: other ones need a new propagation.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Photoelectrons {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// End of the energy axis, which starts at 0; beyond the fastest electrons if left out.
+    #[schemars(example = "60 eV", extend("x-exclusive-minimum" = "0 eV", "x-maximum" = "100 keV"))]
+    pub max_energy: Option<Energy>,
+    /// Step of the energy axis; chosen from the length of the field if left out.
+    #[schemars(example = "0.05 eV", extend("x-exclusive-minimum" = "0 eV"))]
+    pub energy_step: Option<Energy>,
 }
 
 /// Populations of bound states in time.

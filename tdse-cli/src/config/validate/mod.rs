@@ -1,6 +1,7 @@
 //! From the raw configuration to a [`Request`]: what the schema cannot say, and conversion to atomic units.
 
 mod atom;
+mod electrons;
 mod field;
 mod numerics;
 mod outputs;
@@ -25,6 +26,7 @@ pub fn validate(written: raw::Configuration, tree: &Value, library: &Library) ->
     let atom = atom::atom(&mut check, &written.atom);
     let field = field::field(&mut check, &written.field, written.atom.dimensions);
     let (outputs, record) = outputs::outputs(&mut check, &written.outputs);
+    let electron_method = electrons::method(&mut check, &written);
     let Check { found, inputs, .. } = check;
     Complaints(found).into_result(tree)?;
     Ok(Request {
@@ -33,6 +35,7 @@ pub fn validate(written: raw::Configuration, tree: &Value, library: &Library) ->
         field,
         record,
         pins: numerics::pins(&written.numerics),
+        electron_method,
         accuracy: written.numerics.accuracy,
         inadequate: numerics::inadequate(&written.numerics),
         sharing: numerics::sharing(&written.numerics),

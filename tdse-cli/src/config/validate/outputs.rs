@@ -7,7 +7,7 @@ use tdse_core::spectrum::Window;
 use super::Check;
 use crate::config::complaint::Fix;
 use crate::config::raw::{self, Energy, Time};
-use crate::config::request::{Harmonics, Outputs, TimeFrequency};
+use crate::config::request::{Harmonics, Outputs, Photoelectrons, TimeFrequency};
 
 /// More points than this on an energy axis are a slip of the pen (a limit of our own).
 const MOST_POINTS: f64 = 1e6;
@@ -25,10 +25,18 @@ pub(super) fn outputs(check: &mut Check, outputs: &raw::Outputs) -> (Outputs, Re
     if let Some(map) = &outputs.time_frequency {
         energy_axis(check, "/outputs/time_frequency", map.max_energy.as_ref(), map.energy_step.as_ref());
     }
+    if let Some(electrons) = &outputs.photoelectrons {
+        let (max_energy, step) = (electrons.max_energy.as_ref(), electrons.energy_step.as_ref());
+        energy_axis(check, "/outputs/photoelectrons", max_energy, step);
+    }
     let record = Record { populations: outputs.populations.as_ref().map_or(0, |p| p.states as usize) };
     let derived = Outputs {
         harmonics: outputs.harmonics.as_ref().map(harmonics),
         time_frequency: outputs.time_frequency.as_ref().map(time_frequency),
+        photoelectrons: outputs.photoelectrons.as_ref().map(|raw| Photoelectrons {
+            max_energy: raw.max_energy.as_ref().map(Energy::value),
+            energy_step: raw.energy_step.as_ref().map(Energy::value),
+        }),
     };
     (derived, record)
 }

@@ -2,13 +2,15 @@
 
 use std::time::{Duration, Instant};
 
+use tdse_core::problem::ElectronMethod;
 use tdse_core::simulate::{Failure, Plan, State, advance, health};
+use tdse_core::spectrum::momenta_of;
 
 use super::keeper::Keeper;
 use super::stop::Stop;
 use super::tasks::Task;
 use super::{Shared, machine};
-use crate::derive;
+use crate::derive::{self, Finished};
 use crate::progress::Event;
 use crate::scan::prepare::Point;
 use crate::store::{self, Contents, Provenance};
@@ -64,7 +66,18 @@ fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String>
     let job = &point.job;
     let atom = shared.atoms.get(job).map_err(|error| error.to_string())?;
     let plan = Plan::new(&job.problem, atom.clone(), &job.numerics, job.record);
-    let plan = plan.map_err(|error| error.to_string())?;
+    let mut plan = plan.map_err(|error| error.to_string())?;
+    let electrons = job.electrons().map(|(method, axis)| (method, axis, shared.atoms.continuum(job)));
+    let continuum = match electrons {
+        Some((method, axis, states)) => {
+            let states = states.map_err(|error| error.to_string())?;
+            if method == ElectronMethod::OutgoingAmplitude {
+                plan = plan.collecting(&job.numerics, &states, momenta_of(axis));
+            }
+            Some(states)
+        }
+        None => None,
+    };
     let watch = |step| {
         if shared.prepared.points.len() == 1 {
             shared.reporter.tell(&Event::Advanced { step });
@@ -73,7 +86,11 @@ fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String>
     let state = propagate(&plan, &mut Keeper::new(shared, index), shared.stop, watch)
         .map_err(|error| error.to_string())?;
     let times = (start, now());
-    Ok(state.map(|state| derive::record(point, &atom, &plan, &state, provenance(shared, point, times))))
+    Ok(state.map(|state| {
+        let finished =
+            Finished { point, atom: &atom, plan: &plan, state: &state, continuum: continuum.as_deref() };
+        derive::record(&finished, provenance(shared, point, times))
+    }))
 }
 
 /// Carries a point to the end of its plan; none where it was stopped, and kept.

@@ -152,6 +152,17 @@ pub static GROUPS: &[Group] = &[
         ],
     },
     Group {
+        name: "levels",
+        title: "Bound states after the field",
+        signal: "population",
+        auxiliary: &[],
+        datasets: &[
+            count("state", "Number of the bound state"),
+            value("energy", "eV", &["state"], "Energy of the bound state"),
+            value("population", NUMBER, &["state"], "Population at the end"),
+        ],
+    },
+    Group {
         name: "summary",
         title: "Headline numbers",
         signal: "ionization_probability",
@@ -171,6 +182,36 @@ pub static GROUPS: &[Group] = &[
             value("final_norm", NUMBER, &[], "Norm in the box at the end"),
             value("bound_population", NUMBER, &[], "Population of all bound states at the end"),
             value("initial_population", NUMBER, &[], "Population of the initial state at the end"),
+            value("electron_yield", NUMBER, &[], "Probability of an electron within the energy axis"),
+            value("asymmetry", NUMBER, &[], "Asymmetry of the electrons, (right - left)/(right + left)"),
+            value(
+                "unaccounted_probability",
+                NUMBER,
+                &[],
+                "One minus all bound states and the electrons within the energy axis",
+            ),
+            value(
+                "lowest_clean_momentum",
+                MOMENTUM,
+                &[],
+                "Slowest electron that the absorber takes without reflecting it",
+            ),
+            value(
+                "coulomb_shift",
+                "eV",
+                &[],
+                "Energy by which the ion's pull beyond the absorber may shift electrons",
+            ),
+            value(
+                "coulomb_sideband",
+                NUMBER,
+                &[],
+                "Relative amplitude that the ion's pull beyond the absorber may move by one photon",
+            ),
+            Dataset {
+                kind: Kind::Integer,
+                ..value("electron_method", NUMBER, &[], "Way to the electron spectrum")
+            },
             Dataset { kind: Kind::Integer, ..value("status", NUMBER, &[], "How far the point has come") },
             text("reason", "Why the point is doubtful or not there"),
         ],
