@@ -4,25 +4,40 @@ use crate::grid::Axis;
 
 /// c of Manolopoulos, J. Chem. Phys. 117, 9552 (2002), eq. (2.20): √2 K(1/√2) = Γ(1/4)²/(2√(2π)).
 pub const C: f64 = 2.622_057_554_292_119_5;
-/// δ of eq. (2.26): accuracy parameter; 0.2 reflects 0.6 % at the slowest momentum and less above.
-pub const DELTA: f64 = 0.2;
+/// δ of eq. (2.26) there: accuracy parameter. Smaller than the 0.2 recommended there: fast electrons must be taken too,
+/// to a reflection of 1e-12 ([`reflection`]).
+pub const DELTA: f64 = 0.125;
+/// Envelope of the reflection by k times the width, measured; see [`reflection`].
+const REFLECTION: (f64, f64, f64) = (1.1e-4, 10.0, 8.4);
 
-/// y(x) of eq. (2.24): the shape of the absorber, 0 at x = 0 and infinite at x = c.
+/// y(x): the shape of the absorber, 0 at x = 0 and infinite at x = c.
+///
+/// It is 4/(c-x)² + 4/(c+x)² - 8/c², the even one (Gonzalez-Lezana, Rackham, Manolopoulos, J. Chem. Phys. 120, 2247
+/// (2004)), which begins as a parabola. The one of 2002 begins as a straight line, and that kink reflects (14/(k w))⁶ of
+/// the electrons however fast they are: no good against a plateau of 1e-8 of the fundamental.
 pub fn shape(x: f64) -> f64 {
-    let a = 1.0 - 16.0 / C.powi(3);
-    let b = (1.0 - 17.0 / C.powi(3)) / (C * C);
-    a * x - b * x.powi(3) + 4.0 / (C - x).powi(2) - 4.0 / (C + x).powi(2)
+    4.0 / (C - x).powi(2) + 4.0 / (C + x).powi(2) - 8.0 / (C * C)
 }
 
-/// Slowest momentum k_min, 1/bohr, that an absorber of this width, bohr, takes in with the reflection of [`DELTA`]:
-/// width = c/(2 δ k_min).
+/// Upper bound of the part of |ψ|² of momentum `momentum`, 1/bohr, that an absorber of this `width`, bohr, reflects.
+///
+/// An envelope fitted by us to an integration of the stationary equation, from k w = 10 to 100; below, electrons are
+/// reflected as if there were little absorber.
+pub fn reflection(momentum: f64, width: f64) -> f64 {
+    let (at, there, power) = REFLECTION;
+    (at * (there / (momentum * width)).powf(power)).min(1.0)
+}
+
+/// Width in bohr times momentum in 1/bohr at which [`reflection`] is `part`.
+pub fn width_times_momentum(part: f64) -> f64 {
+    let (at, there, power) = REFLECTION;
+    there * (at / part).powf(1.0 / power)
+}
+
+/// Slowest momentum k_min = c/(2 δ width), 1/bohr, that an absorber of this width, bohr, takes in: 4e-5 of it is
+/// reflected, less above, and most of it at half that momentum.
 pub fn slowest_momentum(width: f64) -> f64 {
     C / (2.0 * DELTA * width)
-}
-
-/// Width in bohr of the absorber that takes in momenta from `slowest` on.
-pub fn width_for(slowest: f64) -> f64 {
-    C / (2.0 * DELTA * slowest)
 }
 
 /// W(x) ≥ 0 with V_abs = -iW, hartree, on the points of `axis`: W = (k_min²/2) y(2 δ k_min (|x| - x_1)) over `width`
@@ -40,18 +55,22 @@ pub fn strength(axis: Axis, width: f64) -> Vec<f64> {
 
 #[cfg(test)]
 mod tests {
-    use super::{C, shape};
+    use super::{C, reflection, shape, width_times_momentum};
 
-    /// Values by an independent evaluation handed to the project, of the potential in
-    /// Manolopoulos, J. Chem. Phys. 117, 9552 (2002); the paper prints a = 0.112449, b = 8.28735e-3, c = 2.62206.
+    /// Closed form of the leading terms: y = 24 x²/c⁴ + 40 x⁴/c⁶ + …, and 4/(c-x)² at the end.
     #[test]
-    fn shape_has_the_published_constants() {
-        assert!((1.0 - 16.0 / C.powi(3) - 0.112_449).abs() < 5e-7);
-        assert!(((1.0 - 17.0 / C.powi(3)) / (C * C) - 8.287_35e-3).abs() < 5e-8);
-        for (x, y) in
-            [(0.5, 0.533_087_531_444_166_5), (1.0, 1.319_560_964_342_335), (2.0, 10.308_466_482_017_325)]
-        {
-            assert!((shape(x) - y).abs() < 1e-12, "y({x}) = {}", shape(x));
+    fn shape_begins_as_a_parabola_and_ends_infinite() {
+        let x = 1e-2;
+        let series = 24.0 * (x * x) / C.powi(4) + 40.0 * x.powi(4) / C.powi(6);
+        assert!((shape(x) / series - 1.0).abs() < 1e-8, "{} against {series}", shape(x));
+        let s = 1e-4;
+        assert!((shape(C - s) * s * s / 4.0 - 1.0).abs() < 1e-7);
+    }
+
+    #[test]
+    fn width_and_reflection_are_inverse() {
+        for part in [1e-5, 1e-8, 1e-12] {
+            assert!((reflection(0.3, width_times_momentum(part) / 0.3) / part - 1.0).abs() < 1e-9);
         }
     }
 }

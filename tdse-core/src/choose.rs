@@ -6,6 +6,7 @@ mod electrons;
 mod judge;
 pub mod ladder;
 mod rules;
+mod smoothness;
 
 pub use electrons::{
     Electrons, Energies, choose_for_electrons, electron_bytes, electron_work, fastest_electron, tail_of,
@@ -15,6 +16,9 @@ use crate::grid::{Axis, Grid, good_length};
 use crate::potential::Potential;
 use crate::problem::{Absorber, Gauge, InitialState, Numerics, Problem, Scheme};
 use crate::stationary::{StationaryError, level};
+
+/// An accuracy is one of the harmonic yields above this part of the largest yield, and up to the cutoff.
+pub const FLOOR: f64 = 1e-8;
 
 /// What the user fixed; `None` leaves the choice to the rules.
 #[derive(Clone, Copy, Debug, PartialEq, Default)]
@@ -64,6 +68,8 @@ pub struct AtomFacts {
     pub highest_energy: f64,
     /// Distance from zero at which the highest member has decayed by e⁻²⁰, bohr.
     pub reach: f64,
+    /// Length ℓ with which wave functions fall as e^{-kℓ} in momentum, bohr.
+    pub analytic_length: f64,
 }
 
 impl AtomFacts {
@@ -77,6 +83,7 @@ impl AtomFacts {
             initial_energy: level(potential, initial.lowest())?.energy,
             highest_energy: highest.energy,
             reach: highest.reach,
+            analytic_length: smoothness::analytic_length(potential),
         })
     }
 
@@ -95,7 +102,8 @@ pub struct Wish<'a> {
     pub facts: &'a AtomFacts,
     /// What the user fixed.
     pub pins: &'a Pins,
-    /// Error asked for, relative to the dipole acceleration.
+    /// Error asked for: of the dipole acceleration, relative in root-mean-square over the run; of every harmonic yield up to the
+    /// cutoff and above [`FLOOR`], relative; of probabilities, absolute.
     pub accuracy: f64,
     /// Largest photon energy that is written, hartree, where the user gave one.
     pub max_photon: Option<f64>,

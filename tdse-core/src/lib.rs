@@ -31,3 +31,4 @@ pub mod spectrum;
 pub mod stationary;
 pub mod step;
 pub mod units;
+pub mod watch;

@@ -1,5 +1,7 @@
 //! Propagation: a plan made once, a state that can be stopped and continued, a series of what was recorded.
 
+mod probe;
+
 use std::sync::Arc;
 
 use num_complex::Complex;
@@ -11,6 +13,8 @@ use crate::potential::{Potential, PotentialOnGrid};
 use crate::problem::{InitialState, Numerics, Problem, Record};
 use crate::stationary::{BoundStates, ScatteringStates, StationaryError, bound_states_below};
 use crate::step::{Drive, Line, LineWorkspace, Moments};
+
+use probe::Probe;
 
 /// Most population samples kept of a run.
 const POPULATION_SAMPLES: usize = 512;
@@ -106,6 +110,7 @@ pub struct Plan {
     populations: usize,
     stride: usize,
     collector: Option<Collector>,
+    probe: Probe,
 }
 
 /// The field is too strong for the time step.
@@ -163,6 +168,7 @@ impl Plan {
         }
         let vector_potential = schedule.times().into_iter().map(|t| field.vector_potential(t)).collect();
         let stride = schedule.steps.div_ceil(POPULATION_SAMPLES).max(1);
+        let probe = Probe::new(&atom.potential, numerics, field, &schedule, &drives);
         Ok(Self {
             atom,
             initial,
@@ -174,6 +180,7 @@ impl Plan {
             populations: record.populations,
             stride,
             collector: None,
+            probe,
         })
     }
 
@@ -194,6 +201,12 @@ impl Plan {
     /// What collects the absorbed amplitude, if anything does.
     pub fn collector(&self) -> Option<&Collector> {
         self.collector.as_ref()
+    }
+
+    /// Steps that are compared with two halves of themselves: the one of the strongest field; in runs of a thousand steps also
+    /// the one of the strongest field in the second half, and one at three quarters.
+    pub fn doubled_steps(&self) -> Vec<usize> {
+        self.probe.steps().collect()
     }
 
     /// Times of the run.
@@ -228,6 +241,7 @@ impl Plan {
         Workspace {
             line: self.line.make_workspace(),
             psi: vec![Complex::default(); self.grid.len()],
+            halves: vec![Complex::default(); self.grid.len()],
             outgoing: self.collector.as_ref().map(Collector::make_scratch).unwrap_or_default(),
         }
     }
@@ -251,6 +265,7 @@ impl Plan {
     }
 }
 
+/// What step `n` of a schedule needs of the field.
 fn drive(field: &Field, schedule: &Schedule, n: usize) -> Drive {
     let (t, half) = (schedule.time(n), 0.5 * schedule.time_step);
     let (first, first_square) = field.potential_integrals(t, half);
@@ -298,6 +313,10 @@ pub struct Series {
     pub initial_population: Vec<f64>,
     /// Populations of the bound states recorded, one row per entry of `population_steps`, flat.
     pub populations: Vec<f64>,
+    /// Part of |ψ|, free of a common phase, by which one step differs from two halves of it, at [`Plan::doubled_steps`].
+    pub local_error: Vec<f64>,
+    /// ⟨H⟩ without field, hartree, when the field has ended and at the end of the run; empty without such a time.
+    pub free_energy: Vec<f64>,
 }
 
 impl Series {
@@ -311,6 +330,8 @@ impl Series {
             population_steps: Vec::with_capacity(rows),
             initial_population: Vec::with_capacity(rows),
             populations: Vec::with_capacity(rows * populations),
+            local_error: Vec::with_capacity(probe::MOMENTS),
+            free_energy: Vec::with_capacity(2),
         }
     }
 
@@ -327,6 +348,7 @@ impl Series {
 pub struct Workspace {
     line: LineWorkspace,
     psi: Vec<Complex<f64>>,
+    halves: Vec<Complex<f64>>,
     outgoing: CollectorScratch,
 }
 
@@ -338,6 +360,7 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
     while state.step < end {
         record_populations(plan, state, work);
         collect_outgoing(plan, state, work);
+        watch(plan, state, work);
         let drive = &plan.drives[state.step];
         let moments = plan.line.step(&mut state.psi, drive, &mut work.line);
         state.series.push(moments);
@@ -346,6 +369,7 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
     if state.step == plan.schedule.steps && state.series.norm.len() == state.step {
         record_populations(plan, state, work);
         collect_outgoing(plan, state, work);
+        watch(plan, state, work);
         state.series.push(plan.line.moments_of(&state.psi, &mut work.line));
     }
 }
@@ -370,6 +394,24 @@ fn collect_outgoing(plan: &Plan, state: &mut State, work: &mut Workspace) {
     plan.wave_function(state, &mut work.psi);
     let outgoing = state.outgoing.as_mut().expect("a state of a plan that collects");
     collector.collect(outgoing, &work.psi, state.step, &mut work.outgoing);
+}
+
+/// Looks at ψ at the few moments of the plan's probe.
+fn watch(plan: &Plan, state: &mut State, work: &mut Workspace) {
+    let field = plan.drives[state.step].field[0];
+    if plan.probe.doubles_at(state.step) {
+        // In the gauge of the run: no vector potential here.
+        work.psi.copy_from_slice(&state.psi);
+        plan.line.close(&mut work.psi, field, 0.0, &mut work.line);
+        let (index, next) = (state.series.local_error.len(), plan.drives[state.step + 1].field[0]);
+        let whole = &plan.drives[state.step];
+        let error = plan.probe.doubled(index, (whole, next), &mut work.psi, &mut work.halves, &mut work.line);
+        state.series.local_error.push(error);
+    }
+    if plan.probe.weighs_at(state.step) {
+        plan.close_into(state, &mut work.psi, &mut work.line);
+        state.series.free_energy.push(plan.probe.energy(&plan.atom.potential, &mut work.psi, &mut work.line));
+    }
 }
 
 /// How a run is doing.

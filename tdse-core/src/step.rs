@@ -29,7 +29,8 @@ pub struct Moments {
     pub norm: f64,
     /// ⟨∇V⟩, hartree/bohr.
     pub gradient: [f64; 2],
-    /// Part of ∫|ψ|² in the outer blocks of the grid: the absorber, or 1/16 of the box at each side without one.
+    /// Part of ∫|ψ|² in the outer blocks of 64 points of the grid: the absorber, or 1/16 of the box at each side without one;
+    /// a block at least, from 512 points on.
     pub edge: f64,
     /// Part of ∫|ψ|² in the upper quarter of the momenta the grid holds.
     pub top: f64,

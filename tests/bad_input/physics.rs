@@ -67,17 +67,17 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
             "/numerics/extent: \"160 bohr\" leaves",
             "where electrons need",
             "allowed: at least",
-            "try \"300 bohr\"",
+            "try \"400 bohr\"",
         ],
     ),
     (
         "absorbers that overlap",
         &[
-            ("/numerics/extent", Some(r#""100 bohr""#)),
+            ("/numerics/extent", Some(r#""85 bohr""#)),
             ("/numerics/absorber", Some(r#"{ "kind": "smooth", "width": "60 bohr" }"#)),
         ],
         &[
-            "/numerics/extent: \"100 bohr\" leaves no room between two absorbers of 60 bohr each",
+            "/numerics/extent: \"85 bohr\" leaves no room between two absorbers of 60 bohr each",
             "try \"300 bohr\"",
         ],
     ),
@@ -87,16 +87,17 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
         &[
             "/numerics/spacing: \"1 bohr\" holds momenta up to 3.14 / bohr where",
             "allowed: at most",
-            "try \"0.3 bohr\"",
+            "try \"0.25 bohr\"",
         ],
     ),
     (
         "absorber too thin",
         &[("/numerics/absorber", Some(r#"{ "kind": "smooth", "width": "5 bohr" }"#))],
         &[
-            "/numerics/absorber/width: \"5 bohr\" reflects electrons slower than",
+            "/numerics/absorber/width: \"5 bohr\" reflects",
+            "the slowest that come back within the run",
             "allowed: at least",
-            "try \"60 bohr\"",
+            "try \"80 bohr\"",
         ],
     ),
     (

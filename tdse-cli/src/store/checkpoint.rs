@@ -133,9 +133,19 @@ fn bytes(origin: &Origin, state: &State) -> Vec<u8> {
 }
 
 /// Everything that a state holds. The patterns name every field, so that a forgotten one does not compile.
-fn arrays(state: &State) -> [(&'static str, Vec<u64>); 11] {
+fn arrays(state: &State) -> [(&'static str, Vec<u64>); 13] {
     let State { psi, step, series, outgoing } = state;
-    let Series { gradient, norm, edge, top, population_steps, initial_population, populations } = series;
+    let Series {
+        gradient,
+        norm,
+        edge,
+        top,
+        population_steps,
+        initial_population,
+        populations,
+        local_error,
+        free_energy,
+    } = series;
     let none = Outgoing { left: Vec::new(), right: Vec::new() };
     let Outgoing { left, right } = outgoing.as_ref().unwrap_or(&none);
     let complex =
@@ -151,6 +161,8 @@ fn arrays(state: &State) -> [(&'static str, Vec<u64>); 11] {
         ("population_steps", population_steps.iter().map(|step| *step as u64).collect()),
         ("initial_population", bits(initial_population)),
         ("populations", bits(populations)),
+        ("local_error", bits(local_error)),
+        ("free_energy", bits(free_energy)),
         // Empty where nothing outgoing is collected.
         ("outgoing_left", complex(left)),
         ("outgoing_right", complex(right)),
@@ -199,6 +211,8 @@ impl Arrays {
             population_steps: self.take("population_steps")?.into_iter().map(|step| step as usize).collect(),
             initial_population: self.reals("initial_population")?,
             populations: self.reals("populations")?,
+            local_error: self.reals("local_error")?,
+            free_energy: self.reals("free_energy")?,
         };
         let (left, right) = (self.complex("outgoing_left")?, self.complex("outgoing_right")?);
         let outgoing = if left.is_empty() { None } else { Some(Outgoing { left, right }) };
@@ -232,6 +246,8 @@ mod tests {
                 population_steps: vec![0, 2],
                 initial_population: vec![1.0, odd[3]],
                 populations: vec![1.0, 0.0, 0.5, 0.25],
+                local_error: vec![1e-9, -0.0],
+                free_energy: vec![-0.5],
             },
             outgoing: Some(Outgoing {
                 left: vec![Complex::new(odd[1], odd[0])],

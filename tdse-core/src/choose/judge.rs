@@ -2,7 +2,7 @@
 
 use super::rules::Needs;
 use super::{Finding, Knob, Verdict, Wish, ladder};
-use crate::absorber::slowest_momentum;
+use crate::absorber::reflection;
 use crate::problem::{Absorber, Numerics};
 use crate::step::resonant_step;
 
@@ -88,7 +88,11 @@ fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
             } else {
                 Verdict::Doubtful
             },
-            reason: format!("reflects electrons slower than {:.3} / bohr", slowest_momentum(width)),
+            reason: format!(
+                "reflects {:.1e} of the electrons of {:.3} / bohr, the slowest that come back within the run",
+                reflection(needs.slowest, width),
+                needs.slowest
+            ),
             allowed: format!("at least {:.1} bohr", needs.absorber_width),
             passes,
         }),

@@ -1,17 +1,27 @@
 //! The rules: what an accuracy asks of grid, absorber and step. Every constant is common practice, checked by the tests
 //! of the shipped scenarios, with no single source unless one is named.
 
+use std::f64::consts::FRAC_PI_2;
+
+use num_complex::Complex;
+
 use super::{Knob, Pins, Reason, Wish};
-use crate::absorber::{slowest_momentum, width_for};
-use crate::field::Field;
+use crate::absorber::{reflection, width_times_momentum};
+use crate::field::{Field, Pulse};
 use crate::potential::Potential;
 use crate::problem::{Absorber, Gauge, Numerics, Scheme};
 use crate::step::resonant_step;
 
 /// Narrowest absorber worth having, bohr.
 pub(super) const NARROWEST_ABSORBER: f64 = 20.0;
-/// Slowest momentum that must leave at an accuracy of 1e-4, 1/bohr; it falls with the fourth root of the accuracy.
-const SLOWEST_MOMENTUM: f64 = 0.11;
+/// Amplitude that an absorber may reflect of the slowest electrons that come back, in units of the accuracy. The harmonic
+/// plateau is made by electrons that return, so what is reflected errs it by its own amplitude, however small the plateau
+/// is beside the fundamental; such slow ones are a part of them (measured on the twenty configurations of the tests).
+const REFLECTED: f64 = 2.0;
+/// Digits by which the bound state's momenta are held beyond the accuracy, in e-folds (measured there too).
+const SPARE: f64 = 3.0;
+/// Samples of a field over which an oscillator's swing is summed: a resonance is seen by any number of them.
+const SWING_SAMPLES: usize = 512;
 /// Part of the resonant step that is used.
 const BELOW_RESONANCE: f64 = 0.9;
 /// Largest momentum of a classical electron after backscattering, in units of the vector potential's maximum:
@@ -80,12 +90,18 @@ pub(super) struct Needs {
     pub(super) flight: f64,
     /// Absorber's width per side, bohr; zero where none is needed.
     pub(super) absorber_width: f64,
+    /// Half of the box within an absorber, bohr.
+    pub(super) inner: f64,
+    /// Momentum of the slowest electrons that go to the absorber and back within the run, 1/bohr.
+    pub(super) slowest: f64,
     /// Binding energy, hartree.
     pub(super) binding: f64,
     /// Frequency of small oscillations at the bottom of the potential, hartree.
     pub(super) stiffness: f64,
     /// Largest photon energy to resolve in time, hartree.
     pub(super) photon: f64,
+    /// Whether anything can leave.
+    leaves: bool,
     accuracy: f64,
     strength: Strength,
 }
@@ -101,25 +117,35 @@ impl Needs {
         let depth = if confined { wish.facts.highest_energy } else { -potential.value(bottom(potential)) };
         let free = (2.0 * (strength.photon + wish.facts.highest_energy).max(0.0)).sqrt();
         let fastest = FASTEST * strength.vector_potential + free;
-        let swing = if confined { strength.field * duration } else { 0.0 };
-        let analytic = analytic_length(potential);
-        let at_rest = (2.0 * depth.max(0.0)).sqrt() + digits / analytic;
+        let swing = if confined { swing(&wish.problem.field, stiffness(potential)) } else { 0.0 };
+        let analytic = wish.facts.analytic_length;
+        let at_rest = (2.0 * depth.max(0.0)).sqrt() + (digits + SPARE) / analytic;
         let momentum = at_rest.max(fastest + 0.4 * digits / analytic) + swing;
         let stiffness = stiffness(potential);
         let momentum = momentum.max(std::f64::consts::PI / kink_spacing(potential, wish.accuracy));
         // The wave function outside decays by e^{-20} at the level's reach; the accuracy asks for a part of that.
         let bound = wish.facts.reach * (digits / 20.0).min(1.0) + swing / stiffness.max(1e-3);
-        let needs_absorber = !confined && strength.field > 0.0;
-        let slowest = SLOWEST_MOMENTUM * (wish.accuracy / 1e-4).powf(0.25);
+        let atom_reach = bound.max(2.0 * strength.quiver) + strength.quiver + 20.0;
+        let flight = bound + (strength.vector_potential * 2.0 + free) * duration + 20.0;
+        // What comes back went twice through the inner box: the wider that is, the faster it was, and the narrower the
+        // absorber may be. Both together are least where they are equal.
+        let product = width_times_momentum((REFLECTED * wish.accuracy).powi(2));
+        let inner = atom_reach.max((0.5 * product * duration).sqrt());
+        let slowest = 2.0 * inner / duration;
+        let width = (product / slowest).max(NARROWEST_ABSORBER);
+        let needs_absorber = !confined && strength.field > 0.0 && flight.max(atom_reach) > inner + width;
         Self {
             spacing: std::f64::consts::PI / momentum,
             momentum,
-            atom_reach: bound.max(2.0 * strength.quiver) + strength.quiver + 20.0,
-            flight: bound + (strength.vector_potential * 2.0 + free) * duration + 20.0,
-            absorber_width: if needs_absorber { width_for(slowest) } else { 0.0 },
+            atom_reach,
+            flight,
+            absorber_width: if needs_absorber { width } else { 0.0 },
+            inner,
+            slowest,
             binding: wish.facts.ionization_energy(),
             stiffness,
             photon: wish.max_photon.unwrap_or(0.0).max(strength.photon),
+            leaves: !confined && strength.field > 0.0,
             accuracy: wish.accuracy,
             strength,
         }
@@ -128,9 +154,14 @@ impl Needs {
     /// Half the box without its absorber, bohr.
     pub(super) fn inner(&self, absorber: Absorber) -> f64 {
         match absorber {
-            Absorber::None if self.absorber_width > 0.0 => self.flight.max(self.atom_reach),
-            Absorber::None | Absorber::Smooth { .. } => self.atom_reach,
+            Absorber::None => self.closed(),
+            Absorber::Smooth { .. } => self.inner,
         }
+    }
+
+    /// Half of a box without absorber, bohr.
+    fn closed(&self) -> f64 {
+        if self.leaves { self.flight.max(self.atom_reach) } else { self.atom_reach }
     }
 
     /// Longest time step for a scheme on a grid that holds momenta up to `largest`.
@@ -142,11 +173,11 @@ impl Needs {
         resonance.min(accurate).min(sampled)
     }
 
-    /// Step at which the measured error constants (0.02 (τΩ)⁴ and 0.3 (τΩ)², with Ω the stiffness) leave a factor of
-    /// ten to the accuracy.
+    /// Step at which the largest error of a harmonic yield of the plateau, measured as (τΩ)⁴ and 3 (τΩ)² with Ω the
+    /// stiffness, meets the accuracy; the root-mean-square is fifty times less.
     fn accurate_step(&self, scheme: Scheme) -> f64 {
         match scheme {
-            Scheme::FourthOrder => (self.accuracy / 0.2).powf(0.25) / self.stiffness,
+            Scheme::FourthOrder => self.accuracy.powf(0.25) / self.stiffness,
             Scheme::Strang => (self.accuracy / 3.0).sqrt() / self.stiffness,
         }
     }
@@ -168,7 +199,7 @@ impl Needs {
                 ),
             ),
             reason(Knob::Extent, pins.extent.is_some(), self.extent_reason(numerics)),
-            reason(Knob::Absorber, pins.absorber.is_some(), absorber_reason(numerics.absorber)),
+            reason(Knob::Absorber, pins.absorber.is_some(), self.absorber_reason(numerics.absorber)),
             reason(
                 Knob::TimeStep,
                 pins.time_step.is_some(),
@@ -201,10 +232,22 @@ impl Needs {
         ]
     }
 
+    fn absorber_reason(&self, absorber: Absorber) -> String {
+        match absorber {
+            Absorber::None => "none: nothing comes back from the edge".into(),
+            Absorber::Smooth { width } => format!(
+                "reflects {:.1e} of the slowest electrons that come back within the run, {:.3} / bohr, and less above \
+                 (even form of Gonzalez-Lezana, Rackham, Manolopoulos 2004)",
+                reflection(self.slowest, width),
+                self.slowest
+            ),
+        }
+    }
+
     fn extent_reason(&self, numerics: &Numerics) -> String {
         let points = numerics.grid.x.points;
         match numerics.absorber {
-            Absorber::None if self.absorber_width > 0.0 => {
+            Absorber::None if self.leaves => {
                 format!(
                     "nothing leaves: the fastest electrons come {:.0} bohr far; {points} points",
                     self.flight
@@ -214,22 +257,38 @@ impl Needs {
                 format!("the bound state, {:.0} bohr to each side; {points} points", self.atom_reach)
             }
             Absorber::Smooth { width } => format!(
-                "bound state and returning electrons, {:.0} bohr to each side (quiver amplitude {:.1} bohr), and \
-                 the absorber, {width:.0} bohr; {points} points",
-                self.atom_reach, self.strength.quiver
+                "{:.0} bohr to each side: bound state and returning electrons take {:.0} bohr (quiver amplitude {:.1} bohr), \
+                 and what the absorber of {width:.0} bohr reflects shall come back late; {points} points",
+                self.inner, self.atom_reach, self.strength.quiver
             ),
         }
     }
 }
 
-fn absorber_reason(absorber: Absorber) -> String {
-    match absorber {
-        Absorber::None => "none: nothing comes near the edge".into(),
-        Absorber::Smooth { width } => format!(
-            "takes in momenta from {:.3} / bohr on with 0.6 % reflection and less above (Manolopoulos 2002)",
-            slowest_momentum(width)
-        ),
-    }
+/// Largest momentum that a field gives to an oscillator of this frequency, |∫E e^{iΩt} dt| up to any time, whatever its
+/// pulses' phases, 1/bohr. (Exact for a harmonic potential: its packets follow the classical path.)
+fn swing(field: &Field, frequency: f64) -> f64 {
+    let quadratures = |pulse: &Pulse| [0.0, FRAC_PI_2].map(|phase| Pulse { phase, ..*pulse });
+    let of = |parts: &[Field]| {
+        let (start, end) = parts[0].interval();
+        let step = (end - start) / SWING_SAMPLES as f64;
+        let mut sums = vec![Complex::<f64>::default(); parts.len()];
+        let mut largest = 0.0f64;
+        for i in 0..SWING_SAMPLES {
+            let t = start + (i as f64 + 0.5) * step;
+            for (sum, part) in sums.iter_mut().zip(parts) {
+                *sum += Complex::cis(frequency * t) * part.electric_field(t)[0] * step;
+            }
+            largest = largest.max(sums.iter().map(Complex::norm_sqr).sum());
+        }
+        largest.sqrt()
+    };
+    let pulses = field
+        .pulses
+        .iter()
+        .map(|pulse| of(&quadratures(pulse).map(|pulse| Field { pulses: vec![pulse], sampled: None })));
+    let table = field.sampled.iter().map(|s| of(&[Field { pulses: Vec::new(), sampled: Some(s.clone()) }]));
+    pulses.chain(table).sum()
 }
 
 /// Position of the lowest potential energy, bohr.
@@ -240,18 +299,6 @@ pub(super) fn bottom(potential: &Potential) -> f64 {
             (0..v.len()).min_by(|&i, &j| v[i].total_cmp(&v[j])).map_or(0.0, |i| x[i])
         }
         _ => 0.0,
-    }
-}
-
-/// Distance of the potential's nearest singularity from the real axis, bohr: wave functions fall as e^{-k…} with it in
-/// momentum. A Gaussian well and a harmonic potential have none; a width serves in its place.
-fn analytic_length(potential: &Potential) -> f64 {
-    match potential {
-        Potential::SoftCoulomb { softening, .. } | Potential::Screened { softening, .. } => *softening,
-        Potential::PoschlTeller { width, .. } => std::f64::consts::FRAC_PI_2 * width,
-        Potential::GaussianWell { width, .. } => 1.5 * width,
-        Potential::Harmonic { frequency } => 1.5 / frequency.sqrt(),
-        Potential::Sampled(table) => 2.0 * table.spacing(),
     }
 }
 

@@ -13,6 +13,8 @@ const RESIDUAL: f64 = 1e-11;
 /// Residual that is still accepted where rounding on a fine grid, or a level close to the threshold, allows no better:
 /// the energy is then good to 1e-10 hartree for level distances down to 1e-6 hartree.
 const ACCEPTED: f64 = 1e-8;
+/// The same on grids so fine that rounding of their largest energies sets it, in units of those.
+const ROUNDING: f64 = 1e-11;
 /// Rounds for states that are only counted in the bound population: they start from the shooting solution, and mixing
 /// among themselves leaves their sum as it is.
 const ROUNDS: usize = 4;
@@ -102,6 +104,12 @@ impl Hamiltonian {
         DVector::from_iterator(psi.len(), work.iter().map(|w| w.re))
     }
 
+    /// Residual that is still accepted, hartree.
+    fn accepted(&self) -> f64 {
+        let largest = |values: &[f64]| values.iter().fold(0.0, |m: f64, v| m.max(v.abs()));
+        ACCEPTED.max(ROUNDING * (largest(&self.kinetic) + largest(&self.potential)))
+    }
+
     fn apply(&self, psi: &DVector<f64>) -> DVector<f64> {
         let mut out = self.in_momentum(psi, |t| t);
         for ((o, v), p) in out.iter_mut().zip(&self.potential).zip(psi.iter()) {
@@ -115,7 +123,7 @@ impl Hamiltonian {
 fn lowest(h: &Hamiltonian, guesses: Vec<Vec<f64>>, exact: usize) -> Result<BoundStates, StationaryError> {
     let guesses: Vec<DVector<f64>> = guesses.into_iter().map(DVector::from_vec).collect();
     let (mut states, energies, worst) = improved(h, guesses[..exact].to_vec(), ITERATIONS);
-    if worst > ACCEPTED || worst.is_nan() || states.len() < exact {
+    if worst > h.accepted() || worst.is_nan() || states.len() < exact {
         return Err(StationaryError::NotConverged {
             what: "the bound states on the grid",
             reached: worst,
@@ -154,7 +162,7 @@ fn improved(h: &Hamiltonian, mut x: Vec<DVector<f64>>, rounds: usize) -> (Vec<DV
         }
         stalled = if worst < 0.7 * best { 0 } else { stalled + 1 };
         best = best.min(worst);
-        if worst < RESIDUAL || (best < ACCEPTED && stalled > 12) {
+        if worst < RESIDUAL || (best < h.accepted() && stalled > 12) {
             break;
         }
         basis.append(&mut directions);

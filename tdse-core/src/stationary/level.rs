@@ -144,7 +144,8 @@ pub(super) fn rough_level(
 fn first_reach(potential: &Potential) -> f64 {
     let range = match potential {
         Potential::Screened { screening_length, .. } => 3.0 * screening_length,
-        Potential::Sampled(_) => whole(potential) / 10.0,
+        // No wider than what a deep level can cross without overflow.
+        Potential::Sampled(_) => (whole(potential) / 10.0).min(10.0),
         _ => potential.smallest_length(),
     };
     10.0 * range.max(potential.smallest_length()).max(1.0)

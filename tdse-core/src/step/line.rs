@@ -82,6 +82,9 @@ impl Line {
             Absorber::None => axis.extent() / 16.0,
             Absorber::Smooth { width } => width,
         };
+        let blocks = (edge / axis.spacing) as usize / BLOCK;
+        // A block is left at each edge of any box that is eight blocks long.
+        let edge_blocks = blocks.max(usize::from(axis.points >= 8 * BLOCK));
         Self {
             arch: Arch::new(),
             grid,
@@ -94,7 +97,7 @@ impl Line {
             outer,
             middle,
             kinetic,
-            edge_blocks: (edge / axis.spacing) as usize / BLOCK,
+            edge_blocks,
         }
     }
 
@@ -151,6 +154,15 @@ impl Line {
         self.transform.forward(&mut copy, &mut work.scratch);
         let sums = self.arch.dispatch(Sum { psi, gradient: &self.gradient, edge: self.edge_blocks });
         self.moments(sums, top_of(&copy))
+    }
+
+    /// ⟨ψ|p²/2 + V|ψ⟩, hartree, of a `psi` in length gauge, which is overwritten.
+    pub fn energy(&self, values: &[f64], psi: &mut [Complex<f64>], work: &mut LineWorkspace) -> f64 {
+        let potential: f64 = psi.iter().zip(values).map(|(p, v)| p.norm_sqr() * v).sum();
+        self.transform.forward(psi, &mut work.scratch);
+        let axis = self.grid.x;
+        let kinetic: f64 = psi.iter().zip(axis.momenta()).map(|(p, k)| p.norm_sqr() * 0.5 * k * k).sum();
+        (potential + kinetic / axis.points as f64) * self.grid.cell()
     }
 
     /// Turns ψ at a time when the field is `field` into the open form.

@@ -1,0 +1,140 @@
+//! A run with chosen numerics, a far finer one of the same case, and the distance between the two.
+
+use std::sync::Arc;
+use std::time::Instant;
+
+use tdse_core::choose::{AtomFacts, FLOOR, PinnedAbsorber, Pins, Wish, choose};
+use tdse_core::field::Field;
+use tdse_core::potential::PotentialOnGrid;
+use tdse_core::problem::{Numerics, Record};
+use tdse_core::simulate::{Atom, Plan, Schedule, run};
+use tdse_core::spectrum::{Window, order_yields};
+use tdse_core::stationary::bound_states;
+
+use crate::cases::Case;
+
+/// What is compared of a run.
+pub struct Outcome {
+    pub acceleration: Vec<f64>,
+    pub schedule: Schedule,
+    /// Population of the initial state at the end.
+    pub survival: f64,
+    pub seconds: f64,
+}
+
+/// Errors in units of nothing: relative, relative, absolute.
+#[derive(Clone, Copy, Debug)]
+pub struct Errors {
+    pub rms: f64,
+    pub harmonic: f64,
+    /// Order of the harmonic with the largest error.
+    pub order: usize,
+    pub survival: f64,
+}
+
+impl Errors {
+    pub fn largest(&self) -> f64 {
+        self.rms.max(self.harmonic).max(self.survival)
+    }
+}
+
+/// Numerics chosen for a case, the step shortened to a whole number over the field: runs of different steps then end
+/// at the same time, and their windows are the same.
+pub fn chosen(case: &Case, accuracy: f64, pins: &Pins) -> Numerics {
+    let problem = &case.problem;
+    let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
+    let mut numerics = choose(&Wish { problem, facts: &facts, pins, accuracy, max_photon: None }).numerics;
+    whole(&mut numerics, &problem.field);
+    numerics
+}
+
+pub fn whole(numerics: &mut Numerics, field: &Field) {
+    let (start, end) = field.interval();
+    let length = end - start + numerics.trailing_time;
+    numerics.time_step = length / (length / numerics.time_step - 1e-9).ceil();
+}
+
+/// Points times steps of a run.
+pub fn work(case: &Case, numerics: &Numerics) -> f64 {
+    let steps = Schedule::new(&case.problem.field, numerics.time_step, numerics.trailing_time).steps;
+    numerics.grid.len() as f64 * steps as f64
+}
+
+/// Every choice at least twice finer than `numerics`, and a box that nothing leaves where that costs at most `most`
+/// points times steps; an absorber twice as wide, twice as far out, otherwise.
+pub fn reference(case: &Case, numerics: &Numerics, accuracy: f64, most: f64) -> Numerics {
+    let spacing = Some(0.5 * numerics.grid.x.spacing);
+    let (width, extent) = (numerics.absorber.width(), 2.0 * numerics.grid.x.extent());
+    let finer = |pins: Pins| {
+        let free = chosen(case, accuracy, &pins).time_step;
+        chosen(case, accuracy, &Pins { time_step: Some(free.min(0.5 * numerics.time_step)), ..pins })
+    };
+    let closed = Pins { spacing, absorber: Some(PinnedAbsorber::None), ..Pins::default() };
+    let free = finer(closed);
+    let free =
+        if free.grid.x.extent() < extent { finer(Pins { extent: Some(extent), ..closed }) } else { free };
+    if width == 0.0 || work(case, &free) <= most {
+        return free;
+    }
+    let absorber = Some(PinnedAbsorber::Width(2.0 * width));
+    finer(Pins { spacing, absorber, extent: Some(extent), ..Pins::default() })
+}
+
+pub fn outcome(case: &Case, numerics: &Numerics) -> Outcome {
+    let began = Instant::now();
+    let potential = &case.problem.potential;
+    let atom = Atom {
+        potential: PotentialOnGrid::sample(potential, &numerics.grid),
+        bound: bound_states(potential, &numerics.grid, 1).unwrap(),
+    };
+    let plan = Plan::new(&case.problem, Arc::new(atom), numerics, Record::default()).unwrap();
+    let state = run(&plan);
+    let norm = state.series.norm[0];
+    let gradient = state.series.gradient.iter();
+    Outcome {
+        acceleration: gradient.zip(plan.electric_field()).map(|(g, e)| g[0] + e[0] * norm).collect(),
+        schedule: plan.schedule().clone(),
+        survival: *state.series.initial_population.last().unwrap(),
+        seconds: began.elapsed().as_secs_f64(),
+    }
+}
+
+/// Harmonics that count: up to the cutoff 1.32 Ip + 3.17 Up (Lewenstein et al., Phys. Rev. A 49, 2117 (1994), eq. 32).
+fn orders(case: &Case) -> usize {
+    let pulse = &case.problem.field.pulses[0];
+    let cutoff = 1.32 * case.binding + 3.17 * pulse.ponderomotive_energy();
+    (cutoff / pulse.frequency).floor().max(1.0) as usize
+}
+
+pub fn errors(case: &Case, found: &Outcome, exact: &Outcome) -> Errors {
+    let photon = case.problem.field.pulses[0].frequency;
+    let yields = |o: &Outcome| order_yields(&o.acceleration, &o.schedule, Window::Hann, photon, orders(case));
+    let (f, e) = (yields(found), yields(exact));
+    let largest = e.iter().copied().fold(0.0, f64::max);
+    let relative = |i: usize| (f[i] - e[i]).abs() / e[i];
+    let above = (0..e.len()).filter(|&i| e[i] > FLOOR * largest);
+    let worst = above.max_by(|&i, &j| relative(i).total_cmp(&relative(j))).unwrap();
+    let there: Vec<f64> = found.schedule.times().iter().map(|&t| interpolated(exact, t)).collect();
+    let square = |v: &mut dyn Iterator<Item = f64>| v.map(|x| x * x).sum::<f64>().sqrt();
+    Errors {
+        rms: square(&mut found.acceleration.iter().zip(&there).map(|(a, b)| a - b))
+            / square(&mut there.iter().copied()),
+        harmonic: relative(worst),
+        order: worst + 1,
+        survival: (found.survival - exact.survival).abs(),
+    }
+}
+
+/// The acceleration at time `t` by the polynomial through the eight nearest samples.
+fn interpolated(outcome: &Outcome, t: f64) -> f64 {
+    let values = &outcome.acceleration;
+    let place = (t - outcome.schedule.start) / outcome.schedule.time_step;
+    let first = (place.floor() as usize).saturating_sub(3).min(values.len() - 8);
+    (0..8)
+        .map(|i| {
+            let others = (0..8).filter(|&j| j != i);
+            let weight: f64 = others.map(|j| (place - (first + j) as f64) / (i as f64 - j as f64)).product();
+            weight * values[first + i]
+        })
+        .sum()
+}
