@@ -3,6 +3,7 @@
 //! [`record()`] puts in what was propagated, [`derive()`] what follows from it. Deriving reads the recorded arrays as a file
 //! holds them, so a result derived anew has the same bits as one derived at once.
 
+mod doubts;
 mod electrons;
 mod recorded;
 mod spectra;

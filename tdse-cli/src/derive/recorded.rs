@@ -9,9 +9,8 @@ use tdse_core::spectrum::twice_integrated;
 use tdse_core::stationary::ScatteringStates;
 
 use super::electrons::electrons;
-use super::{electronvolts, femtoseconds, volt_seconds_per_metre, volts_per_metre};
+use super::{doubts, electronvolts, femtoseconds, volt_seconds_per_metre, volts_per_metre};
 use crate::scan::prepare::Point;
-use crate::store::table::Status;
 use crate::store::{Contents, Provenance};
 
 /// Bound states listed after the field; where an atom has fewer, NaN stands for them.
@@ -45,6 +44,7 @@ pub fn record(finished: &Finished, provenance: Provenance) -> Contents {
     populations(&mut contents, point, atom, plan, state);
     let bound = levels(&mut contents, point, atom, plan, state);
     summary(&mut contents, point, atom, state, bound);
+    doubts::put(&mut contents, &doubts::of_run(point, plan, state));
     if let (Some(continuum), Some(asked)) = (continuum, point.job.electrons()) {
         electrons(&mut contents, finished, continuum, asked, bound);
     }
@@ -122,8 +122,6 @@ fn levels(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, stat
 }
 
 fn summary(contents: &mut Contents, point: &Point, atom: &Atom, state: &State, total: f64) {
-    let doubts = &point.doubts;
-    let status = if doubts.is_empty() { Status::Done } else { Status::Doubtful };
     contents.insert("summary", "ionization_probability", (1.0 - total).max(0.0));
     contents.insert(
         "summary",
@@ -139,8 +137,6 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, state: &State, t
     contents.insert("summary", "bound_population", total);
     let initial = state.series.initial_population.last().copied().unwrap_or(f64::NAN);
     contents.insert("summary", "initial_population", initial);
-    contents.insert("summary", "status", status as i64);
-    contents.insert("summary", "reason", doubts.join("\n"));
 }
 
 /// Energy of the initial state; of a superposition the mean.

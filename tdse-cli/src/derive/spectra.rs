@@ -6,7 +6,7 @@ use tdse_core::spectrum::{
     EnergyAxis, TAPER, TimeFrequency, gabor, harmonics, measured_cutoff, order_yields, radiated_energy,
 };
 
-use super::{electronvolts, femtoseconds};
+use super::{doubts, electronvolts, femtoseconds};
 use crate::config::request;
 use crate::scan::prepare::{Job, Point};
 use crate::store::Contents;
@@ -40,6 +40,7 @@ pub fn derive(point: &Point, contents: &mut Contents) {
     if let Some(wanted) = &job.outputs.time_frequency {
         map(contents, wanted, &acceleration, &schedule);
     }
+    doubts::renew(point, contents, &acceleration, &schedule);
 }
 
 /// Axis of an output whose defaults are filled in.

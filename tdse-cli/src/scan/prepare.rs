@@ -73,6 +73,8 @@ pub struct Job {
     pub numerics: Numerics,
     /// What is recorded.
     pub record: Record,
+    /// Accuracy asked for.
+    pub accuracy: f64,
     /// Way to the electron spectrum, where one is asked for.
     pub electron_method: Option<ElectronMethod>,
     /// What is derived, nothing left open.
@@ -300,6 +302,7 @@ fn job(request: &Request, numerics: &Numerics) -> Job {
         },
         numerics: numerics.clone(),
         record: request.record,
+        accuracy: request.accuracy,
         electron_method: request.electron_method,
         outputs: request.outputs.clone(),
         inputs: request.inputs.clone(),

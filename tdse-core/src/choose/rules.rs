@@ -24,6 +24,8 @@ const SPARE: f64 = 3.0;
 const SWING_SAMPLES: usize = 512;
 /// Part of the resonant step that is used.
 const BELOW_RESONANCE: f64 = 0.9;
+/// A box that nothing leaves keeps its outermost sixteenths empty: there the watch looks.
+const OUTER: f64 = 8.0 / 7.0;
 /// Largest momentum of a classical electron after backscattering, in units of the vector potential's maximum:
 /// drift √5 (10 Up; Paulus et al., J. Phys. B 27, L703 (1994)) plus quiver 1.
 const FASTEST: f64 = 3.24;
@@ -126,7 +128,10 @@ impl Needs {
         // The wave function outside decays by e^{-20} at the level's reach; the accuracy asks for a part of that.
         let bound = wish.facts.reach * (digits / 20.0).min(1.0) + swing / stiffness.max(1e-3);
         let atom_reach = bound.max(2.0 * strength.quiver) + strength.quiver + 20.0;
-        let flight = bound + (strength.vector_potential * 2.0 + free) * duration + 20.0;
+        // Photons that do not ionize one by one do so together, and leave up to one of them in excess.
+        let excess = strength.photon + wish.facts.highest_energy;
+        let leaving = (2.0 * if excess > 0.0 { excess } else { strength.photon }).sqrt();
+        let flight = OUTER * (bound + (strength.vector_potential * 2.0 + leaving) * duration + 20.0);
         // What comes back went twice through the inner box: the wider that is, the faster it was, and the narrower the
         // absorber may be. Both together are least where they are equal.
         let product = width_times_momentum((REFLECTED * wish.accuracy).powi(2));
