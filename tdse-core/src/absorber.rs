@@ -1,6 +1,7 @@
 //! Smooth complex absorber at the edges of the box.
 
-use crate::grid::Axis;
+use crate::grid::{Axis, Grid};
+use crate::problem::Absorber;
 
 /// c of Manolopoulos, J. Chem. Phys. 117, 9552 (2002), eq. (2.20): √2 K(1/√2) = Γ(1/4)²/(2√(2π)).
 pub const C: f64 = 2.622_057_554_292_119_5;
@@ -51,6 +52,32 @@ pub fn strength(axis: Axis, width: f64) -> Vec<f64> {
     let slowest = slowest_momentum(width);
     let depth = |x: f64| (2.0 * DELTA * slowest * (x.abs() - inner)).max(0.0);
     axis.positions().map(|x| 0.5 * slowest * slowest * shape(depth(x))).collect()
+}
+
+/// W on every point of a two-dimensional `grid`, hartree: on all sides the sum of both axes, or round, infinite beyond the
+/// circle that touches the nearer edges.
+///
+/// # Panics
+/// If the grid has one dimension; as [`strength`].
+pub fn on_grid(grid: &Grid, absorber: Absorber) -> Vec<f64> {
+    let y = grid.y.expect("a plane has two dimensions");
+    match absorber {
+        Absorber::None => vec![0.0; grid.len()],
+        Absorber::Smooth { width } => {
+            let along_x = strength(grid.x, width);
+            strength(y, width).iter().flat_map(|b| along_x.iter().map(move |a| a + b)).collect()
+        }
+        Absorber::Round { width } => {
+            let radius = 0.5 * grid.x.extent().min(y.extent());
+            assert!(width > 0.0 && width < radius, "0 < width < half the box: {width} of {radius} bohr");
+            let slowest = slowest_momentum(width);
+            let depth = |r: f64| (2.0 * DELTA * slowest * (r - radius + width)).max(0.0);
+            let at = |r: f64| {
+                if r < radius { 0.5 * slowest * slowest * shape(depth(r)) } else { f64::INFINITY }
+            };
+            grid.y_positions().flat_map(|y| grid.x.positions().map(move |x| at(x.hypot(y)))).collect()
+        }
+    }
 }
 
 #[cfg(test)]

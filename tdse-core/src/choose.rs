@@ -5,12 +5,15 @@
 mod electrons;
 mod judge;
 pub mod ladder;
+mod plane;
 mod rules;
 mod smoothness;
 
 pub use electrons::{
     Electrons, Energies, choose_for_electrons, electron_bytes, electron_work, fastest_electron, tail_of,
 };
+
+pub use plane::choose_plane;
 
 use crate::grid::{Axis, Grid, good_length};
 use crate::potential::Potential;
@@ -54,7 +57,7 @@ impl From<Absorber> for PinnedAbsorber {
     fn from(absorber: Absorber) -> Self {
         match absorber {
             Absorber::None => Self::None,
-            Absorber::Smooth { width } => Self::Width(width),
+            Absorber::Smooth { width } | Absorber::Round { width } => Self::Width(width),
         }
     }
 }

@@ -65,6 +65,12 @@ impl Grid {
         Self { x: Axis { points, spacing }, y: None }
     }
 
+    /// Square two-dimensional grid with the same axis both ways.
+    pub fn square(points: usize, spacing: f64) -> Self {
+        let axis = Axis { points, spacing };
+        Self { x: axis, y: Some(axis) }
+    }
+
     /// Number of dimensions, 1 or 2.
     pub fn dimensions(&self) -> usize {
         1 + usize::from(self.y.is_some())

@@ -12,9 +12,11 @@
 //! taken every few steps, by a trapezoid whose end is corrected to sixth order.
 
 mod motion;
+mod plane;
 mod tail;
 
 pub use motion::Motion;
+pub use plane::{MapCollector, MapRange, MapScratch, MomentumMap};
 pub use tail::{TailLeft, tail_left};
 
 use std::f64::consts::PI;
@@ -54,6 +56,8 @@ pub struct Outgoing {
     pub left: Vec<Complex<f64>>,
     /// At momentum +k, bohr^{1/2}.
     pub right: Vec<Complex<f64>>,
+    /// In two dimensions instead: the map of a [`MapCollector`], shape `[k_y, k_x]`, bohr.
+    pub map: Vec<Complex<f64>>,
 }
 
 /// Scratch of [`Collector::collect`]; holds nothing between calls.
@@ -138,7 +142,7 @@ impl Collector {
     /// Nothing collected yet.
     pub fn start(&self) -> Outgoing {
         let zero = vec![Complex::default(); self.momenta.len()];
-        Outgoing { left: zero.clone(), right: zero }
+        Outgoing { left: zero.clone(), right: zero, map: Vec::new() }
     }
 
     /// Scratch for [`Self::collect`].

@@ -15,7 +15,8 @@ pub struct Problem {
     pub field: Field,
 }
 
-/// State of the electron before the field, in terms of bound states counted from 0 by rising energy.
+/// State of the electron before the field, in terms of bound states counted from 0 by rising energy; in two dimensions in
+/// the order of the atom's own list.
 #[derive(Clone, Debug, PartialEq)]
 pub enum InitialState {
     /// One bound state.
@@ -53,6 +54,43 @@ pub struct Term {
     pub phase: f64,
 }
 
+/// Behaviour under a mirror.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Parity {
+    /// ψ(-x) = ψ(x).
+    Even,
+    /// ψ(-x) = -ψ(x).
+    Odd,
+}
+
+impl Parity {
+    /// +1 or -1.
+    pub fn sign(self) -> f64 {
+        match self {
+            Self::Even => 1.0,
+            Self::Odd => -1.0,
+        }
+    }
+}
+
+/// Symmetry of a bound state in two dimensions.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Symmetry {
+    /// ψ = R(r) e^{imφ}; the number counts the nodes of R.
+    Angular(i32),
+    /// Parity in x and in y; the number counts by rising energy within the symmetry.
+    Mirror([Parity; 2]),
+}
+
+/// A bound state in two dimensions.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub struct PlaneLabel {
+    /// Its symmetry.
+    pub symmetry: Symmetry,
+    /// Its number within the symmetry, from 0.
+    pub number: usize,
+}
+
 /// Splitting of a time step.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Scheme {
@@ -81,6 +119,11 @@ pub enum Absorber {
         /// Width per side, bohr.
         width: f64,
     },
+    /// The same in a ring, two dimensions only: it begins at one distance from the centre in all directions.
+    Round {
+        /// Width, bohr.
+        width: f64,
+    },
 }
 
 impl Absorber {
@@ -88,7 +131,7 @@ impl Absorber {
     pub fn width(&self) -> f64 {
         match self {
             Self::None => 0.0,
-            Self::Smooth { width } => *width,
+            Self::Smooth { width } | Self::Round { width } => *width,
         }
     }
 }

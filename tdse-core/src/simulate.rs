@@ -8,11 +8,15 @@ use num_complex::Complex;
 
 use crate::field::Field;
 use crate::grid::Grid;
-use crate::outgoing::{Collector, CollectorScratch, Edges, Motion, Outgoing};
+use crate::outgoing::{
+    Collector, CollectorScratch, Edges, MapCollector, MapRange, MapScratch, Motion, Outgoing,
+};
 use crate::potential::{Potential, PotentialOnGrid};
-use crate::problem::{InitialState, Numerics, Problem, Record};
-use crate::stationary::{BoundStates, ScatteringStates, StationaryError, bound_states_below};
-use crate::step::{Drive, Line, LineWorkspace, Moments};
+use crate::problem::{InitialState, Numerics, Parity, PlaneLabel, Problem, Record};
+use crate::stationary::{
+    BoundStates, PlaneState, ScatteringStates, StationaryError, bound_states_below, plane_states,
+};
+use crate::step::{Drive, Moments, Step, StepWorkspace};
 
 use probe::Probe;
 
@@ -24,8 +28,10 @@ const POPULATION_SAMPLES: usize = 512;
 pub struct Atom {
     /// Potential and gradient.
     pub potential: PotentialOnGrid,
-    /// Its bound states: every one below zero, and as many as were asked for in any case.
+    /// Its bound states in one dimension: every one below zero, and as many as were asked for in any case.
     pub bound: BoundStates,
+    /// Its bound states in two dimensions: those that were asked for, in that order.
+    pub plane: Vec<PlaneState>,
 }
 
 impl Atom {
@@ -34,7 +40,35 @@ impl Atom {
         Ok(Self {
             potential: PotentialOnGrid::sample(potential, grid),
             bound: bound_states_below(potential, grid, states)?,
+            plane: Vec::new(),
         })
+    }
+
+    /// Atom in two dimensions with the states that `labels` name; an [`InitialState`] and a [`Record`] count them in this
+    /// order.
+    pub fn on_plane(
+        potential: &Potential,
+        grid: &Grid,
+        labels: &[PlaneLabel],
+    ) -> Result<Self, StationaryError> {
+        Ok(Self {
+            potential: PotentialOnGrid::sample(potential, grid),
+            bound: BoundStates { energies: Vec::new(), states: Vec::new() },
+            plane: plane_states(potential, grid, labels)?,
+        })
+    }
+
+    /// Number of bound states it holds.
+    pub fn states(&self) -> usize {
+        self.bound.states.len() + self.plane.len()
+    }
+
+    /// Bound state `number` at point `i`.
+    fn state(&self, number: usize, i: usize) -> Complex<f64> {
+        match self.plane.get(number) {
+            Some(state) => state.at(i),
+            None => Complex::new(self.bound.states[number][i], 0.0),
+        }
     }
 
     /// ψ(0) of an initial state, normalised.
@@ -42,15 +76,16 @@ impl Atom {
     /// # Panics
     /// If the atom holds fewer states than the initial state names.
     pub fn wave_function(&self, initial: &InitialState) -> Vec<Complex<f64>> {
-        let states = &self.bound.states;
+        let points = self.potential.values.len();
+        let state = |number: usize| (0..points).map(move |i| self.state(number, i));
         match initial {
-            InitialState::Single(number) => states[*number].iter().map(|&p| Complex::new(p, 0.0)).collect(),
+            InitialState::Single(number) => state(*number).collect(),
             InitialState::Superposition(terms) => {
                 let total: f64 = terms.iter().map(|t| t.weight).sum();
-                let mut psi = vec![Complex::default(); states[0].len()];
+                let mut psi = vec![Complex::default(); points];
                 for term in terms {
                     let amplitude = Complex::from_polar((term.weight / total).sqrt(), term.phase);
-                    for (p, s) in psi.iter_mut().zip(&states[term.number]) {
+                    for (p, s) in psi.iter_mut().zip(state(term.number)) {
                         *p += amplitude * s;
                     }
                 }
@@ -102,7 +137,7 @@ pub struct Plan {
     atom: Arc<Atom>,
     initial: Vec<Complex<f64>>,
     grid: Grid,
-    line: Line,
+    kernel: Step,
     schedule: Schedule,
     drives: Vec<Drive>,
     /// A at every sample; used to turn velocity gauge into length gauge.
@@ -110,7 +145,8 @@ pub struct Plan {
     populations: usize,
     stride: usize,
     collector: Option<Collector>,
-    probe: Probe,
+    probe: Option<Probe>,
+    map: Option<MapCollector>,
 }
 
 /// The field is too strong for the time step.
@@ -155,25 +191,30 @@ impl Plan {
         record: Record,
     ) -> Result<Self, StepTooLong> {
         assert_eq!(initial.len(), numerics.grid.len(), "wave function and grid have the same length");
-        let states = atom.bound.states.len();
+        let states = atom.states();
         assert!(record.populations <= states, "{} populations of {states} states", record.populations);
         let schedule = Schedule::new(field, numerics.time_step, numerics.trailing_time);
-        let line = Line::new(&atom.potential, numerics);
         let drives: Vec<Drive> = (0..=schedule.steps).map(|n| drive(field, &schedule, n)).collect();
-        let strongest =
-            drives.iter().flat_map(|d| [d.field[0], d.middle_field[0]]).map(f64::abs).fold(0.0, f64::max);
-        let largest = line.largest_field();
+        let mirror = mirror_of(&initial, &atom.potential, &numerics.grid, &drives);
+        let kernel = Step::new(&atom.potential, numerics, mirror);
+        let strongest = drives
+            .iter()
+            .flat_map(|d| [d.field, d.middle_field])
+            .map(|e| e[0].hypot(e[1]))
+            .fold(0.0, f64::max);
+        let largest = kernel.largest_field();
         if strongest > largest {
             return Err(StepTooLong { time_step: numerics.time_step, field: strongest, largest });
         }
         let vector_potential = schedule.times().into_iter().map(|t| field.vector_potential(t)).collect();
         let stride = schedule.steps.div_ceil(POPULATION_SAMPLES).max(1);
-        let probe = Probe::new(&atom.potential, numerics, field, &schedule, &drives);
+        let one = numerics.grid.dimensions() == 1;
+        let probe = one.then(|| Probe::new(&atom.potential, numerics, field, &schedule, &drives));
         Ok(Self {
             atom,
             initial,
             grid: numerics.grid,
-            line,
+            kernel,
             schedule,
             drives,
             vector_potential,
@@ -181,6 +222,7 @@ impl Plan {
             stride,
             collector: None,
             probe,
+            map: None,
         })
     }
 
@@ -198,6 +240,29 @@ impl Plan {
         self
     }
 
+    /// The same plan in two dimensions, which maps what the absorber of `numerics` takes.
+    ///
+    /// # Panics
+    /// As [`MapCollector::new`].
+    #[must_use]
+    pub fn mapping(mut self, numerics: &Numerics, range: MapRange) -> Self {
+        self.map = Some(MapCollector::new(numerics, range, &self.drives, &self.vector_potential));
+        self
+    }
+
+    /// What maps the absorbed amplitude, if anything does.
+    pub fn map_collector(&self) -> Option<&MapCollector> {
+        self.map.as_ref()
+    }
+
+    fn start_outgoing(&self) -> Option<Outgoing> {
+        match (&self.collector, &self.map) {
+            (Some(collector), _) => Some(collector.start()),
+            (None, Some(map)) => Some(Outgoing { map: map.start(), ..Outgoing::default() }),
+            (None, None) => None,
+        }
+    }
+
     /// What collects the absorbed amplitude, if anything does.
     pub fn collector(&self) -> Option<&Collector> {
         self.collector.as_ref()
@@ -206,7 +271,7 @@ impl Plan {
     /// Steps that are compared with two halves of themselves: the one of the strongest field; in runs of a thousand steps also
     /// the one of the strongest field in the second half, and one at three quarters.
     pub fn doubled_steps(&self) -> Vec<usize> {
-        self.probe.steps().collect()
+        self.probe.iter().flat_map(Probe::steps).collect()
     }
 
     /// Times of the run.
@@ -226,35 +291,50 @@ impl Plan {
 
     /// State before the first step.
     pub fn initial_state(&self) -> State {
-        let mut psi = self.initial.clone();
-        self.line.open(&mut psi, self.drives[0].field[0]);
         State {
-            psi,
+            psi: self.kernel.opened(&self.initial, self.drives[0].field),
             step: 0,
             series: Series::with_capacity(self.schedule.steps + 1, self.populations),
-            outgoing: self.collector.as_ref().map(Collector::start),
+            outgoing: self.start_outgoing(),
         }
     }
 
-    /// Scratch for [`advance`].
+    /// Scratch for [`advance`] on one thread.
     pub fn make_workspace(&self) -> Workspace {
+        self.make_workspace_on(1)
+    }
+
+    /// Scratch for [`advance`] in two dimensions on `threads` threads of the rayon pool it is called in. The bits do not
+    /// depend on it.
+    pub fn make_workspace_on(&self, threads: usize) -> Workspace {
         Workspace {
-            line: self.line.make_workspace(),
-            psi: vec![Complex::default(); self.grid.len()],
-            halves: vec![Complex::default(); self.grid.len()],
+            kernel: self.kernel.make_workspace(threads),
+            halves: vec![Complex::default(); if self.probe.is_some() { self.grid.len() } else { 0 }],
             outgoing: self.collector.as_ref().map(Collector::make_scratch).unwrap_or_default(),
+            map: self.map.as_ref().map(MapCollector::make_scratch).unwrap_or_default(),
         }
     }
 
     /// ψ of the state in length gauge, free of the splitting's open form, into `out`.
     pub fn wave_function(&self, state: &State, out: &mut [Complex<f64>]) {
-        self.close_into(state, out, &mut self.line.make_workspace());
+        let mut work = self.kernel.make_workspace(1);
+        self.kernel.unfold(self.closed(state, &mut work), out);
     }
 
-    fn close_into(&self, state: &State, out: &mut [Complex<f64>], work: &mut LineWorkspace) {
-        out.copy_from_slice(&state.psi);
-        let (field, potential) = (self.drives[state.step].field[0], self.vector_potential[state.step][0]);
-        self.line.close(out, field, potential, work);
+    /// ψ of the state in length gauge, of the part of the grid that is kept.
+    fn closed<'w>(&self, state: &State, work: &'w mut StepWorkspace) -> &'w [Complex<f64>] {
+        let (field, potential) = (self.drives[state.step].field, self.vector_potential[state.step]);
+        self.kernel.closed(&state.psi, field, potential, work)
+    }
+
+    /// |⟨f|ψ⟩|² of f on the whole grid and ψ on the part kept.
+    fn weight(&self, f: impl Fn(usize) -> Complex<f64>, psi: &[Complex<f64>]) -> f64 {
+        (self.kernel.overlap(f, psi) * self.grid.cell()).norm_sqr()
+    }
+
+    /// The mirror y → -y under which only half the plane is computed, where field and state keep one.
+    pub fn mirror(&self) -> Option<Parity> {
+        self.kernel.mirror()
     }
 
     /// |⟨n|ψ⟩|² for every bound state of `states`, in length gauge.
@@ -263,6 +343,30 @@ impl Plan {
         self.wave_function(state, &mut psi);
         states.states.iter().map(|s| population(s, &psi, self.grid.cell())).collect()
     }
+}
+
+/// The mirror that field, potential and state keep, bit by bit; none in one dimension.
+fn mirror_of(
+    psi: &[Complex<f64>],
+    potential: &PotentialOnGrid,
+    grid: &Grid,
+    drives: &[Drive],
+) -> Option<Parity> {
+    let along_x = |d: &Drive| {
+        let [a, b] = d.potential_integral;
+        [d.field[1], d.middle_field[1], a[1], b[1]] == [0.0; 4]
+    };
+    let (nx, ny) = (grid.x.points, grid.y?.points);
+    if !ny.is_multiple_of(16) || !drives.iter().all(along_x) {
+        return None;
+    }
+    let half = ny / 2 * nx;
+    let mirrored = |i: usize| (ny - 1 - i / nx) * nx + i % nx;
+    if (0..half).any(|i| potential.values[i] != potential.values[mirrored(i)]) {
+        return None;
+    }
+    let keeps = |parity: &Parity| (0..half).all(|i| psi[i] == psi[mirrored(i)] * parity.sign());
+    [Parity::Even, Parity::Odd].into_iter().find(keeps)
 }
 
 /// What step `n` of a schedule needs of the field.
@@ -346,10 +450,10 @@ impl Series {
 /// Scratch of [`advance`]; holds nothing between calls.
 #[derive(Clone, Debug)]
 pub struct Workspace {
-    line: LineWorkspace,
-    psi: Vec<Complex<f64>>,
+    kernel: StepWorkspace,
     halves: Vec<Complex<f64>>,
     outgoing: CollectorScratch,
+    map: MapScratch,
 }
 
 /// Advances by at most `steps` steps, and takes the last sample when the run is over.
@@ -362,7 +466,7 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
         collect_outgoing(plan, state, work);
         watch(plan, state, work);
         let drive = &plan.drives[state.step];
-        let moments = plan.line.step(&mut state.psi, drive, &mut work.line);
+        let moments = plan.kernel.advance(&mut state.psi, drive, &mut work.kernel);
         state.series.push(moments);
         state.step += 1;
     }
@@ -370,7 +474,7 @@ pub fn advance(plan: &Plan, state: &mut State, work: &mut Workspace, steps: usiz
         record_populations(plan, state, work);
         collect_outgoing(plan, state, work);
         watch(plan, state, work);
-        state.series.push(plan.line.moments_of(&state.psi, &mut work.line));
+        state.series.push(plan.kernel.moments_of(&state.psi, &mut work.kernel));
     }
 }
 
@@ -378,39 +482,53 @@ fn record_populations(plan: &Plan, state: &mut State, work: &mut Workspace) {
     if !state.step.is_multiple_of(plan.stride) && state.step != plan.schedule.steps {
         return;
     }
-    plan.close_into(state, &mut work.psi, &mut work.line);
-    let overlap: Complex<f64> = plan.initial.iter().zip(&work.psi).map(|(i, p)| i.conj() * p).sum();
+    let psi = plan.closed(state, &mut work.kernel);
     state.series.population_steps.push(state.step);
-    state.series.initial_population.push((overlap * plan.grid.cell()).norm_sqr());
-    for bound in &plan.atom.bound.states[..plan.populations] {
-        state.series.populations.push(population(bound, &work.psi, plan.grid.cell()));
+    state.series.initial_population.push(plan.weight(|i| plan.initial[i], psi));
+    for number in 0..plan.populations {
+        let weight = match plan.atom.plane.get(number) {
+            Some(bound) => plan.weight(|i| bound.at(i), psi),
+            None => plan.weight(|i| plan.atom.bound.states[number][i].into(), psi),
+        };
+        state.series.populations.push(weight);
     }
 }
 
 fn collect_outgoing(plan: &Plan, state: &mut State, work: &mut Workspace) {
-    let Some(collector) = plan.collector.as_ref().filter(|c| c.is_due(state.step)) else {
+    let line = plan.collector.as_ref().filter(|c| c.is_due(state.step));
+    let map = plan.map.as_ref().filter(|m| m.is_due(state.step));
+    if line.is_none() && map.is_none() {
         return;
-    };
-    plan.wave_function(state, &mut work.psi);
+    }
+    let psi = plan.closed(state, &mut work.kernel);
     let outgoing = state.outgoing.as_mut().expect("a state of a plan that collects");
-    collector.collect(outgoing, &work.psi, state.step, &mut work.outgoing);
+    if let Some(collector) = line {
+        collector.collect(outgoing, psi, state.step, &mut work.outgoing);
+    }
+    if let Some(collector) = map {
+        let row = |j: usize, out: &mut [Complex<f64>]| plan.kernel.row(psi, j, out);
+        collector.collect(&mut outgoing.map, row, state.step, &mut work.map);
+    }
 }
 
-/// Looks at ψ at the few moments of the plan's probe.
+/// Looks at ψ at the few moments of the plan's probe; one dimension only.
 fn watch(plan: &Plan, state: &mut State, work: &mut Workspace) {
+    let (Some(probe), Step::Line(line)) = (&plan.probe, &plan.kernel) else { return };
     let field = plan.drives[state.step].field[0];
-    if plan.probe.doubles_at(state.step) {
+    let Some((psi, scratch)) = work.kernel.of_line() else { return };
+    if probe.doubles_at(state.step) {
         // In the gauge of the run: no vector potential here.
-        work.psi.copy_from_slice(&state.psi);
-        plan.line.close(&mut work.psi, field, 0.0, &mut work.line);
+        psi.copy_from_slice(&state.psi);
+        line.close(psi, field, 0.0, scratch);
         let (index, next) = (state.series.local_error.len(), plan.drives[state.step + 1].field[0]);
         let whole = &plan.drives[state.step];
-        let error = plan.probe.doubled(index, (whole, next), &mut work.psi, &mut work.halves, &mut work.line);
+        let error = probe.doubled(index, (whole, next), psi, &mut work.halves, scratch);
         state.series.local_error.push(error);
     }
-    if plan.probe.weighs_at(state.step) {
-        plan.close_into(state, &mut work.psi, &mut work.line);
-        state.series.free_energy.push(plan.probe.energy(&plan.atom.potential, &mut work.psi, &mut work.line));
+    if probe.weighs_at(state.step) {
+        psi.copy_from_slice(&state.psi);
+        line.close(psi, field, plan.vector_potential[state.step][0], scratch);
+        state.series.free_energy.push(probe.energy(&plan.atom.potential, psi, scratch));
     }
 }
 
@@ -452,7 +570,7 @@ pub fn health(state: &State) -> Result<Health, Failure> {
     let (Some(&before), Some(&after)) = (series.norm.first(), series.norm.last()) else {
         return Ok(Health { norm: 1.0, edge: 0.0, top: 0.0 });
     };
-    if !after.is_finite() || series.gradient.last().is_some_and(|g| !g[0].is_finite()) {
+    if !after.is_finite() || series.gradient.last().is_some_and(|g| !(g[0] + g[1]).is_finite()) {
         return Err(Failure::NotFinite { step: state.step });
     }
     if after > before * (1.0 + 1e-9) {

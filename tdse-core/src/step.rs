@@ -1,11 +1,15 @@
 //! One time step: splitting coefficients, kinetic and local factors, and the moments taken on the way.
 
+mod either;
 mod kernel;
 mod line;
+mod plane;
 mod ramp;
 
+pub use either::{Step, StepWorkspace};
 pub use kernel::instruction_set;
 pub use line::{Line, LineWorkspace};
+pub use plane::{Plane, PlaneWorkspace};
 
 use crate::problem::Scheme;
 

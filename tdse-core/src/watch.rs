@@ -99,7 +99,7 @@ pub fn doubts(watched: &Watched) -> Vec<Doubt> {
             EDGE * squared,
             "of the norm reached the outermost sixteenths of the box; enlarge the extent",
         ),
-        Absorber::Smooth { .. } => (
+        Absorber::Smooth { .. } | Absorber::Round { .. } => (
             Kind::StateInAbsorber,
             first,
             HELD * watched.accuracy,

@@ -82,6 +82,7 @@ pub fn bare_atom(values: Vec<f64>, gradient: Vec<f64>) -> Arc<Atom> {
     Arc::new(Atom {
         potential: PotentialOnGrid { values, gradient: [gradient, Vec::new()] },
         bound: BoundStates { energies: Vec::new(), states: Vec::new() },
+        plane: Vec::new(),
     })
 }
 

@@ -86,6 +86,7 @@ pub fn outcome(case: &Case, numerics: &Numerics) -> Outcome {
     let atom = Atom {
         potential: PotentialOnGrid::sample(potential, &numerics.grid),
         bound: bound_states(potential, &numerics.grid, 1).unwrap(),
+        plane: Vec::new(),
     };
     let plan = Plan::new(&case.problem, Arc::new(atom), numerics, Record::default()).unwrap();
     let state = run(&plan);

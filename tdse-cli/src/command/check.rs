@@ -132,7 +132,9 @@ fn numerics(point: &Point) -> String {
             Knob::Extent => ("extent", number(numerics.grid.x.extent()), "bohr"),
             Knob::Absorber => match numerics.absorber {
                 Absorber::None => ("absorber", "none".into(), ""),
-                Absorber::Smooth { width } => ("absorber", number(width), "bohr per side"),
+                Absorber::Smooth { width } | Absorber::Round { width } => {
+                    ("absorber", number(width), "bohr per side")
+                }
             },
             Knob::TimeStep => ("time step", number(numerics.time_step), "au"),
             Knob::Scheme => (

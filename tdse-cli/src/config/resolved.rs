@@ -94,7 +94,7 @@ fn absorber(written: Option<raw::Absorber>, chosen: Absorber) -> raw::Absorber {
     };
     match chosen {
         Absorber::None => raw::Absorber::None { note },
-        Absorber::Smooth { width: value } => {
+        Absorber::Smooth { width: value } | Absorber::Round { width: value } => {
             length(&mut width, value);
             raw::Absorber::Smooth { note, width }
         }

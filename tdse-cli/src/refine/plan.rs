@@ -142,7 +142,7 @@ fn spelled(key: &str, numerics: &Numerics, base: &Numerics, written: &Value) -> 
         _ if numerics.absorber == base.absorber => written.clone(),
         _ => match numerics.absorber {
             Absorber::None => json!({ "kind": "none" }),
-            Absorber::Smooth { width } => {
+            Absorber::Smooth { width } | Absorber::Round { width } => {
                 json!({ "kind": "smooth", "width": format!("{} au", short(width)) })
             }
         },

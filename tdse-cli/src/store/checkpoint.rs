@@ -133,7 +133,7 @@ fn bytes(origin: &Origin, state: &State) -> Vec<u8> {
 }
 
 /// Everything that a state holds. The patterns name every field, so that a forgotten one does not compile.
-fn arrays(state: &State) -> [(&'static str, Vec<u64>); 13] {
+fn arrays(state: &State) -> [(&'static str, Vec<u64>); 14] {
     let State { psi, step, series, outgoing } = state;
     let Series {
         gradient,
@@ -146,8 +146,8 @@ fn arrays(state: &State) -> [(&'static str, Vec<u64>); 13] {
         local_error,
         free_energy,
     } = series;
-    let none = Outgoing { left: Vec::new(), right: Vec::new() };
-    let Outgoing { left, right } = outgoing.as_ref().unwrap_or(&none);
+    let none = Outgoing::default();
+    let Outgoing { left, right, map } = outgoing.as_ref().unwrap_or(&none);
     let complex =
         |numbers: &[Complex<f64>]| numbers.iter().flat_map(|p| [p.re.to_bits(), p.im.to_bits()]).collect();
     let bits = |numbers: &[f64]| numbers.iter().map(|number| number.to_bits()).collect();
@@ -166,6 +166,7 @@ fn arrays(state: &State) -> [(&'static str, Vec<u64>); 13] {
         // Empty where nothing outgoing is collected.
         ("outgoing_left", complex(left)),
         ("outgoing_right", complex(right)),
+        ("outgoing_map", complex(map)),
     ]
 }
 
@@ -215,7 +216,9 @@ impl Arrays {
             free_energy: self.reals("free_energy")?,
         };
         let (left, right) = (self.complex("outgoing_left")?, self.complex("outgoing_right")?);
-        let outgoing = if left.is_empty() { None } else { Some(Outgoing { left, right }) };
+        let map = self.complex("outgoing_map")?;
+        let none = left.is_empty() && map.is_empty();
+        let outgoing = if none { None } else { Some(Outgoing { left, right, map }) };
         Ok(State { psi, step, series, outgoing })
     }
 
@@ -252,6 +255,7 @@ mod tests {
             outgoing: Some(Outgoing {
                 left: vec![Complex::new(odd[1], odd[0])],
                 right: vec![Complex::new(0.5, odd[3])],
+                map: vec![Complex::new(odd[3], odd[2])],
             }),
         }
     }

@@ -81,21 +81,23 @@ fn domain(wish: &Wish, numerics: &Numerics) -> Option<Finding> {
 fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
     let passes = ladder::at_least(needs.absorber_width.max(super::rules::NARROWEST_ABSORBER));
     match numerics.absorber {
-        Absorber::Smooth { width } if width < 0.7 * needs.absorber_width => Some(Finding {
-            knob: Some(Knob::Absorber),
-            verdict: if width < 0.25 * needs.absorber_width {
-                Verdict::Inadequate
-            } else {
-                Verdict::Doubtful
-            },
-            reason: format!(
-                "reflects {:.1e} of the electrons of {:.3} / bohr, the slowest that come back within the run",
-                reflection(needs.slowest, width),
-                needs.slowest
-            ),
-            allowed: format!("at least {:.1} bohr", needs.absorber_width),
-            passes,
-        }),
+        Absorber::Smooth { width } | Absorber::Round { width } if width < 0.7 * needs.absorber_width => {
+            Some(Finding {
+                knob: Some(Knob::Absorber),
+                verdict: if width < 0.25 * needs.absorber_width {
+                    Verdict::Inadequate
+                } else {
+                    Verdict::Doubtful
+                },
+                reason: format!(
+                    "reflects {:.1e} of the electrons of {:.3} / bohr, the slowest that come back within the run",
+                    reflection(needs.slowest, width),
+                    needs.slowest
+                ),
+                allowed: format!("at least {:.1} bohr", needs.absorber_width),
+                passes,
+            })
+        }
         _ => None,
     }
 }

@@ -160,7 +160,7 @@ impl Needs {
     pub(super) fn inner(&self, absorber: Absorber) -> f64 {
         match absorber {
             Absorber::None => self.closed(),
-            Absorber::Smooth { .. } => self.inner,
+            Absorber::Smooth { .. } | Absorber::Round { .. } => self.inner,
         }
     }
 
@@ -240,7 +240,7 @@ impl Needs {
     fn absorber_reason(&self, absorber: Absorber) -> String {
         match absorber {
             Absorber::None => "none: nothing comes back from the edge".into(),
-            Absorber::Smooth { width } => format!(
+            Absorber::Smooth { width } | Absorber::Round { width } => format!(
                 "reflects {:.1e} of the slowest electrons that come back within the run, {:.3} / bohr, and less above \
                  (even form of Gonzalez-Lezana, Rackham, Manolopoulos 2004)",
                 reflection(self.slowest, width),
@@ -261,7 +261,7 @@ impl Needs {
             Absorber::None => {
                 format!("the bound state, {:.0} bohr to each side; {points} points", self.atom_reach)
             }
-            Absorber::Smooth { width } => format!(
+            Absorber::Smooth { width } | Absorber::Round { width } => format!(
                 "{:.0} bohr to each side: bound state and returning electrons take {:.0} bohr (quiver amplitude {:.1} bohr), \
                  and what the absorber of {width:.0} bohr reflects shall come back late; {points} points",
                 self.inner, self.atom_reach, self.strength.quiver

@@ -129,11 +129,21 @@ pub fn order_yields(
     photon: f64,
     orders: usize,
 ) -> Vec<f64> {
-    let length = schedule.time_step * schedule.steps as f64;
-    // Four samples per resolvable width 2π/length; an even number per half photon.
-    let per_half = 2 * (photon * length / (2.0 * PI)).ceil().max(4.0) as usize;
-    let axis = EnergyAxis { step: 0.5 * photon / per_half as f64, points: (2 * orders + 1) * per_half + 1 };
+    let axis = sampled_by_order(schedule, photon, orders);
     let spectrum = harmonics(acceleration, schedule, window, axis).spectrum();
+    sums_by_order(&spectrum, axis, orders)
+}
+
+/// Axis to half a photon beyond the last order: four samples per resolvable width 2π/length, an even number per half photon.
+pub(super) fn sampled_by_order(schedule: &Schedule, photon: f64, orders: usize) -> EnergyAxis {
+    let length = schedule.time_step * schedule.steps as f64;
+    let per_half = 2 * (photon * length / (2.0 * PI)).ceil().max(4.0) as usize;
+    EnergyAxis { step: 0.5 * photon / per_half as f64, points: (2 * orders + 1) * per_half + 1 }
+}
+
+/// Radiated energy within half a photon of every order of a spectrum on [`sampled_by_order`].
+pub(super) fn sums_by_order(spectrum: &[f64], axis: EnergyAxis, orders: usize) -> Vec<f64> {
+    let per_half = (axis.points - 1) / (2 * orders + 1);
     (1..=orders)
         .map(|order| {
             let from = (2 * order - 1) * per_half;

@@ -9,7 +9,7 @@ use crate::grid::{Grid, Transform};
 use crate::potential::{Potential, PotentialOnGrid};
 
 /// Residual |Hψ - Eψ| wanted of every state, hartree. The energy error is its square over the level distance.
-const RESIDUAL: f64 = 1e-11;
+pub(super) const RESIDUAL: f64 = 1e-11;
 /// Residual that is still accepted where rounding on a fine grid, or a level close to the threshold, allows no better:
 /// the energy is then good to 1e-10 hartree for level distances down to 1e-6 hartree.
 const ACCEPTED: f64 = 1e-8;
@@ -19,7 +19,7 @@ const ROUNDING: f64 = 1e-11;
 /// among themselves leaves their sum as it is.
 const ROUNDS: usize = 4;
 /// Most iterations.
-const ITERATIONS: usize = 400;
+pub(super) const ITERATIONS: usize = 400;
 
 /// The lowest bound states of a grid's Hamiltonian, by rising energy.
 #[derive(Clone, Debug, PartialEq)]
@@ -76,7 +76,22 @@ fn iterate(
     lowest(&hamiltonian, guesses, exact)
 }
 
-/// H = p²/2 + V on real functions, with a preconditioner.
+/// A real symmetric operator, with an approximate inverse that makes an iteration fast.
+pub(super) trait Operator {
+    /// Hψ.
+    fn apply(&self, psi: &DVector<f64>) -> DVector<f64>;
+    /// (p²/2 + shift)⁻¹ψ.
+    fn precondition(&self, psi: &DVector<f64>, shift: f64) -> DVector<f64>;
+    /// Largest energy that occurs, hartree: its rounding limits the residual.
+    fn largest(&self) -> f64;
+
+    /// Residual that is still accepted, hartree.
+    fn accepted(&self) -> f64 {
+        ACCEPTED.max(ROUNDING * self.largest())
+    }
+}
+
+/// H = p²/2 + V on real functions of one dimension.
 struct Hamiltonian {
     potential: Vec<f64>,
     /// k²/2 in the order of the transform, divided by the number of points.
@@ -103,19 +118,24 @@ impl Hamiltonian {
         self.transform.inverse(&mut work, &mut scratch);
         DVector::from_iterator(psi.len(), work.iter().map(|w| w.re))
     }
+}
 
-    /// Residual that is still accepted, hartree.
-    fn accepted(&self) -> f64 {
-        let largest = |values: &[f64]| values.iter().fold(0.0, |m: f64, v| m.max(v.abs()));
-        ACCEPTED.max(ROUNDING * (largest(&self.kinetic) + largest(&self.potential)))
-    }
-
+impl Operator for Hamiltonian {
     fn apply(&self, psi: &DVector<f64>) -> DVector<f64> {
         let mut out = self.in_momentum(psi, |t| t);
         for ((o, v), p) in out.iter_mut().zip(&self.potential).zip(psi.iter()) {
             *o += v * p;
         }
         out
+    }
+
+    fn precondition(&self, psi: &DVector<f64>, shift: f64) -> DVector<f64> {
+        self.in_momentum(psi, |t| 1.0 / (t + shift))
+    }
+
+    fn largest(&self) -> f64 {
+        let largest = |values: &[f64]| values.iter().fold(0.0, |m: f64, v| m.max(v.abs()));
+        largest(&self.kinetic) + largest(&self.potential)
     }
 }
 
@@ -143,7 +163,11 @@ fn lowest(h: &Hamiltonian, guesses: Vec<Vec<f64>>, exact: usize) -> Result<Bound
 
 /// Locally optimal block preconditioned conjugate gradients (Knyazev, SIAM J. Sci. Comput. 23, 517 (2001),
 /// algorithm 5.1), the basis orthonormalised in every round: states, energies, and the largest residual.
-fn improved(h: &Hamiltonian, mut x: Vec<DVector<f64>>, rounds: usize) -> (Vec<DVector<f64>>, Vec<f64>, f64) {
+pub(super) fn improved(
+    h: &impl Operator,
+    mut x: Vec<DVector<f64>>,
+    rounds: usize,
+) -> (Vec<DVector<f64>>, Vec<f64>, f64) {
     orthonormalise(&mut x, 0);
     let count = x.len();
     let mut directions: Vec<DVector<f64>> = Vec::new();
@@ -158,7 +182,7 @@ fn improved(h: &Hamiltonian, mut x: Vec<DVector<f64>>, rounds: usize) -> (Vec<DV
             let residual = &images[i] - energies[i] * &x[i];
             worst = f64::max(worst, residual.norm());
             let shift = energies[i].abs().max(0.05);
-            basis.push(h.in_momentum(&residual, |t| 1.0 / (t + shift)));
+            basis.push(h.precondition(&residual, shift));
         }
         stalled = if worst < 0.7 * best { 0 } else { stalled + 1 };
         best = best.min(worst);

@@ -1,9 +1,10 @@
-//! Grid-free bound levels of a one-dimensional model atom, by shooting from both sides.
+//! Grid-free bound levels of a model atom, by shooting from both sides: along the line, or along the radius of a plane.
 
 use std::f64::consts::PI;
 
 use super::StationaryError;
 use super::magnus::{Mesh, decaying_solution};
+use super::radial::{RadialFunction, RadialMesh};
 use super::root::brent;
 use crate::potential::Potential;
 
@@ -67,24 +68,61 @@ fn meeting_point(potential: &Potential) -> f64 {
     }
 }
 
-/// Both meshes for ends at ±`reach`, cut to the domain of the potential.
-fn meshes(potential: &Potential, reach: f64, fineness: f64) -> [Mesh; 2] {
-    let near = meeting_point(potential);
-    let (first, last) = potential.domain();
-    [
-        Mesh::new(potential, (-reach).max(first), near, fineness),
-        Mesh::new(potential, reach.min(last), near, fineness),
-    ]
+/// A model atom along the line, or along the radius of a plane with an angular momentum.
+#[derive(Clone, Copy)]
+struct Well<'a> {
+    potential: &'a Potential,
+    angular: Option<u32>,
+}
+
+/// One of two integrations that meet.
+enum Half {
+    Line(Mesh),
+    Centre(RadialMesh),
+    Far(RadialMesh),
+}
+
+impl Half {
+    fn angle(&self, energy: f64) -> f64 {
+        match self {
+            Self::Line(mesh) => mesh.angle(energy),
+            Self::Centre(mesh) | Self::Far(mesh) => mesh.angle(energy),
+        }
+    }
+
+    fn decay(&self, energy: f64) -> f64 {
+        match self {
+            Self::Line(mesh) => mesh.decay(energy),
+            Self::Centre(_) => f64::INFINITY,
+            Self::Far(mesh) => mesh.decay(energy),
+        }
+    }
+}
+
+impl Well<'_> {
+    /// Both meshes for ends at ±`reach`, cut to the domain of the potential; or from the centre and from `reach`.
+    fn meshes(&self, reach: f64, fineness: f64) -> [Half; 2] {
+        let (first, last) = self.potential.domain();
+        if let Some(m) = self.angular {
+            return [
+                Half::Centre(RadialMesh::inner(self.potential, m, fineness)),
+                Half::Far(RadialMesh::outer(self.potential, m, reach.min(last), fineness)),
+            ];
+        }
+        let near = meeting_point(self.potential);
+        [(-reach).max(first), reach.min(last)]
+            .map(|far| Half::Line(Mesh::new(self.potential, far, near, fineness)))
+    }
 }
 
 /// Continuous, rising function of the energy that is n at level n.
-fn quantum_number(meshes: &[Mesh; 2], energy: f64) -> f64 {
+fn quantum_number(meshes: &[Half; 2], energy: f64) -> f64 {
     (meshes[0].angle(energy) + meshes[1].angle(energy)) / PI - 1.0
 }
 
 /// Number of levels below `energy` in a box from -`reach` to `reach` at whose ends the solution must decay.
 pub fn count_below(potential: &Potential, energy: f64, reach: f64) -> usize {
-    let meshes = meshes(potential, reach, 1.0 / 16.0);
+    let meshes = Well { potential, angular: None }.meshes(reach, 1.0 / 16.0);
     (quantum_number(&meshes, energy) + 1.0).floor().max(0.0) as usize
 }
 
@@ -93,10 +131,41 @@ pub fn count_below(potential: &Potential, energy: f64, reach: f64) -> usize {
 /// # Errors
 /// [`StationaryError::NoSuchState`] where the potential binds fewer states, [`StationaryError::NotConverged`].
 pub fn level(potential: &Potential, number: usize) -> Result<Level, StationaryError> {
+    converged(Well { potential, angular: None }, number)
+}
+
+/// Level `number` (its radial nodes) of a round `potential` in two dimensions at angular momentum ±`angular`, converged as
+/// [`level`].
+///
+/// # Errors
+/// As [`level`].
+pub fn radial_level(potential: &Potential, angular: u32, number: usize) -> Result<Level, StationaryError> {
+    converged(Well { potential, angular: Some(angular) }, number)
+}
+
+/// Number of levels of angular momentum ±`angular` below `energy` in a round box of radius `reach`.
+pub fn radial_count_below(potential: &Potential, angular: u32, energy: f64, reach: f64) -> usize {
+    let meshes = Well { potential, angular: Some(angular) }.meshes(reach, 1.0 / 16.0);
+    (quantum_number(&meshes, energy) + 1.0).floor().max(0.0) as usize
+}
+
+/// Energy to 1e-8 hartree or so, and R(r), of a level in a round box of radius `reach` or more than the level needs.
+pub(super) fn rough_radial_level(
+    potential: &Potential,
+    angular: u32,
+    number: usize,
+    reach: f64,
+) -> Result<(f64, RadialFunction), StationaryError> {
+    let level = rough(Well { potential, angular: Some(angular) }, number, reach)?;
+    Ok((level.energy, RadialFunction::new(potential, angular, level.energy, level.reach)))
+}
+
+fn converged(well: Well, number: usize) -> Result<Level, StationaryError> {
+    let potential = well.potential;
     let mut reach = first_reach(potential);
     let mut energy = loop {
-        let found = locate(potential, number, reach)?;
-        let decayed = meshes(potential, reach, 1.0 / 8.0).iter().all(|m| m.decay(found) > DECAY);
+        let found = locate(well, number, reach)?;
+        let decayed = well.meshes(reach, 1.0 / 8.0).iter().all(|m| m.decay(found) > DECAY);
         if decayed || reach >= whole(potential) {
             break found;
         }
@@ -106,10 +175,10 @@ pub fn level(potential: &Potential, number: usize) -> Result<Level, StationaryEr
     let mut change = f64::INFINITY;
     let wanted = ACCURACY * energy.abs().max(1e-3);
     let mut fineness = 1.0 / 8.0;
-    let mut raw = refine(potential, number, reach, fineness, energy);
+    let mut raw = refine(well, number, reach, fineness, energy);
     while fineness > 1.0 / 1024.0 {
         fineness *= 0.5;
-        let finer = refine(potential, number, reach, fineness, energy);
+        let finer = refine(well, number, reach, fineness, energy);
         energy = finer + (finer - raw) / 15.0;
         change = (energy - last).abs();
         if change < wanted {
@@ -130,11 +199,14 @@ pub(super) fn rough_level(
     number: usize,
     reach: f64,
 ) -> Result<Level, StationaryError> {
-    let energy = locate(potential, number, reach)?;
+    rough(Well { potential, angular: None }, number, reach)
+}
+
+fn rough(well: Well, number: usize, reach: f64) -> Result<Level, StationaryError> {
+    let energy = locate(well, number, reach)?;
     // No further out than the wave function is worth: it would overflow on the way in.
-    let mut far = first_reach(potential).min(reach);
-    while far < reach && meshes(potential, far, 1.0 / 8.0).iter().any(|mesh| mesh.decay(energy) < 2.0 * DECAY)
-    {
+    let mut far = first_reach(well.potential).min(reach);
+    while far < reach && well.meshes(far, 1.0 / 8.0).iter().any(|mesh| mesh.decay(energy) < 2.0 * DECAY) {
         far = (1.5 * far).min(reach);
     }
     Ok(Level { number, energy, reach: far })
@@ -158,8 +230,9 @@ fn whole(potential: &Potential) -> f64 {
 }
 
 /// Level `number` on a coarse mesh to 1e-6 or so.
-fn locate(potential: &Potential, number: usize, reach: f64) -> Result<f64, StationaryError> {
-    let meshes = meshes(potential, reach, 1.0 / 8.0);
+fn locate(well: Well, number: usize, reach: f64) -> Result<f64, StationaryError> {
+    let potential = well.potential;
+    let meshes = well.meshes(reach, 1.0 / 8.0);
     let f = |energy: f64| quantum_number(&meshes, energy) - number as f64;
     let bottom = potential.value(meeting_point(potential));
     let mut top = THRESHOLD;
@@ -183,8 +256,8 @@ fn locate(potential: &Potential, number: usize, reach: f64) -> Result<f64, Stati
 }
 
 /// Level near `guess` on a mesh of this fineness, to rounding.
-fn refine(potential: &Potential, number: usize, reach: f64, fineness: f64, guess: f64) -> f64 {
-    let meshes = meshes(potential, reach, fineness);
+fn refine(well: Well, number: usize, reach: f64, fineness: f64, guess: f64) -> f64 {
+    let meshes = well.meshes(reach, fineness);
     let f = |energy: f64| quantum_number(&meshes, energy) - number as f64;
     let mut width = 1e-6 * guess.abs().max(1e-6);
     loop {

@@ -40,7 +40,7 @@ impl Interval {
 }
 
 /// cosh √q and sinh √q / √q, for q of either sign.
-fn cosh_and_sinc(q: f64) -> (f64, f64) {
+pub(super) fn cosh_and_sinc(q: f64) -> (f64, f64) {
     if q.abs() < 1e-3 {
         let c = 1.0 + q / 2.0 * (1.0 + q / 12.0 * (1.0 + q / 30.0 * (1.0 + q / 56.0)));
         let s = 1.0 + q / 6.0 * (1.0 + q / 20.0 * (1.0 + q / 42.0 * (1.0 + q / 72.0)));
@@ -62,29 +62,10 @@ pub(super) struct Mesh {
 }
 
 impl Mesh {
-    /// Mesh from `far` to `near`, intervals `fineness` times the local length scale L + |x|/8, where L is the
-    /// potential's smallest length. Halving `fineness` halves every interval.
+    /// Mesh from `far` to `near` on [`stretched_nodes`].
     pub(super) fn new(potential: &Potential, far: f64, near: f64, fineness: f64) -> Self {
-        let scale = potential.smallest_length();
-        let growth = if potential.is_confining() { 0.0 } else { 0.125 };
-        // Uniform in s where x = (L/g) (e^{gs} - 1), or x = L s without growth, so that a mesh halves exactly.
-        let to_s = |x: f64| {
-            let t = if growth == 0.0 { x.abs() / scale } else { (growth * x.abs() / scale).ln_1p() / growth };
-            t.copysign(x)
-        };
-        let to_x = |s: f64| {
-            let t =
-                if growth == 0.0 { s.abs() * scale } else { (growth * s.abs()).exp_m1() * scale / growth };
-            t.copysign(s)
-        };
-        let (s_far, s_near) = (to_s(far), to_s(near));
-        let count = (((s_near - s_far).abs() / fineness).ceil() as usize).max(1);
-        let node = |i: usize| match i {
-            0 => far,
-            _ if i == count => near,
-            _ => to_x(s_far + (s_near - s_far) * i as f64 / count as f64),
-        };
-        let intervals = (0..count).map(|i| Interval::new(potential, node(i), node(i + 1))).collect();
+        let nodes = stretched_nodes(potential, far, near, fineness);
+        let intervals = nodes.windows(2).map(|pair| Interval::new(potential, pair[0], pair[1])).collect();
         Self { intervals, far_value: potential.value(far) }
     }
 
@@ -110,6 +91,30 @@ impl Mesh {
         let forbidden = self.intervals.iter().take_while(|i| i.mean > energy);
         forbidden.map(|i| i.length * (2.0 * (i.mean - energy)).sqrt()).sum()
     }
+}
+
+/// Positions from `far` to `near`, intervals `fineness` times the local length scale L + |x|/8, where L is the potential's
+/// smallest length. Halving `fineness` halves every interval.
+pub(super) fn stretched_nodes(potential: &Potential, far: f64, near: f64, fineness: f64) -> Vec<f64> {
+    let scale = potential.smallest_length();
+    let growth = if potential.is_confining() { 0.0 } else { 0.125 };
+    // Uniform in s where x = (L/g) (e^{gs} - 1), or x = L s without growth, so that a mesh halves exactly.
+    let to_s = |x: f64| {
+        let t = if growth == 0.0 { x.abs() / scale } else { (growth * x.abs() / scale).ln_1p() / growth };
+        t.copysign(x)
+    };
+    let to_x = |s: f64| {
+        let t = if growth == 0.0 { s.abs() * scale } else { (growth * s.abs()).exp_m1() * scale / growth };
+        t.copysign(s)
+    };
+    let (s_far, s_near) = (to_s(far), to_s(near));
+    let count = (((s_near - s_far).abs() / fineness).ceil() as usize).max(1);
+    let node = |i: usize| match i {
+        0 => far,
+        _ if i == count => near,
+        _ => to_x(s_far + (s_near - s_far) * i as f64 / count as f64),
+    };
+    (0..=count).map(node).collect()
 }
 
 /// Solution that decays outwards, on given positions that come one after the other from outside to inside;

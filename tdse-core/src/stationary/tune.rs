@@ -1,7 +1,7 @@
 //! The softening that gives a model atom a wanted binding energy.
 
 use super::root::brent;
-use super::{StationaryError, level};
+use super::{StationaryError, level, radial_level};
 use crate::potential::Potential;
 
 /// A potential whose softening is still open.
@@ -45,9 +45,31 @@ impl Softenable {
 /// # Errors
 /// [`StationaryError::OutOfReach`] where no softening between 0.02/Z and 200/Z bohr gives that energy.
 pub fn tune_softening(atom: &Softenable, number: usize, energy: f64) -> Result<f64, StationaryError> {
+    tuned(atom, number, energy, |potential| Ok(level(potential, number)?.energy))
+}
+
+/// As [`tune_softening`] in two dimensions, for the state of angular momentum ±`angular` with `number` radial nodes.
+///
+/// # Errors
+/// As [`tune_softening`].
+pub fn tune_radial_softening(
+    atom: &Softenable,
+    angular: u32,
+    number: usize,
+    energy: f64,
+) -> Result<f64, StationaryError> {
+    tuned(atom, number, energy, |potential| Ok(radial_level(potential, angular, number)?.energy))
+}
+
+fn tuned(
+    atom: &Softenable,
+    number: usize,
+    energy: f64,
+    level: impl Fn(&Potential) -> Result<f64, StationaryError>,
+) -> Result<f64, StationaryError> {
     // A softening so large that the state is not bound any more counts as energy zero.
-    let energy_at = |softening: f64| match level(&atom.with_softening(softening), number) {
-        Ok(level) => Ok(level.energy),
+    let energy_at = |softening: f64| match level(&atom.with_softening(softening)) {
+        Ok(energy) => Ok(energy),
         Err(StationaryError::NoSuchState { .. }) => Ok(0.0),
         Err(other) => Err(other),
     };

@@ -132,7 +132,7 @@ pub(super) struct MultiplyRampTilt<'a> {
 pub(super) const LARGEST_TILT: f64 = 0.04;
 
 /// e^{iθ} = p_c(θ²) + iθ p_s(θ²), Taylor series through θ⁷; coefficients of p_c and p_s side by side.
-const TAYLOR: [[f64; 2]; 4] =
+pub(super) const TAYLOR: [[f64; 2]; 4] =
     [[1.0, 1.0], [-1.0 / 2.0, -1.0 / 6.0], [1.0 / 24.0, 1.0 / 120.0], [-1.0 / 720.0, -1.0 / 5040.0]];
 
 impl WithSimd for MultiplyRampTilt<'_> {

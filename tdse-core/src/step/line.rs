@@ -61,7 +61,7 @@ impl Line {
         let splitting = Splitting::of(numerics.scheme);
         let damping = match numerics.absorber {
             Absorber::None => vec![0.0; axis.points],
-            Absorber::Smooth { width } => absorber::strength(axis, width),
+            Absorber::Smooth { width } | Absorber::Round { width } => absorber::strength(axis, width),
         };
         let (values, gradient) = (potential.values.clone(), &potential.gradient[0]);
         let outer = values
@@ -80,7 +80,7 @@ impl Line {
             .collect();
         let edge = match numerics.absorber {
             Absorber::None => axis.extent() / 16.0,
-            Absorber::Smooth { width } => width,
+            Absorber::Smooth { width } | Absorber::Round { width } => width,
         };
         let blocks = (edge / axis.spacing) as usize / BLOCK;
         // A block is left at each edge of any box that is eight blocks long.
@@ -99,6 +99,16 @@ impl Line {
             kinetic,
             edge_blocks,
         }
+    }
+
+    /// Number of points.
+    pub fn len(&self) -> usize {
+        self.outer.len()
+    }
+
+    /// Whether the line has no point.
+    pub fn is_empty(&self) -> bool {
+        self.outer.is_empty()
     }
 
     /// Workspace for [`Self::step`].

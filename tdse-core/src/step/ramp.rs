@@ -31,7 +31,7 @@ impl Ramp {
 
 /// first·e^{iθl} for every l by doubling: the exponent's bits one after the other, so at most log₂(length) products
 /// deep.
-fn powers(first: Complex<f64>, theta: f64, out: &mut [Complex<f64>]) {
+pub(super) fn powers(first: Complex<f64>, theta: f64, out: &mut [Complex<f64>]) {
     out[0] = first;
     let mut done = 1;
     while done < out.len() {

@@ -120,7 +120,10 @@ impl<'a> Keeper<'a> {
 /// The state, if it is one of this plan.
 fn fitting(state: State, first: &State, plan: &Plan) -> Result<State, String> {
     let lengths = |state: &State| {
-        let outgoing = state.outgoing.as_ref().map(|outgoing| [outgoing.left.len(), outgoing.right.len()]);
+        let outgoing = state
+            .outgoing
+            .as_ref()
+            .map(|outgoing| [outgoing.left.len(), outgoing.right.len(), outgoing.map.len()]);
         (state.psi.len(), outgoing)
     };
     let (samples, steps) = (state.series.norm.len(), plan.schedule().steps);

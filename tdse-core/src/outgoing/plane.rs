@@ -1,0 +1,304 @@
+//! Momentum map in two dimensions: what the absorber takes, collected coherently in Volkov states.
+//!
+//! As in one dimension ⟨χ_k|ψ⟩ falls by ⟨χ_k|Wψ⟩ per unit of time, here with plane Volkov states
+//! χ_k = e^{i(k+A)·r} e^{-i∫(k+A)²/2}/2π (Volkov, Z. Phys. 94, 250 (1935)), A counted from its last value. What is still
+//! inside at the end flies on until it is out: the run is as long as the slowest electrons of interest need.
+
+use std::f64::consts::PI;
+
+use num_complex::Complex;
+
+use super::{GREGORY, SAMPLING};
+use crate::absorber;
+use crate::grid::{Axis, Grid, Transform};
+use crate::problem::Numerics;
+use crate::step::Drive;
+
+type C = Complex<f64>;
+
+/// Where the map is taken.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct MapRange {
+    /// Largest momentum along x and along y, 1/bohr.
+    pub largest: f64,
+    /// Momenta per 2π/box length, along either axis: the box is padded with zeros to this many times its length.
+    pub padding: usize,
+}
+
+/// Everything about the map that is known before a run.
+#[derive(Clone, Debug)]
+pub struct MapCollector {
+    grid: Grid,
+    /// The axes, padded.
+    padded: [Axis; 2],
+    transforms: [Transform; 2],
+    /// Momenta of both axes, rising, 1/bohr.
+    momenta: [Vec<f64>; 2],
+    /// e^{-ik·r₀} of the first point, along both axes.
+    origin: [Vec<C>; 2],
+    /// 1 - e^{-τW}, shape of the grid.
+    taken: Vec<f64>,
+    motion: Vec<PlaneMotion>,
+    interval: usize,
+}
+
+/// Scratch of [`MapCollector::collect`]; holds nothing between calls.
+#[derive(Clone, Debug, Default)]
+pub struct MapScratch {
+    line: Vec<C>,
+    kick: Vec<C>,
+    turned: Vec<C>,
+    fft: Vec<C>,
+    phases: [Vec<C>; 2],
+}
+
+/// A free electron's motion up to one sample, A counted from its last value, a.u.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+struct PlaneMotion {
+    time: f64,
+    potential: [f64; 2],
+    displacement: [f64; 2],
+    square: f64,
+}
+
+impl PlaneMotion {
+    fn samples(drives: &[Drive], potential: &[[f64; 2]], time_step: f64) -> Vec<Self> {
+        let last = potential.last().copied().unwrap_or_default();
+        let mut now = Self::default();
+        let mut motion = Vec::with_capacity(drives.len());
+        for (drive, a) in drives.iter().zip(potential) {
+            motion.push(Self { potential: [a[0] - last[0], a[1] - last[1]], ..now });
+            now.time += time_step;
+            now.square += drive.square_integral[0] + drive.square_integral[1];
+            for (d, last) in last.into_iter().enumerate() {
+                let first = drive.potential_integral[0][d] + drive.potential_integral[1][d];
+                now.displacement[d] += first - last * time_step;
+                now.square += last * (last * time_step - 2.0 * first);
+            }
+        }
+        motion
+    }
+}
+
+impl MapCollector {
+    /// Collector for the absorber of `numerics`; `drives` and `potential` have one entry per sample of the run.
+    ///
+    /// # Panics
+    /// If `numerics` has no absorber or one dimension, or the range is empty.
+    pub fn new(numerics: &Numerics, range: MapRange, drives: &[Drive], potential: &[[f64; 2]]) -> Self {
+        assert!(numerics.absorber.width() > 0.0, "only an absorber takes anything");
+        assert!(range.largest > 0.0 && range.padding > 0, "momenta to collect at");
+        let grid = numerics.grid;
+        let axes = [grid.x, grid.y.expect("a plane has two dimensions")];
+        let padded = axes.map(|axis| Axis { points: axis.points * range.padding, ..axis });
+        let momenta = padded.map(|axis| {
+            let last = ((range.largest / axis.momentum(1)).floor() as i64).min(axis.points as i64 / 2 - 1);
+            (-last..=last).map(|j| j as f64 * axis.momentum(1)).collect::<Vec<f64>>()
+        });
+        let tau = numerics.time_step;
+        let taken =
+            absorber::on_grid(&grid, numerics.absorber).iter().map(|w| -(-tau * w).exp_m1()).collect();
+        let origin = [0, 1].map(|d| momenta[d].iter().map(|k| C::cis(-k * axes[d].position(0))).collect());
+        // The energy that varies fastest is that of the corner.
+        let square = 2.0 * range.largest * range.largest;
+        Self {
+            transforms: padded.map(|axis| Transform::new(axis.points)),
+            interval: (SAMPLING * 2.0 / square / tau).floor().max(1.0) as usize,
+            motion: PlaneMotion::samples(drives, potential, tau),
+            grid,
+            padded,
+            momenta,
+            origin,
+            taken,
+        }
+    }
+
+    /// Momenta of the map along x and y, rising, 1/bohr.
+    pub fn momenta(&self) -> &[Vec<f64>; 2] {
+        &self.momenta
+    }
+
+    /// Steps between two samples.
+    pub fn interval(&self) -> usize {
+        self.interval
+    }
+
+    /// An empty map, shape `[k_y, k_x]`, amplitudes in bohr.
+    pub fn start(&self) -> Vec<C> {
+        vec![C::default(); self.momenta[0].len() * self.momenta[1].len()]
+    }
+
+    /// Scratch for [`Self::collect`].
+    pub fn make_scratch(&self) -> MapScratch {
+        let [x, y] = self.padded;
+        let fft = self.transforms.each_ref().map(|t| t.make_scratch().len()).into_iter().max().unwrap_or(0);
+        let rows = self.grid.y.map_or(1, |y| y.points);
+        MapScratch {
+            line: vec![C::default(); x.points.max(y.points)],
+            kick: vec![C::default(); self.grid.x.points],
+            turned: vec![C::default(); self.momenta[0].len() * rows],
+            fft: vec![C::default(); fft],
+            phases: self.momenta.each_ref().map(|k| vec![C::default(); k.len()]),
+        }
+    }
+
+    /// Whether a sample is due at `step`; counted from the end.
+    pub fn is_due(&self, step: usize) -> bool {
+        (self.motion.len() - 1 - step).is_multiple_of(self.interval)
+    }
+
+    /// Adds what the absorber takes around `step`; `row` fills in row j of the wave function in length gauge.
+    ///
+    /// # Panics
+    /// If `map` is not one of this collector, or `step` is beyond the run.
+    pub fn collect(
+        &self,
+        map: &mut [C],
+        row: impl Fn(usize, &mut [C]),
+        step: usize,
+        scratch: &mut MapScratch,
+    ) {
+        let [kx, ky] = &self.momenta;
+        assert_eq!(map.len(), kx.len() * ky.len(), "map and collector have the same shape");
+        let (motion, weight) = (self.motion[step], self.weight(self.motion.len() - 1 - step));
+        let (nx, rows) = (self.grid.x.points, self.grid.y.map_or(1, |y| y.points));
+        let MapScratch { line, kick, turned, fft, phases } = scratch;
+        for (kick, x) in kick.iter_mut().zip(self.grid.x.positions()) {
+            *kick = C::cis(-motion.potential[0] * x);
+        }
+        for (j, y) in self.grid.y_positions().enumerate() {
+            let line = &mut line[..self.padded[0].points];
+            row(j, &mut line[..nx]);
+            line[nx..].fill(C::default());
+            let taken = &self.taken[j * nx..(j + 1) * nx];
+            let turn = C::from_polar(weight, -motion.potential[1] * y);
+            for ((p, t), kick) in line.iter_mut().zip(taken).zip(&*kick) {
+                *p *= turn * kick * t;
+            }
+            self.transforms[0].forward(line, fft);
+            for (i, p) in kept(line, kx.len()).enumerate() {
+                turned[i * rows + j] = p;
+            }
+        }
+        for (d, phases) in phases.iter_mut().enumerate() {
+            let momenta = self.momenta[d].iter().zip(&self.origin[d]);
+            for (phase, (k, origin)) in phases.iter_mut().zip(momenta) {
+                *phase = origin * C::cis(0.5 * k * k * motion.time + k * motion.displacement[d]);
+            }
+        }
+        let scale = C::from_polar(self.grid.cell() / (2.0 * PI), 0.5 * motion.square);
+        for (i, column) in turned.chunks(rows).enumerate() {
+            let line = &mut line[..self.padded[1].points];
+            line[..rows].copy_from_slice(column);
+            line[rows..].fill(C::default());
+            self.transforms[1].forward(line, fft);
+            for ((j, p), phase) in kept(line, ky.len()).enumerate().zip(&phases[1]) {
+                map[j * kx.len() + i] += p * phase * phases[0][i] * scale;
+            }
+        }
+    }
+
+    /// Weight of a sample this many steps before the end, in steps; as in one dimension.
+    fn weight(&self, before_end: usize) -> f64 {
+        let gregory = GREGORY.get(before_end / self.interval).copied().unwrap_or(1.0);
+        gregory * self.interval as f64 - if before_end == 0 { 0.5 } else { 0.0 }
+    }
+}
+
+/// The `count` lowest momenta of a transformed line, rising.
+fn kept(line: &[C], count: usize) -> impl Iterator<Item = C> {
+    let last = count / 2;
+    line[line.len() - last..].iter().chain(&line[..=last]).copied()
+}
+
+/// Density |a(k)|² of free electrons over a grid of momenta, ∫|a|² dk = probability.
+#[derive(Clone, Debug, PartialEq)]
+pub struct MomentumMap {
+    /// Uniform, rising momenta along x and y, 1/bohr.
+    pub momenta: [Vec<f64>; 2],
+    /// |a|², bohr², shape `[k_y, k_x]`.
+    pub density: Vec<f64>,
+    /// Energy that electrons still lose in the tail beyond the absorber, Z/R, hartree: a momentum k of the grid ends as
+    /// √(k² - 2 Z/R) in the same direction; k dk, and so the density, stays.
+    pub tail: f64,
+}
+
+impl MomentumMap {
+    /// Map of collected amplitudes of electrons that leave an ion of charge `charge` through an absorber that begins
+    /// `inner` bohr away.
+    pub fn new(collector: &MapCollector, amplitudes: &[C], charge: f64, inner: f64) -> Self {
+        let density = amplitudes.iter().map(C::norm_sqr).collect();
+        Self { momenta: collector.momenta.clone(), density, tail: charge / inner }
+    }
+
+    fn spacing(&self) -> [f64; 2] {
+        self.momenta.each_ref().map(|k| k[1] - k[0])
+    }
+
+    /// ∫|a|² dk over the map.
+    pub fn probability(&self) -> f64 {
+        let [dx, dy] = self.spacing();
+        self.density.iter().sum::<f64>() * dx * dy
+    }
+
+    /// Density at final momentum (`k`, `angle`), by cubic interpolation along both axes, not below zero; zero outside.
+    pub fn at(&self, k: f64, angle: f64) -> f64 {
+        let radius = (k * k + 2.0 * self.tail).sqrt();
+        let (sin, cos) = angle.sin_cos();
+        let place = [(radius * cos, 0), (radius * sin, 1)].map(|(k, d)| {
+            let u = (k - self.momenta[d][0]) / self.spacing()[d];
+            (u.floor() as i64, u - u.floor())
+        });
+        let columns = self.momenta[0].len() as i64;
+        let inside = |(i, _): (i64, f64), d: usize| i >= 1 && i + 2 < self.momenta[d].len() as i64;
+        if !inside(place[0], 0) || !inside(place[1], 1) {
+            return 0.0;
+        }
+        let [wx, wy] = place.map(|(_, t)| cubic_weights(t));
+        let mut sum = 0.0;
+        for (b, wy) in wy.iter().enumerate() {
+            for (a, wx) in wx.iter().enumerate() {
+                let (i, j) = (place[0].0 - 1 + a as i64, place[1].0 - 1 + b as i64);
+                sum += wx * wy * self.density[(j * columns + i) as usize];
+            }
+        }
+        sum.max(0.0)
+    }
+
+    /// dP/dE = ∮|a|² dθ at every energy, 1/hartree.
+    pub fn energy_spectrum(&self, energies: &[f64]) -> Vec<f64> {
+        let spacing = self.spacing()[0].min(self.spacing()[1]);
+        energies
+            .iter()
+            .map(|e| {
+                let k = (2.0 * e).sqrt();
+                let count = (4.0 * PI * (k * k + 2.0 * self.tail).sqrt() / spacing).ceil().max(16.0);
+                let angle = |n: usize| 2.0 * PI * n as f64 / count;
+                (0..count as usize).map(|n| self.at(k, angle(n))).sum::<f64>() * 2.0 * PI / count
+            })
+            .collect()
+    }
+
+    /// dP/dθ at every angle to x, of electrons between two energies, 1/rad.
+    pub fn angular_distribution(&self, angles: &[f64], energies: [f64; 2]) -> Vec<f64> {
+        let [first, last] = energies.map(|e| (2.0 * e).sqrt());
+        let spacing = self.spacing()[0].min(self.spacing()[1]);
+        let count = (2.0 * (last - first) / spacing).ceil().max(8.0);
+        let h = (last - first) / count;
+        let radial = |angle: f64| {
+            let at = |n: usize| first + (n as f64 + 0.5) * h;
+            (0..count as usize).map(|n| self.at(at(n), angle) * at(n)).sum::<f64>() * h
+        };
+        angles.iter().map(|&angle| radial(angle)).collect()
+    }
+}
+
+/// Lagrange weights of the points at -1, 0, 1, 2.
+fn cubic_weights(t: f64) -> [f64; 4] {
+    [
+        -t * (t - 1.0) * (t - 2.0) / 6.0,
+        (t + 1.0) * (t - 1.0) * (t - 2.0) / 2.0,
+        -(t + 1.0) * t * (t - 2.0) / 2.0,
+        (t + 1.0) * t * (t - 1.0) / 6.0,
+    ]
+}

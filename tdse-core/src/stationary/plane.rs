@@ -1,0 +1,386 @@
+//! Bound states of a round atom as a two-dimensional grid represents it, by symmetry.
+//!
+//! The grid keeps the mirrors x → -x and y → -y exactly, so a state lives on a quarter of the plane in one of four
+//! sectors. There the kinetic energy is a small dense matrix per axis, exactly the one of the periodic grid. A state is
+//! first found on the part of the grid that it fills, then checked, and where needed improved, on the whole grid.
+
+use std::f64::consts::PI;
+
+use nalgebra::{DMatrix, DVector};
+use num_complex::Complex;
+
+use super::bound::{ITERATIONS, Operator, RESIDUAL, improved};
+use super::level::rough_radial_level;
+use super::{Level, RadialFunction, StationaryError, radial_level};
+use crate::grid::{Axis, Grid};
+use crate::potential::Potential;
+use crate::problem::{Parity, PlaneLabel, Symmetry};
+
+/// Part of the grid a state is first found on, in units of the distance where it has decayed by e⁻²⁰.
+const FILLED: f64 = 1.5;
+
+/// A bound state on the plane.
+#[derive(Clone, Debug, PartialEq)]
+pub struct PlaneState {
+    /// Which one.
+    pub label: PlaneLabel,
+    /// Energy of the grid's Hamiltonian, hartree; of R e^{imφ} with m ≠ 0 the mean of its two real parts.
+    pub energy: f64,
+    /// Real part, shape `[ny, nx]`, ∫|ψ|² = 1, positive towards x → +∞ (or towards the first quadrant).
+    pub real: Vec<f64>,
+    /// Imaginary part; empty for a real state.
+    pub imaginary: Vec<f64>,
+}
+
+impl PlaneState {
+    /// ψ at point `i` of the grid.
+    pub fn at(&self, i: usize) -> Complex<f64> {
+        Complex::new(self.real[i], self.imaginary.get(i).copied().unwrap_or(0.0))
+    }
+
+    /// ψ as complex numbers.
+    pub fn wave_function(&self) -> Vec<Complex<f64>> {
+        (0..self.real.len()).map(|i| self.at(i)).collect()
+    }
+
+    /// ⟨state|ψ⟩ over the grid's cells of size `cell`.
+    ///
+    /// # Panics
+    /// If the lengths differ.
+    pub fn overlap(&self, psi: &[Complex<f64>], cell: f64) -> Complex<f64> {
+        assert_eq!(psi.len(), self.real.len(), "wave function and state have the same length");
+        let with = |part: &[f64]| psi.iter().zip(part).map(|(p, s)| p * s).sum::<Complex<f64>>() * cell;
+        with(&self.real) - Complex::<f64>::i() * with(&self.imaginary)
+    }
+}
+
+/// The bound states of a round `potential` that `labels` name, on a two-dimensional grid.
+///
+/// # Errors
+/// [`StationaryError::NoSuchState`] where one is not bound, [`StationaryError::NotConverged`].
+///
+/// # Panics
+/// If `grid` is not two-dimensional or has odd lengths.
+pub fn plane_states(
+    potential: &Potential,
+    grid: &Grid,
+    labels: &[PlaneLabel],
+) -> Result<Vec<PlaneState>, StationaryError> {
+    let y = grid.y.expect("a plane has two dimensions");
+    assert!(grid.x.points.is_multiple_of(2) && y.points.is_multiple_of(2), "even numbers of points");
+    labels.iter().map(|label| plane_state(potential, [grid.x, y], *label)).collect()
+}
+
+/// The grid-free level that `label` names.
+///
+/// # Errors
+/// [`StationaryError::NoSuchState`] where it is not bound, [`StationaryError::NotConverged`].
+pub fn plane_level(potential: &Potential, label: PlaneLabel) -> Result<Level, StationaryError> {
+    let part = match label.symmetry {
+        Symmetry::Angular(m) => Part { angular: m.unsigned_abs(), number: label.number, wave: Wave::Cosine },
+        Symmetry::Mirror(parity) => nth_of_sector(potential, parity, label.number)?,
+    };
+    radial_level(potential, part.angular, part.number)
+}
+
+fn plane_state(
+    potential: &Potential,
+    axes: [Axis; 2],
+    label: PlaneLabel,
+) -> Result<PlaneState, StationaryError> {
+    let (m, number) = match label.symmetry {
+        Symmetry::Angular(m) => (m, label.number),
+        Symmetry::Mirror(parity) => {
+            let part = nth_of_sector(potential, parity, label.number)?;
+            let (energy, real) = real_state(potential, axes, part)?;
+            return Ok(PlaneState { label, energy, real, imaginary: Vec::new() });
+        }
+    };
+    let angular = m.unsigned_abs();
+    let (energy, mut real) = real_state(potential, axes, Part { angular, number, wave: Wave::Cosine })?;
+    if m == 0 {
+        return Ok(PlaneState { label, energy, real, imaginary: Vec::new() });
+    }
+    let (other, mut imaginary) = real_state(potential, axes, Part { angular, number, wave: Wave::Sine })?;
+    let scale = 0.5f64.sqrt();
+    for (re, im) in real.iter_mut().zip(&mut imaginary) {
+        *re *= scale;
+        *im *= scale * f64::from(m.signum());
+    }
+    Ok(PlaneState { label, energy: 0.5 * (energy + other), real, imaginary })
+}
+
+/// cos mφ or sin mφ.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Wave {
+    Cosine,
+    Sine,
+}
+
+/// R(r) cos mφ or R(r) sin mφ, with `number` nodes of R.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+struct Part {
+    angular: u32,
+    number: usize,
+    wave: Wave,
+}
+
+impl Part {
+    fn parity(&self) -> [Parity; 2] {
+        use Parity::{Even, Odd};
+        match (self.wave, self.angular.is_multiple_of(2)) {
+            (Wave::Cosine, true) => [Even, Even],
+            (Wave::Cosine, false) => [Odd, Even],
+            (Wave::Sine, true) => [Odd, Odd],
+            (Wave::Sine, false) => [Even, Odd],
+        }
+    }
+
+    fn value(&self, radial: &RadialFunction, x: f64, y: f64) -> f64 {
+        let angle = f64::from(self.angular) * y.atan2(x);
+        radial.value(x.hypot(y)) * if self.wave == Wave::Cosine { angle.cos() } else { angle.sin() }
+    }
+
+    /// The same wave at the next angular momentum of the sector.
+    fn next(&self) -> Self {
+        Self { angular: self.angular + 2, number: 0, ..*self }
+    }
+}
+
+/// First angular momentum of a sector.
+fn first_of(parity: [Parity; 2]) -> Part {
+    use Parity::{Even, Odd};
+    let (angular, wave) = match parity {
+        [Even, Even] => (0, Wave::Cosine),
+        [Odd, Even] => (1, Wave::Cosine),
+        [Odd, Odd] => (2, Wave::Sine),
+        [Even, Odd] => (1, Wave::Sine),
+    };
+    Part { angular, number: 0, wave }
+}
+
+/// State `number` of a sector by rising energy.
+fn nth_of_sector(potential: &Potential, parity: [Parity; 2], number: usize) -> Result<Part, StationaryError> {
+    let mut found: Vec<(f64, Part)> = Vec::new();
+    let mut part = first_of(parity);
+    loop {
+        let before = found.len();
+        // Of this angular momentum no more than `number` + 1 can count.
+        for n in 0..=number {
+            match radial_level(potential, part.angular, n) {
+                Ok(level) => found.push((level.energy, Part { number: n, ..part })),
+                Err(StationaryError::NoSuchState { .. }) => break,
+                Err(error) => return Err(error),
+            }
+        }
+        found.sort_by(|a, b| a.0.total_cmp(&b.0));
+        let last = found.get(number).map(|f| f.0);
+        part = part.next();
+        match (last, radial_level(potential, part.angular, 0)) {
+            (Some(energy), Ok(level)) if level.energy <= energy => {}
+            (Some(_), _) => return Ok(found[number].1),
+            (None, Err(_)) if found.len() == before => {
+                return Err(StationaryError::NoSuchState { number, bound: found.len() });
+            }
+            (None, _) => {}
+        }
+    }
+}
+
+/// Energy and values, normalised, of one real state on the whole grid.
+fn real_state(
+    potential: &Potential,
+    axes: [Axis; 2],
+    part: Part,
+) -> Result<(f64, Vec<f64>), StationaryError> {
+    let level = radial_level(potential, part.angular, part.number)?;
+    let below = not_above(potential, part, level.energy, level.reach)?;
+    let crop = |axis: Axis| {
+        let points = 2 * (FILLED * level.reach / axis.spacing).ceil() as usize + 2;
+        Axis { points: points.min(axis.points), ..axis }
+    };
+    let cropped = Sector::new(potential, axes.map(crop), part.parity());
+    let guesses: Vec<DVector<f64>> =
+        below.iter().map(|(part, radial)| cropped.sample(part, radial)).collect();
+    let wanted = guesses[0].clone();
+    let (states, energies, _) = improved(&cropped, guesses, ITERATIONS);
+    let at = nearest(&states, &wanted);
+    let whole = Sector::new(potential, axes, part.parity());
+    let mut psi = whole.padded(&cropped, &states[at]);
+    let mut energy = energies[at];
+    let mut residual = whole.residual(&psi, energy);
+    if residual > whole.accepted() {
+        let start = states.iter().map(|s| whole.padded(&cropped, s)).collect();
+        let (better, energies, _) = improved(&whole, start, ITERATIONS);
+        let at = nearest(&better, &psi);
+        (psi, energy) = (better[at].clone(), energies[at]);
+        residual = whole.residual(&psi, energy);
+    }
+    if residual > whole.accepted() || residual.is_nan() {
+        return Err(StationaryError::NotConverged {
+            what: "a bound state on the plane",
+            reached: residual,
+            wanted: RESIDUAL,
+            unit: "hartree",
+        });
+    }
+    let sign = whole.padded(&cropped, &wanted).dot(&psi).signum();
+    Ok((energy, whole.unfolded(&(psi * sign))))
+}
+
+/// The state wanted first, then every other state of its sector that is not above it.
+fn not_above(
+    potential: &Potential,
+    part: Part,
+    energy: f64,
+    reach: f64,
+) -> Result<Vec<(Part, RadialFunction)>, StationaryError> {
+    let radial = |p: Part| Ok((p, rough_radial_level(potential, p.angular, p.number, FILLED * reach)?.1));
+    let mut all = vec![radial(part)?];
+    let mut other = first_of(part.parity());
+    loop {
+        for number in 0.. {
+            let candidate = Part { number, ..other };
+            match radial_level(potential, other.angular, number) {
+                Ok(level) if level.energy <= energy + 1e-6 * energy.abs() => {
+                    if candidate != part {
+                        all.push(radial(candidate)?);
+                    }
+                }
+                Ok(_) | Err(StationaryError::NoSuchState { .. }) if number > 0 => break,
+                Ok(_) | Err(StationaryError::NoSuchState { .. }) => return Ok(all),
+                Err(error) => return Err(error),
+            }
+        }
+        other = other.next();
+    }
+}
+
+fn nearest(states: &[DVector<f64>], wanted: &DVector<f64>) -> usize {
+    let overlap = |i: &usize| states[*i].dot(wanted).abs();
+    (0..states.len()).max_by(|i, j| overlap(i).total_cmp(&overlap(j))).unwrap_or(0)
+}
+
+/// H on the functions of given parities, on the quarter x, y > 0, x fastest; unit vectors are normalised states.
+struct Sector {
+    axes: [Axis; 2],
+    parity: [Parity; 2],
+    potential: DMatrix<f64>,
+    directions: [Direction; 2],
+}
+
+/// Kinetic energy along one half axis for one parity.
+struct Direction {
+    /// Rows: orthonormal cosines or sines on the half axis.
+    waves: DMatrix<f64>,
+    /// k²/2 of each.
+    energies: Vec<f64>,
+    kinetic: DMatrix<f64>,
+}
+
+impl Direction {
+    fn new(axis: Axis, parity: Parity) -> Self {
+        let half = axis.points / 2;
+        let first = usize::from(parity == Parity::Odd);
+        let waves = DMatrix::from_fn(half, half, |k, j| {
+            let k = k + first;
+            let angle = PI * k as f64 * (j as f64 + 0.5) / half as f64;
+            let scale = if k == 0 || k == half { 1.0 } else { 2.0 };
+            (scale / half as f64).sqrt() * if first == 0 { angle.cos() } else { angle.sin() }
+        });
+        let momentum = |k: usize| 2.0 * PI * (k + first) as f64 / axis.extent();
+        let energies: Vec<f64> = (0..half).map(|k| 0.5 * momentum(k).powi(2)).collect();
+        let mut weighted = waves.clone();
+        for (mut row, t) in weighted.row_iter_mut().zip(&energies) {
+            row *= *t;
+        }
+        let kinetic = waves.tr_mul(&weighted);
+        Self { waves, energies, kinetic }
+    }
+}
+
+impl Sector {
+    fn new(potential: &Potential, axes: [Axis; 2], parity: [Parity; 2]) -> Self {
+        let [nx, ny] = axes.map(|a| a.points / 2);
+        let at = |axis: Axis, i: usize| (i as f64 + 0.5) * axis.spacing;
+        let potential =
+            DMatrix::from_fn(nx, ny, |i, j| potential.value(at(axes[0], i).hypot(at(axes[1], j))));
+        let directions = [0, 1].map(|d| Direction::new(axes[d], parity[d]));
+        Self { axes, parity, potential, directions }
+    }
+
+    fn shape(&self) -> (usize, usize) {
+        self.potential.shape()
+    }
+
+    fn sample(&self, part: &Part, radial: &RadialFunction) -> DVector<f64> {
+        let (nx, ny) = self.shape();
+        let at = |d: usize, i: usize| (i as f64 + 0.5) * self.axes[d].spacing;
+        let values = DMatrix::from_fn(nx, ny, |i, j| part.value(radial, at(0, i), at(1, j)));
+        DVector::from_column_slice(values.as_slice())
+    }
+
+    /// A vector of a smaller sector with the same spacings, zero outside.
+    fn padded(&self, small: &Self, psi: &DVector<f64>) -> DVector<f64> {
+        let ((nx, ny), (sx, sy)) = (self.shape(), small.shape());
+        let mut out = DVector::zeros(nx * ny);
+        for j in 0..sy {
+            out.rows_mut(j * nx, sx).copy_from(&psi.rows(j * sx, sx));
+        }
+        out
+    }
+
+    fn residual(&self, psi: &DVector<f64>, energy: f64) -> f64 {
+        (self.apply(psi) - energy * psi).norm() / psi.norm()
+    }
+
+    /// Values on the whole plane, ∫ψ² = 1.
+    fn unfolded(&self, psi: &DVector<f64>) -> Vec<f64> {
+        let (nx, ny) = self.shape();
+        let scale = 0.5 / (psi.norm() * (self.axes[0].spacing * self.axes[1].spacing).sqrt());
+        let fold = |i: usize, n: usize, parity: Parity| {
+            if i < n { (n - 1 - i, parity.sign()) } else { (i - n, 1.0) }
+        };
+        let mut out = Vec::with_capacity(4 * nx * ny);
+        for j in 0..2 * ny {
+            let (row, row_sign) = fold(j, ny, self.parity[1]);
+            for i in 0..2 * nx {
+                let (column, sign) = fold(i, nx, self.parity[0]);
+                out.push(psi[row * nx + column] * sign * row_sign * scale);
+            }
+        }
+        out
+    }
+
+    fn matrix(&self, psi: &DVector<f64>) -> DMatrix<f64> {
+        let (nx, ny) = self.shape();
+        DMatrix::from_column_slice(nx, ny, psi.as_slice())
+    }
+}
+
+impl Operator for Sector {
+    fn largest(&self) -> f64 {
+        let kinetic = |d: &Direction| d.energies.iter().copied().fold(0.0, f64::max);
+        self.directions.iter().map(kinetic).sum::<f64>() + self.potential.amax()
+    }
+
+    fn apply(&self, psi: &DVector<f64>) -> DVector<f64> {
+        let psi = self.matrix(psi);
+        let mut out = psi.component_mul(&self.potential);
+        out.gemm(1.0, &self.directions[0].kinetic, &psi, 1.0);
+        out.gemm(1.0, &psi, &self.directions[1].kinetic, 1.0);
+        DVector::from_column_slice(out.as_slice())
+    }
+
+    fn precondition(&self, psi: &DVector<f64>, shift: f64) -> DVector<f64> {
+        let [x, y] = &self.directions;
+        let mut inside = &x.waves * self.matrix(psi) * y.waves.transpose();
+        for (mut column, ty) in inside.column_iter_mut().zip(&y.energies) {
+            for (value, tx) in column.iter_mut().zip(&x.energies) {
+                *value /= tx + ty + shift;
+            }
+        }
+        let out = x.waves.tr_mul(&inside) * &y.waves;
+        DVector::from_column_slice(out.as_slice())
+    }
+}
