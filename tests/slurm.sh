@@ -48,7 +48,7 @@ cat > "$place/scan.json" <<'JSON'
     ]
   },
   "numerics": { "spacing": "0.2 bohr", "extent": "400 bohr" },
-  "outputs": { "harmonics": { "max_energy": "40 eV", "energy_step": "0.5 eV" } },
+  "outputs": { "harmonics": { "max_energy": "40 eV", "energy_step": "0.5 eV", "window": { "kind": "blackman" } } },
   "scan": [
     { "parameter": "/field/pulses/0/phase", "name": "cep", "from": "0 deg", "to": "180 deg", "points": 64 }
   ]

@@ -39,7 +39,7 @@ fn other_outputs_are_derived_without_propagating() {
     place.write("scan.json", &scan);
     place.tdse("run scan.json --out out").with(0);
     for (step, harmonics) in [
-        json!({ "max_energy": "40 eV", "energy_step": "0.5 eV", "window": { "kind": "blackman" } }),
+        json!({ "max_energy": "40 eV", "energy_step": "0.5 eV", "window": { "kind": "hann" } }),
         json!({ "max_energy": "30 eV", "energy_step": "0.25 eV" }),
     ]
     .into_iter()

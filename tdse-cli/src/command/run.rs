@@ -48,7 +48,7 @@ pub fn run(options: &RunOptions) -> Result<Exit, Trouble> {
 /// The same for a request that is ready.
 ///
 /// # Errors
-/// As [`run`].
+/// As [`run()`].
 pub fn carry_out(prepared: Prepared, out: &Path, effort: &Effort) -> Result<Exit, Trouble> {
     let deadline = effort
         .within

@@ -49,7 +49,10 @@ impl Unfinished {
         let (first, rest) = bytes.split_at(bytes.len() / 2);
         let written = fs::File::create(&this.partial).and_then(|mut file| {
             file.write_all(first)?;
-            pause(Place::Write);
+            // Results alone: tests wait for points, not for tables.
+            if path.extension().is_some_and(|extension| extension == "h5") {
+                pause(Place::Write);
+            }
             file.write_all(rest)
         });
         written.map_err(Error::io("write", &this.partial))?;
