@@ -120,6 +120,18 @@ fn bars_stay_when_the_folder_is_gathered_again_and_nothing_is_computed_twice() {
 }
 
 #[test]
+fn shards_refine_together() {
+    let place = Place::new();
+    place.write("scan.json", &phases("0 deg", "90 deg", 2));
+    place.tdse("refine scan.json --out whole").with(0);
+    place.tdse("refine scan.json --out parts --shard 1/2").with(0).says(&["left to other shards"]);
+    assert!(!place.path("parts/result.h5").exists());
+    place.tdse("refine scan.json --out parts --shard 2/2").with(0);
+    place.tdse("refine scan.json --out parts").with(0);
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("parts/result.h5"));
+}
+
+#[test]
 fn other_model_atoms_have_a_spread_of_their_own() {
     let place = Place::new();
     let soft = json!({ "kind": "soft_coulomb", "softening": "1.4142135623730951 bohr" });
