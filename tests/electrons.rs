@@ -104,8 +104,8 @@ fn a_weak_extreme_ultraviolet_pulse_gives_first_order_perturbation_theory() {
     }
 }
 
-/// The projection and the collected amplitude through the program: peaks within 1 %, the whole within 0.1 %, as the issue
-/// of the library has it; what is bound and what is free are everything.
+/// The projection and the collected amplitude through the program: peaks within 1 %, the whole within 0.1 %
+/// (bounds of our own); what is bound and what is free are everything.
 #[test]
 fn both_methods_agree() {
     let folder = tempfile::tempdir().unwrap();

@@ -164,7 +164,7 @@ fn an_end_that_leaks_is_named_by_its_window() {
     assert_eq!(kind(Window::Blackman), None);
     // Cut at the pulse's centre, where the acceleration is far from zero.
     let cut = schedule.steps / 2;
-    let short = tdse_core::simulate::Schedule { steps: cut, ..schedule.clone() };
+    let short = tdse_core::simulate::Schedule { steps: cut, end: schedule.time(cut), ..schedule.clone() };
     let kind = |window| ending(&series[..=cut], &short, window, photons).map(|doubt| doubt.kind);
     assert_eq!(kind(Window::None), Some(Kind::TrailingTime));
     assert_eq!(kind(Window::Taper { length: 2.0 }), Some(Kind::WindowLeak));

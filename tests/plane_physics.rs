@@ -68,7 +68,7 @@ const SHORT_RANGE: Potential = Potential::GaussianWell { depth: 1.4, width: 1.0 
 
 /// Counter-rotating ω and 2ω are mapped onto themselves by a third of a turn and a third of a cycle, so orders 3n are
 /// forbidden, 3n+1 turn with ω and 3n+2 with 2ω (Eichmann et al., Phys. Rev. A 51, R3414 (1995); Alon, Averbukh, Moiseyev,
-/// Phys. Rev. Lett. 80, 3743 (1998); both from memory). The bounds are those of the project's task.
+/// Phys. Rev. Lett. 80, 3743 (1998); both from memory). The bounds are our own.
 #[test]
 fn counter_rotating_colours_leave_out_every_third_harmonic() {
     let pulses = vec![circular(FREQUENCY, 1.0, 0.032), circular(2.0 * FREQUENCY, -1.0, 0.032)];
@@ -158,7 +158,7 @@ fn projected(plan: &Plan, state: &State, grid: &Grid, momenta: &[Vec<f64>; 2], b
         .collect()
 }
 
-/// The same pulse in a box that nothing leaves, on an atom without long tail. Bounds of the project's task: 3 % where the
+/// The same pulse in a box that nothing leaves, on an atom without long tail. Bounds of our own: 3 % where the
 /// density is above 1e-4 of its maximum, yields within 0.5 %.
 #[test]
 fn the_momentum_map_is_that_of_a_box_that_nothing_leaves() {
@@ -211,7 +211,7 @@ fn the_momentum_map_is_that_of_a_box_that_nothing_leaves() {
 }
 
 /// Tunnelling at γ ≤ 0.5: electrons leave with -A(t) of their birth, mostly at the envelope's peak (leading order; Corkum,
-/// Burnett, Brunel, Phys. Rev. Lett. 62, 1259 (1989), from memory). Bound of the project's task.
+/// Burnett, Brunel, Phys. Rev. Lett. 62, 1259 (1989), from memory). The bound is our own.
 #[test]
 fn a_circular_pulse_makes_a_ring_of_the_vector_potential() {
     let well = Potential::GaussianWell { depth: 0.36, width: 2.0 };

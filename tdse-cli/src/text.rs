@@ -2,6 +2,8 @@
 
 use std::fmt;
 
+use crate::report::number::with_error;
+
 /// A number with five significant digits, scientific where that is shorter.
 pub fn number(value: f64) -> String {
     if value == 0.0 {
@@ -17,6 +19,12 @@ pub fn number(value: f64) -> String {
     let decimals = (4.0 - exponent).max(0.0) as usize;
     let text = format!("{value:.decimals$}");
     if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').into() } else { text }
+}
+
+/// A number with its error bar, in letters that every terminal has.
+pub fn with_bar(value: f64, error: f64) -> String {
+    let text = with_error(value, error);
+    text.replace('\u{2212}', "-").replace('\u{b1}', "+-").replace('\u{b7}', "*")
 }
 
 /// An amount of memory.

@@ -106,7 +106,8 @@ pub struct Wish<'a> {
     /// What the user fixed.
     pub pins: &'a Pins,
     /// Error asked for: of the dipole acceleration, relative in root-mean-square over the run; of every harmonic yield up to the
-    /// cutoff and above [`FLOOR`], relative; of probabilities, absolute.
+    /// cutoff and above [`FLOOR`], relative. The rules do not look at probabilities: diffuse bound states in the box's edges may
+    /// leave the ionization probability less accurate.
     pub accuracy: f64,
     /// Largest photon energy that is written, hartree, where the user gave one.
     pub max_photon: Option<f64>,

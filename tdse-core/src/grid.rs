@@ -91,6 +91,11 @@ impl Grid {
         self.x.spacing * self.y.map_or(1.0, |y| y.spacing)
     }
 
+    /// Largest momentum the grid holds, 1/bohr: in two dimensions that of its corners.
+    pub fn largest_momentum(&self) -> f64 {
+        self.x.largest_momentum().hypot(self.y.map_or(0.0, |y| y.largest_momentum()))
+    }
+
     /// Positions along y; a single zero in one dimension.
     pub fn y_positions(&self) -> impl Iterator<Item = f64> + use<> {
         let y = self.y;

@@ -145,6 +145,16 @@ pub enum ElectronMethod {
     OutgoingAmplitude = 1,
 }
 
+impl ElectronMethod {
+    /// The word for it in configurations and files.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::ScatteringStates => "scattering_states",
+            Self::OutgoingAmplitude => "outgoing_amplitude",
+        }
+    }
+}
+
 /// Every choice that fixes the bits of a run.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Numerics {

@@ -91,7 +91,7 @@ pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<
     };
     let step = finer(|n| n.time_step *= STEP);
     let mut spacing = finer(|n| with_spacing(n, SPACING * n.grid.x.spacing));
-    let resonance = resonant_step(spacing.grid.x.largest_momentum(), binding_energy);
+    let resonance = resonant_step(spacing.grid.largest_momentum(), binding_energy);
     let is_slow = numerics.time_step < BELOW_RESONANCE * resonance;
     if !is_slow {
         spacing.time_step = step.time_step;
@@ -271,7 +271,7 @@ mod tests {
             assert!(runs[5].numerics.trailing_time >= 100.0 && last.trailing_time == 0.0);
             for run in &runs {
                 let n = &run.numerics;
-                assert!(n.time_step < resonant_step(n.grid.x.largest_momentum(), 0.5), "{run:?}");
+                assert!(n.time_step < resonant_step(n.grid.largest_momentum(), 0.5), "{run:?}");
                 assert!(n.grid.x.extent() - 2.0 * n.absorber.width() >= 187.2 - 1e-9, "{run:?}");
             }
             let beside = runs.iter().any(|run| matches!(run.what, Varied::OneBesideStep(_)));

@@ -1,6 +1,13 @@
 //! Propagation: a plan made once, a state that can be stopped and continued, a series of what was recorded.
 
+mod atom;
+mod health;
 mod probe;
+mod schedule;
+
+pub use atom::Atom;
+pub use health::{Failure, Health, health};
+pub use schedule::Schedule;
 
 use std::sync::Arc;
 
@@ -11,125 +18,15 @@ use crate::grid::Grid;
 use crate::outgoing::{
     Collector, CollectorScratch, Edges, MapCollector, MapRange, MapScratch, Motion, Outgoing,
 };
-use crate::potential::{Potential, PotentialOnGrid};
-use crate::problem::{InitialState, Numerics, Parity, PlaneLabel, Problem, Record};
-use crate::stationary::{
-    BoundStates, PlaneState, ScatteringStates, StationaryError, bound_states_below, plane_states,
-};
+use crate::potential::PotentialOnGrid;
+use crate::problem::{Numerics, Parity, Problem, Record};
+use crate::stationary::{BoundStates, ScatteringStates};
 use crate::step::{Drive, Moments, Step, StepWorkspace};
 
 use probe::Probe;
 
 /// Most population samples kept of a run.
 const POPULATION_SAMPLES: usize = 512;
-
-/// A model atom on a grid: computed once for all runs that share it.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Atom {
-    /// Potential and gradient.
-    pub potential: PotentialOnGrid,
-    /// Its bound states in one dimension: every one below zero, and as many as were asked for in any case.
-    pub bound: BoundStates,
-    /// Its bound states in two dimensions: those that were asked for, in that order.
-    pub plane: Vec<PlaneState>,
-}
-
-impl Atom {
-    /// Atom with every state below zero, and the `states` lowest in any case.
-    pub fn new(potential: &Potential, grid: &Grid, states: usize) -> Result<Self, StationaryError> {
-        Ok(Self {
-            potential: PotentialOnGrid::sample(potential, grid),
-            bound: bound_states_below(potential, grid, states)?,
-            plane: Vec::new(),
-        })
-    }
-
-    /// Atom in two dimensions with the states that `labels` name; an [`InitialState`] and a [`Record`] count them in this
-    /// order.
-    pub fn on_plane(
-        potential: &Potential,
-        grid: &Grid,
-        labels: &[PlaneLabel],
-    ) -> Result<Self, StationaryError> {
-        Ok(Self {
-            potential: PotentialOnGrid::sample(potential, grid),
-            bound: BoundStates { energies: Vec::new(), states: Vec::new() },
-            plane: plane_states(potential, grid, labels)?,
-        })
-    }
-
-    /// Number of bound states it holds.
-    pub fn states(&self) -> usize {
-        self.bound.states.len() + self.plane.len()
-    }
-
-    /// Bound state `number` at point `i`.
-    fn state(&self, number: usize, i: usize) -> Complex<f64> {
-        match self.plane.get(number) {
-            Some(state) => state.at(i),
-            None => Complex::new(self.bound.states[number][i], 0.0),
-        }
-    }
-
-    /// ψ(0) of an initial state, normalised.
-    ///
-    /// # Panics
-    /// If the atom holds fewer states than the initial state names.
-    pub fn wave_function(&self, initial: &InitialState) -> Vec<Complex<f64>> {
-        let points = self.potential.values.len();
-        let state = |number: usize| (0..points).map(move |i| self.state(number, i));
-        match initial {
-            InitialState::Single(number) => state(*number).collect(),
-            InitialState::Superposition(terms) => {
-                let total: f64 = terms.iter().map(|t| t.weight).sum();
-                let mut psi = vec![Complex::default(); points];
-                for term in terms {
-                    let amplitude = Complex::from_polar((term.weight / total).sqrt(), term.phase);
-                    for (p, s) in psi.iter_mut().zip(state(term.number)) {
-                        *p += amplitude * s;
-                    }
-                }
-                psi
-            }
-        }
-    }
-}
-
-/// Times and field of a run: t_n = start + n τ, n = 0 … steps.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Schedule {
-    /// First time, a.u.
-    pub start: f64,
-    /// Time step, a.u.
-    pub time_step: f64,
-    /// Number of steps.
-    pub steps: usize,
-    /// Time when the field has ended, a.u.
-    pub field_end: f64,
-    /// Time asked for, a.u.: the last sample lies less than a step behind it, the windows of spectra end there, so that
-    /// they do not change with the step.
-    pub end: f64,
-}
-
-impl Schedule {
-    /// From the start of the field to `trailing_time` after its end, lengthened to whole steps.
-    pub fn new(field: &Field, time_step: f64, trailing_time: f64) -> Self {
-        let (start, field_end) = field.interval();
-        // A length within rounding of whole steps counts as whole.
-        let steps = ((field_end + trailing_time - start) / time_step - 1e-9).ceil().max(1.0);
-        Self { start, time_step, steps: steps as usize, field_end, end: field_end + trailing_time }
-    }
-
-    /// Time of sample `n`, a.u.
-    pub fn time(&self, n: usize) -> f64 {
-        self.start + n as f64 * self.time_step
-    }
-
-    /// Every sample's time, a.u.; length `steps + 1`.
-    pub fn times(&self) -> Vec<f64> {
-        (0..=self.steps).map(|n| self.time(n)).collect()
-    }
-}
 
 /// Everything about a run that is known before it starts.
 #[derive(Clone, Debug)]
@@ -530,54 +427,6 @@ fn watch(plan: &Plan, state: &mut State, work: &mut Workspace) {
         line.close(psi, field, plan.vector_potential[state.step][0], scratch);
         state.series.free_energy.push(probe.energy(&plan.atom.potential, psi, scratch));
     }
-}
-
-/// How a run is doing.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Health {
-    /// Norm at the last sample.
-    pub norm: f64,
-    /// Largest norm near the edges so far.
-    pub edge: f64,
-    /// Largest norm at the top of the momentum grid so far.
-    pub top: f64,
-}
-
-/// What went wrong beyond repair.
-#[derive(Clone, Copy, Debug, PartialEq, thiserror::Error)]
-pub enum Failure {
-    /// Numbers stopped being numbers.
-    #[error("the wave function is not finite after step {step}")]
-    NotFinite {
-        /// Steps done.
-        step: usize,
-    },
-    /// The norm grew, which no exact propagation can.
-    #[error("the norm grew from {before} to {after} by step {step}")]
-    NormGrew {
-        /// Norm at the start.
-        before: f64,
-        /// Norm at the last sample.
-        after: f64,
-        /// Steps done.
-        step: usize,
-    },
-}
-
-/// Judges the recorded samples of a state.
-pub fn health(state: &State) -> Result<Health, Failure> {
-    let series = &state.series;
-    let (Some(&before), Some(&after)) = (series.norm.first(), series.norm.last()) else {
-        return Ok(Health { norm: 1.0, edge: 0.0, top: 0.0 });
-    };
-    if !after.is_finite() || series.gradient.last().is_some_and(|g| !(g[0] + g[1]).is_finite()) {
-        return Err(Failure::NotFinite { step: state.step });
-    }
-    if after > before * (1.0 + 1e-9) {
-        return Err(Failure::NormGrew { before, after, step: state.step });
-    }
-    let largest = |values: &[f64]| values.iter().copied().fold(0.0, f64::max);
-    Ok(Health { norm: after, edge: largest(&series.edge), top: largest(&series.top) })
 }
 
 /// Runs a plan from start to end: a convenience over [`advance`].

@@ -182,7 +182,7 @@ pub fn ending(
     let period = 2.0 * std::f64::consts::PI / photon / schedule.time_step;
     let last = &acceleration[acceleration.len().saturating_sub(period as usize + 1)..];
     let value = last.iter().fold(0.0, |m: f64, a| m.max(a.abs()));
-    let length = schedule.time_step * schedule.steps as f64;
+    let length = schedule.end - schedule.start;
     let (order, derivative) = first_derivative(window, length);
     let number = value * derivative / highest.powi(order + 1) / fundamental;
     let (kind, what) = match window {

@@ -114,6 +114,9 @@ fn bars_stay_when_the_folder_is_gathered_again_and_nothing_is_computed_twice() {
     std::fs::copy(place.path("out/result.h5"), place.path("kept.h5")).expect("a copy");
     place.tdse("run scan.json --out out").with(0);
     assert_same_bits(&place.path("kept.h5"), &place.path("out/result.h5"));
+    std::fs::remove_file(place.path("out/result.h5")).expect("removed");
+    place.tdse("gather out").with(0);
+    assert_same_bits(&place.path("kept.h5"), &place.path("out/result.h5"));
     let ended = place.tdse("compare out plain").with(0);
     assert!(ended.data.contains("summary/cutoff_energy"), "{}", ended.data);
     assert!(!ended.data.contains("different"), "a result is that of itself:\n{}", ended.data);

@@ -1,5 +1,4 @@
 //! The accuracy asked for is the accuracy reached: twenty configurations, three accuracies.
-
 //!
 //! The short form takes the cases and accuracies whose reference is quick. The long form is
 //! `cargo test --release -p tdse-core --test twenty -- --ignored --nocapture`, hours long; `TDSE_TWENTY_MOST` leaves out

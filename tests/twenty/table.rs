@@ -33,7 +33,7 @@ fn measure(case: &Case, accuracy: f64, closed: f64, most: f64) -> Option<Line> {
     let (found, exact) = (outcome(case, &numerics), outcome(case, &finer));
     let errors = errors(case, &found, &exact);
     println!(
-        "{label} rms {:.1e}, harmonic {:.1e} (order {}), probability {:.1e} | spacing {}, {} points, step {:.4}, absorber \
+        "{label} rms {:.1e}, harmonic {:.1e} (order {}), survival {:.1e} | spacing {}, {} points, step {:.4}, absorber \
          {width}, {:.1} s | reference {} points, step {:.4}, absorber {}, {:.1} s",
         errors.rms,
         errors.harmonic,

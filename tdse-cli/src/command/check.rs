@@ -154,15 +154,9 @@ fn numerics(point: &Point) -> String {
                 "",
             ),
             Knob::TrailingTime => ("trailing time", number(numerics.trailing_time * TIME_FS), "fs"),
-            Knob::ElectronMethod => (
-                "electron method",
-                match point.job.electron_method {
-                    Some(ElectronMethod::OutgoingAmplitude) => "outgoing_amplitude".into(),
-                    Some(ElectronMethod::ScatteringStates) => "scattering_states".into(),
-                    None => "none".into(),
-                },
-                "",
-            ),
+            Knob::ElectronMethod => {
+                ("electron method", point.job.electron_method.map_or("none", ElectronMethod::name).into(), "")
+            }
         };
         table.row(name, value, unit, &reason.why);
     }

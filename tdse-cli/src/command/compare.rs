@@ -11,7 +11,7 @@ use super::exit::{Exit, Trouble};
 use super::output::data;
 use crate::store::table::{self, Role};
 use crate::store::{self, Contents, Folder, Values};
-use crate::text::number;
+use crate::text::{number, with_bar};
 
 /// What `compare` takes.
 #[derive(Debug, Args)]
@@ -90,51 +90,32 @@ struct Pair {
 /// A side of a comparison: values and bars of an array.
 type Side<'a> = (&'a ArrayD<f64>, Option<&'a ArrayD<f64>>);
 
+/// The bars beside an array.
+fn bars<'a>(contents: &'a Contents, group: &str, name: &str) -> Option<&'a ArrayD<f64>> {
+    contents.real(group, &format!("{name}_errors"))
+}
+
 fn pairs(a: &Contents, b: &Contents) -> Vec<Pair> {
-    let sides =
-        |contents: &'_ Contents, group: &str, name: &str| -> Option<(ArrayD<f64>, Option<ArrayD<f64>>)> {
-            let errors = contents.real(group, &format!("{name}_errors")).cloned();
-            Some((contents.real(group, name)?.clone(), errors))
-        };
-    let found = arrays(a).into_iter().filter_map(|(group, name, unit)| {
-        let (one, other) = (sides(a, &group, &name)?, sides(b, &group, &name)?);
-        let shared = same_axes(a, b, &group) && one.0.shape() == other.0.shape();
-        let values =
-            if shared { zipped((&one.0, one.1.as_ref()), (&other.0, other.1.as_ref())) } else { Vec::new() };
-        Some(Pair { place: format!("{group}/{name}"), unit, values })
+    let found = a.numbers().filter_map(|(group, dataset, own)| {
+        let (name, other) = (dataset.name, b.real(group, dataset.name)?);
+        let shared = same_axes(a, b, group) && own.shape() == other.shape();
+        let both = || zipped((own, bars(a, group, name)), (other, bars(b, group, name)));
+        let values = if shared { both() } else { Vec::new() };
+        Some(Pair { place: format!("{group}/{name}"), unit: dataset.unit(), values })
     });
     found.collect()
 }
 
 fn along(contents: &Contents, dimension: usize, k: usize) -> Vec<Pair> {
     let at = |array: &ArrayD<f64>, k: usize| array.index_axis(Axis(dimension), k).to_owned();
-    let found = arrays(contents).into_iter().filter_map(|(group, name, unit)| {
-        let values = contents.real(&group, &name)?;
-        let errors = contents.real(&group, &format!("{name}_errors"));
+    let found = contents.numbers().map(|(group, dataset, values)| {
+        let errors = bars(contents, group, dataset.name);
         let side = |k: usize| (at(values, k), errors.map(|errors| at(errors, k)));
         let (one, other) = (side(0), side(k));
         let values = zipped((&one.0, one.1.as_ref()), (&other.0, other.1.as_ref()));
-        Some(Pair { place: format!("{group}/{name}"), unit, values })
+        Pair { place: format!("{group}/{}", dataset.name), unit: dataset.unit(), values }
     });
     found.collect()
-}
-
-/// Every real value of the result that is no error bar itself, and does not only follow from the request.
-fn arrays(contents: &Contents) -> Vec<(String, String, &'static str)> {
-    let mut found = Vec::new();
-    for (path, group) in contents.groups() {
-        let Some(known) = table::group(path).filter(|known| !known.is_series()) else { continue };
-        for (name, values) in &group.arrays {
-            let Some(dataset) = known.dataset(name).filter(|dataset| dataset.role == Role::Value) else {
-                continue;
-            };
-            if matches!(values, Values::Real(_)) {
-                let unit = dataset.line.units.filter(|unit| *unit != "1").unwrap_or_default();
-                found.push((path.to_owned(), name.clone(), unit));
-            }
-        }
-    }
-    found
 }
 
 /// Whether the axes of a group are the same to rounding.
@@ -174,10 +155,10 @@ fn said(pair: &Pair) -> String {
     match &pair.values[..] {
         [] => "not compared: the axes differ".into(),
         [(a, b)] => {
-            let bar = |m: &Measured| {
-                m.error.filter(|e| e.is_finite()).map_or(String::new(), |e| format!(" +- {}", number(e)))
+            let one = |m: &Measured| match m.error.filter(|error| error.is_finite()) {
+                Some(error) => with_bar(m.value, error),
+                None => number(m.value),
             };
-            let one = |m: &Measured| format!("{}{}", number(m.value), bar(m));
             let unit = if pair.unit.is_empty() { String::new() } else { format!(" {}", pair.unit) };
             format!("{} and {}{unit}: {}", one(a), one(b), word(judge(*a, *b)))
         }

@@ -17,8 +17,7 @@ pub fn headline(result: &Path) -> Result<String, Error> {
     for dataset in datasets.filter(|dataset| dataset.kind == Kind::Real) {
         let value = contents.real("summary", dataset.name).and_then(|array| array.first());
         if let Some(value) = value.filter(|value| value.is_finite()) {
-            let unit = dataset.line.units.filter(|unit| *unit != "1").unwrap_or("");
-            table.row(dataset.long_name, number(*value), unit, "");
+            table.row(dataset.long_name, number(*value), dataset.unit(), "");
         }
     }
     Ok(table.to_string())

@@ -10,13 +10,12 @@ use super::output::data;
 use super::report;
 use super::run::carry_out;
 use crate::refine::{self, Bar, ModelPlan, Plan, Spread};
-use crate::report::number::with_error;
 use crate::scan::asked;
 use crate::scan::ledger::Ledger;
 use crate::scan::prepare::{Prepared, prepare};
 use crate::scan::source::Source;
 use crate::store::Folder;
-use crate::text::{Table, number};
+use crate::text::{Table, number, with_bar};
 
 /// Runs, repeats, and puts the bars in; continues where an earlier call stopped.
 ///
@@ -86,7 +85,7 @@ fn judged(prepared: &Prepared, plan: &Plan, bars: &[Bar]) -> String {
         for bar in bars.iter().filter(|bar| bar.point == repeated.index) {
             let limit = bar.limiting.map_or(String::new(), |cause| format!("limited by {}", cause.word()));
             let value = match bar.value {
-                Some(value) => plain(&with_error(value, bar.error)),
+                Some(value) => with_bar(value, bar.error),
                 None => format!("{:.1e}", bar.error),
             };
             table.row(bar.name, value, bar.unit, &limit);
@@ -109,11 +108,6 @@ fn spread(prepared: &Prepared, spreads: &[Spread]) -> String {
         let _ = write!(text, "{}{}{factor}\n{table}", heading(prepared, spread.point), spread.name);
     }
     text
-}
-
-/// In letters that every terminal has.
-fn plain(text: &str) -> String {
-    text.replace('\u{2212}', "-").replace('\u{b1}', "+-").replace('\u{b7}', "*")
 }
 
 /// Which point of a scan; nothing for a single run.

@@ -25,7 +25,7 @@ pub struct Request {
     pub pins: Pins,
     /// Way to the electron spectrum, as far as the user fixed it.
     pub electron_method: Option<ElectronMethod>,
-    /// Error asked for, relative to the largest dipole acceleration.
+    /// Relative error asked for of the dipole acceleration and of harmonic yields.
     pub accuracy: f64,
     /// What to do with pinned numerics that are known to be inadequate.
     pub inadequate: Inadequate,

@@ -28,7 +28,7 @@ pub(super) fn electrons(
     contents.insert("photoelectrons", "yield", per_ev(&spectrum.total()));
     contents.insert("photoelectrons", "left", per_ev(&spectrum.left));
     contents.insert("photoelectrons", "right", per_ev(&spectrum.right));
-    contents.remark("photoelectrons", "method", name(method));
+    contents.remark("photoelectrons", "method", method.name());
     let (momenta, density) = amplitude.momentum_density();
     contents.insert("momentum", "momentum", momenta);
     contents.insert("momentum", "density", density);
@@ -45,13 +45,6 @@ pub(super) fn electrons(
         contents.insert("summary", "lowest_clean_momentum", slowest);
         contents.insert("summary", "coulomb_shift", electronvolts(left.shift));
         contents.insert("summary", "coulomb_sideband", left.sideband);
-    }
-}
-
-fn name(method: ElectronMethod) -> &'static str {
-    match method {
-        ElectronMethod::ScatteringStates => "scattering_states",
-        ElectronMethod::OutgoingAmplitude => "outgoing_amplitude",
     }
 }
 

@@ -3,12 +3,11 @@
 use std::path::{Path, PathBuf};
 
 use ndarray::ArrayD;
+use serde_json::Value;
 use tdse_core::refine::{Cause, Errors};
 
 use super::bars::{self, Counted, Found, Place};
-use serde_json::Value;
-
-use super::models::{ModelPlan, attach_models};
+use super::models::{ModelPlan, attach_models, models_folder};
 use super::plan::Plan;
 use crate::scan::prepare::Prepared;
 use crate::store::table;
@@ -44,11 +43,13 @@ pub struct Bar {
 /// # Errors
 /// Where a result cannot be read or written.
 pub fn restore(root: &Path, prepared: &Prepared, request: &Request) -> Result<(), Error> {
-    if !root.join("refine").is_dir() {
-        return Ok(());
+    if folder(root).is_dir() {
+        attach(root, &Plan::new(prepared, request))?;
     }
-    attach(root, &Plan::new(prepared, request))?;
-    if let Ok(plan) = ModelPlan::new(prepared, request) {
+    // Its atoms are tuned anew: only where there is something to put back.
+    if models_folder(root).is_dir()
+        && let Ok(plan) = ModelPlan::new(prepared, request)
+    {
         attach_models(root, &plan)?;
     }
     Ok(())
@@ -67,8 +68,8 @@ pub fn attach(root: &Path, plan: &Plan) -> Result<Option<Vec<Bar>>, Error> {
     let (mut yields, mut electrons) = (Vec::new(), Vec::new());
     let (mut cutoff, mut ionization) = (Vec::new(), Vec::new());
     for (group, name) in bars::places(&base) {
-        let found = bars::of(plan, &base, &finer, Place { group: &group, name: &name });
-        let own = base.real(&group, &name).expect("a place of the result");
+        let found = bars::of(plan, &base, &finer, Place { group: &group, name });
+        let own = base.real(&group, name).expect("a place of the result");
         let mut errors = ArrayD::from_elem(own.raw_dim(), f64::NAN);
         let flat = errors.as_slice_mut().expect("a new array");
         for (start, _, found) in &found {
@@ -76,11 +77,11 @@ pub fn attach(root: &Path, plan: &Plan) -> Result<Option<Vec<Bar>>, Error> {
         }
         if group == "summary" {
             said.extend(
-                plan.repeated.iter().zip(&found).filter_map(|(point, found)| bar(point.index, &name, found)),
+                plan.repeated.iter().zip(&found).filter_map(|(point, found)| bar(point.index, name, found)),
             );
         }
         base.insert(&group, &format!("{name}_errors"), errors);
-        match (group.as_str(), name.as_str()) {
+        match (group.as_str(), name) {
             ("harmonic_yields", _) => yields = found,
             ("photoelectrons", "yield") => electrons = found,
             ("summary", "cutoff_energy") => cutoff = found,
@@ -123,7 +124,7 @@ fn bar(point: usize, name: &str, (_, values, errors): &Found) -> Option<Bar> {
     value.is_finite().then(|| Bar {
         point,
         name: dataset.long_name,
-        unit: dataset.line.units.filter(|unit| *unit != "1").unwrap_or_default(),
+        unit: dataset.unit(),
         value: Some(value),
         error,
         limiting: errors.limiting(),
@@ -139,7 +140,7 @@ fn medians(plan: &Plan, name: &'static str, found: &[Found], counted: &[Counted]
         unit: "",
         value: None,
         error: bars::median(values, &errors.bars, counted),
-        limiting: errors.limiting(),
+        limiting: bars::limiting(values, errors, counted),
     })
     .collect()
 }

@@ -3,8 +3,7 @@
 use tdse_core::refine::{Cause, Errors, Neighbours, Varied, errors};
 
 use super::plan::Plan;
-use crate::store::table::{self, Role};
-use crate::store::{Contents, Values};
+use crate::store::Contents;
 
 /// Harmonic yields below this part of the largest are rounding (double precision squared, with room).
 pub(super) const YIELD_FLOOR: f64 = 1e-22;
@@ -27,21 +26,13 @@ pub(super) struct Place<'a> {
 /// Groups that are about errors themselves.
 const ABOUT_ERRORS: [&str; 2] = ["refinement", "model_atoms"];
 
-/// Arrays that get bars: real values of groups without time.
-pub(super) fn places(contents: &Contents) -> Vec<(String, String)> {
-    let mut found = Vec::new();
-    for (path, group) in contents.groups() {
-        let known =
-            table::group(path).filter(|known| !known.is_series() && !ABOUT_ERRORS.contains(&known.name));
-        let Some(known) = known else { continue };
-        for (name, values) in &group.arrays {
-            let is_value = known.dataset(name).is_some_and(|dataset| dataset.role == Role::Value);
-            if is_value && matches!(values, Values::Real(_)) && !WITHOUT.contains(&name.as_str()) {
-                found.push((path.to_owned(), name.clone()));
-            }
-        }
-    }
-    found
+/// Arrays that get bars.
+pub(super) fn places(contents: &Contents) -> Vec<(String, &'static str)> {
+    let with_bars = |group: &str, name: &str| {
+        !ABOUT_ERRORS.iter().any(|about| group.ends_with(about)) && !WITHOUT.contains(&name)
+    };
+    let places = contents.numbers().map(|(group, dataset, _)| (group.to_owned(), dataset.name));
+    places.filter(|(group, name)| with_bars(group, name)).collect()
 }
 
 /// Where the values of a point begin, the values, and their errors.
@@ -121,6 +112,13 @@ pub(super) struct Counted {
 pub(super) fn relative(values: &[f64], errors: &Errors, cause: Cause, counted: Counted) -> f64 {
     let parts = errors.by_cause.iter().find(|(known, _)| *known == cause);
     parts.map_or(f64::NAN, |(_, parts)| median(values, parts, counted))
+}
+
+/// The cause whose median is largest.
+pub(super) fn limiting(values: &[f64], errors: &Errors, counted: Counted) -> Option<Cause> {
+    let medians = errors.by_cause.iter().map(|(cause, parts)| (*cause, median(values, parts, counted)));
+    let there = medians.filter(|(_, median)| median.is_finite());
+    there.max_by(|a, b| a.1.total_cmp(&b.1)).map(|(cause, _)| cause)
 }
 
 /// Median of errors beside their values.

@@ -10,11 +10,10 @@ use tdse_core::problem::InitialState;
 use tdse_core::refine::{ModelAtom, model_atoms};
 
 use super::attach::finished;
-use super::plan::representatives;
+use super::plan::{own_axes, representatives};
 use crate::config::Files;
 use crate::config::quantity::digits;
 use crate::scan::asked;
-use crate::scan::points::position;
 use crate::scan::prepare::Prepared;
 use crate::scan::source::Source;
 use crate::store::{self, Contents, Error, Request};
@@ -84,18 +83,8 @@ fn configuration(prepared: &Prepared, request: &Request, repeated: &[usize], ato
         outputs.shift_remove("populations");
     }
     let each = atoms.len() / repeated.len();
-    let own = prepared.axes.iter().enumerate().filter(|(_, axis)| !axis.parameter.starts_with("/atom"));
-    let mut axes: Vec<Value> = own
-        .map(|(number, axis)| {
-            let listed = scan[number]["values"].as_array().unwrap_or(&axis.values);
-            let values = repeated.iter().flat_map(|index| {
-                let at = position(*index, &prepared.shape)[axis.dimension];
-                std::iter::repeat_n(listed[at].clone(), each)
-            });
-            json!({ "parameter": axis.parameter, "name": axis.name, "values": values.collect::<Vec<_>>(),
-                    "together": "refine" })
-        })
-        .collect();
+    let points: Vec<(usize, usize)> = repeated.iter().map(|index| (*index, each)).collect();
+    let mut axes = own_axes(prepared, &scan, &points, |parameter| !parameter.starts_with("/atom"));
     axes.push(json!({ "parameter": "/atom", "name": "atom", "values": atoms, "together": "refine" }));
     tree["scan"] = Value::Array(axes);
     tree

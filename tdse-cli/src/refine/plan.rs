@@ -94,19 +94,8 @@ fn configuration(prepared: &Prepared, request: &Request, repeated: &[Repeated]) 
     let first = resolved(repeated[0].index);
     tree["outputs"] = first["outputs"].clone();
     tree["numerics"] = first["numerics"].clone();
-    let own = prepared.axes.iter().enumerate().filter(|(_, axis)| !is_varied(&axis.parameter));
-    let mut axes: Vec<Value> = own
-        .map(|(number, axis)| {
-            // Tables go by the names under which results keep them.
-            let listed = scan[number]["values"].as_array().unwrap_or(&axis.values);
-            let values = repeated.iter().flat_map(|point| {
-                let at = position(point.index, &prepared.shape)[axis.dimension];
-                std::iter::repeat_n(listed[at].clone(), point.runs.len())
-            });
-            json!({ "parameter": axis.parameter, "name": axis.name, "values": values.collect::<Vec<_>>(),
-                    "together": "refine" })
-        })
-        .collect();
+    let points: Vec<(usize, usize)> = repeated.iter().map(|point| (point.index, point.runs.len())).collect();
+    let mut axes = own_axes(prepared, &scan, &points, |parameter| !is_varied(parameter));
     for key in KEYS {
         let values = repeated.iter().flat_map(|point| {
             let written = resolved(point.index)["numerics"][key].clone();
@@ -118,6 +107,27 @@ fn configuration(prepared: &Prepared, request: &Request, repeated: &[Repeated]) 
     }
     tree["scan"] = Value::Array(axes);
     tree
+}
+
+/// The axes of a request that are kept, as they stand at points that are repeated so many times each.
+pub(super) fn own_axes(
+    prepared: &Prepared,
+    scan: &Value,
+    points: &[(usize, usize)],
+    is_kept: impl Fn(&str) -> bool,
+) -> Vec<Value> {
+    let kept = prepared.axes.iter().enumerate().filter(|(_, axis)| is_kept(&axis.parameter));
+    kept.map(|(number, axis)| {
+        // Tables go by the names under which results keep them.
+        let listed = scan[number]["values"].as_array().unwrap_or(&axis.values);
+        let values = points.iter().flat_map(|&(index, times)| {
+            let at = position(index, &prepared.shape)[axis.dimension];
+            std::iter::repeat_n(listed[at].clone(), times)
+        });
+        json!({ "parameter": axis.parameter, "name": axis.name, "values": values.collect::<Vec<_>>(),
+                "together": "refine" })
+    })
+    .collect()
 }
 
 /// Whether an axis of the request sets what is varied here.

@@ -69,6 +69,18 @@ impl Contents {
         }
     }
 
+    /// Every real value of the groups that hold no series in time, with its group.
+    pub fn numbers(&self) -> impl Iterator<Item = (&str, &'static Dataset, &ArrayD<f64>)> {
+        let known =
+            |(path, group)| Some((path, group, table::group(path).filter(|known| !known.is_series())?));
+        self.groups().filter_map(known).flat_map(|(path, group, known)| {
+            group.arrays.iter().filter_map(move |(name, values)| match (known.dataset(name)?, values) {
+                (dataset, Values::Real(array)) if dataset.role == Role::Value => Some((path, dataset, array)),
+                _ => None,
+            })
+        })
+    }
+
     /// Puts an array in. Axes go in before what uses them; `NAME_errors` holds the errors of `NAME`.
     ///
     /// # Panics

@@ -100,11 +100,10 @@ impl Status {
 }
 
 /// Words for the numbers of `summary/electron_method`; whole numbers that a gathered file lacks read as -1.
-const ELECTRON_METHODS: [(i64, &str); 3] = [
-    (-1, "none"),
-    (ElectronMethod::ScatteringStates as i64, "scattering_states"),
-    (ElectronMethod::OutgoingAmplitude as i64, "outgoing_amplitude"),
-];
+fn electron_methods() -> Vec<(i64, &'static str)> {
+    let methods = [ElectronMethod::ScatteringStates, ElectronMethod::OutgoingAmplitude];
+    std::iter::once((-1, "none")).chain(methods.map(|method| (method as i64, method.name()))).collect()
+}
 
 /// The group at a path below `/entry`: `harmonics`, or `models/NAME/harmonics`.
 pub fn group(path: &str) -> Option<&'static Group> {
@@ -138,9 +137,14 @@ impl Dataset {
     pub fn flags(&self) -> Option<Vec<(i64, &'static str)>> {
         match self.name {
             "status" => Some(Status::MEANINGS.map(|(status, word)| (status as i64, word)).to_vec()),
-            "electron_method" => Some(ELECTRON_METHODS.to_vec()),
+            "electron_method" => Some(electron_methods()),
             _ => None,
         }
+    }
+
+    /// Its unit for an atom of one dimension as people write it: empty for a pure number.
+    pub fn unit(&self) -> &'static str {
+        self.line.units.filter(|units| *units != "1").unwrap_or_default()
     }
 
     /// Axes and unit of an array with `rank` dimensions; none if it cannot have so many.

@@ -103,7 +103,7 @@ fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
 }
 
 fn time_step(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
-    let largest = numerics.grid.x.largest_momentum();
+    let largest = numerics.grid.largest_momentum();
     let resonance = resonant_step(largest, needs.binding);
     let longest = needs.time_step(numerics.scheme, largest);
     let step = numerics.time_step;

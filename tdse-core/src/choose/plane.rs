@@ -1,18 +1,14 @@
 //! Numerics in two dimensions: the rules of one, with what a plane changes.
 //!
-//! The grid is square and the absorber a ring, for atoms that are round; and a wave in the corner of the momentum grid has
-//! twice the energy of one at the end of an axis, so the splitting's resonance comes at half the step.
+//! The grid is square and the absorber a ring, for atoms that are round; the splitting's resonance comes earlier, because a
+//! wave in the corner of the momentum grid has twice the energy of one at the end of an axis.
 
 use super::rules::{NARROWEST_ABSORBER, Needs};
-use super::{
-    AtomFacts, Choice, Finding, Knob, MOST_POINTS, PinnedAbsorber, Reason, Verdict, Wish, judge, ladder,
-    smoothness,
-};
+use super::{AtomFacts, Choice, MOST_POINTS, PinnedAbsorber, Wish, judge, ladder, smoothness};
 use crate::grid::{Axis, Grid, good_length};
 use crate::potential::Potential;
 use crate::problem::{Absorber, Gauge, Numerics, PlaneLabel, Scheme};
 use crate::stationary::{Level, StationaryError, plane_level};
-use crate::step::resonant_step;
 
 impl AtomFacts {
     /// Facts of a round `potential` whose initial state is made of the states that `labels` name.
@@ -53,64 +49,16 @@ pub fn choose_plane(wish: &Wish) -> Choice {
     // A resolved extent is n Δx; its rounding must not add a point. Half the plane needs a multiple of 16.
     let points = (extent / spacing * (1.0 - 1e-12)).ceil().min(MOST_POINTS.sqrt()) as usize;
     let axis = Axis { points: good_length(points).next_multiple_of(16), spacing };
-    let scheme = pins.scheme.unwrap_or(Scheme::FourthOrder);
+    let (grid, scheme) = (Grid { x: axis, y: Some(axis) }, pins.scheme.unwrap_or(Scheme::FourthOrder));
+    let longest = needs.time_step(scheme, grid.largest_momentum());
     let numerics = Numerics {
-        grid: Grid { x: axis, y: Some(axis) },
-        time_step: pins.time_step.unwrap_or_else(|| ladder::at_most(longest_step(&needs, scheme, axis))),
+        grid,
+        time_step: pins.time_step.unwrap_or_else(|| ladder::at_most(longest)),
         scheme,
         gauge: pins.gauge.unwrap_or(Gauge::Length),
         absorber,
         trailing_time: pins.trailing_time.unwrap_or(0.0),
     };
-    let mut reasons = needs.reasons(pins, &numerics);
-    if pins.time_step.is_none() {
-        let why = format!(
-            "below the splitting's resonance at {:.4} a.u. in the corners of the momentum grid, and what the accuracy asks",
-            resonance(&needs, axis)
-        );
-        reasons.retain(|r| r.knob != Knob::TimeStep);
-        reasons.push(Reason { knob: Knob::TimeStep, why });
-    }
-    let mut findings = judge::judge(wish, &needs, &numerics);
-    findings.retain(|f| f.knob != Some(Knob::TimeStep));
-    findings.extend(time_step(&needs, &numerics));
+    let (reasons, findings) = (needs.reasons(pins, &numerics), judge::judge(wish, &needs, &numerics));
     Choice { numerics, reasons, findings }
-}
-
-/// Largest momentum of the grid, in its corners.
-fn corner(axis: Axis) -> f64 {
-    std::f64::consts::SQRT_2 * axis.largest_momentum()
-}
-
-fn resonance(needs: &Needs, axis: Axis) -> f64 {
-    resonant_step(corner(axis), needs.binding)
-}
-
-fn longest_step(needs: &Needs, scheme: Scheme, axis: Axis) -> f64 {
-    needs.time_step(scheme, corner(axis))
-}
-
-/// Objection to a pinned step.
-fn time_step(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
-    let axis = numerics.grid.x;
-    let (resonance, longest) = (resonance(needs, axis), longest_step(needs, numerics.scheme, axis));
-    let step = numerics.time_step;
-    let (verdict, reason, limit) = if step >= resonance {
-        let reason = format!(
-            "is above the splitting's resonance at {resonance:.4} au in the corners of the momentum grid"
-        );
-        (Verdict::Inadequate, reason, resonance)
-    } else if step > 1.3 * longest {
-        let reason = format!("is longer than the {longest:.4} au that the accuracy asks for");
-        (Verdict::Doubtful, reason, longest)
-    } else {
-        return None;
-    };
-    Some(Finding {
-        knob: Some(Knob::TimeStep),
-        verdict,
-        reason,
-        allowed: format!("below {limit:.4} au"),
-        passes: ladder::at_most(longest),
-    })
 }

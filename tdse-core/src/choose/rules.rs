@@ -16,7 +16,8 @@ use crate::step::resonant_step;
 pub(super) const NARROWEST_ABSORBER: f64 = 20.0;
 /// Amplitude that an absorber may reflect of the slowest electrons that come back, in units of the accuracy. The harmonic
 /// plateau is made by electrons that return, so what is reflected errs it by its own amplitude, however small the plateau
-/// is beside the fundamental; such slow ones are a part of them (measured on the twenty configurations of the tests).
+/// is beside the fundamental; such slow ones are a part of them (measured on those of the tests' twenty configurations that have
+/// an affordable reference).
 const REFLECTED: f64 = 2.0;
 /// Digits by which the bound state's momenta are held beyond the accuracy, in e-folds (measured there too).
 const SPARE: f64 = 3.0;
@@ -192,7 +193,6 @@ impl Needs {
             knob,
             why: if pinned { "pinned by the configuration".into() } else { why },
         };
-        let axis = numerics.grid.x;
         vec![
             reason(
                 Knob::Spacing,
@@ -211,7 +211,7 @@ impl Needs {
                 format!(
                     "below the splitting's resonance at {:.4} a.u. (2 pi / (k_max^2/2 + Ip)), and {:.4} a.u. for the \
                      accuracy asked (error constant measured on the atom's stiffness {:.3} hartree)",
-                    resonant_step(axis.largest_momentum(), self.binding),
+                    resonant_step(numerics.grid.largest_momentum(), self.binding),
                     self.accurate_step(numerics.scheme),
                     self.stiffness
                 ),

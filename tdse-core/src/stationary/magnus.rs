@@ -72,18 +72,8 @@ impl Mesh {
     /// Angle θ, tan θ = ψ/ψ', counted on through every node, of the solution that decays outwards,
     /// with derivatives taken along the direction of integration. Rises with `energy`.
     pub(super) fn angle(&self, energy: f64) -> f64 {
-        let mut y = [1.0, (2.0 * (self.far_value - energy)).max(0.0).sqrt()];
-        let mut nodes = 0.0;
-        for interval in &self.intervals {
-            let next = interval.step(y, energy);
-            if next[0] * y[0] < 0.0 || (next[0] == 0.0 && y[0] != 0.0) {
-                nodes += 1.0;
-            }
-            let size = next[0].abs() + next[1].abs();
-            y = [next[0] / size, next[1] / size];
-        }
-        let base = y[0].atan2(y[1]);
-        std::f64::consts::PI * nodes + if base < 0.0 { base + std::f64::consts::PI } else { base }
+        let start = [1.0, (2.0 * (self.far_value - energy)).max(0.0).sqrt()];
+        counted_angle(start, &self.intervals, |interval, y| interval.step(y, energy))
     }
 
     /// ∫√(2(V - E)) over the outer, forbidden part of the mesh: how many e-folds the solution decays there.
@@ -91,6 +81,25 @@ impl Mesh {
         let forbidden = self.intervals.iter().take_while(|i| i.mean > energy);
         forbidden.map(|i| i.length * (2.0 * (i.mean - energy)).sqrt()).sum()
     }
+}
+
+/// Angle θ, tan θ = value/slope, after all intervals, counted on through every node of the value.
+pub(super) fn counted_angle<I>(
+    start: [f64; 2],
+    intervals: &[I],
+    step: impl Fn(&I, [f64; 2]) -> [f64; 2],
+) -> f64 {
+    let (mut y, mut nodes) = (start, 0.0);
+    for interval in intervals {
+        let next = step(interval, y);
+        if next[0] * y[0] < 0.0 || (next[0] == 0.0 && y[0] != 0.0) {
+            nodes += 1.0;
+        }
+        let size = next[0].abs() + next[1].abs();
+        y = [next[0] / size, next[1] / size];
+    }
+    let base = y[0].atan2(y[1]);
+    std::f64::consts::PI * nodes + if base < 0.0 { base + std::f64::consts::PI } else { base }
 }
 
 /// Positions from `far` to `near`, intervals `fineness` times the local length scale L + |x|/8, where L is the potential's

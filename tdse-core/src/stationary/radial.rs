@@ -4,9 +4,7 @@
 //! With u = √r R this is -u''/2 + ((m² - ¼)/(2r²) + V) u = E u (textbook), whose half-integer centrifugal term is singular
 //! for m = 0; in R and rR' nothing is, and over ln r near the centre the regular solution starts as r^m.
 
-use std::f64::consts::PI;
-
-use super::magnus::{cosh_and_sinc, stretched_nodes};
+use super::magnus::{cosh_and_sinc, counted_angle, stretched_nodes};
 use crate::potential::Potential;
 
 /// √3/6 and √3/12: offset of the Gauss points, and the commutator's factor in the fourth-order Magnus operator.
@@ -135,18 +133,7 @@ impl RadialMesh {
 
     /// Angle θ, tan θ = R over its slope along the integration, counted on through every node; rises with `energy`.
     pub(super) fn angle(&self, energy: f64) -> f64 {
-        let mut y = self.first(energy);
-        let mut nodes = 0.0;
-        for interval in &self.intervals {
-            let next = interval.step(y, energy);
-            if next[0] * y[0] < 0.0 || (next[0] == 0.0 && y[0] != 0.0) {
-                nodes += 1.0;
-            }
-            let size = next[0].abs() + next[1].abs();
-            y = [next[0] / size, next[1] / size];
-        }
-        let base = y[0].atan2(y[1]);
-        PI * nodes + if base < 0.0 { base + PI } else { base }
+        counted_angle(self.first(energy), &self.intervals, |interval, y| interval.step(y, energy))
     }
 
     /// ∫√(2(V + m²/2r² - E)) over the outer, forbidden part of the mesh.

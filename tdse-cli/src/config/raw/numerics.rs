@@ -12,7 +12,8 @@ use super::{Length, Time};
 pub struct Numerics {
     /// Anything worth remembering.
     pub note: Option<String>,
-    /// Error asked for, relative to the largest value of the dipole acceleration.
+    /// Relative error asked for of the dipole acceleration, root mean square over the run, and of harmonic yields up to the cutoff
+    /// and above 1e-8 of the largest; `tdse refine` says what it is of every other number.
     #[serde(default = "accuracy")]
     #[schemars(extend("minimum" = 1e-10, "maximum" = 0.1))]
     pub accuracy: f64,

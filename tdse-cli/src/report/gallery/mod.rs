@@ -81,10 +81,11 @@ fn shared(values: &[f64]) -> Option<f64> {
 /// Names, meanings and units of the real numbers of the summary; the unit of a pure number is empty.
 fn summary_numbers() -> impl Iterator<Item = (&'static str, &'static str, &'static str)> {
     let group = table::group("summary").expect("the layout has a summary");
-    group.datasets.iter().filter(|dataset| dataset.kind == table::Kind::Real).map(|dataset| {
-        let units = dataset.line.units.filter(|units| *units != "1").unwrap_or_default();
-        (dataset.name, dataset.long_name, units)
-    })
+    group
+        .datasets
+        .iter()
+        .filter(|dataset| dataset.kind == table::Kind::Real)
+        .map(|dataset| (dataset.name, dataset.long_name, dataset.unit()))
 }
 
 /// Every different reason of the points, once.
