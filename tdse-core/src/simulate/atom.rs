@@ -28,7 +28,7 @@ impl Atom {
         })
     }
 
-    /// Atom in two dimensions with the states that `labels` name; an [`InitialState`] and a [`Record`] count them in this
+    /// Atom in two dimensions with the states that `labels` name; an [`InitialState`] and a [`Record`](crate::problem::Record) count them in this
     /// order.
     pub fn on_plane(
         potential: &Potential,
