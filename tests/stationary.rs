@@ -51,6 +51,32 @@ fn grid_free_levels_of_the_soft_core_atom() {
     }
 }
 
+/// A grid that is coarse for the kink, or for the points of the table, keeps the level of the grid-free integration: to the
+/// fifth order in the spacing for a kink of V (second order in momenta that fall as k⁻⁴).
+#[test]
+fn atoms_that_are_not_smooth_keep_their_level_on_coarse_grids() {
+    let shift = |potential: &Potential, spacing: f64| {
+        let points = 8 * (10.0 / spacing).ceil() as usize;
+        let on_grid = bound_states(potential, &Grid::line(points, spacing), 1).unwrap().energies[0];
+        on_grid - level(potential, 0).unwrap().energy
+    };
+    let screened = Potential::Screened { charge: 1.0, softening: 0.8, screening_length: 5.0 };
+    let [coarse, fine] = [0.2, 0.1].map(|spacing| shift(&screened, spacing));
+    let order = (coarse / fine).log2();
+    println!("a kink: {coarse:.1e} at 0.2 bohr, {fine:.1e} at 0.1 bohr, order {order:.2}");
+    assert!(coarse < 1.5e-7 && (4.5..6.0).contains(&order), "{coarse} and {fine}");
+
+    let x: Vec<f64> = (-450..=450).map(|i| 0.1 * f64::from(i)).collect();
+    let v = x.iter().map(|x| -x.cosh().powi(-2)).collect();
+    let table = Potential::Sampled(std::sync::Arc::new(tdse_core::cubic::Cubic::new(x, v)));
+    // A multiple of the table's points, where plain samples would take its ripple for a constant force, and none.
+    for spacing in [0.3, 0.25] {
+        let shift = shift(&table, spacing);
+        println!("a table on {spacing} bohr: {shift:.1e}");
+        assert!(shift.abs() < 1e-8, "{spacing}: {shift}");
+    }
+}
+
 /// Landau, Lifshitz, Quantum Mechanics, §23 problem 5: E_n = -(λ-n)²/(2w²).
 #[test]
 fn levels_of_the_poschl_teller_well() {

@@ -86,7 +86,7 @@ impl AtomFacts {
             initial_energy: level(potential, initial.lowest())?.energy,
             highest_energy: highest.energy,
             reach: highest.reach,
-            analytic_length: smoothness::analytic_length(potential),
+            analytic_length: smoothness::along_a_line(potential, &highest),
         })
     }
 

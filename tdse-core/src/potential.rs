@@ -1,5 +1,7 @@
 //! Model atoms: the potential energy of the active electron and its gradient.
 
+mod band;
+
 use std::sync::Arc;
 
 use crate::cubic::Cubic;
@@ -105,6 +107,16 @@ impl Potential {
         }
     }
 
+    /// Whether V(-r) = V(r).
+    pub fn is_even(&self) -> bool {
+        !matches!(self, Self::Sampled(_))
+    }
+
+    /// Whether it is analytic along the line, so that its momenta die away exponentially.
+    pub fn is_smooth(&self) -> bool {
+        !matches!(self, Self::Screened { .. } | Self::Sampled(_))
+    }
+
     /// Jump of dV/dr at r = 0, hartree/bohr: zero for a smooth potential.
     pub fn kink(&self) -> f64 {
         match self {
@@ -136,8 +148,12 @@ pub struct PotentialOnGrid {
 }
 
 impl PotentialOnGrid {
-    /// Samples `potential` on every point of `grid`.
+    /// Samples `potential` on every point of `grid`; along a line, what the grid can hold of it (`band`).
     pub fn sample(potential: &Potential, grid: &Grid) -> Self {
+        if grid.y.is_none() && !potential.is_smooth() {
+            let [values, slope] = band::within_the_band(potential, grid.x);
+            return Self { values, gradient: [slope, Vec::new()] };
+        }
         let mut on_grid = Self { values: Vec::with_capacity(grid.len()), gradient: [Vec::new(), Vec::new()] };
         let plane = grid.dimensions() == 2;
         for y in grid.y_positions() {
@@ -152,21 +168,6 @@ impl PotentialOnGrid {
                 }
             }
         }
-        if !plane {
-            on_grid.round_off_kink(potential.kink(), grid.x.spacing);
-        }
         on_grid
-    }
-
-    /// A kink of V in the middle of the grid, between two points, makes sums over the grid err by h²/24 times the
-    /// jump of the summand's slope (Euler–Maclaurin, midpoint rule on both sides; Abramowitz, Stegun, 23.1.31). Taken
-    /// off at the two points beside it, in V and in its gradient, the error is O(h⁴).
-    fn round_off_kink(&mut self, jump: f64, spacing: f64) {
-        let right = self.values.len() / 2;
-        for j in [right - 1, right] {
-            self.values[j] -= jump * spacing / 48.0;
-        }
-        self.gradient[0][right - 1] += jump / 24.0;
-        self.gradient[0][right] -= jump / 24.0;
     }
 }

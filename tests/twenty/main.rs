@@ -1,8 +1,9 @@
 //! The accuracy asked for is the accuracy reached: twenty configurations, three accuracies.
 //!
 //! The short form takes the cases and accuracies whose reference is quick. The long form is
-//! `cargo test --release -p tdse-core --test twenty -- --ignored --nocapture`, hours long; `TDSE_TWENTY_MOST` leaves out
-//! references of more points times steps than that, and says so.
+//! `cargo test --release -p tdse-core --test twenty -- --ignored --nocapture`, an hour or more;
+//! `TDSE_TWENTY_MOST` leaves out references of more points times steps than that, and says so; `TDSE_TWENTY_KEEP` names a
+//! folder that keeps them for the next call.
 
 mod cases;
 mod measure;

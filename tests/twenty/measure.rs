@@ -60,11 +60,14 @@ pub fn work(case: &Case, numerics: &Numerics) -> f64 {
     numerics.grid.len() as f64 * steps as f64
 }
 
-/// Every choice at least twice finer than `numerics`, and a box that nothing leaves where that costs at most `most`
-/// points times steps; an absorber twice as wide, twice as far out, otherwise.
-pub fn reference(case: &Case, numerics: &Numerics, accuracy: f64, most: f64) -> Numerics {
+/// Every choice at least twice finer than those for any of these accuracies, the strictest last, and a box that nothing
+/// leaves where that costs at most `most` points times steps; an absorber twice as wide, twice as far out, otherwise.
+pub fn reference(case: &Case, accuracies: &[f64], most: f64) -> Numerics {
+    let all: Vec<Numerics> = accuracies.iter().map(|&a| chosen(case, a, &Pins::default())).collect();
+    let (accuracy, numerics) = (accuracies[all.len() - 1], &all[all.len() - 1]);
     let spacing = Some(0.5 * numerics.grid.x.spacing);
-    let (width, extent) = (numerics.absorber.width(), 2.0 * numerics.grid.x.extent());
+    let width = numerics.absorber.width();
+    let extent = 2.0 * all.iter().map(|n| n.grid.x.extent()).fold(0.0, f64::max);
     let finer = |pins: Pins| {
         let free = chosen(case, accuracy, &pins).time_step;
         chosen(case, accuracy, &Pins { time_step: Some(free.min(0.5 * numerics.time_step)), ..pins })
@@ -78,6 +81,38 @@ pub fn reference(case: &Case, numerics: &Numerics, accuracy: f64, most: f64) -> 
     }
     let absorber = Some(PinnedAbsorber::Width(2.0 * width));
     finer(Pins { spacing, absorber, extent: Some(extent), ..Pins::default() })
+}
+
+/// Whether spacing, step, absorber and the space inside it are all at least twice finer.
+pub fn is_twice_finer(finer: &Numerics, than: &Numerics) -> bool {
+    let wider = match (finer.absorber.width(), than.absorber.width()) {
+        (0.0, _) => true,
+        (wide, width) => width > 0.0 && wide >= 2.0 * width,
+    };
+    let at_most_half = |a: f64, b: f64| a <= 0.5 * b * (1.0 + 1e-9);
+    wider
+        && at_most_half(finer.grid.x.spacing, than.grid.x.spacing)
+        && at_most_half(finer.time_step, than.time_step)
+        && at_most_half(than.grid.x.extent(), finer.grid.x.extent())
+}
+
+/// The outcome of a reference, from the folder `TDSE_TWENTY_KEEP` where an earlier call left it.
+pub fn kept(case: &Case, numerics: &Numerics) -> Outcome {
+    let Ok(folder) = std::env::var("TDSE_TWENTY_KEEP") else { return outcome(case, numerics) };
+    let (axis, width) = (numerics.grid.x, numerics.absorber.width());
+    let name = format!("{}-{}-{}-{}-{width}", case.number, axis.points, axis.spacing, numerics.time_step);
+    let path = std::path::Path::new(&folder).join(name);
+    if let Ok(bytes) = std::fs::read(&path) {
+        let mut numbers = bytes.chunks_exact(8).map(|eight| f64::from_le_bytes(eight.try_into().unwrap()));
+        let (seconds, survival) = (numbers.next().unwrap(), numbers.next().unwrap());
+        let schedule = Schedule::new(&case.problem.field, numerics.time_step, numerics.trailing_time);
+        return Outcome { acceleration: numbers.collect(), schedule, survival, seconds };
+    }
+    let found = outcome(case, numerics);
+    let numbers = [found.seconds, found.survival].into_iter().chain(found.acceleration.iter().copied());
+    std::fs::create_dir_all(&folder).unwrap();
+    std::fs::write(path, numbers.flat_map(f64::to_le_bytes).collect::<Vec<u8>>()).unwrap();
+    found
 }
 
 pub fn outcome(case: &Case, numerics: &Numerics) -> Outcome {

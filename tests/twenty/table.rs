@@ -6,12 +6,19 @@ use std::sync::atomic::{AtomicUsize, Ordering};
 use tdse_core::choose::Pins;
 
 use crate::cases::{self, Case};
-use crate::measure::{Errors, chosen, errors, outcome, reference, work};
+use crate::measure::{Errors, chosen, errors, is_twice_finer, kept, outcome, reference, work};
 
-/// Points times steps up to which a reference is a box that nothing leaves, in the short form.
-const CLOSED: f64 = 3e7;
-/// Points times steps of a reference that the short form still computes.
-const QUICK: f64 = 1e8;
+/// What a reference may cost, in points times steps.
+#[derive(Clone, Copy)]
+struct Limits {
+    /// In a box that nothing leaves; an absorber is used where it would cost more.
+    closed: f64,
+    /// At all.
+    most: f64,
+}
+
+/// Those of the short form.
+const QUICK: Limits = Limits { closed: 3e7, most: 1e8 };
 
 /// A line of the table.
 struct Line {
@@ -20,48 +27,58 @@ struct Line {
     errors: Errors,
 }
 
-/// Measures one case at one accuracy; `None` where the reference costs more than `most`.
-fn measure(case: &Case, accuracy: f64, closed: f64, most: f64) -> Option<Line> {
-    let numerics = chosen(case, accuracy, &Pins::default());
-    let finer = reference(case, &numerics, accuracy, closed);
-    let (cost, width) = (work(case, &finer), numerics.absorber.width());
-    let label = format!("{:2} {} {accuracy:.0e}:", case.number, case.name);
-    if cost > most {
-        println!("{label} not measured, a reference of {cost:.1e} points times steps");
-        return None;
+/// Measures one case at every accuracy, the strictest last, against one reference; none where that costs more than `most`.
+fn measure(case: &Case, accuracies: &[f64], limits: Limits) -> Vec<Line> {
+    let finer = reference(case, accuracies, limits.closed);
+    let cost = work(case, &finer);
+    if cost > limits.most {
+        println!(
+            "{:2} {}: not measured, a reference of {cost:.1e} points times steps",
+            case.number, case.name
+        );
+        return Vec::new();
     }
-    let (found, exact) = (outcome(case, &numerics), outcome(case, &finer));
-    let errors = errors(case, &found, &exact);
-    println!(
-        "{label} rms {:.1e}, harmonic {:.1e} (order {}), survival {:.1e} | spacing {}, {} points, step {:.4}, absorber \
-         {width}, {:.1} s | reference {} points, step {:.4}, absorber {}, {:.1} s",
-        errors.rms,
-        errors.harmonic,
-        errors.order,
-        errors.survival,
-        numerics.grid.x.spacing,
-        numerics.grid.len(),
-        numerics.time_step,
-        found.seconds,
-        finer.grid.len(),
-        finer.time_step,
-        finer.absorber.width(),
-        exact.seconds
-    );
-    Some(Line { case: case.number, accuracy, errors })
+    let exact = kept(case, &finer);
+    let lines = accuracies.iter().map(|&accuracy| {
+        let numerics = chosen(case, accuracy, &Pins::default());
+        assert!(is_twice_finer(&finer, &numerics), "case {} at {accuracy:e}", case.number);
+        let found = outcome(case, &numerics);
+        let errors = errors(case, &found, &exact);
+        println!(
+            "{:2} {} {accuracy:.0e}: rms {:.1e}, harmonic {:.1e} (order {}), survival {:.1e} | spacing {}, {} points, step \
+             {:.4}, absorber {}, {:.1} s | reference {} points, step {:.4}, absorber {}, {:.0} s",
+            case.number,
+            case.name,
+            errors.rms,
+            errors.harmonic,
+            errors.order,
+            errors.survival,
+            numerics.grid.x.spacing,
+            numerics.grid.len(),
+            numerics.time_step,
+            numerics.absorber.width(),
+            found.seconds,
+            finer.grid.len(),
+            finer.time_step,
+            finer.absorber.width(),
+            exact.seconds
+        );
+        Line { case: case.number, accuracy, errors }
+    });
+    lines.collect()
 }
 
-fn table(accuracies: &[f64], closed: f64, most: f64) -> Vec<Line> {
-    let all = cases::all();
-    let tasks: Vec<(&Case, f64)> =
-        accuracies.iter().flat_map(|&a| all.iter().map(move |case| (case, a))).collect();
+/// Every case at every accuracy, those with the cheapest references first.
+fn table(accuracies: &[f64], limits: Limits) -> Vec<Line> {
+    let mut all = cases::all();
+    all.sort_by_key(|case| work(case, &reference(case, accuracies, limits.closed)) as u64);
     let (next, lines) = (AtomicUsize::new(0), Mutex::new(Vec::new()));
     std::thread::scope(|scope| {
         for _ in 0..2 {
             scope.spawn(|| {
-                while let Some((case, accuracy)) = tasks.get(next.fetch_add(1, Ordering::Relaxed)) {
-                    let line = measure(case, *accuracy, closed, most);
-                    lines.lock().unwrap().extend(line);
+                while let Some(case) = all.get(next.fetch_add(1, Ordering::Relaxed)) {
+                    let measured = measure(case, accuracies, limits);
+                    lines.lock().unwrap().extend(measured);
                 }
             });
         }
@@ -90,7 +107,7 @@ fn judge(lines: &[Line], accuracies: &[f64]) {
 #[test]
 fn the_quick_ones_reach_the_accuracy() {
     let accuracies = [1e-3, 1e-4];
-    let lines = table(&accuracies, CLOSED, QUICK);
+    let lines = table(&accuracies, QUICK);
     assert!(lines.len() >= 8, "enough to say something: {}", lines.len());
     judge(&lines, &accuracies);
 }
@@ -101,6 +118,6 @@ fn all_twenty_reach_the_accuracy() {
     let most =
         std::env::var("TDSE_TWENTY_MOST").map_or(f64::INFINITY, |most| most.parse().expect("a number"));
     let accuracies = [1e-3, 1e-4, 1e-6];
-    let lines = table(&accuracies, 4e9, most);
+    let lines = table(&accuracies, Limits { closed: 4e9, most });
     judge(&lines, &accuracies);
 }

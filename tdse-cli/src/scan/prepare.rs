@@ -26,7 +26,7 @@ use crate::config::{self, Files, Library, Request, identity};
 use crate::store;
 
 /// Raised whenever result bits change.
-pub const NUMERICS_VERSION: u32 = 2;
+pub const NUMERICS_VERSION: u32 = 3;
 
 /// A request whose every point is ready.
 #[derive(Clone, Debug)]

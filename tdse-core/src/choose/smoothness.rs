@@ -1,6 +1,15 @@
 //! How smooth an atom is: the distance that says how fast its wave functions fall in momentum.
 
+use num_complex::Complex;
+use rustfft::FftPlanner;
+
 use crate::potential::Potential;
+use crate::stationary::Level;
+
+/// Fall of a wave function in momentum by which a table's length is found, in e-folds: well above the errors of the level.
+const FALL: f64 = 16.0;
+/// Most points of the wave function that is looked at.
+const MOST: usize = 1 << 16;
 
 /// Distance ℓ of the potential's nearest singularity from the real axis, bohr: wave functions fall as e^{-kℓ} with it in
 /// momentum. A Gaussian well and a harmonic potential have none; a width serves in its place.
@@ -16,4 +25,25 @@ pub(super) fn analytic_length(potential: &Potential) -> f64 {
         Potential::Harmonic { frequency } => 1.5 / frequency.sqrt(),
         Potential::Sampled(table) => 2.0 * table.spacing(),
     }
+}
+
+/// The same along a line, where a grid takes of a table what it can hold: there the table's length is that of the fall of
+/// its `level` in momentum, beyond the largest one of a classical electron in it.
+pub(super) fn along_a_line(potential: &Potential, level: &Level) -> f64 {
+    let length = analytic_length(potential);
+    let Potential::Sampled(table) = potential else { return length };
+    let (first, last) = table.domain();
+    let (first, last) = ((-level.reach).max(first), level.reach.min(last));
+    let count = (((last - first) / (0.5 * table.spacing())) as usize).clamp(64, MOST);
+    let step = (last - first) / (count - 1) as f64;
+    let positions: Vec<f64> = (0..count).map(|i| first + i as f64 * step).collect();
+    let wave = level.wave_function(potential, &positions);
+    let mut momenta: Vec<Complex<f64>> = wave.into_iter().map(Complex::from).collect();
+    FftPlanner::new().plan_fft_forward(count).process(&mut momenta);
+    let heights: Vec<f64> = momenta[..count / 2].iter().map(|amplitude| amplitude.norm()).collect();
+    let floor = heights.iter().copied().fold(0.0, f64::max) * (-FALL).exp();
+    let highest = heights.iter().rposition(|height| *height > floor).unwrap_or(0);
+    let momentum = std::f64::consts::TAU * highest as f64 / (count as f64 * step);
+    let lowest = table.points().1.iter().copied().fold(0.0, f64::min);
+    length.max(FALL / (momentum - (-2.0 * lowest).sqrt()).max(1.0))
 }

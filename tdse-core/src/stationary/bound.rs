@@ -70,17 +70,32 @@ fn iterate(
     let positions: Vec<f64> = grid.x.positions().collect();
     let half = 0.5 * grid.x.extent();
     for number in 0..count {
-        guesses.push(rough_level(potential, number, half)?.wave_function(potential, &positions));
+        let mut guess = rough_level(potential, number, half)?.wave_function(potential, &positions);
+        if potential.is_even() {
+            keep_parity(&mut guess, number);
+        }
+        guesses.push(guess);
     }
     let hamiltonian = Hamiltonian::new(PotentialOnGrid::sample(potential, grid).values, grid);
     lowest(&hamiltonian, guesses, exact)
+}
+
+/// The even or odd part of state `number` of an even potential: what the two shots leave of the other would be a dipole that
+/// oscillates, to be seen beside a weak field's.
+fn keep_parity(wave: &mut [f64], number: usize) {
+    let sign = if number.is_multiple_of(2) { 1.0 } else { -1.0 };
+    let last = wave.len() - 1;
+    for left in 0..wave.len() / 2 {
+        let half = 0.5 * (wave[left] + sign * wave[last - left]);
+        (wave[left], wave[last - left]) = (half, sign * half);
+    }
 }
 
 /// A real symmetric operator, with an approximate inverse that makes an iteration fast.
 pub(super) trait Operator {
     /// Hψ.
     fn apply(&self, psi: &DVector<f64>) -> DVector<f64>;
-    /// (p²/2 + shift)⁻¹ψ.
+    /// About (H + shift)⁻¹ψ.
     fn precondition(&self, psi: &DVector<f64>, shift: f64) -> DVector<f64>;
     /// Largest energy that occurs, hartree: its rounding limits the residual.
     fn largest(&self) -> f64;
@@ -130,7 +145,12 @@ impl Operator for Hamiltonian {
     }
 
     fn precondition(&self, psi: &DVector<f64>, shift: f64) -> DVector<f64> {
-        self.in_momentum(psi, |t| 1.0 / (t + shift))
+        // Walls of a confining potential are high: (p²/2 + shift)⁻¹ between two factors that lead to V⁻¹ in them.
+        let wall = |v: &f64| (1.0 + v.max(0.0) / shift).sqrt().recip();
+        let damped = |psi: &DVector<f64>| {
+            DVector::from_iterator(psi.len(), psi.iter().zip(&self.potential).map(|(p, v)| p * wall(v)))
+        };
+        damped(&self.in_momentum(&damped(psi), |t| 1.0 / (t + shift)))
     }
 
     fn largest(&self) -> f64 {
