@@ -21,6 +21,7 @@ pub mod cubic;
 pub mod elements;
 pub mod field;
 pub mod grid;
+pub mod model;
 pub mod outgoing;
 pub mod potential;
 pub mod problem;

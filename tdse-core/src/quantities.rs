@@ -82,7 +82,7 @@ pub fn field_shape(field: &Field) -> Shape {
 }
 
 /// Enough samples for 64 per shortest period, and a thousand at least.
-fn samples(field: &Field, length: f64) -> usize {
+pub(crate) fn samples(field: &Field, length: f64) -> usize {
     let fastest = field
         .pulses
         .iter()

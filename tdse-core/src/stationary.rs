@@ -7,7 +7,7 @@ mod magnus;
 mod one_photon;
 mod plane;
 mod radial;
-mod root;
+pub(crate) mod root;
 mod scattering;
 mod tail;
 mod tune;

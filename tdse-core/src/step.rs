@@ -10,6 +10,7 @@ pub use either::{Step, StepWorkspace};
 pub use kernel::instruction_set;
 pub use line::{Line, LineWorkspace};
 pub use plane::{Plane, PlaneWorkspace};
+pub(crate) use ramp::{BLOCK, Ramp};
 
 use crate::problem::Scheme;
 

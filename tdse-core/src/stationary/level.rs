@@ -56,6 +56,13 @@ impl Level {
     }
 }
 
+impl Level {
+    /// R(r) of a level at angular momentum ±`angular` in two dimensions, ∫R² r dr = 1.
+    pub fn radial_function(&self, potential: &Potential, angular: u32) -> RadialFunction {
+        RadialFunction::new(potential, angular, self.energy, self.reach)
+    }
+}
+
 /// Where the two integrations meet: the bottom of the potential, zero for a symmetric one.
 fn meeting_point(potential: &Potential) -> f64 {
     match potential {

@@ -1,14 +1,14 @@
 //! Root of a continuous function between two points of opposite sign.
 
 /// A bracket: position and value at both ends.
-pub(super) type Bracket = [(f64, f64); 2];
+pub(crate) type Bracket = [(f64, f64); 2];
 
 /// Root of `f` in a bracket whose end values differ in sign, to `tolerance` in the position
 /// (Brent, Algorithms for Minimization without Derivatives, 1973, ch. 4).
 ///
 /// # Panics
 /// If the end values have the same sign.
-pub(super) fn brent(mut f: impl FnMut(f64) -> f64, bracket: Bracket, tolerance: f64) -> f64 {
+pub(crate) fn brent(mut f: impl FnMut(f64) -> f64, bracket: Bracket, tolerance: f64) -> f64 {
     let [(mut a, mut fa), (mut b, mut fb)] = bracket;
     assert!(fa * fb <= 0.0, "a root needs a change of sign, got f({a}) = {fa}, f({b}) = {fb}");
     let (mut c, mut fc) = (a, fa);

@@ -1,0 +1,233 @@
+//! Quantum orbits: the complex times of start t' and return t that make the action of the strong-field approximation stationary
+//! (Lewenstein, Salières, L'Huillier, Phys. Rev. A 52, 4747 (1995); Salières et al., Science 292, 902 (2001)).
+//!
+//! (p+A(t'))² = -2 Ip and (p+A(t))² = 2(Ω - Ip), p = -∫A/(t - t'). Along the first condition the photon energy Ω(t) is an analytic
+//! function of t, and dΩ/dt = 0 where the short and the long orbit meet: the complex cutoff (Pisanty, Ciappina, Lewenstein, J. Phys.
+//! Photonics 2, 034013 (2020)). Both orbits are followed from there.
+
+mod tones;
+
+pub use tones::{NotAnalytic, Tones};
+
+use std::f64::consts::PI;
+
+use num_complex::Complex;
+
+use super::strong_field::spreading;
+use super::three_step::Branch;
+
+type C = Complex<f64>;
+
+/// Times of the classical cutoff after the crest, in units of the phase, rad (17.96° and 252.04°).
+const CLASSICAL: [f64; 2] = [0.313_407_54, 4.398_981_47];
+/// Newton steps at the most.
+const ITERATIONS: usize = 60;
+/// Part of the cutoff's distance from the threshold by which energies follow each other.
+const FOLLOW: f64 = 0.02;
+
+/// One orbit at one photon energy.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Orbit {
+    /// Photon energy, hartree.
+    pub energy: f64,
+    /// Time of the start, a.u., its imaginary part the time under the barrier.
+    pub emission: C,
+    /// Time of the return, a.u.
+    pub time: C,
+    /// Short or long.
+    pub branch: Branch,
+    /// Ωt - ∫((p+A)²/2 + Ip): its real part is the dipole phase, rad, minus its imaginary part the logarithm of the weight.
+    pub action: C,
+    /// Contribution to ∫⟨x⟩e^{iΩt}dt without matrix elements: (2π/iτ)^{D/2} 2πi/√det e^{i action}, the sign of the root that of its
+    /// principal value; not uniform near the cutoff, where det → 0.
+    pub amplitude: C,
+    /// Whether it contributes: beyond the cutoff the orbit whose weight grows does not.
+    pub contributes: bool,
+}
+
+/// Orbits in one field.
+#[derive(Clone, Debug)]
+pub struct QuantumOrbits {
+    /// The field.
+    pub tones: Tones,
+    /// Carrier frequency, hartree.
+    pub frequency: f64,
+    /// Ionization energy, hartree.
+    pub ionization_energy: f64,
+    /// Number of dimensions, for the spreading.
+    pub dimensions: u32,
+}
+
+/// Where short and long orbit meet.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ComplexCutoff {
+    /// Complex photon energy, hartree; its real part is the cutoff.
+    pub energy: C,
+    /// Time of the start.
+    pub emission: C,
+    /// Time of the return.
+    pub time: C,
+    /// d²Ω/dt² there.
+    curvature: C,
+}
+
+/// Ω and dΩ/dt at a time of return, with the time of the start that belongs to it.
+struct Curve {
+    emission: C,
+    energy: C,
+    slope: C,
+}
+
+impl QuantumOrbits {
+    /// The cutoff of electrons that start in the half cycle after the field's crest at `crest`, a.u.; `None` where it was not found.
+    pub fn cutoff(&self, crest: f64) -> Option<ComplexCutoff> {
+        let [start, back] = CLASSICAL.map(|phase| C::from(crest + phase / self.frequency));
+        // From the classical limit on: the root moves smoothly with the ionization energy.
+        let strength = self.tones.field(C::from(crest)).re.abs();
+        let ponderomotive = (strength / (2.0 * self.frequency)).powi(2);
+        let first = (1e-3 * ponderomotive).min(self.ionization_energy);
+        let count = ((self.ionization_energy / first).ln() / 0.3).ceil().max(1.0);
+        let mut at = [start, back];
+        at[0] += C::i() * (2.0 * first).sqrt() / strength;
+        for n in 0..=count as usize {
+            let energy = first * (self.ionization_energy / first).powf(n as f64 / count);
+            let here = Self { ionization_energy: energy, ..self.clone() };
+            at = here.stationary(at)?;
+        }
+        let step = 1e-3 / self.frequency;
+        let here = self.curve(at[1], at[0])?;
+        let [before, after] = [-step, step].map(|h| self.curve(at[1] + h, at[0]).map(|c| c.slope));
+        let curvature = (after? - before?) / (2.0 * step);
+        Some(ComplexCutoff { energy: here.energy, emission: at[0], time: at[1], curvature })
+    }
+
+    /// Short and long orbit at photon energies `energies` (above the ionization energy, hartree) for the half cycle after `crest`;
+    /// `None` where an orbit was lost.
+    pub fn orbits(&self, crest: f64, energies: &[f64]) -> [Vec<Option<Orbit>>; 2] {
+        let Some(cutoff) = self.cutoff(crest) else {
+            return [vec![None; energies.len()], vec![None; energies.len()]];
+        };
+        // Of both roots the one that returns earlier below the cutoff is the short orbit.
+        let root = |energy: f64| (2.0 * (energy - cutoff.energy) / cutoff.curvature.norm()).sqrt();
+        let turn = C::cis(-0.5 * cutoff.curvature.arg());
+        let below = (root(cutoff.energy.re - 0.1 * self.ionization_energy.max(cutoff.energy.re)) * turn).re;
+        let short_sign = -below.signum();
+        [(Branch::Short, short_sign), (Branch::Long, -short_sign)].map(|(branch, sign)| {
+            let guess = |energy: f64| cutoff.time + root(energy) * turn * sign;
+            energies.iter().map(|&energy| self.followed(&cutoff, guess, energy, branch)).collect()
+        })
+    }
+
+    /// Follows one orbit from the cutoff to `energy`.
+    fn followed(
+        &self,
+        cutoff: &ComplexCutoff,
+        guess: impl Fn(f64) -> C,
+        energy: f64,
+        branch: Branch,
+    ) -> Option<Orbit> {
+        let centre = cutoff.energy.re;
+        let step = FOLLOW * centre;
+        let count = ((energy - centre).abs() / step).ceil().max(1.0) as usize;
+        let way = |n: usize| centre + (energy - centre) * n as f64 / count as f64;
+        let mut emission = cutoff.emission;
+        let (mut last, mut older) = (guess(way(1)), cutoff.time);
+        for n in 1..=count {
+            let start = if n == 1 { last } else { last + (last - older) * 0.5 };
+            let (time, started) = self.at_energy(way(n), start, emission)?;
+            (older, last, emission) = (last, time, started);
+        }
+        let orbit = self.orbit(energy, emission, last, branch);
+        // Beyond the cutoff weights of the two go apart; that of the orbit that contributes falls below the cutoff's own.
+        let grows = |o: &Orbit| {
+            let at_cutoff = self.action(cutoff.energy.re, cutoff.emission, cutoff.time).im;
+            energy > centre && o.action.im < at_cutoff
+        };
+        Some(Orbit { contributes: !grows(&orbit), ..orbit })
+    }
+
+    /// Newton's method for Ω(t) = `energy`.
+    fn at_energy(&self, energy: f64, mut time: C, mut emission: C) -> Option<(C, C)> {
+        for _ in 0..ITERATIONS {
+            let here = self.curve(time, emission)?;
+            emission = here.emission;
+            let mut change = (here.energy - energy) / here.slope;
+            // No further than a tenth of a radian at once.
+            let limit = 0.1 / self.frequency;
+            if change.norm() > limit {
+                change *= limit / change.norm();
+            }
+            time -= change;
+            if change.norm() < 1e-12 / self.frequency {
+                return Some((time, emission));
+            }
+        }
+        None
+    }
+
+    fn orbit(&self, energy: f64, emission: C, time: C, branch: Branch) -> Orbit {
+        let tau = time - emission;
+        let [v0, v] = self.velocities(emission, time);
+        let (e0, e) = (self.tones.field(emission), self.tones.field(time));
+        let determinant = v * (v / tau + e) * v0 * (v0 / tau - e0) - (v * v0 / tau).powi(2);
+        let action = self.action(energy, emission, time);
+        let spread = spreading(self.dimensions, 1.0, 0.0) * tau.powf(-0.5 * f64::from(self.dimensions));
+        let amplitude = spread * C::new(0.0, 2.0 * PI) / determinant.sqrt() * (C::i() * action).exp();
+        Orbit { energy, emission, time, branch, action, amplitude, contributes: true }
+    }
+
+    fn action(&self, energy: f64, emission: C, time: C) -> C {
+        let tau = time - emission;
+        let p = self.momentum(emission, time);
+        let quiver = self.tones.square_integral(time) - self.tones.square_integral(emission);
+        time * energy - 0.5 * (quiver - p * p * tau) - tau * self.ionization_energy
+    }
+
+    fn momentum(&self, emission: C, time: C) -> C {
+        -(self.tones.integral(time) - self.tones.integral(emission)) / (time - emission)
+    }
+
+    /// p + A at the start and at the return.
+    fn velocities(&self, emission: C, time: C) -> [C; 2] {
+        let p = self.momentum(emission, time);
+        [emission, time].map(|t| p + self.tones.potential(t))
+    }
+
+    /// Solves the first condition for t' at a given t, from a guess.
+    fn curve(&self, time: C, mut emission: C) -> Option<Curve> {
+        for _ in 0..ITERATIONS {
+            let [v0, _] = self.velocities(emission, time);
+            let slope = v0 * (v0 / (time - emission) - self.tones.field(emission));
+            let change = (0.5 * v0 * v0 + self.ionization_energy) / slope;
+            emission -= change;
+            if change.norm() < 1e-13 / self.frequency {
+                let [v0, v] = self.velocities(emission, time);
+                let tau = time - emission;
+                let (e0, e) = (self.tones.field(emission), self.tones.field(time));
+                let moves = v / tau / (v0 / tau - e0); // dt'/dt
+                let slope = v * (v0 / tau * moves - v / tau - e);
+                return Some(Curve { emission, energy: 0.5 * v * v + self.ionization_energy, slope });
+            }
+        }
+        None
+    }
+
+    /// Secant method for dΩ/dt = 0, from guesses of t' and t.
+    fn stationary(&self, [mut emission, time]: [C; 2]) -> Option<[C; 2]> {
+        let mut old = time + 1e-3 / self.frequency;
+        let mut new = time;
+        let first = self.curve(old, emission)?;
+        let mut at_old = first.slope;
+        for _ in 0..ITERATIONS {
+            let here = self.curve(new, emission)?;
+            emission = here.emission;
+            let change = here.slope * (new - old) / (here.slope - at_old);
+            (old, at_old) = (new, here.slope);
+            if change.norm() < 1e-12 / self.frequency || here.slope == C::default() {
+                return Some([emission, new]);
+            }
+            new -= change;
+        }
+        None
+    }
+}
