@@ -9,6 +9,7 @@ use std::time::Instant;
 
 use num_complex::Complex;
 use tdse_core::grid::{Grid, Transform};
+use tdse_core::outgoing::{MapCollector, MapRange};
 use tdse_core::potential::{Potential, PotentialOnGrid};
 use tdse_core::problem::{Absorber, Gauge, Numerics, Scheme};
 use tdse_core::step::{Drive, Plane};
@@ -94,8 +95,9 @@ impl Peer {
         Some(Self { process, ask, answer: BufReader::new(answer) })
     }
 
-    fn step(&mut self) -> f64 {
-        writeln!(self.ask).expect("the peer listens");
+    /// Seconds for a `what`: a step, or its bare transforms.
+    fn takes(&mut self, what: &str) -> f64 {
+        writeln!(self.ask, "{what}").expect("the peer listens");
         let mut line = String::new();
         self.answer.read_line(&mut line).expect("the peer answers");
         line.trim().parse().expect("seconds")
@@ -125,6 +127,33 @@ fn main() {
     for points in [512, 1024] {
         one_size(points);
     }
+    for padding in [1, 2, 4] {
+        one_map(512, padding);
+    }
+}
+
+/// One sample of the momentum map beside one step; it is taken every few steps (`MapCollector::interval`).
+fn one_map(points: usize, padding: usize) {
+    let numerics = numerics(points);
+    let potential = Potential::SoftCoulomb { charge: 1.0, softening: 0.8 };
+    let plane = Plane::new(&PotentialOnGrid::sample(&potential, &numerics.grid), &numerics, None);
+    let largest = 0.8 / padding as f64 * numerics.grid.x.largest_momentum();
+    let range = MapRange { largest, padding };
+    let collector = MapCollector::new(&numerics, range, &[DRIVE; 3], &[[0.0; 2]; 3]);
+    let (mut map, mut scratch, mut work) =
+        (collector.start(), collector.make_scratch(), plane.make_workspace(1));
+    let mut psi = vec![C::new(1.0 / points as f64, 0.0); points * points];
+    let ratios = (0..ROUNDS).map(|_| {
+        let step = seconds(|| (0..STEPS).for_each(|_| _ = plane.step(&mut psi, &DRIVE, &mut work)));
+        let row = |j: usize, out: &mut [C]| out.copy_from_slice(&psi[j * points..(j + 1) * points]);
+        let sample = seconds(|| (0..STEPS).for_each(|_| collector.collect(&mut map, row, 1, &mut scratch)));
+        sample / step
+    });
+    println!(
+        "N = {points}: a sample of a map up to {largest:.2} / bohr, padded {padding} times, takes {:.2} of a step; one every {} steps",
+        median(ratios.collect()),
+        collector.interval()
+    );
 }
 
 fn one_size(points: usize) {
@@ -140,12 +169,13 @@ fn one_size(points: usize) {
     let mut pair = [Bare::new(points), Bare::new(points)];
     let mut planes = [psi.clone(), psi.clone()];
     let (mut one, mut two, mut rows, mut both) = (vec![], vec![], vec![], vec![]);
-    let (mut peer, mut numpy) = (Peer::start(points), vec![]);
+    let (mut peer, mut numpy, mut scipy) = (Peer::start(points), vec![], vec![]);
     if let Some(peer) = &mut peer {
-        peer.step();
+        peer.takes("step");
     }
     for _ in 0..ROUNDS {
-        numpy.extend(peer.as_mut().map(Peer::step));
+        numpy.extend(peer.as_mut().map(|peer| peer.takes("step")));
+        scipy.extend(peer.as_mut().map(|peer| peer.takes("bare")));
         let mut steps = |work: &mut _| {
             seconds(|| (0..STEPS).for_each(|_| _ = plane.step(&mut psi, &DRIVE, work))) / STEPS as f64
         };
@@ -168,6 +198,12 @@ fn one_size(points: usize) {
         gain / bare_gain
     );
     if peer.is_some() {
-        println!("N = {points}: numpy with scipy.fft takes {:.2} times as long", ratio(&numpy, &one));
+        println!(
+            "N = {points}: numpy with scipy.fft takes {:.2} times as long; its bare transforms {:.2} times the bare row pairs, and its \
+             step {:.2} times those",
+            ratio(&numpy, &one),
+            ratio(&scipy, &rows),
+            ratio(&numpy, &scipy)
+        );
     }
 }

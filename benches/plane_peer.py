@@ -1,7 +1,7 @@
 """The same fourth-order step in numpy with scipy.fft on one thread, as one would write it with a two-dimensional transform.
 
-Argument: points per axis. Takes one step for every line it reads and answers with the seconds it took, so that
-benches/plane.rs can take turns with it: TDSE_PEER=1 cargo bench -p tdse-core --bench plane
+Argument: points per axis. For every line it reads it takes one step, or the step's bare transforms where the line says so,
+and answers with the seconds it took, so that benches/plane.rs can take turns with it: TDSE_PEER=1 cargo bench -p tdse-core --bench plane
 """
 
 import os
@@ -46,9 +46,19 @@ def peer(n, spacing=0.4, tau=0.1, softening=0.8):
         psi *= np.exp(1j * tau**3 / 36 * (ex * gx + ey * gy))
         return kick(psi), moments
 
-    for _ in sys.stdin:
+    noise = np.exp(1j * r)
+
+    def bare():
+        for _ in range(2):
+            f = scipy.fft.fft2(noise, workers=1, overwrite_x=True)
+            noise[:] = scipy.fft.ifft2(f, workers=1, overwrite_x=True)
+
+    for line in sys.stdin:
         start = time.perf_counter()
-        psi, _ = step(psi)
+        if line.strip() == "bare":
+            bare()
+        else:
+            psi, _ = step(psi)
         print(time.perf_counter() - start, flush=True)
 
 

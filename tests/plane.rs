@@ -6,13 +6,22 @@ use std::sync::Arc;
 
 use num_complex::Complex;
 use support::{deviation, field, sin2_pulse};
-use tdse_core::choose::{AtomFacts, Knob, PinnedAbsorber, Pins, Wish, choose_plane};
+use tdse_core::absorber::slowest_momentum;
+use tdse_core::choose::{
+    AtomFacts, Choice, Electrons, Energies, Knob, PinnedAbsorber, Pins, Verdict, Wish, choose,
+    choose_for_electrons, fastest_electron, map_range, strictest,
+};
+use tdse_core::cubic::Cubic;
 use tdse_core::field::Pulse;
 use tdse_core::grid::{Grid, Transform};
 use tdse_core::potential::{Potential, PotentialOnGrid};
-use tdse_core::problem::{InitialState, Numerics, Parity, PlaneLabel, Problem, Record, Symmetry};
+use tdse_core::problem::{
+    Absorber, ElectronMethod, InitialState, Numerics, Parity, PlaneLabel, Problem, Record, Symmetry,
+};
 use tdse_core::simulate::{Atom, Plan, advance};
-use tdse_core::stationary::{Softenable, StationaryError, plane_states, radial_level, tune_radial_softening};
+use tdse_core::stationary::{
+    RoundStates, Softenable, StationaryError, plane_states, radial_level, tune_radial_softening,
+};
 use tdse_core::step::resonant_step;
 use tdse_core::units::HARTREE_EV;
 
@@ -185,8 +194,7 @@ fn chosen_numerics_reach_the_accuracy_asked() {
         Problem { potential: potential.clone(), initial: InitialState::Single(0), field: field(pulse) };
     let facts = AtomFacts::on_plane(&potential, &labels).unwrap();
     let pins = Pins { absorber: Some(PinnedAbsorber::Width(20.0)), ..Pins::default() };
-    let choice =
-        choose_plane(&Wish { problem: &problem, facts: &facts, pins: &pins, accuracy, max_photon: None });
+    let choice = choose(&Wish { problem: &problem, facts: &facts, pins: &pins, accuracy, max_photon: None });
     let n = choice.numerics;
     println!("{n:?}");
     assert!(choice.findings.is_empty(), "{:?}", choice.findings);
@@ -211,9 +219,153 @@ fn chosen_numerics_reach_the_accuracy_asked() {
     let error = deviation(&found[..length], &thinned[..length]);
     println!("error {error:.1e} of {accuracy:e}");
     assert!(error < accuracy, "error {error}");
-    // A step beyond the resonance of the corners is objected to.
-    let pins = Pins { time_step: Some(0.9 * resonant_step(n.grid.x.largest_momentum(), 0.5)), ..pins };
-    let choice =
-        choose_plane(&Wish { problem: &problem, facts: &facts, pins: &pins, accuracy, max_photon: None });
+    // A step beyond the resonance is objected to.
+    let pins = Pins { time_step: Some(1.1 * resonant_step(n.grid.x.largest_momentum(), 0.5)), ..pins };
+    let choice = choose(&Wish { problem: &problem, facts: &facts, pins: &pins, accuracy, max_photon: None });
     assert!(choice.findings.iter().any(|f| f.knob == Some(Knob::TimeStep)), "{:?}", choice.findings);
+}
+
+/// A soft core in a near infrared pulse, elliptical; invented.
+fn elliptical_infrared() -> Problem {
+    let pulse = Pulse { ellipticity: 0.5, ..sin2_pulse(0.057, 0.06, 3.0) };
+    Problem { potential: soft(0.8), initial: InitialState::Single(0), field: field(pulse) }
+}
+
+const ENERGIES: Energies = Energies { count: 201, largest: 2.0 };
+
+fn for_electrons(pins: &Pins, method: ElectronMethod) -> Choice {
+    let problem = elliptical_infrared();
+    let facts = AtomFacts::on_plane(&problem.potential, &[angular(0, 0)]).unwrap();
+    let wish = Wish { problem: &problem, facts: &facts, pins, accuracy: 1e-3, max_photon: None };
+    let fastest = fastest_electron(&problem, &facts);
+    choose_for_electrons(&wish, &Electrons { energies: ENERGIES, fastest }, method)
+}
+
+/// What is chosen for a momentum map, pinned, is chosen again and raises no objection.
+#[test]
+fn a_map_has_its_flight_out_and_pinning_what_was_chosen_changes_nothing() {
+    let problem = elliptical_infrared();
+    let chosen = for_electrons(&Pins::default(), ElectronMethod::OutgoingAmplitude);
+    let n = &chosen.numerics;
+    println!("{n:?}");
+    for reason in &chosen.reasons {
+        println!("{:?}: {}", reason.knob, reason.why);
+    }
+    assert!(chosen.findings.is_empty(), "{:?}", chosen.findings);
+    assert!(matches!(n.absorber, Absorber::Round { .. }), "{:?}", n.absorber);
+    assert_eq!(n.grid.y, Some(n.grid.x));
+    // The slowest electrons the absorber takes cleanly reach the edge.
+    let half = 0.5 * n.grid.x.extent();
+    assert!(n.trailing_time * slowest_momentum(n.absorber.width()) >= half, "{}", n.trailing_time);
+    let pins = Pins {
+        spacing: Some(n.grid.x.spacing),
+        extent: Some(n.grid.x.extent()),
+        time_step: Some(n.time_step),
+        scheme: Some(n.scheme),
+        gauge: Some(n.gauge),
+        absorber: Some(n.absorber.into()),
+        trailing_time: Some(n.trailing_time),
+    };
+    let again = for_electrons(&pins, ElectronMethod::OutgoingAmplitude);
+    assert_eq!((&again.numerics, &again.findings), (n, &Vec::new()));
+    assert_eq!(strictest(&[n.clone(), again.numerics]), *n);
+    // The map: up to the last energy, as fine as the energies lie, within one and a half wave functions.
+    let range = map_range(&problem, n, ENERGIES);
+    assert!(range.largest > 2.0 && range.largest < 2.5, "{range:?}");
+    let covered = range.largest * range.padding as f64 / n.grid.x.largest_momentum();
+    assert!(covered + covered * covered <= 1.5, "{range:?}");
+    // What is pinned badly is objected to.
+    let objections = |pins: &Pins, method| -> Vec<(Option<Knob>, Verdict)> {
+        for_electrons(pins, method).findings.iter().map(|f| (f.knob, f.verdict)).collect()
+    };
+    let short = Pins { trailing_time: Some(20.0), ..Pins::default() };
+    let open = Pins { absorber: Some(PinnedAbsorber::None), ..Pins::default() };
+    let collect = ElectronMethod::OutgoingAmplitude;
+    assert_eq!(objections(&short, collect), [(Some(Knob::TrailingTime), Verdict::Doubtful)]);
+    assert_eq!(objections(&open, collect), [(Some(Knob::Absorber), Verdict::Impossible)]);
+    let project = objections(&Pins::default(), ElectronMethod::ScatteringStates);
+    assert!(project.contains(&(Some(Knob::ElectronMethod), Verdict::Impossible)), "{project:?}");
+}
+
+/// Absorbers on all sides and round are told apart, and a table along the radius must reach the corners.
+#[test]
+fn a_plane_keeps_its_absorber_and_its_table() {
+    let radii: Vec<f64> = (0..=900).map(|i| 0.1 * f64::from(i)).collect();
+    let values = radii.iter().map(|r| soft(0.8).value(*r)).collect();
+    let table = Potential::Sampled(Arc::new(Cubic::new(radii, values)));
+    let facts = AtomFacts::on_plane(&table, &[angular(0, 0)]).unwrap();
+    let exact = radial_level(&soft(0.8), 0, 0).unwrap().energy;
+    assert!((facts.initial_energy - exact).abs() < 1e-5, "{} against {exact}", facts.initial_energy);
+    let problem = Problem { potential: table, ..elliptical_infrared() };
+    let at = |extent, absorber| {
+        let pins = Pins { extent: Some(extent), absorber: Some(absorber), ..Pins::default() };
+        choose(&Wish { problem: &problem, facts: &facts, pins: &pins, accuracy: 1e-3, max_photon: None })
+    };
+    for (pinned, expected) in [
+        (PinnedAbsorber::Width(30.0), Absorber::Smooth { width: 30.0 }),
+        (PinnedAbsorber::RoundWidth(30.0), Absorber::Round { width: 30.0 }),
+    ] {
+        assert_eq!(at(100.0, pinned).numerics.absorber, expected);
+    }
+    let impossible = |extent| {
+        let choice = at(extent, PinnedAbsorber::RoundWidth(25.0));
+        choice.findings.iter().any(|f| (f.knob, f.verdict) == (Some(Knob::Extent), Verdict::Impossible))
+    };
+    // 90 bohr along the radius are a box of 127 bohr.
+    assert!(!impossible(100.0) && impossible(150.0));
+}
+
+/// Exact: a superposition of bound states has the populations it was made of, and what is orthogonal to all of them has none.
+#[test]
+fn bound_populations_are_those_of_the_superposition() {
+    let well = Potential::GaussianWell { depth: 1.5, width: 2.0 };
+    let grid = Grid::square(128, 0.4);
+    let labels = [angular(0, 0), angular(0, 1), angular(1, 0), angular(-1, 0), angular(2, 0)];
+    let states = plane_states(&well, &grid, &labels).unwrap();
+    let bound = RoundStates::in_box(&well, &grid).unwrap();
+    let expected_count: usize = (0..6u32)
+        .map(|m| (if m == 0 { 1 } else { 2 }) * (0..9).filter(|n| radial_level(&well, m, *n).is_ok()).count())
+        .sum();
+    assert_eq!(bound.count(), expected_count);
+    let amplitudes = [0.8, 0.3, 0.4, 0.1, 0.2];
+    let mut psi = vec![C::default(); grid.len()];
+    for (state, (n, amplitude)) in states.iter().zip((0..).zip(amplitudes)) {
+        let phase = C::from_polar(amplitude, 0.7 * f64::from(n));
+        psi.iter_mut().enumerate().for_each(|(i, p)| *p += phase * state.at(i));
+    }
+    let populations = |psi: &[C]| {
+        let row = |j: usize, out: &mut [C]| out.copy_from_slice(&psi[j * 128..(j + 1) * 128]);
+        bound.populations(&grid, row)
+    };
+    let expected = [(-1, 0.01), (0, 0.73), (1, 0.16), (2, 0.04)];
+    for (m, found) in populations(&psi) {
+        let expected = expected.iter().find(|e| e.0 == m).map_or(0.0, |e| e.1);
+        println!("m = {m}: {found:.12} of {expected}");
+        assert!((found - expected).abs() < 1e-9, "m = {m}: {found} of {expected}");
+    }
+    // A packet from which the grid's own bound states were taken.
+    let at = |i: usize| [grid.x.position(i % 128), grid.x.position(i / 128)];
+    let packet =
+        |[x, y]: [f64; 2]| C::cis(0.7 * x) * (-0.2 * (x - 1.0).powi(2) - 0.2 * (y + 1.0).powi(2)).exp();
+    let mut free: Vec<C> = (0..grid.len()).map(|i| packet(at(i))).collect();
+    let norm = free.iter().map(C::norm_sqr).sum::<f64>() * grid.cell();
+    let mut all = Vec::new();
+    for m in 0..6i32 {
+        let count = (0..9).filter(|n| radial_level(&well, m.unsigned_abs(), *n).is_ok()).count();
+        for n in 0..count {
+            all.push(angular(m, n));
+            if m > 0 {
+                all.push(angular(-m, n));
+            }
+        }
+    }
+    let mut held = 0.0;
+    for state in plane_states(&well, &grid, &all).unwrap() {
+        let overlap = state.overlap(&free, grid.cell());
+        held += overlap.norm_sqr();
+        free.iter_mut().enumerate().for_each(|(i, p)| *p -= overlap * state.at(i));
+    }
+    let left: f64 = populations(&free).iter().map(|(_, p)| p).sum();
+    println!("of {norm:.4} the bound states held {held:.4}; {left:.1e} left");
+    assert!(held > 0.1 * norm && left < 1e-9 * norm, "{left} of {norm} left in bound states");
 }

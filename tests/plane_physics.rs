@@ -17,7 +17,7 @@ use tdse_core::problem::{
 };
 use tdse_core::simulate::{Atom, Plan, State, advance};
 use tdse_core::spectrum::{Window, helicity_yields};
-use tdse_core::stationary::radial_level;
+use tdse_core::stationary::{RoundStates, radial_level};
 
 type C = Complex<f64>;
 
@@ -114,14 +114,25 @@ fn a_circular_field_makes_no_harmonics() {
     assert!(largest < 1e-5 * plus[0], "largest harmonic {largest} of {}", plus[0]);
 }
 
-fn mapped(potential: &Potential, field: Field, numerics: &Numerics, range: MapRange) -> (MomentumMap, State) {
+/// Map, state, and ionization probability from the bound states.
+fn mapped(
+    potential: &Potential,
+    field: Field,
+    numerics: &Numerics,
+    range: MapRange,
+) -> (MomentumMap, State, f64) {
     let plan = planned(potential, field, numerics).mapping(numerics, range);
     let state = run(&plan);
     let inner = 0.5 * numerics.grid.x.extent() - numerics.absorber.width();
     let amplitudes = &state.outgoing.as_ref().unwrap().map;
     let map = MomentumMap::new(plan.map_collector().unwrap(), amplitudes, potential.far_charge(), inner);
     println!("map every {} steps, {} in it", plan.map_collector().unwrap().interval(), map.probability());
-    (map, state)
+    let bound = RoundStates::in_box(potential, &numerics.grid).unwrap();
+    let held: f64 =
+        plan.round_populations(&state, &bound, &mut plan.make_workspace()).iter().map(|(_, p)| p).sum();
+    println!("{} bound states hold {held:.8}, the map {:.8}", bound.count(), map.probability());
+    let ionized = state.series.norm[0] - held;
+    (map, state, ionized)
 }
 
 /// What a box that nothing leaves holds at `momenta` (a part of its own) on plane waves, without the bound states and
@@ -165,7 +176,7 @@ fn the_momentum_map_is_that_of_a_box_that_nothing_leaves() {
     let light = || field(Pulse { ellipticity: 0.5, angle: 0.3, ..sin2_pulse(1.0, 0.08, 12.0) });
     let mut small = plane(160, 0.6, 0.15, 26.0);
     small.trailing_time = 200.0;
-    let (map, state) = mapped(&SHORT_RANGE, light(), &small, MapRange { largest: 2.0, padding: 4 });
+    let (map, state, ionized) = mapped(&SHORT_RANGE, light(), &small, MapRange { largest: 2.0, padding: 4 });
     let mut large = plane(640, 0.6, 0.15, 0.0);
     // The fastest pass the periodic edge after the pulse, which changes no momentum, and come nowhere near the atom.
     large.trailing_time = 90.0;
@@ -194,6 +205,11 @@ fn the_momentum_map_is_that_of_a_box_that_nothing_leaves() {
     );
     assert!(worst < 0.03, "density off by {worst} at ({kx}, {ky})");
     assert!((yields - 1.0).abs() < 0.005, "yields {yields}");
+    // What the bound states lack is in the map, and is what the absorber took.
+    let absorbed = 1.0 - state.series.norm.last().unwrap();
+    println!("ionized {ionized:.6e}, in the map {:.6e}, absorbed {absorbed:.6e}", map.probability());
+    assert!((map.probability() / ionized - 1.0).abs() < 0.005, "{ionized} by bound states");
+    assert!((absorbed / ionized - 1.0).abs() < 0.005, "{absorbed} absorbed, {ionized} by bound states");
     // Energies and angles come from the same density: E = ω - Ip, and the major axis.
     let energies: Vec<f64> = (1..200).map(|i| 0.01 * f64::from(i)).collect();
     let spectrum = map.energy_spectrum(&energies);
@@ -221,7 +237,7 @@ fn a_circular_pulse_makes_a_ring_of_the_vector_potential() {
     numerics.trailing_time = 250.0;
     let atom = Atom::on_plane(&well, &numerics.grid, &[GROUND]).unwrap();
     let keldysh = (2.0 * -atom.plane[0].energy).sqrt() * frequency / crest;
-    let (map, state) = mapped(&well, light, &numerics, MapRange { largest: 1.8, padding: 1 });
+    let (map, state, _) = mapped(&well, light, &numerics, MapRange { largest: 1.8, padding: 1 });
     let (mut sum, mut mean) = (0.0, 0.0);
     for (i, d) in map.density.iter().enumerate() {
         let columns = map.momenta[0].len();

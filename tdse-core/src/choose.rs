@@ -13,9 +13,9 @@ pub use electrons::{
     Electrons, Energies, choose_for_electrons, electron_bytes, electron_work, fastest_electron, tail_of,
 };
 
-pub use plane::choose_plane;
+pub use plane::map_range;
 
-use crate::grid::{Axis, Grid, good_length};
+use crate::grid::Grid;
 use crate::potential::Potential;
 use crate::problem::{Absorber, Gauge, InitialState, Numerics, Problem, Scheme};
 use crate::stationary::{StationaryError, level};
@@ -51,13 +51,18 @@ pub enum PinnedAbsorber {
     Smooth,
     /// Smooth, of this width per side, bohr.
     Width(f64),
+    /// Round, with the width chosen; two dimensions only.
+    Round,
+    /// Round, of this width, bohr; two dimensions only.
+    RoundWidth(f64),
 }
 
 impl From<Absorber> for PinnedAbsorber {
     fn from(absorber: Absorber) -> Self {
         match absorber {
             Absorber::None => Self::None,
-            Absorber::Smooth { width } | Absorber::Round { width } => Self::Width(width),
+            Absorber::Smooth { width } => Self::Width(width),
+            Absorber::Round { width } => Self::RoundWidth(width),
         }
     }
 }
@@ -65,6 +70,8 @@ impl From<Absorber> for PinnedAbsorber {
 /// What the rules need to know of a model atom; found once per atom, without a grid.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct AtomFacts {
+    /// Number of dimensions, 1 or 2.
+    pub dimensions: usize,
     /// Energy of the initial state, of a superposition its lowest member, hartree.
     pub initial_energy: f64,
     /// Energy of the highest member of the initial state, hartree.
@@ -76,13 +83,14 @@ pub struct AtomFacts {
 }
 
 impl AtomFacts {
-    /// Facts of `potential` with this initial state.
+    /// Facts of `potential` with this initial state, in one dimension; in two see [`AtomFacts::on_plane`].
     ///
     /// # Errors
     /// [`StationaryError::NoSuchState`] where the initial state names one that is not bound.
     pub fn new(potential: &Potential, initial: &InitialState) -> Result<Self, StationaryError> {
         let highest = level(potential, initial.highest())?;
         Ok(Self {
+            dimensions: 1,
             initial_energy: level(potential, initial.lowest())?.energy,
             highest_energy: highest.energy,
             reach: highest.reach,
@@ -183,29 +191,20 @@ pub struct Choice {
 /// More points than any machine holds; a grid stops here, and is refused by whoever knows the machine.
 const MOST_POINTS: f64 = 1e12;
 
-/// Chooses what was not pinned, in well under a millisecond.
+/// Chooses what was not pinned, in well under a millisecond, in as many dimensions as the atom has.
+///
+/// In two dimensions the grid is square and an absorber that is left open a ring, for atoms that are round.
 pub fn choose(wish: &Wish) -> Choice {
     let needs = rules::Needs::of(wish);
     let pins = wish.pins;
     let spacing = pins.spacing.unwrap_or_else(|| ladder::at_most(needs.spacing));
-    let absorber = match pins.absorber {
-        None if needs.absorber_width > 0.0 => {
-            Absorber::Smooth { width: ladder::at_least(needs.absorber_width) }
-        }
-        Some(PinnedAbsorber::Smooth) => {
-            Absorber::Smooth { width: ladder::at_least(needs.absorber_width.max(rules::NARROWEST_ABSORBER)) }
-        }
-        Some(PinnedAbsorber::Width(width)) => Absorber::Smooth { width },
-        None | Some(PinnedAbsorber::None) => Absorber::None,
-    };
+    let absorber = absorber(wish, needs.absorber_width);
     let extent = pins.extent.unwrap_or(2.0 * (needs.inner(absorber) + absorber.width()));
-    // A resolved extent is n Δx; its rounding must not add a point.
-    let points = good_length((extent / spacing * (1.0 - 1e-12)).ceil().min(MOST_POINTS) as usize);
+    let grid = grid(wish.facts.dimensions, extent, spacing);
     let scheme = pins.scheme.unwrap_or(Scheme::FourthOrder);
-    let axis = Axis { points, spacing };
-    let longest = needs.time_step(scheme, axis.largest_momentum());
+    let longest = needs.time_step(scheme, grid.largest_along_axis());
     let numerics = Numerics {
-        grid: Grid { x: axis, y: None },
+        grid,
         time_step: pins.time_step.unwrap_or_else(|| ladder::at_most(longest)),
         scheme,
         gauge: pins.gauge.unwrap_or(Gauge::Length),
@@ -217,22 +216,46 @@ pub fn choose(wish: &Wish) -> Choice {
     Choice { numerics, reasons, findings }
 }
 
-/// The strictest of several choices: serves all of them.
+fn grid(dimensions: usize, extent: f64, spacing: f64) -> Grid {
+    let most = if dimensions == 1 { MOST_POINTS } else { MOST_POINTS.sqrt() };
+    let shape = if dimensions == 1 { Grid::line(1, spacing) } else { Grid::square(1, spacing) };
+    shape.covering([extent.min(most * spacing); 2], [spacing; 2])
+}
+
+/// The absorber, where `needed` is the width that the rules ask for, zero for none.
+fn absorber(wish: &Wish, needed: f64) -> Absorber {
+    let ring = |width| {
+        if wish.facts.dimensions == 1 { Absorber::Smooth { width } } else { Absorber::Round { width } }
+    };
+    let wide = || ladder::at_least(needed.max(rules::NARROWEST_ABSORBER));
+    match wish.pins.absorber {
+        None if needed > 0.0 => ring(ladder::at_least(needed)),
+        None | Some(PinnedAbsorber::None) => Absorber::None,
+        Some(PinnedAbsorber::Smooth) => Absorber::Smooth { width: wide() },
+        Some(PinnedAbsorber::Width(width)) => Absorber::Smooth { width },
+        Some(PinnedAbsorber::Round) => ring(wide()),
+        Some(PinnedAbsorber::RoundWidth(width)) => ring(width),
+    }
+}
+
+/// The strictest of several choices, all in one or all in two dimensions: serves all of them.
 ///
 /// # Panics
 /// If there is none.
 pub fn strictest(all: &[Numerics]) -> Numerics {
     let mut common = all[0].clone();
-    let mut extent = 0.0f64;
+    let (mut extents, mut spacings) = (common.grid.extents(), common.grid.spacings());
     for one in all {
-        common.grid.x.spacing = common.grid.x.spacing.min(one.grid.x.spacing);
-        extent = extent.max(one.grid.x.extent());
+        for d in 0..2 {
+            extents[d] = extents[d].max(one.grid.extents()[d]);
+            spacings[d] = spacings[d].min(one.grid.spacings()[d]);
+        }
         common.time_step = common.time_step.min(one.time_step);
         common.trailing_time = common.trailing_time.max(one.trailing_time);
         if one.absorber.width() > common.absorber.width() {
             common.absorber = one.absorber;
         }
     }
-    common.grid.x.points = good_length((extent / common.grid.x.spacing * (1.0 - 1e-12)).ceil() as usize);
+    common.grid = common.grid.covering(extents, spacings);
     common
 }

@@ -135,6 +135,9 @@ fn rotate([x, y]: [f64; 2], angle: f64) -> [f64; 2] {
         return [x, y];
     }
     let (sin, cos) = angle.sin_cos();
+    // Half of π is no number: along an axis means exactly along it, so that a mirror is seen.
+    let exact = |part: f64| if part.abs() < 1e-15 { 0.0 } else { part };
+    let (sin, cos) = (exact(sin), exact(cos));
     [cos * x - sin * y, sin * x + cos * y]
 }
 

@@ -59,6 +59,14 @@ pub struct Grid {
     pub y: Option<Axis>,
 }
 
+impl Axis {
+    /// Axis of at least `extent` with a good number of points, see [`good_length`].
+    pub fn covering(extent: f64, spacing: f64) -> Self {
+        // An extent that is n Δx must not gain a point by rounding.
+        Self { points: good_length((extent / spacing * (1.0 - 1e-12)).ceil() as usize), spacing }
+    }
+}
+
 impl Grid {
     /// One-dimensional grid.
     pub fn line(points: usize, spacing: f64) -> Self {
@@ -69,6 +77,29 @@ impl Grid {
     pub fn square(points: usize, spacing: f64) -> Self {
         let axis = Axis { points, spacing };
         Self { x: axis, y: Some(axis) }
+    }
+
+    /// Grid of at least these extents and exactly these spacings, bohr, in as many dimensions as it has now.
+    ///
+    /// Axes of a plane have a multiple of 16 points, so that half of it can be computed where a mirror allows that.
+    #[must_use]
+    pub fn covering(&self, extents: [f64; 2], spacings: [f64; 2]) -> Self {
+        let axis = |d: usize| Axis::covering(extents[d], spacings[d]);
+        let even = |axis: Axis| Axis { points: axis.points.next_multiple_of(16), ..axis };
+        match self.y {
+            None => Self { x: axis(0), y: None },
+            Some(_) => Self { x: even(axis(0)), y: Some(even(axis(1))) },
+        }
+    }
+
+    /// Lengths along both axes, bohr; zero along the second in one dimension.
+    pub fn extents(&self) -> [f64; 2] {
+        [self.x.extent(), self.y.map_or(0.0, |y| y.extent())]
+    }
+
+    /// Spacings along both axes, bohr; zero along the second in one dimension.
+    pub fn spacings(&self) -> [f64; 2] {
+        [self.x.spacing, self.y.map_or(0.0, |y| y.spacing)]
     }
 
     /// Number of dimensions, 1 or 2.
@@ -94,6 +125,11 @@ impl Grid {
     /// Largest momentum the grid holds, 1/bohr: in two dimensions that of its corners.
     pub fn largest_momentum(&self) -> f64 {
         self.x.largest_momentum().hypot(self.y.map_or(0.0, |y| y.largest_momentum()))
+    }
+
+    /// Largest momentum the grid holds along an axis, 1/bohr.
+    pub fn largest_along_axis(&self) -> f64 {
+        self.x.largest_momentum().max(self.y.map_or(0.0, |y| y.largest_momentum()))
     }
 
     /// Positions along y; a single zero in one dimension.

@@ -16,7 +16,8 @@ mod plane;
 mod tail;
 
 pub use motion::Motion;
-pub use plane::{MapCollector, MapRange, MapScratch, MomentumMap};
+pub(crate) use plane::map_momenta;
+pub use plane::{MapCollector, MapRange, MapScratch, MomentumMap, map_interval};
 pub use tail::{TailLeft, tail_left};
 
 use std::f64::consts::PI;

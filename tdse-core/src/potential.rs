@@ -47,7 +47,7 @@ pub enum Potential {
         /// Frequency Ω, hartree.
         frequency: f64,
     },
-    /// Values on rising positions, joined by a cubic spline; 1D only.
+    /// Values on rising positions, joined by a cubic spline; in two dimensions on rising distances from the centre, from 0 on.
     Sampled(Arc<Cubic>),
 }
 
@@ -154,8 +154,10 @@ impl PotentialOnGrid {
             let [values, slope] = band::within_the_band(potential, grid.x);
             return Self { values, gradient: [slope, Vec::new()] };
         }
-        let mut on_grid = Self { values: Vec::with_capacity(grid.len()), gradient: [Vec::new(), Vec::new()] };
         let plane = grid.dimensions() == 2;
+        let room = Vec::with_capacity;
+        let gradient = [room(grid.len()), room(if plane { grid.len() } else { 0 })];
+        let mut on_grid = Self { values: room(grid.len()), gradient };
         for y in grid.y_positions() {
             for x in grid.x.positions() {
                 let r = if plane { x.hypot(y) } else { x };

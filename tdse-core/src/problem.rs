@@ -73,6 +73,15 @@ impl Parity {
     }
 }
 
+/// A mirror of the plane that a run keeps, with the parity of its wave function: half the plane is then computed.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Mirror {
+    /// x → -x: the field is along y.
+    X(Parity),
+    /// y → -y: the field is along x.
+    Y(Parity),
+}
+
 /// Symmetry of a bound state in two dimensions.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Symmetry {

@@ -8,7 +8,6 @@ mod models;
 
 pub use models::{ModelAtom, model_atoms};
 
-use crate::grid::{Axis, good_length};
 use crate::problem::{Absorber, Numerics, Scheme};
 use crate::step::resonant_step;
 
@@ -90,8 +89,8 @@ pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<
         finer
     };
     let step = finer(|n| n.time_step *= STEP);
-    let mut spacing = finer(|n| with_spacing(n, SPACING * n.grid.x.spacing));
-    let resonance = resonant_step(spacing.grid.largest_momentum(), binding_energy);
+    let mut spacing = finer(|n| with_spacing(n, SPACING));
+    let resonance = resonant_step(spacing.grid.largest_along_axis(), binding_energy);
     let is_slow = numerics.time_step < BELOW_RESONANCE * resonance;
     if !is_slow {
         spacing.time_step = step.time_step;
@@ -105,7 +104,7 @@ pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<
         Variation { what: beside(Cause::Spacing), numerics: spacing },
         Variation {
             what: Varied::One(Cause::Extent),
-            numerics: finer(|n| with_extent(n, LARGER * n.grid.x.extent())),
+            numerics: finer(|n| with_extents(n, n.grid.extents().map(|extent| LARGER * extent))),
         },
     ];
     if numerics.absorber.width() > 0.0 {
@@ -113,8 +112,8 @@ pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<
     }
     all.push(Variation { what: Varied::One(Cause::TrailingTime), numerics: longer });
     let mut together = step;
-    with_spacing(&mut together, SPACING * numerics.grid.x.spacing);
-    with_extent(&mut together, LARGER * numerics.grid.x.extent());
+    with_spacing(&mut together, SPACING);
+    with_extents(&mut together, numerics.grid.extents().map(|extent| LARGER * extent));
     if numerics.absorber.width() > 0.0 {
         widen(&mut together);
     }
@@ -122,22 +121,20 @@ pub fn variations(numerics: &Numerics, binding_energy: f64, length: f64) -> Vec<
     all
 }
 
-fn with_spacing(numerics: &mut Numerics, spacing: f64) {
-    let extent = numerics.grid.x.extent();
-    numerics.grid.x.spacing = spacing;
-    with_extent(numerics, extent);
+fn with_spacing(numerics: &mut Numerics, factor: f64) {
+    let spacings = numerics.grid.spacings().map(|spacing| factor * spacing);
+    numerics.grid = numerics.grid.covering(numerics.grid.extents(), spacings);
 }
 
-fn with_extent(numerics: &mut Numerics, extent: f64) {
-    let spacing = numerics.grid.x.spacing;
-    let points = good_length((extent / spacing * (1.0 - 1e-12)).ceil() as usize);
-    numerics.grid.x = Axis { points, spacing };
+fn with_extents(numerics: &mut Numerics, extents: [f64; 2]) {
+    numerics.grid = numerics.grid.covering(extents, numerics.grid.spacings());
 }
 
 fn widen(numerics: &mut Numerics) {
-    let width = numerics.absorber.width();
-    numerics.absorber = Absorber::Smooth { width: LARGER * width };
-    with_extent(numerics, numerics.grid.x.extent() + 2.0 * (LARGER - 1.0) * width);
+    let (Absorber::Smooth { width } | Absorber::Round { width }) = &mut numerics.absorber else { return };
+    let more = (LARGER - 1.0) * *width;
+    *width *= LARGER;
+    with_extents(numerics, numerics.grid.extents().map(|extent| extent + 2.0 * more));
 }
 
 /// How far a value's neighbours along its axis share its error: the difference of two runs vanishes by chance here and
@@ -244,7 +241,7 @@ fn smoothed(differences: &[f64], values: &[f64], neighbours: Neighbours) -> Vec<
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::grid::Grid;
+    use crate::grid::{Axis, Grid};
     use crate::problem::Gauge;
 
     fn numerics(time_step: f64, absorber: Absorber) -> Numerics {
@@ -271,13 +268,47 @@ mod tests {
             assert!(runs[5].numerics.trailing_time >= 100.0 && last.trailing_time == 0.0);
             for run in &runs {
                 let n = &run.numerics;
-                assert!(n.time_step < resonant_step(n.grid.largest_momentum(), 0.5), "{run:?}");
+                assert!(n.time_step < resonant_step(n.grid.largest_along_axis(), 0.5), "{run:?}");
                 assert!(n.grid.x.extent() - 2.0 * n.absorber.width() >= 187.2 - 1e-9, "{run:?}");
             }
             let beside = runs.iter().any(|run| matches!(run.what, Varied::OneBesideStep(_)));
             assert_eq!(beside, time_step > 0.1);
         }
         assert_eq!(variations(&numerics(0.1, Absorber::None), 0.5, 400.0).len(), 6);
+    }
+
+    /// On a plane every axis is varied alike and the absorber keeps its shape; the rectangle is there to tell the axes apart.
+    #[test]
+    fn a_plane_is_varied_along_both_axes() {
+        for absorber in [Absorber::Round { width: 30.0 }, Absorber::Smooth { width: 30.0 }] {
+            let axis = |points, spacing| Axis { points, spacing };
+            let grid = Grid { x: axis(256, 0.5), y: Some(axis(192, 0.4)) };
+            let coarse = Numerics { grid, ..numerics(0.1, absorber) };
+            let runs = variations(&coarse, 0.5, 400.0);
+            let [extents, spacings] = [grid.extents(), grid.spacings()];
+            let of = |what: Varied| {
+                runs.iter().find(|run| run.what == what).map(|run| run.numerics.clone()).unwrap()
+            };
+            let (fine, large) = (of(Varied::One(Cause::Spacing)), of(Varied::One(Cause::Extent)));
+            let (wide, last) = (of(Varied::One(Cause::Absorber)), of(Varied::All));
+            for d in 0..2 {
+                assert!((fine.grid.spacings()[d] / spacings[d] - SPACING).abs() < 1e-12);
+                assert!(fine.grid.extents()[d] >= extents[d] * (1.0 - 1e-9));
+                assert!(large.grid.extents()[d] >= LARGER * extents[d] * (1.0 - 1e-9));
+                assert_eq!(large.grid.spacings()[d], spacings[d]);
+                assert!(wide.grid.extents()[d] - 2.0 * wide.absorber.width() >= extents[d] - 60.0 - 1e-9);
+                assert!((last.grid.spacings()[d] / spacings[d] - SPACING).abs() < 1e-12);
+                assert!(last.grid.extents()[d] >= LARGER * extents[d] + 60.0 - 1e-9);
+            }
+            assert_eq!(std::mem::discriminant(&wide.absorber), std::mem::discriminant(&absorber));
+            assert_eq!((wide.absorber.width(), last.absorber.width()), (60.0, 60.0));
+            for run in &runs {
+                let n = &run.numerics;
+                let y = n.grid.y.expect("a plane stays a plane");
+                assert!(n.grid.x.points.is_multiple_of(16) && y.points.is_multiple_of(16), "{run:?}");
+                assert!(n.time_step < resonant_step(n.grid.largest_along_axis(), 0.5), "{run:?}");
+            }
+        }
     }
 
     /// Made-up values whose errors are known: 1 + c τ⁴ + d, with d gone on the finer grid.

@@ -2,11 +2,13 @@
 
 mod atom;
 mod health;
+mod memory;
 mod probe;
 mod schedule;
 
 pub use atom::Atom;
 pub use health::{Failure, Health, health};
+pub use memory::{Held, Load, Memory};
 pub use schedule::Schedule;
 
 use std::sync::Arc;
@@ -19,8 +21,8 @@ use crate::outgoing::{
     Collector, CollectorScratch, Edges, MapCollector, MapRange, MapScratch, Motion, Outgoing,
 };
 use crate::potential::PotentialOnGrid;
-use crate::problem::{Numerics, Parity, Problem, Record};
-use crate::stationary::{BoundStates, ScatteringStates};
+use crate::problem::{Mirror, Numerics, Parity, Problem, Record};
+use crate::stationary::{BoundStates, RoundStates, ScatteringStates};
 use crate::step::{Drive, Moments, Step, StepWorkspace};
 
 use probe::Probe;
@@ -32,6 +34,7 @@ const POPULATION_SAMPLES: usize = 512;
 #[derive(Clone, Debug)]
 pub struct Plan {
     atom: Arc<Atom>,
+    /// ψ(0) of the part of the grid that is kept.
     initial: Vec<Complex<f64>>,
     grid: Grid,
     kernel: Step,
@@ -42,7 +45,7 @@ pub struct Plan {
     populations: usize,
     stride: usize,
     collector: Option<Collector>,
-    probe: Option<Probe>,
+    probe: Probe,
     map: Option<MapCollector>,
 }
 
@@ -105,11 +108,10 @@ impl Plan {
         }
         let vector_potential = schedule.times().into_iter().map(|t| field.vector_potential(t)).collect();
         let stride = schedule.steps.div_ceil(POPULATION_SAMPLES).max(1);
-        let one = numerics.grid.dimensions() == 1;
-        let probe = one.then(|| Probe::new(&atom.potential, numerics, field, &schedule, &drives));
+        let probe = Probe::new(&atom.potential, numerics, field, &schedule, &drives, &kernel);
         Ok(Self {
             atom,
-            initial,
+            initial: kernel.folded(initial),
             grid: numerics.grid,
             kernel,
             schedule,
@@ -165,10 +167,10 @@ impl Plan {
         self.collector.as_ref()
     }
 
-    /// Steps that are compared with two halves of themselves: the one of the strongest field; in runs of a thousand steps also
-    /// the one of the strongest field in the second half, and one at three quarters.
+    /// Steps that are compared with two halves of themselves: the one of the strongest field; in runs of a thousand steps (in
+    /// two dimensions two thousand) also the one of the strongest field in the second half, and one at three quarters.
     pub fn doubled_steps(&self) -> Vec<usize> {
-        self.probe.iter().flat_map(Probe::steps).collect()
+        self.probe.steps().collect()
     }
 
     /// Times of the run.
@@ -206,7 +208,7 @@ impl Plan {
     pub fn make_workspace_on(&self, threads: usize) -> Workspace {
         Workspace {
             kernel: self.kernel.make_workspace(threads),
-            halves: vec![Complex::default(); if self.probe.is_some() { self.grid.len() } else { 0 }],
+            halves: vec![Complex::default(); if self.grid.dimensions() == 1 { self.grid.len() } else { 0 }],
             outgoing: self.collector.as_ref().map(Collector::make_scratch).unwrap_or_default(),
             map: self.map.as_ref().map(MapCollector::make_scratch).unwrap_or_default(),
         }
@@ -229,8 +231,15 @@ impl Plan {
         (self.kernel.overlap(f, psi) * self.grid.cell()).norm_sqr()
     }
 
-    /// The mirror y → -y under which only half the plane is computed, where field and state keep one.
-    pub fn mirror(&self) -> Option<Parity> {
+    /// |⟨ψ(0)|ψ⟩|².
+    fn initial_weight(&self, psi: &[Complex<f64>]) -> f64 {
+        let sum: Complex<f64> = self.initial.iter().zip(psi).map(|(f, p)| f.conj() * p).sum();
+        let parts = self.grid.len() / psi.len();
+        (sum * self.grid.cell() * parts as f64).norm_sqr()
+    }
+
+    /// The mirror under which only half the plane is computed, where field and state keep one.
+    pub fn mirror(&self) -> Option<Mirror> {
         self.kernel.mirror()
     }
 
@@ -240,6 +249,18 @@ impl Plan {
         self.wave_function(state, &mut psi);
         states.states.iter().map(|s| population(s, &psi, self.grid.cell())).collect()
     }
+
+    /// Population of all bound states of every angular momentum, in two dimensions; see [`RoundStates::populations`]. The
+    /// ionization probability is what they lack of the norm at the start, as in one dimension.
+    pub fn round_populations(
+        &self,
+        state: &State,
+        states: &RoundStates,
+        work: &mut Workspace,
+    ) -> Vec<(i32, f64)> {
+        let psi = self.closed(state, &mut work.kernel);
+        states.populations(&self.grid, |j, out| self.kernel.row(psi, j, out))
+    }
 }
 
 /// The mirror that field, potential and state keep, bit by bit; none in one dimension.
@@ -248,22 +269,44 @@ fn mirror_of(
     potential: &PotentialOnGrid,
     grid: &Grid,
     drives: &[Drive],
-) -> Option<Parity> {
-    let along_x = |d: &Drive| {
-        let [a, b] = d.potential_integral;
-        [d.field[1], d.middle_field[1], a[1], b[1]] == [0.0; 4]
-    };
+) -> Option<Mirror> {
     let (nx, ny) = (grid.x.points, grid.y?.points);
-    if !ny.is_multiple_of(16) || !drives.iter().all(along_x) {
+    let vectors = drives.iter().flat_map(|d| {
+        let [a, b] = d.potential_integral;
+        [d.field, d.middle_field, a, b]
+    });
+    let mirror = straight(grid, vectors)?;
+    let image: &dyn Fn(usize) -> usize = match mirror {
+        Mirror::Y(_) => &|i| (ny - 1 - i / nx) * nx + i % nx,
+        Mirror::X(_) => &|i| i / nx * nx + nx - 1 - i % nx,
+    };
+    if (0..psi.len()).any(|i| potential.values[i] != potential.values[image(i)]) {
         return None;
     }
-    let half = ny / 2 * nx;
-    let mirrored = |i: usize| (ny - 1 - i / nx) * nx + i % nx;
-    if (0..half).any(|i| potential.values[i] != potential.values[mirrored(i)]) {
-        return None;
+    let keeps = |parity: &Parity| (0..psi.len()).all(|i| psi[i] == psi[image(i)] * parity.sign());
+    let parity = [Parity::Even, Parity::Odd].into_iter().find(keeps)?;
+    Some(with_parity(mirror, parity))
+}
+
+/// The mirror, of any parity, that all of these vectors keep and that halves the grid.
+fn straight(grid: &Grid, vectors: impl Iterator<Item = [f64; 2]>) -> Option<Mirror> {
+    let mut none = [true; 2];
+    for vector in vectors {
+        none = [none[0] && vector[0] == 0.0, none[1] && vector[1] == 0.0];
     }
-    let keeps = |parity: &Parity| (0..half).all(|i| psi[i] == psi[mirrored(i)] * parity.sign());
-    [Parity::Even, Parity::Odd].into_iter().find(keeps)
+    let halves = |points: usize| points.is_multiple_of(16);
+    match none {
+        [_, true] if halves(grid.y?.points) => Some(Mirror::Y(Parity::Even)),
+        [true, _] if halves(grid.x.points) => Some(Mirror::X(Parity::Even)),
+        _ => None,
+    }
+}
+
+fn with_parity(mirror: Mirror, parity: Parity) -> Mirror {
+    match mirror {
+        Mirror::X(_) => Mirror::X(parity),
+        Mirror::Y(_) => Mirror::Y(parity),
+    }
 }
 
 /// What step `n` of a schedule needs of the field.
@@ -381,7 +424,7 @@ fn record_populations(plan: &Plan, state: &mut State, work: &mut Workspace) {
     }
     let psi = plan.closed(state, &mut work.kernel);
     state.series.population_steps.push(state.step);
-    state.series.initial_population.push(plan.weight(|i| plan.initial[i], psi));
+    state.series.initial_population.push(plan.initial_weight(psi));
     for number in 0..plan.populations {
         let weight = match plan.atom.plane.get(number) {
             Some(bound) => plan.weight(|i| bound.at(i), psi),
@@ -408,24 +451,18 @@ fn collect_outgoing(plan: &Plan, state: &mut State, work: &mut Workspace) {
     }
 }
 
-/// Looks at ψ at the few moments of the plan's probe; one dimension only.
+/// Looks at ψ at the few moments of the plan's probe.
 fn watch(plan: &Plan, state: &mut State, work: &mut Workspace) {
-    let (Some(probe), Step::Line(line)) = (&plan.probe, &plan.kernel) else { return };
-    let field = plan.drives[state.step].field[0];
-    let Some((psi, scratch)) = work.kernel.of_line() else { return };
-    if probe.doubles_at(state.step) {
-        // In the gauge of the run: no vector potential here.
-        psi.copy_from_slice(&state.psi);
-        line.close(psi, field, 0.0, scratch);
-        let (index, next) = (state.series.local_error.len(), plan.drives[state.step + 1].field[0]);
-        let whole = &plan.drives[state.step];
-        let error = probe.doubled(index, (whole, next), psi, &mut work.halves, scratch);
+    let (probe, run, n) = (&plan.probe, (&plan.kernel, &plan.atom.potential), state.step);
+    if probe.doubles_at(n) {
+        let drives = (&plan.drives[n], plan.drives[n + 1].field);
+        let mut scratch = (&mut work.kernel, &mut work.halves[..]);
+        let error = probe.local_error(run, n, &state.psi, drives, &mut scratch);
         state.series.local_error.push(error);
     }
-    if probe.weighs_at(state.step) {
-        psi.copy_from_slice(&state.psi);
-        line.close(psi, field, plan.vector_potential[state.step][0], scratch);
-        state.series.free_energy.push(probe.energy(&plan.atom.potential, psi, scratch));
+    if probe.weighs_at(n) {
+        let at = [plan.drives[n].field, plan.vector_potential[n]];
+        state.series.free_energy.push(probe.energy(run, &state.psi, at, &mut work.kernel));
     }
 }
 

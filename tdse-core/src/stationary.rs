@@ -8,6 +8,7 @@ mod one_photon;
 mod plane;
 mod radial;
 pub(crate) mod root;
+mod round;
 mod scattering;
 mod tail;
 mod tune;
@@ -17,6 +18,7 @@ pub use level::{Level, count_below, level, radial_count_below, radial_level};
 pub use one_photon::{TransitionDipole, transition_dipole};
 pub use plane::{PlaneState, plane_level, plane_states};
 pub use radial::RadialFunction;
+pub use round::RoundStates;
 pub use scattering::{NoContinuum, Scattering, ScatteringStates, Side};
 pub use tune::{Softenable, tune_radial_softening, tune_softening};
 

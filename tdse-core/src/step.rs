@@ -9,7 +9,7 @@ mod ramp;
 pub use either::{Step, StepWorkspace};
 pub use kernel::instruction_set;
 pub use line::{Line, LineWorkspace};
-pub use plane::{Plane, PlaneWorkspace};
+pub use plane::{Doubled, Doubling, Plane, PlaneWorkspace};
 pub(crate) use ramp::{BLOCK, Ramp};
 
 use crate::problem::Scheme;
@@ -25,6 +25,34 @@ pub struct Drive {
     pub potential_integral: [[f64; 2]; 2],
     /// ∫A² dt over both halves, a.u.
     pub square_integral: [f64; 2],
+}
+
+fn exchanged([x, y]: [f64; 2]) -> [f64; 2] {
+    [y, x]
+}
+
+impl Drive {
+    /// With x and y exchanged.
+    pub(crate) fn exchanged(&self) -> Self {
+        let [a, b] = self.potential_integral;
+        Self {
+            field: exchanged(self.field),
+            middle_field: exchanged(self.middle_field),
+            potential_integral: [exchanged(a), exchanged(b)],
+            square_integral: self.square_integral,
+        }
+    }
+
+    /// The same step run backwards, from where the field is `end`.
+    pub(crate) fn reversed(&self, end: [f64; 2]) -> Self {
+        let ([a, b], [a2, b2]) = (self.potential_integral, self.square_integral);
+        Self {
+            field: end,
+            middle_field: self.middle_field,
+            potential_integral: [b, a].map(|integral| integral.map(|i| -i)),
+            square_integral: [-b2, -a2],
+        }
+    }
 }
 
 /// Expectation values at the start of a step, of ψ as it is there.

@@ -20,6 +20,8 @@ const RISE: f64 = 1e-11;
 const LOCAL: f64 = 10.0;
 /// Energy that may be lost or gained without field, in units of the accuracy, hartree per hartree.
 const ENERGY: f64 = 1.0;
+/// Part of what was ionized that may be left in the box when a momentum map is read: yields are good to this.
+const LEFT: f64 = 5e-3;
 /// What every limit has added for rounding.
 const ROUNDING: f64 = 1e-13;
 
@@ -42,6 +44,8 @@ pub enum Kind {
     TrailingTime,
     /// A window whose ends show in the spectrum.
     WindowLeak,
+    /// Electrons still in the box when the run of a momentum map ends: the trailing time is too short.
+    LeftInside,
 }
 
 impl Kind {
@@ -56,6 +60,7 @@ impl Kind {
             Self::FreeEnergy => "free_energy",
             Self::TrailingTime => "trailing_time",
             Self::WindowLeak => "window_leak",
+            Self::LeftInside => "left_inside",
         }
     }
 }
@@ -153,13 +158,27 @@ fn energy_change(watched: &Watched) -> f64 {
     let [before, after] = series.free_energy[..] else { return 0.0 };
     let since = watched.steps.saturating_sub(free_samples(watched)).min(series.norm.len() - 1);
     let taken = (series.norm[since] - series.norm[series.norm.len() - 1]).max(0.0);
-    let largest = 0.5 * watched.numerics.grid.x.largest_momentum().powi(2);
+    let largest = 0.5 * watched.numerics.grid.largest_momentum().powi(2);
     ((after - before).abs() - taken * largest).max(0.0) / before.abs().max(1e-3)
 }
 
 /// Samples of the field-free time, at least.
 fn free_samples(watched: &Watched) -> usize {
     (watched.numerics.trailing_time / watched.numerics.time_step) as usize + 2
+}
+
+/// Whether a run with a momentum map ended before its electrons were out; `held` is the population of all bound states then, see
+/// [`Plan::round_populations`](crate::simulate::Plan::round_populations).
+pub fn left_inside(state: &State, held: f64) -> Option<Doubt> {
+    let norm = &state.series.norm;
+    let (before, after) = (norm.first()?, norm.last()?);
+    let ionized = before - held;
+    if ionized <= ROUNDING {
+        return None;
+    }
+    let what = "of the electrons set free were still in the box at the end and are not in the momentum map; lengthen the \
+                trailing time";
+    doubt(Kind::LeftInside, (after - held) / ionized, LEFT, what)
 }
 
 /// Whether the ends of the run show in its spectrum: the amplitude they make at photon energy `highest` (the cutoff), beside the

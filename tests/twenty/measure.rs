@@ -6,7 +6,7 @@ use std::time::Instant;
 use tdse_core::choose::{AtomFacts, FLOOR, PinnedAbsorber, Pins, Wish, choose};
 use tdse_core::field::Field;
 use tdse_core::potential::PotentialOnGrid;
-use tdse_core::problem::{Numerics, Record};
+use tdse_core::problem::{Absorber, Numerics, Record};
 use tdse_core::simulate::{Atom, Plan, Schedule, run};
 use tdse_core::spectrum::{Window, order_yields};
 use tdse_core::stationary::bound_states;
@@ -96,23 +96,49 @@ pub fn is_twice_finer(finer: &Numerics, than: &Numerics) -> bool {
         && at_most_half(than.grid.x.extent(), finer.grid.x.extent())
 }
 
-/// The outcome of a reference, from the folder `TDSE_TWENTY_KEEP` where an earlier call left it.
-pub fn kept(case: &Case, numerics: &Numerics) -> Outcome {
-    let Ok(folder) = std::env::var("TDSE_TWENTY_KEEP") else { return outcome(case, numerics) };
-    let (axis, width) = (numerics.grid.x, numerics.absorber.width());
-    let name = format!("{}-{}-{}-{}-{width}", case.number, axis.points, axis.spacing, numerics.time_step);
-    let path = std::path::Path::new(&folder).join(name);
-    if let Ok(bytes) = std::fs::read(&path) {
-        let mut numbers = bytes.chunks_exact(8).map(|eight| f64::from_le_bytes(eight.try_into().unwrap()));
-        let (seconds, survival) = (numbers.next().unwrap(), numbers.next().unwrap());
-        let schedule = Schedule::new(&case.problem.field, numerics.time_step, numerics.trailing_time);
-        return Outcome { acceleration: numbers.collect(), schedule, survival, seconds };
-    }
-    let found = outcome(case, numerics);
-    let numbers = [found.seconds, found.survival].into_iter().chain(found.acceleration.iter().copied());
+/// The reference of a case with its outcome: one that an earlier call left in the folder `TDSE_TWENTY_KEEP`, if it is twice
+/// finer than what is chosen now; else a new one, left there.
+pub fn kept(case: &Case, accuracies: &[f64], most: f64) -> (Numerics, Outcome) {
+    let finer = reference(case, accuracies, most);
+    let Ok(folder) = std::env::var("TDSE_TWENTY_KEEP") else {
+        let found = outcome(case, &finer);
+        return (finer, found);
+    };
     std::fs::create_dir_all(&folder).unwrap();
-    std::fs::write(path, numbers.flat_map(f64::to_le_bytes).collect::<Vec<u8>>()).unwrap();
-    found
+    let all: Vec<Numerics> = accuracies.iter().map(|&a| chosen(case, a, &Pins::default())).collect();
+    for entry in std::fs::read_dir(&folder).unwrap() {
+        let path = entry.unwrap().path();
+        let Some(old) = named(case, &finer, path.file_name().unwrap().to_str().unwrap()) else { continue };
+        if all.iter().all(|numerics| is_twice_finer(&old, numerics)) {
+            let found = read(case, &old, &std::fs::read(path).unwrap());
+            return (old, found);
+        }
+    }
+    let found = outcome(case, &finer);
+    let (axis, width) = (finer.grid.x, finer.absorber.width());
+    let name = format!("{}-{}-{}-{}-{width}", case.number, axis.points, axis.spacing, finer.time_step);
+    let numbers = [found.seconds, found.survival].into_iter().chain(found.acceleration.iter().copied());
+    let bytes: Vec<u8> = numbers.flat_map(f64::to_le_bytes).collect();
+    std::fs::write(std::path::Path::new(&folder).join(name), bytes).unwrap();
+    (finer, found)
+}
+
+/// The numerics that a file of this case is named after; the rest as in `like`.
+fn named(case: &Case, like: &Numerics, name: &str) -> Option<Numerics> {
+    let parts: Vec<&str> = name.strip_prefix(&format!("{}-", case.number))?.split('-').collect();
+    let [points, spacing, step, width] = parts[..] else { return None };
+    let width = width.parse().ok()?;
+    let mut numerics = Numerics { time_step: step.parse().ok()?, ..like.clone() };
+    numerics.grid = tdse_core::grid::Grid::line(points.parse().ok()?, spacing.parse().ok()?);
+    numerics.absorber = if width > 0.0 { Absorber::Smooth { width } } else { Absorber::None };
+    Some(numerics)
+}
+
+fn read(case: &Case, numerics: &Numerics, bytes: &[u8]) -> Outcome {
+    let mut numbers = bytes.chunks_exact(8).map(|eight| f64::from_le_bytes(eight.try_into().unwrap()));
+    let (seconds, survival) = (numbers.next().unwrap(), numbers.next().unwrap());
+    let schedule = Schedule::new(&case.problem.field, numerics.time_step, numerics.trailing_time);
+    Outcome { acceleration: numbers.collect(), schedule, survival, seconds }
 }
 
 pub fn outcome(case: &Case, numerics: &Numerics) -> Outcome {

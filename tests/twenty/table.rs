@@ -38,7 +38,7 @@ fn measure(case: &Case, accuracies: &[f64], limits: Limits) -> Vec<Line> {
         );
         return Vec::new();
     }
-    let exact = kept(case, &finer);
+    let (finer, exact) = kept(case, accuracies, limits.closed);
     let lines = accuracies.iter().map(|&accuracy| {
         let numerics = chosen(case, accuracy, &Pins::default());
         assert!(is_twice_finer(&finer, &numerics), "case {} at {accuracy:e}", case.number);

@@ -3,7 +3,8 @@
 
 use std::f64::consts::PI;
 
-use super::rules::Strength;
+use super::plane;
+use super::rules::{Strength, points_of};
 use super::{AtomFacts, Choice, Finding, Knob, PinnedAbsorber, Verdict, Wish, choose, ladder};
 use crate::absorber::slowest_momentum;
 use crate::outgoing::{TailLeft, sampling_interval, tail_left};
@@ -35,7 +36,7 @@ pub struct Energies {
 
 impl Energies {
     /// Momentum of the last one, 1/bohr.
-    fn momentum(self) -> f64 {
+    pub(super) fn momentum(self) -> f64 {
         (2.0 * self.largest).sqrt()
     }
 }
@@ -58,12 +59,20 @@ pub fn fastest_electron(problem: &Problem, facts: &AtomFacts) -> f64 {
 }
 
 /// Numerics for an electron spectrum by this method; what the user did not pin is chosen.
+///
+/// In two dimensions the amplitude is mapped, and what is still in the box at the field's end flies on until it is out: a trailing
+/// time that the other rules do not look at, since what comes back by then makes no harmonics.
 pub fn choose_for_electrons(wish: &Wish, electrons: &Electrons, method: ElectronMethod) -> Choice {
     let strength = Strength::of(&wish.problem.field);
+    let plane = wish.facts.dimensions == 2;
     let mut pins = *wish.pins;
+    if plane {
+        pins.trailing_time = None;
+    }
     if pins.absorber.is_none() {
         pins.absorber = Some(match method {
             ElectronMethod::ScatteringStates => PinnedAbsorber::None,
+            ElectronMethod::OutgoingAmplitude if plane => PinnedAbsorber::Round,
             ElectronMethod::OutgoingAmplitude => PinnedAbsorber::Smooth,
         });
     }
@@ -95,6 +104,9 @@ pub fn choose_for_electrons(wish: &Wish, electrons: &Electrons, method: Electron
         };
         reason.why = own;
     }
+    if plane {
+        plane::fly_out(wish, method, electrons.energies, &mut choice);
+    }
     choice
 }
 
@@ -110,6 +122,9 @@ pub fn electron_work(
     let steps = ((end - start + numerics.trailing_time) / numerics.time_step).max(1.0);
     let (points, momenta) = (numerics.grid.len() as f64, energies.count as f64);
     let propagation = steps * points * points.log2();
+    if numerics.grid.dimensions() == 2 {
+        return [propagation, plane::map_work(problem, numerics, energies) * propagation];
+    }
     let projection = PROJECTION * momenta * points;
     let electrons = match method {
         ElectronMethod::ScatteringStates => projection,
@@ -129,6 +144,9 @@ pub fn electron_bytes(
     energies: Energies,
     method: ElectronMethod,
 ) -> f64 {
+    if numerics.grid.dimensions() == 2 {
+        return plane::map_bytes(problem, numerics, energies);
+    }
     // Intervals of 24 bytes, a few per point, and amplitudes; waves of 16 bytes per point.
     let mesh = 200.0 * numerics.grid.len() as f64 + 100.0 * energies.count as f64;
     match method {
@@ -186,15 +204,15 @@ fn unresolved(energies: Energies, numerics: &Numerics) -> Option<Finding> {
 }
 
 fn extent_reason(numerics: &Numerics, electrons: &Electrons) -> String {
-    let (half, points) = (0.5 * numerics.grid.x.extent(), numerics.grid.x.points);
+    let (half, points) = (0.5 * numerics.grid.x.extent(), points_of(&numerics.grid));
     match numerics.absorber.width() {
         0.0 => format!(
-            "nothing leaves: electrons of {:.2} hartree come up to {half:.0} bohr far in the whole run; {points} points",
+            "nothing leaves: electrons of {:.2} hartree come up to {half:.0} bohr far in the whole run; {points}",
             electrons.fastest
         ),
         width => format!(
             "{:.0} bohr to each side for the bound state, returning electrons, and the ion's pull to become weak, and the \
-             absorber, {width:.0} bohr; {points} points",
+             absorber, {width:.0} bohr; {points}",
             half - width
         ),
     }

@@ -1,5 +1,7 @@
 //! Objections to what the user pinned, and to a field that leaves electrons moving.
 
+use std::f64::consts::SQRT_2;
+
 use super::rules::Needs;
 use super::{Finding, Knob, Verdict, Wish, ladder};
 use crate::absorber::reflection;
@@ -63,19 +65,31 @@ fn extent(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
     None
 }
 
-/// A sampled potential is not known outside its table.
+/// A sampled potential is not known outside its table; in two dimensions it is one of the distance from the centre, from zero
+/// to the corners.
 fn domain(wish: &Wish, numerics: &Numerics) -> Option<Finding> {
     let (first, last) = wish.problem.potential.domain();
     let edge = 0.5 * numerics.grid.x.extent();
-    (edge > last || -edge < first).then(|| Finding {
-        knob: Some(Knob::Extent),
-        verdict: Verdict::Impossible,
-        reason: format!(
+    let finding = |reason, allowed, passes| {
+        Some(Finding { knob: Some(Knob::Extent), verdict: Verdict::Impossible, reason, allowed, passes })
+    };
+    if numerics.grid.dimensions() == 1 {
+        let reason = format!(
             "reaches {edge:.1} bohr to each side; the potential's table ends at {first} and {last} bohr"
-        ),
-        allowed: format!("a box within the table, or a table over at least {edge:.1} bohr to each side"),
-        passes: 2.0 * last.min(-first).max(0.0),
-    })
+        );
+        let allowed = format!("a box within the table, or a table over at least {edge:.1} bohr to each side");
+        let passes = 2.0 * last.min(-first).max(0.0);
+        return if edge > last || -edge < first { finding(reason, allowed, passes) } else { None };
+    }
+    let corner = edge * SQRT_2;
+    if corner <= last && first <= 0.0 {
+        return None;
+    }
+    let reason = format!(
+        "reaches from 0 to {corner:.1} bohr in its corners; the potential's table, along the radius, from {first} to {last} bohr"
+    );
+    let allowed = format!("a box within the table, or a table from 0 to at least {corner:.1} bohr");
+    finding(reason, allowed, if first <= 0.0 { SQRT_2 * last } else { 0.0 })
 }
 
 fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
@@ -90,7 +104,7 @@ fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
                     Verdict::Doubtful
                 },
                 reason: format!(
-                    "reflects {:.1e} of the electrons of {:.3} / bohr, the slowest that come back within the run",
+                    "reflects {:.1e} of the electrons of {:.3} / bohr, twice as fast as the slowest that come back within the run",
                     reflection(needs.slowest, width),
                     needs.slowest
                 ),
@@ -103,7 +117,7 @@ fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
 }
 
 fn time_step(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
-    let largest = numerics.grid.largest_momentum();
+    let largest = numerics.grid.largest_along_axis();
     let resonance = resonant_step(largest, needs.binding);
     let longest = needs.time_step(numerics.scheme, largest);
     let step = numerics.time_step;
@@ -132,7 +146,8 @@ fn time_step(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
 fn left_over_potential(wish: &Wish) -> Option<Finding> {
     let field = &wish.problem.field;
     field.sampled.as_ref()?;
-    let left = field.vector_potential(field.interval().1)[0].abs();
+    let [x, y] = field.vector_potential(field.interval().1);
+    let left = x.hypot(y);
     let largest = super::rules::Strength::of(field).vector_potential;
     (left > LEFT_OVER * largest && left > 0.0).then(|| Finding {
         knob: None,

@@ -4,11 +4,11 @@
 //! χ_k = e^{i(k+A)·r} e^{-i∫(k+A)²/2}/2π (Volkov, Z. Phys. 94, 250 (1935)), A counted from its last value. What is still
 //! inside at the end flies on until it is out: the run is as long as the slowest electrons of interest need.
 
-use std::f64::consts::PI;
+use std::f64::consts::{PI, SQRT_2};
 
 use num_complex::Complex;
 
-use super::{GREGORY, SAMPLING};
+use super::{GREGORY, sampling_interval};
 use crate::absorber;
 use crate::grid::{Axis, Grid, Transform};
 use crate::problem::Numerics;
@@ -23,6 +23,18 @@ pub struct MapRange {
     pub largest: f64,
     /// Momenta per 2π/box length, along either axis: the box is padded with zeros to this many times its length.
     pub padding: usize,
+}
+
+/// Steps between two samples of a map up to `largest` along both axes, 1/bohr: its corners hold twice that energy.
+pub fn map_interval(largest: f64, time_step: f64) -> usize {
+    sampling_interval(largest * SQRT_2, time_step)
+}
+
+/// Momenta of a map along one axis of the grid, rising, 1/bohr.
+pub(crate) fn map_momenta(axis: Axis, range: MapRange) -> Vec<f64> {
+    let padded = Axis { points: axis.points * range.padding, ..axis };
+    let last = ((range.largest / padded.momentum(1)).floor() as i64).min(padded.points as i64 / 2 - 1);
+    (-last..=last).map(|j| j as f64 * padded.momentum(1)).collect()
 }
 
 /// Everything about the map that is known before a run.
@@ -91,19 +103,14 @@ impl MapCollector {
         let grid = numerics.grid;
         let axes = [grid.x, grid.y.expect("a plane has two dimensions")];
         let padded = axes.map(|axis| Axis { points: axis.points * range.padding, ..axis });
-        let momenta = padded.map(|axis| {
-            let last = ((range.largest / axis.momentum(1)).floor() as i64).min(axis.points as i64 / 2 - 1);
-            (-last..=last).map(|j| j as f64 * axis.momentum(1)).collect::<Vec<f64>>()
-        });
+        let momenta = axes.map(|axis| map_momenta(axis, range));
         let tau = numerics.time_step;
         let taken =
             absorber::on_grid(&grid, numerics.absorber).iter().map(|w| -(-tau * w).exp_m1()).collect();
         let origin = [0, 1].map(|d| momenta[d].iter().map(|k| C::cis(-k * axes[d].position(0))).collect());
-        // The energy that varies fastest is that of the corner.
-        let square = 2.0 * range.largest * range.largest;
         Self {
             transforms: padded.map(|axis| Transform::new(axis.points)),
-            interval: (SAMPLING * 2.0 / square / tau).floor().max(1.0) as usize,
+            interval: map_interval(range.largest, tau),
             motion: PlaneMotion::samples(drives, potential, tau),
             grid,
             padded,

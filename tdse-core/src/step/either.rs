@@ -4,7 +4,7 @@ use num_complex::Complex;
 
 use super::{Drive, Line, LineWorkspace, Moments, Plane, PlaneWorkspace};
 use crate::potential::PotentialOnGrid;
-use crate::problem::{Numerics, Parity};
+use crate::problem::{Mirror, Numerics};
 
 type C = Complex<f64>;
 
@@ -39,14 +39,22 @@ impl StepWorkspace {
             KernelWorkspace::Plane(_) => None,
         }
     }
+
+    /// The scratch of a plane.
+    pub(crate) fn of_plane(&mut self) -> Option<&mut PlaneWorkspace> {
+        match &mut self.kernel {
+            KernelWorkspace::Line(_) => None,
+            KernelWorkspace::Plane(work) => Some(work),
+        }
+    }
 }
 
 impl Step {
-    /// The step on the grid of `numerics`; under a `mirror` y → -y on half the plane.
+    /// The step on the grid of `numerics`; under a `mirror` on half the plane.
     ///
     /// # Panics
     /// As [`Line::new`] and [`Plane::new`].
-    pub fn new(potential: &PotentialOnGrid, numerics: &Numerics, mirror: Option<Parity>) -> Self {
+    pub fn new(potential: &PotentialOnGrid, numerics: &Numerics, mirror: Option<Mirror>) -> Self {
         match numerics.grid.y {
             None => Self::Line(Box::new(Line::new(potential, numerics))),
             Some(_) => Self::Plane(Box::new(Plane::new(potential, numerics, mirror))),
@@ -76,7 +84,7 @@ impl Step {
     }
 
     /// The mirror under which half the plane is kept.
-    pub fn mirror(&self) -> Option<Parity> {
+    pub fn mirror(&self) -> Option<Mirror> {
         match self {
             Self::Line(_) => None,
             Self::Plane(plane) => plane.mirror(),
@@ -101,20 +109,22 @@ impl Step {
         }
     }
 
-    /// The open form of ψ on the whole grid, of the part that is kept.
-    pub fn opened(&self, psi: &[C], field: [f64; 2]) -> Vec<C> {
+    /// The part that is kept of ψ on the whole grid.
+    pub fn folded(&self, psi: Vec<C>) -> Vec<C> {
         match self {
-            Self::Line(line) => {
-                let mut kept = psi.to_vec();
-                line.open(&mut kept, field[0]);
-                kept
-            }
-            Self::Plane(plane) => {
-                let mut kept = plane.folded(psi);
-                plane.open(&mut kept, field);
-                kept
-            }
+            Self::Line(_) => psi,
+            Self::Plane(plane) => plane.folded(&psi),
         }
+    }
+
+    /// The open form of the part of ψ that is kept.
+    pub fn opened(&self, kept: &[C], field: [f64; 2]) -> Vec<C> {
+        let mut open = kept.to_vec();
+        match self {
+            Self::Line(line) => line.open(&mut open, field[0]),
+            Self::Plane(plane) => plane.open(&mut open, field),
+        }
+        open
     }
 
     /// ψ in length gauge of the part kept, from the open form at a time of this `field` and vector `potential`.

@@ -5,8 +5,12 @@
 //! the local factor in the middle and the second y factor; along the rows, gathered back, the second x factor.
 
 mod along;
+mod doubled;
+mod kept;
 mod local;
 mod turn;
+
+pub use doubled::{Doubled, Doubling};
 
 use std::ops::Range;
 
@@ -14,6 +18,7 @@ use num_complex::Complex;
 use pulp::Arch;
 
 use self::along::{Along, KineticFactor};
+use self::kept::transposed;
 use self::local::{LineSums, MultiplyLine, SumLine, TiltLine};
 use self::turn::{GROUP, Order, each_group, gather_columns, gather_rows};
 use super::kernel::{LARGEST_TILT, Multiply};
@@ -22,19 +27,22 @@ use super::{Drive, Moments, Splitting};
 use crate::absorber;
 use crate::grid::{Axis, Grid};
 use crate::potential::PotentialOnGrid;
-use crate::problem::{Absorber, Gauge, Numerics, Parity};
+use crate::problem::{Absorber, Gauge, Mirror, Numerics, Parity};
 
 type C = Complex<f64>;
 
 /// Everything about a step in the plane that does not change with time.
 ///
-/// ψ is kept open, as by [`Line`](super::Line). Under a mirror y → -y only the rows y > 0 are kept, shape `[ny/2, nx]`.
+/// ψ is kept open, as by [`Line`](super::Line). Under a mirror y → -y only the rows y > 0 are kept, shape `[ny/2, nx]`; under
+/// x → -x the same with x and y exchanged throughout: inside, rows run along y.
 #[derive(Clone, Debug)]
 pub struct Plane {
     arch: Arch,
+    /// The grid, its axes exchanged under a mirror x → -x.
     grid: Grid,
     y: Axis,
     mirror: Option<Parity>,
+    exchanged: bool,
     gauge: Gauge,
     time_step: f64,
     splitting: Splitting,
@@ -70,6 +78,8 @@ pub struct PlaneWorkspace {
 #[derive(Clone, Debug)]
 struct Lane {
     scratch: Vec<C>,
+    /// A group of lines, for what works in place.
+    lines: Vec<C>,
 }
 
 /// Factors of one step that belong to a whole row or column.
@@ -92,7 +102,25 @@ impl Plane {
     /// # Panics
     /// If `potential` does not belong to the grid of `numerics`, or the grid is not two-dimensional, or a length is no
     /// multiple of 8 (16 along y under a mirror).
-    pub fn new(potential: &PotentialOnGrid, numerics: &Numerics, mirror: Option<Parity>) -> Self {
+    pub fn new(potential: &PotentialOnGrid, numerics: &Numerics, mirror: Option<Mirror>) -> Self {
+        match mirror {
+            None => Self::upright(potential, numerics, None),
+            Some(Mirror::Y(parity)) => Self::upright(potential, numerics, Some(parity)),
+            Some(Mirror::X(parity)) => {
+                let x = numerics.grid.x;
+                let grid = Grid { x: numerics.grid.y.expect("a plane has two dimensions"), y: Some(x) };
+                let turned = |v: &[f64]| transposed(v, x.points);
+                let [gx, gy] = &potential.gradient;
+                let potential =
+                    PotentialOnGrid { values: turned(&potential.values), gradient: [turned(gy), turned(gx)] };
+                let plane = Self::upright(&potential, &Numerics { grid, ..numerics.clone() }, Some(parity));
+                Self { exchanged: true, ..plane }
+            }
+        }
+    }
+
+    /// Without a mirror, or under y → -y.
+    fn upright(potential: &PotentialOnGrid, numerics: &Numerics, mirror: Option<Parity>) -> Self {
         let (grid, tau) = (numerics.grid, numerics.time_step);
         let y = grid.y.expect("a plane has two dimensions");
         assert_eq!(potential.values.len(), grid.len(), "potential and grid have the same length");
@@ -139,6 +167,7 @@ impl Plane {
             grid,
             y,
             mirror,
+            exchanged: false,
             splitting,
             along,
             order,
@@ -149,8 +178,8 @@ impl Plane {
     }
 
     /// The mirror under which half the plane is kept.
-    pub fn mirror(&self) -> Option<Parity> {
-        self.mirror
+    pub fn mirror(&self) -> Option<Mirror> {
+        self.mirror.map(if self.exchanged { Mirror::X } else { Mirror::Y })
     }
 
     /// Number of points kept.
@@ -178,9 +207,13 @@ impl Plane {
         let longest = self.along.each_ref().map(|a| a.make_scratch().len()).into_iter().max().unwrap_or(0);
         let one = C::new(1.0, 0.0);
         let lengths = [nx, rows];
+        let lane = Lane {
+            scratch: vec![C::default(); longest.max(nx).max(rows)],
+            lines: vec![C::default(); GROUP * rows],
+        };
         PlaneWorkspace {
             turned: vec![C::default(); self.len()],
-            lanes: vec![Lane { scratch: vec![C::default(); longest.max(nx).max(rows)] }; threads],
+            lanes: vec![lane; threads],
             rows: vec![LineSums::default(); rows],
             columns: vec![LineSums::default(); nx],
             tables: Tables {
@@ -196,10 +229,10 @@ impl Plane {
     /// Advances the open `psi` by one step; returns the moments at its start.
     ///
     /// # Panics
-    /// If `psi` does not have the kept length, or the field has a y component under a mirror.
+    /// If `psi` does not have the kept length, or the field has a component across the mirror.
     pub fn step(&self, psi: &mut [C], drive: &Drive, work: &mut PlaneWorkspace) -> Moments {
         assert_eq!(psi.len(), self.len(), "wave function and plane have the same length");
-        self.prepare(drive, &mut work.tables);
+        self.prepare(&self.inside_drive(drive), &mut work.tables);
         let PlaneWorkspace { turned, lanes, rows, columns, tables } = work;
         let (nx, along, tables) = (self.grid.x.points, self.order.place.len(), &*tables);
         each_group(psi, rows, lanes, 0, &|first, lines, sums, lane: &mut Lane| {
@@ -276,7 +309,7 @@ impl Plane {
     /// Sets the factors that this step's field puts on whole rows and columns.
     fn prepare(&self, drive: &Drive, tables: &mut Tables) {
         let along_y = drive.field[1] != 0.0 || drive.middle_field[1] != 0.0;
-        assert!(self.mirror.is_none() || !along_y, "a field along y breaks the mirror");
+        assert!(self.mirror.is_none() || !along_y, "a field across the mirror breaks it");
         match self.gauge {
             Gauge::Length => {
                 let tau = self.time_step;
@@ -312,7 +345,7 @@ impl Plane {
         }
     }
 
-    /// e^{-i k·∫A - i∫A²/2} on the planned factors; the square goes with x.
+    /// The kinetic factors of a step in velocity gauge.
     fn shift_momenta(&self, drive: &Drive, kinetic: &mut [[KineticFactor; 2]; 2]) {
         let strang = self.splitting.middle.is_none();
         for (half, factors) in kinetic.iter_mut().enumerate() {
@@ -321,20 +354,34 @@ impl Plane {
                 let [a, b] = drive.potential_integral;
                 (first, second) = ([a[0] + b[0], a[1] + b[1]], drive.square_integral.iter().sum());
             }
-            for (d, factor) in factors.iter_mut().enumerate() {
-                let extra = if d == 0 { -0.5 * second } else { 0.0 };
-                if let (KineticFactor::Whole(factor), KineticFactor::Whole(planned)) =
-                    (factor, &self.kinetic[d])
-                {
+            self.shift(&self.kinetic, first, second, factors);
+        }
+    }
+
+    /// e^{-i k·∫A - i∫A²/2} on `planned` factors; the square goes with x.
+    fn shift(
+        &self,
+        planned: &[KineticFactor; 2],
+        first: [f64; 2],
+        second: f64,
+        factors: &mut [KineticFactor; 2],
+    ) {
+        for (d, factor) in factors.iter_mut().enumerate() {
+            let extra = if d == 0 { -0.5 * second } else { 0.0 };
+            match (factor, &planned[d]) {
+                (KineticFactor::Whole(factor), KineticFactor::Whole(planned)) => {
                     let axis = [self.grid.x, self.y][d];
                     let (low, high) = factor.split_at_mut(axis.points / 2);
                     let rate = -first[d] * axis.momentum(1);
                     powers(C::cis(extra), rate, low);
                     powers(C::cis(extra - first[d] * axis.momentum(axis.points / 2)), rate, high);
                     factor.iter_mut().zip(planned).for_each(|(f, p)| *f *= p);
-                } else {
-                    assert!(first[d] == 0.0, "a field along y breaks the mirror");
                 }
+                (KineticFactor::Mirrored(factor), KineticFactor::Mirrored(planned)) => {
+                    assert!(first[d] == 0.0, "a field across the mirror breaks it");
+                    factor.copy_from_slice(planned);
+                }
+                _ => unreachable!("factors made by the same line"),
             }
         }
     }
@@ -364,7 +411,7 @@ impl Plane {
     /// Turns ψ at a time when the field is `field` into the open form.
     pub fn open(&self, psi: &mut [C], field: [f64; 2]) {
         let mut ramps = [vec![C::default(); self.grid.x.points], vec![C::default(); self.order.place.len()]];
-        self.ramps(&mut ramps, -1.0, field.map(|e| self.local_rate(e)), 0.0);
+        self.ramps(&mut ramps, -1.0, self.inside(field).map(|e| self.local_rate(e)), 0.0);
         self.by_rows(psi, &ramps, |factor| factor.conj());
     }
 
@@ -380,9 +427,9 @@ impl Plane {
         work: &'w mut PlaneWorkspace,
     ) -> &'w [C] {
         let rates = match self.gauge {
-            Gauge::Length => field.map(|e| self.local_rate(e)),
+            Gauge::Length => self.inside(field).map(|e| self.local_rate(e)),
             // ψ_length = e^{iA·r} ψ_velocity.
-            Gauge::Velocity => potential,
+            Gauge::Velocity => self.inside(potential),
         };
         let PlaneWorkspace { turned, tables, .. } = work;
         turned.copy_from_slice(psi);
@@ -405,51 +452,6 @@ impl Plane {
         }
     }
 
-    /// ∫ f* ψ without the volume element, of f on the whole grid and the part of ψ kept.
-    pub fn overlap(&self, f: impl Fn(usize) -> C, kept: &[C]) -> C {
-        let start = self.grid.len() - self.len();
-        let direct: C = kept.iter().enumerate().map(|(i, p)| f(start + i).conj() * p).sum();
-        let Some(parity) = self.mirror else { return direct };
-        let nx = self.grid.x.points;
-        let mirrored = |i: usize| start - nx - i / nx * nx + i % nx;
-        let other: C = kept.iter().enumerate().map(|(i, p)| f(mirrored(i)).conj() * p).sum();
-        direct + other * parity.sign()
-    }
-
-    /// The part of a wave function on the whole grid that is kept.
-    ///
-    /// # Panics
-    /// If `psi` does not have the grid's length.
-    pub fn folded(&self, psi: &[C]) -> Vec<C> {
-        assert_eq!(psi.len(), self.grid.len(), "wave function and grid have the same length");
-        psi[self.grid.len() - self.len()..].to_vec()
-    }
-
-    /// The wave function on the whole grid, from the part kept.
-    ///
-    /// # Panics
-    /// If the lengths are not those of the part kept and of the grid.
-    pub fn unfold(&self, kept: &[C], out: &mut [C]) {
-        assert!(kept.len() == self.len() && out.len() == self.grid.len(), "part and whole");
-        for (j, row) in out.chunks_mut(self.grid.x.points).enumerate() {
-            self.row(kept, j, row);
-        }
-    }
-
-    /// Row `j` of the whole grid, from the part kept.
-    ///
-    /// # Panics
-    /// If `j` is beyond the grid or `out` is no row.
-    pub fn row(&self, kept: &[C], j: usize, out: &mut [C]) {
-        let nx = self.grid.x.points;
-        let start = self.y.points - self.order.place.len();
-        let (from, sign) = match self.mirror {
-            Some(parity) if j < start => (start - 1 - j, parity.sign()),
-            _ => (j - start, 1.0),
-        };
-        out.iter_mut().zip(&kept[from * nx..(from + 1) * nx]).for_each(|(o, k)| *o = k * sign);
-    }
-
     fn moments(&self, rows: &[LineSums], columns: &[LineSums]) -> Moments {
         let total = |lines: &[LineSums], part: &dyn Fn(&LineSums) -> f64| lines.iter().map(part).sum::<f64>();
         let scale = self.grid.cell() * if self.mirror.is_some() { 2.0 } else { 1.0 };
@@ -457,7 +459,7 @@ impl Plane {
         let along_y = if self.mirror.is_some() { 0.0 } else { total(rows, &|s| s.gradient[1]) * scale };
         Moments {
             norm: norm * scale,
-            gradient: [total(rows, &|s| s.gradient[0]) * scale, along_y],
+            gradient: self.inside([total(rows, &|s| s.gradient[0]) * scale, along_y]),
             edge: (norm - total(rows, &|s| s.inner)).max(0.0) * scale,
             top: total(rows, &|s| s.top).max(total(columns, &|s| s.top)) * scale,
         }

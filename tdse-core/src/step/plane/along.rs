@@ -69,10 +69,7 @@ impl Along {
             Self::Whole(_) => KineticFactor::Whole(axis.momenta().map(|k| kappa(k, axis.points)).collect()),
             Self::Mirrored(_, parity) => {
                 let half = axis.points / 2;
-                let momentum = |k: usize| {
-                    let k = if *parity == Parity::Odd { half - k } else { k };
-                    2.0 * PI * k as f64 / axis.extent()
-                };
+                let momentum = |k: usize| mirrored_momentum(axis, *parity, k);
                 // With X_k the cosine transform and ω = e^{-iπk/2M}: X_k = (ω V_k + ω* V_{M-k})/2, V_k = ω*(X_k - iX_{M-k}).
                 let pair = |k: usize| {
                     let (one, other) = (kappa(momentum(k), half), kappa(momentum(half - k), half));
@@ -100,17 +97,30 @@ impl Along {
                 line[n / 2 - n / 8..n / 2 + n / 8].iter().map(C::norm_sqr).sum::<f64>() / n as f64
             }
             Self::Mirrored(_, parity) => {
-                // |X_k|² = |ω V_k + ω* V_{M-k}|²/4, of which 2/M is the norm, and 1/M at k = 0.
-                let square = |k: usize| {
-                    let turn = C::cis(-PI * k as f64 / (2 * n) as f64);
-                    (turn * line[k] + turn.conj() * line[n - k]).norm_sqr()
-                };
+                // 2/M of |X_k|² is the norm, and 1/M at k = 0.
+                let square = |k: usize| cosine(line, k);
                 // Of the momenta at three quarters the whole line counts the positive one.
                 let (range, limit, last) = match parity {
                     Parity::Even => (n - n / 4 + 1..n, n - n / 4, 0.0),
                     Parity::Odd => (1..n / 4, n / 4, line[0].norm_sqr()),
                 };
-                (range.map(square).sum::<f64>() + 0.5 * square(limit) + 2.0 * last) * 0.5 / n as f64
+                (2.0 * range.map(square).sum::<f64>() + square(limit) + last) / n as f64
+            }
+        }
+    }
+
+    /// Σ ½k²|ψ_k|² over the points kept of `axis`, of a transformed line.
+    pub(super) fn energy(&self, line: &[C], axis: Axis) -> f64 {
+        let n = line.len();
+        let square = |k: f64| 0.5 * k * k;
+        match self {
+            Self::Whole(_) => {
+                line.iter().zip(axis.momenta()).map(|(p, k)| square(k) * p.norm_sqr()).sum::<f64>() / n as f64
+            }
+            Self::Mirrored(_, parity) => {
+                let momentum = |k: usize| mirrored_momentum(axis, *parity, k);
+                let waves = (1..n).map(|k| square(momentum(k)) * 2.0 * cosine(line, k));
+                (square(momentum(0)) * line[0].norm_sqr() + waves.sum::<f64>()) / n as f64
             }
         }
     }
@@ -129,6 +139,18 @@ impl Along {
             _ => unreachable!("a factor made by the same line"),
         }
     }
+}
+
+/// Momentum of cosine `k` of the half of `axis`, 1/bohr; sines count from above.
+fn mirrored_momentum(axis: Axis, parity: Parity, k: usize) -> f64 {
+    let k = if parity == Parity::Odd { axis.points / 2 - k } else { k };
+    2.0 * PI * k as f64 / axis.extent()
+}
+
+/// |X_k|² = |ω V_k + ω* V_{M-k}|²/4 with ω = e^{-iπk/2M}, for k > 0.
+fn cosine(line: &[C], k: usize) -> f64 {
+    let turn = C::cis(-PI * k as f64 / (2 * line.len()) as f64);
+    0.25 * (turn * line[k] + turn.conj() * line[line.len() - k]).norm_sqr()
 }
 
 /// V_k ← s_k V_k + d_k V_{M-k}.

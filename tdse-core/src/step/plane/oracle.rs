@@ -11,7 +11,7 @@ const SPACING: [f64; 2] = [0.4, 0.5];
 fn numerics(scheme: Scheme, gauge: Gauge, absorber: Absorber) -> Numerics {
     let axis = |points, spacing| Axis { points, spacing };
     Numerics {
-        grid: Grid { x: axis(72, SPACING[0]), y: Some(axis(48, SPACING[1])) },
+        grid: Grid { x: axis(80, SPACING[0]), y: Some(axis(48, SPACING[1])) },
         time_step: 0.1,
         scheme,
         gauge,
@@ -36,28 +36,63 @@ const ALONG_X: Drive = Drive {
     square_integral: [0.002, 0.001],
 };
 
+const ALONG_Y: Drive = Drive {
+    field: [0.0, 0.07],
+    middle_field: [0.0, 0.05],
+    potential_integral: [[0.0, 0.011], [0.0, 0.007]],
+    square_integral: [0.002, 0.001],
+};
+
+const MIRRORS: [Option<Mirror>; 5] = [
+    None,
+    Some(Mirror::Y(Parity::Even)),
+    Some(Mirror::Y(Parity::Odd)),
+    Some(Mirror::X(Parity::Even)),
+    Some(Mirror::X(Parity::Odd)),
+];
+
+fn drive_for(mirror: Option<Mirror>) -> Drive {
+    match mirror {
+        None => DRIVE,
+        Some(Mirror::Y(_)) => ALONG_X,
+        Some(Mirror::X(_)) => ALONG_Y,
+    }
+}
+
+/// A vector without its part across the mirror.
+fn along(mirror: Option<Mirror>, [x, y]: [f64; 2]) -> [f64; 2] {
+    match mirror {
+        None => [x, y],
+        Some(Mirror::Y(_)) => [x, 0.0],
+        Some(Mirror::X(_)) => [0.0, y],
+    }
+}
+
+/// `at` and its mirror image together.
+fn mirrored(at: impl Fn(f64, f64) -> C, mirror: Option<Mirror>, [x, y]: [f64; 2]) -> C {
+    match mirror {
+        None => at(x, y),
+        Some(Mirror::Y(parity)) => at(x, y) + parity.sign() * at(x, -y),
+        Some(Mirror::X(parity)) => at(x, y) + parity.sign() * at(-x, y),
+    }
+}
+
 fn points(grid: Grid) -> Vec<[f64; 2]> {
     grid.y_positions().flat_map(|y| grid.x.positions().map(move |x| [x, y])).collect()
 }
 
 /// Off centre; even, odd or neither in y.
-fn packet(grid: Grid, mirror: Option<Parity>) -> Vec<C> {
+fn packet(grid: Grid, mirror: Option<Mirror>) -> Vec<C> {
     let at = |x: f64, y: f64| {
         C::cis(0.7 * x - 0.4 * y) * (-0.1 * (x - 1.0).powi(2) - 0.15 * (y - 0.6).powi(2)).exp()
     };
-    points(grid)
-        .into_iter()
-        .map(|[x, y]| mirror.map_or_else(|| at(x, y), |parity| at(x, y) + parity.sign() * at(x, -y)))
-        .collect()
+    points(grid).into_iter().map(|place| mirrored(at, mirror, place)).collect()
 }
 
 /// Something at every momentum.
-fn noise(grid: Grid, mirror: Option<Parity>) -> Vec<C> {
+fn noise(grid: Grid, mirror: Option<Mirror>) -> Vec<C> {
     let at = |x: f64, y: f64| C::cis(37.3 * x * x + 51.7 * (y + 0.3).powi(2) + 11.0 * x * y);
-    points(grid)
-        .into_iter()
-        .map(|[x, y]| mirror.map_or_else(|| at(x, y), |parity| at(x, y) + parity.sign() * at(x, -y)))
-        .collect()
+    points(grid).into_iter().map(|place| mirrored(at, mirror, place)).collect()
 }
 
 fn transformed(psi: &[C], grid: Grid, direction: fn(&Transform, &mut [C], &mut [C])) -> Vec<C> {
@@ -138,7 +173,7 @@ fn the_step_is_what_its_formulas_say_for_any_number_of_threads() {
     for scheme in [Scheme::FourthOrder, Scheme::Strang] {
         for gauge in [Gauge::Length, Gauge::Velocity] {
             for absorber in absorbers {
-                for mirror in [None, Some(Parity::Even), Some(Parity::Odd)] {
+                for mirror in MIRRORS {
                     one_case(&numerics(scheme, gauge, absorber), mirror);
                 }
             }
@@ -146,11 +181,11 @@ fn the_step_is_what_its_formulas_say_for_any_number_of_threads() {
     }
 }
 
-fn one_case(numerics: &Numerics, mirror: Option<Parity>) {
+fn one_case(numerics: &Numerics, mirror: Option<Mirror>) {
     let case = format!("{:?}, {:?}, {:?}, {mirror:?}", numerics.scheme, numerics.gauge, numerics.absorber);
     let grid = numerics.grid;
     let plane = Plane::new(&PotentialOnGrid::sample(&POTENTIAL, &grid), numerics, mirror);
-    let drive = if mirror.is_some() { ALONG_X } else { DRIVE };
+    let drive = drive_for(mirror);
     let before = packet(grid, mirror);
     let mut plain = before.clone();
     plain_step(numerics, &drive, &mut plain);
@@ -182,7 +217,7 @@ fn one_case(numerics: &Numerics, mirror: Option<Parity>) {
     close(moments.norm, sum(&|_, _| 1.0), "norm");
     close(moments.gradient[0], sum(&|x, y| slope(x, y) * x), "force along x");
     close(moments.gradient[1], sum(&|x, y| slope(x, y) * y), "force along y");
-    let half = [36.0 * SPACING[0], 24.0 * SPACING[1]];
+    let half = [40.0 * SPACING[0], 24.0 * SPACING[1]];
     let at_edge = |x: f64, y: f64| match numerics.absorber {
         Absorber::None => x.abs() > half[0] * 7.0 / 8.0 || y.abs() > half[1] * 7.0 / 8.0,
         Absorber::Smooth { width } => x.abs() > half[0] - width || y.abs() > half[1] - width,
@@ -202,9 +237,10 @@ fn one_case(numerics: &Numerics, mirror: Option<Parity>) {
     // Closing undoes opening.
     let mut psi = plane.folded(&before);
     plane.open(&mut psi, drive.field);
-    let vector_potential = [0.3, if mirror.is_some() { 0.0 } else { 0.2 }];
-    let closed = plane.closed(&psi, drive.field, vector_potential, &mut work);
-    for ((a, b), [x, y]) in closed.iter().zip(plane.folded(&before)).zip(&places[grid.len() - psi.len()..]) {
+    let vector_potential = along(mirror, [0.3, 0.2]);
+    let closed = plane.closed(&psi, drive.field, vector_potential, &mut work).to_vec();
+    plane.unfold(&closed, &mut whole);
+    for ((a, b), [x, y]) in whole.iter().zip(&before).zip(&places) {
         let turn = if numerics.gauge == Gauge::Velocity { 1.0 } else { 0.0 };
         let expected = b * C::cis(turn * (vector_potential[0] * x + vector_potential[1] * y));
         assert!((a - expected).norm() < 1e-13, "{case}: closed {a} against {expected}");
@@ -214,4 +250,77 @@ fn one_case(numerics: &Numerics, mirror: Option<Parity>) {
     let found = plane.overlap(|i| other[i], &plane.folded(&before));
     let expected: C = other.iter().zip(&before).map(|(f, p)| f.conj() * p).sum();
     assert!((found - expected).norm() < 1e-11, "{case}: overlap {found} against {expected}");
+}
+
+/// The step with everything written out, from a ψ that is not open to one that is not.
+fn closed_step(numerics: &Numerics, drive: &Drive, next: [f64; 2], psi: &mut Vec<C>) {
+    let outer = if numerics.scheme == Scheme::FourthOrder { 1.0 / 6.0 } else { 0.5 };
+    // plain_step opens with the factors of two neighbouring steps.
+    local(psi, numerics, -outer * numerics.time_step, drive.field, 0.0);
+    plain_step(numerics, drive, psi);
+    local(psi, numerics, outer * numerics.time_step, next, 0.0);
+}
+
+/// Oracle: one step and two halves of it, written out, and their difference.
+#[test]
+fn a_doubled_step_differs_from_its_halves_as_the_formulas_say() {
+    for scheme in [Scheme::FourthOrder, Scheme::Strang] {
+        for gauge in [Gauge::Length, Gauge::Velocity] {
+            for mirror in MIRRORS {
+                doubled_case(scheme, gauge, mirror);
+            }
+        }
+    }
+}
+
+fn doubled_case(scheme: Scheme, gauge: Gauge, mirror: Option<Mirror>) {
+    let case = format!("{scheme:?}, {gauge:?}, {mirror:?}");
+    let without = Numerics { time_step: 0.2, ..numerics(scheme, gauge, Absorber::None) };
+    let numerics = Numerics { absorber: Absorber::Round { width: 5.0 }, ..without.clone() };
+    let grid = numerics.grid;
+    let atom = PotentialOnGrid::sample(&POTENTIAL, &grid);
+    let plane = Plane::new(&atom, &numerics, mirror);
+    let whole = drive_for(mirror);
+    let half = |field, [first, second]: [[f64; 2]; 2]| Drive {
+        field: along(mirror, field),
+        middle_field: along(mirror, [0.06, 0.01]),
+        potential_integral: [along(mirror, first), along(mirror, second)],
+        square_integral: [0.0007, 0.0004],
+    };
+    let integrals = [[0.004, -0.01], [0.006, 0.008]];
+    let halves = [half(whole.field, integrals), half([0.05, 0.012], integrals)];
+    let next = along(mirror, [0.03, 0.02]);
+    let before = packet(grid, mirror);
+    let (mut one, mut two) = (before.clone(), before.clone());
+    closed_step(&without, &whole, next, &mut one);
+    let half = Numerics { time_step: 0.1, ..without };
+    closed_step(&half, &halves[0], halves[1].field, &mut two);
+    closed_step(&half, &halves[1], next, &mut two);
+    let norm: f64 = one.iter().map(C::norm_sqr).sum();
+    let overlap: C = two.iter().zip(&one).map(|(t, o)| t.conj() * o).sum();
+    let factor = overlap / norm;
+    let rest: f64 = two.iter().zip(&one).map(|(t, o)| (o - factor * t).norm_sqr()).sum();
+    let expected = (rest / norm).sqrt();
+    let mut psi = plane.folded(&before);
+    plane.open(&mut psi, whole.field);
+    let mut work = plane.make_workspace(2);
+    work.turned.fill(C::new(f64::NAN, f64::NAN));
+    let drives = Doubled { whole: &whole, halves: &halves, next };
+    let found = plane.doubled(&plane.doubling(), &atom.values, &psi, &drives, &mut work);
+    assert!(expected > 1e-5, "{case}: {expected}");
+    assert!((found - expected).abs() < 1e-11, "{case}: local error {found} against {expected}");
+    // The energy, in length gauge.
+    let potential = along(mirror, [0.3, 0.2]);
+    let mut kicked = before.clone();
+    if gauge == Gauge::Velocity {
+        let turn = points(grid).into_iter().map(|[x, y]| C::cis(potential[0] * x + potential[1] * y));
+        kicked.iter_mut().zip(turn).for_each(|(p, turn)| *p *= turn);
+    }
+    let spectrum = transformed(&kicked, grid, Transform::forward);
+    let momenta = grid.y.unwrap().momenta().flat_map(|ky| grid.x.momenta().map(move |kx| kx * kx + ky * ky));
+    let kinetic: f64 = spectrum.iter().zip(momenta).map(|(p, k2)| p.norm_sqr() * 0.5 * k2).sum();
+    let still: f64 = kicked.iter().zip(&atom.values).map(|(p, v)| p.norm_sqr() * v).sum();
+    let expected = (kinetic / grid.len() as f64 + still) * grid.cell();
+    let found = plane.energy(&atom.values, &psi, [whole.field, potential], &mut work);
+    assert!((found / expected - 1.0).abs() < 1e-12, "{case}: energy {found} against {expected}");
 }

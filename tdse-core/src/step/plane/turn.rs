@@ -57,6 +57,16 @@ pub(super) fn gather_columns(from: &[C], to: &mut [C], across: usize, first: usi
     }
 }
 
+/// The other way: lines that [`gather_columns`] gathered, back to their places.
+pub(super) fn scatter_columns(from: &[C], to: &mut [C], across: usize, first: usize, order: &Order) {
+    let along = order.place.len();
+    for (row, (&place, &sign)) in to.chunks_exact_mut(across).zip(order.place.iter().zip(&order.sign)) {
+        for (b, p) in row[first..first + GROUP].iter_mut().enumerate() {
+            *p = from[b * along + place] * sign;
+        }
+    }
+}
+
 /// Rows first … first + [`GROUP`] out of the columns in `from` (shape `[columns, order]`), each contiguous in `to`.
 pub(super) fn gather_rows(from: &[C], to: &mut [C], first: usize, order: &Order) {
     let along = order.place.len();
