@@ -27,16 +27,19 @@ struct Line {
     errors: Errors,
 }
 
-/// Measures one case at every accuracy, the strictest last, against one reference; none where that costs more than `most`.
+/// Measures one case at every accuracy, the strictest last, against one reference; without those
+/// whose reference costs more than `most`.
 fn measure(case: &Case, accuracies: &[f64], limits: Limits) -> Vec<Line> {
     let finer = reference(case, accuracies, limits.closed);
     let cost = work(case, &finer);
     if cost > limits.most {
+        let strictest = accuracies[accuracies.len() - 1];
         println!(
-            "{:2} {}: not measured, a reference of {cost:.1e} points times steps",
+            "{:2} {} {strictest:.0e}: not measured, a reference of {cost:.1e} points times steps",
             case.number, case.name
         );
-        return Vec::new();
+        let [rest @ .., _] = accuracies else { return Vec::new() };
+        return if rest.is_empty() { Vec::new() } else { measure(case, rest, limits) };
     }
     let (finer, exact) = kept(case, accuracies, limits.closed);
     let lines = accuracies.iter().map(|&accuracy| {

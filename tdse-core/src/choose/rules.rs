@@ -37,6 +37,8 @@ const SWING_SAMPLES: usize = 512;
 const BELOW_RESONANCE: f64 = 0.9;
 /// A box that nothing leaves keeps its outermost sixteenths empty: there the watch looks.
 const OUTER: f64 = 8.0 / 7.0;
+/// Largest momentum of a classical electron that returns, √(3.1731/2), in units of the vector potential's maximum.
+const RETURNING: f64 = 1.2596;
 /// Largest momentum of a classical electron after backscattering, in units of the vector potential's maximum:
 /// drift √5 (10 Up; Paulus et al., J. Phys. B 27, L703 (1994)) plus quiver 1.
 const FASTEST: f64 = 3.24;
@@ -117,6 +119,9 @@ pub(super) struct Needs {
     pub(super) stiffness: f64,
     /// Largest photon energy to resolve in time, hartree.
     pub(super) photon: f64,
+    /// How fast the potential changes for the fastest electron that returns, hartree: its momentum √(2·3.17 Up) over the
+    /// analytic length.
+    passing: f64,
     /// Whether anything can leave.
     leaves: bool,
     accuracy: f64,
@@ -178,6 +183,7 @@ impl Needs {
             binding: wish.facts.ionization_energy(),
             stiffness,
             photon: wish.max_photon.unwrap_or(0.0).max(strength.photon),
+            passing: if confined { 0.0 } else { RETURNING * strength.vector_potential / analytic },
             leaves: !confined && strength.field > 0.0,
             accuracy: wish.accuracy,
             strength,
@@ -206,12 +212,13 @@ impl Needs {
         resonance.min(accurate).min(sampled)
     }
 
-    /// Step at which the largest error of a harmonic yield of the plateau, measured as (τΩ)⁴ and 3 (τΩ)² with Ω the
-    /// stiffness, meets the accuracy; the root-mean-square is fifty times less.
+    /// Step at which the largest error of a harmonic yield of the plateau, measured as (τΩ)⁴ and 3 (τΩ)² with Ω the fastest
+    /// change an electron sees, is four tenths of the accuracy; the root-mean-square is fifty times less.
     fn accurate_step(&self, scheme: Scheme) -> f64 {
+        let (accuracy, fastest) = (0.4 * self.accuracy, self.stiffness.max(self.passing));
         match scheme {
-            Scheme::FourthOrder => self.accuracy.powf(0.25) / self.stiffness,
-            Scheme::Strang => (self.accuracy / 3.0).sqrt() / self.stiffness,
+            Scheme::FourthOrder => accuracy.powf(0.25) / fastest,
+            Scheme::Strang => (accuracy / 3.0).sqrt() / fastest,
         }
     }
 
@@ -237,10 +244,12 @@ impl Needs {
                 pins.time_step.is_some(),
                 format!(
                     "below the splitting's resonance at {:.4} a.u. (2 pi / (k_max^2/2 + Ip)), and {:.4} a.u. for the \
-                     accuracy asked (error constant measured on the atom's stiffness {:.3} hartree)",
+                     accuracy asked (error constant measured on the faster of the atom's stiffness {:.3} hartree and the passing of \
+                     returning electrons {:.3} hartree)",
                     resonant_step(numerics.grid.largest_along_axis(), self.binding),
                     self.accurate_step(numerics.scheme),
-                    self.stiffness
+                    self.stiffness,
+                    self.passing
                 ),
             ),
             reason(
