@@ -58,7 +58,7 @@ fn main() -> Outcome<()> {
     for (number, round) in all.chunks(ROUND.min(points)).enumerate() {
         let chosen: Vec<&Point> = round.iter().map(|task| &prepared.points[task.points[0]]).collect();
         let bare = || time(round.len(), || bare_points(&chosen, &shared.atoms, jobs));
-        let whole = || time(round.len(), || Ok(run::run(&shared, round, jobs)?));
+        let whole = || time(round.len(), || Ok(run::run(&shared, round, jobs, jobs)?));
         // Each goes first in every second round.
         rounds.push(if number % 2 == 0 {
             Round { bare: bare()?, whole: whole()? }
@@ -103,8 +103,14 @@ fn bare_points(points: &[&Point], atoms: &Atoms, jobs: usize) -> Outcome<()> {
             let plan = Plan::new(&job.problem, atom.clone(), &job.numerics, job.record);
             let plan = plan.map_err(|error| error.to_string())?;
             let state = propagate(&plan);
-            let finished =
-                derive::Finished { point, atom: &atom, plan: &plan, state: &state, continuum: None };
+            let finished = derive::Finished {
+                point,
+                atom: &atom,
+                plan: &plan,
+                state: &state,
+                continuum: None,
+                round: None,
+            };
             let mut contents = derive::record(&finished, Provenance::default());
             derive::derive(point, &mut contents);
             std::hint::black_box(&contents);

@@ -127,18 +127,18 @@ fn main() {
     for points in [512, 1024] {
         one_size(points);
     }
-    for padding in [1, 2, 4] {
-        one_map(512, padding);
+    for momenta in [101, 201, 401] {
+        one_map(512, momenta);
     }
 }
 
 /// One sample of the momentum map beside one step; it is taken every few steps (`MapCollector::interval`).
-fn one_map(points: usize, padding: usize) {
+fn one_map(points: usize, momenta: usize) {
     let numerics = numerics(points);
     let potential = Potential::SoftCoulomb { charge: 1.0, softening: 0.8 };
     let plane = Plane::new(&PotentialOnGrid::sample(&potential, &numerics.grid), &numerics, None);
-    let largest = 0.8 / padding as f64 * numerics.grid.x.largest_momentum();
-    let range = MapRange { largest, padding };
+    let largest = 2.0;
+    let range = MapRange { largest, spacing: 2.0 * largest / (momenta - 1) as f64 };
     let collector = MapCollector::new(&numerics, range, &[DRIVE; 3], &[[0.0; 2]; 3]);
     let (mut map, mut scratch, mut work) =
         (collector.start(), collector.make_scratch(), plane.make_workspace(1));
@@ -150,7 +150,7 @@ fn one_map(points: usize, padding: usize) {
         sample / step
     });
     println!(
-        "N = {points}: a sample of a map up to {largest:.2} / bohr, padded {padding} times, takes {:.2} of a step; one every {} steps",
+        "N = {points}: a sample of a map of {momenta} x {momenta} momenta up to {largest:.2} / bohr takes {:.2} of a step; one every {} steps",
         median(ratios.collect()),
         collector.interval()
     );

@@ -84,7 +84,7 @@ fn advancing_in_the_plane_allocates_nothing() {
             let problem = ground(well.clone(), light);
             let shared = Arc::new(Atom::on_plane(&well, &numerics.grid, &[label]).unwrap());
             let plan = Plan::new(&problem, shared, &numerics, Record { populations: 1 }).unwrap();
-            let plan = plan.mapping(&numerics, MapRange { largest: 1.5, padding: 2 });
+            let plan = plan.mapping(&numerics, MapRange { largest: 1.5, spacing: 0.08 });
             let (mut state, mut work) = (plan.initial_state(), plan.make_workspace());
             advance(&plan, &mut state, &mut work, 1);
             let before = CALLS.with(Cell::get);
@@ -136,12 +136,13 @@ fn one_plane(potential: &Potential, labels: &[PlaneLabel], light: Pulse, (gauge,
         Numerics { grid: Grid::square(320, 0.4), gauge, scheme, absorber, ..numerics(64, 0.4, 0.1) };
     let ellipticity = light.ellipticity;
     let problem = ground(potential.clone(), field(light));
-    let range = MapRange { largest: 3.0, padding: 2 };
+    let range = MapRange { largest: 3.0, spacing: 0.025 };
     let record = Record { populations: labels.len() };
     let load = Load {
         field: &problem.field,
         numerics: &numerics,
         states: Held::Plane(labels),
+        initial: &problem.initial,
         record,
         map: Some(range),
         threads: 2,
@@ -177,6 +178,7 @@ fn memory_on_a_line_is_what_was_foretold() {
         field: &problem.field,
         numerics: &numerics,
         states: Held::Line(shared.states()),
+        initial: &problem.initial,
         record,
         map: None,
         threads: 1,

@@ -136,6 +136,19 @@ fn plane_point() -> Contents {
     result.insert("harmonics", "harmonic_order", Array1::linspace(0.0, 5.0, 6));
     result.insert("harmonics", "spectrum", some(&[2, 6], 2.0));
     result.insert("harmonics", "radiated_energy", some(&[6], 3.0));
+    for group in ["harmonics", "harmonic_yields"] {
+        result.insert(group, "helicity", vec![1, -1]);
+    }
+    result.insert("harmonics", "helicity_spectrum", some(&[2, 6], 2.5));
+    result.insert("harmonics", "harmonic_ellipticity", some(&[6], 2.6));
+    result.insert("harmonics", "harmonic_orientation", some(&[6], 2.7));
+    result.insert("harmonic_yields", "order", vec![1, 2, 3]);
+    result.insert("harmonic_yields", "yield", some(&[3], 2.8));
+    result.insert("harmonic_yields", "helicity_yield", some(&[2, 3], 2.9));
+    result.insert("photoelectrons", "energy", Array1::linspace(0.0, 20.0, 50));
+    result.insert("photoelectrons", "yield", some(&[50], 3.1));
+    result.insert("photoelectrons", "emission_angle", Array1::linspace(0.0, 6.0, 7));
+    result.insert("photoelectrons", "angular_distribution", some(&[7], 3.2));
     result.insert("momentum", "momentum_y", Array1::linspace(-1.0, 1.0, 5));
     result.insert("momentum", "momentum_x", Array1::linspace(-2.0, 2.0, 7));
     result.insert("momentum", "density", some(&[5, 7], 4.0));

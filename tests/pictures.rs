@@ -85,7 +85,7 @@ fn curve_lies_where_the_labels_say() {
     let svg = harmonics::draw(&HarmonicPicture {
         title: "invented",
         photon_energy: &x,
-        spectrum: &y,
+        spectra: &[("", &y)],
         errors: &[],
         quantity: "S",
         fundamental: Some(2.5),
@@ -164,7 +164,7 @@ fn hostile_texts_stay_texts() {
         harmonics::draw(&HarmonicPicture {
             title: HOSTILE,
             photon_energy: &one,
-            spectrum: &one,
+            spectra: &[("", &one)],
             errors: &[],
             quantity: HOSTILE,
             fundamental: Some(1.0),
@@ -223,7 +223,7 @@ fn pictures_of(x: &[f64], y: &[f64]) -> Vec<String> {
         harmonics::draw(&HarmonicPicture {
             title: "",
             photon_energy: x,
-            spectrum: y,
+            spectra: &[("", y)],
             errors: &[],
             quantity: "",
             fundamental: y.first().copied(),

@@ -272,7 +272,7 @@ fn a_map_has_its_flight_out_and_pinning_what_was_chosen_changes_nothing() {
     // The map: up to the last energy, as fine as the energies lie, within one and a half wave functions.
     let range = map_range(&problem, n, ENERGIES);
     assert!(range.largest > 2.0 && range.largest < 2.5, "{range:?}");
-    let covered = range.largest * range.padding as f64 / n.grid.x.largest_momentum();
+    let covered = (2 * range.last() + 1) as f64 / n.grid.x.points as f64;
     assert!(covered + covered * covered <= 1.5, "{range:?}");
     // What is pinned badly is objected to.
     let objections = |pins: &Pins, method| -> Vec<(Option<Knob>, Verdict)> {

@@ -154,7 +154,7 @@ fn half_the_plane_is_the_whole_plane() {
 fn half_the_plane_gives_the_whole_map() {
     let numerics =
         Numerics { absorber: Absorber::Round { width: 8.0 }, trailing_time: 20.0, ..plane(96, 0.4, 0.1) };
-    let range = MapRange { largest: 2.0, padding: 1 };
+    let range = MapRange { largest: 2.0, spacing: 0.15 };
     let maps = [0.0, 2e-15, 0.5 * PI].map(|angle| {
         let plan = planned(&WELL, angular(0, 0), elliptical(0.0, angle), &numerics).mapping(&numerics, range);
         (plan.mirror(), run(&plan).outgoing.unwrap().map)

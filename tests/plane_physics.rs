@@ -176,7 +176,8 @@ fn the_momentum_map_is_that_of_a_box_that_nothing_leaves() {
     let light = || field(Pulse { ellipticity: 0.5, angle: 0.3, ..sin2_pulse(1.0, 0.08, 12.0) });
     let mut small = plane(160, 0.6, 0.15, 26.0);
     small.trailing_time = 200.0;
-    let (map, state, ionized) = mapped(&SHORT_RANGE, light(), &small, MapRange { largest: 2.0, padding: 4 });
+    let (map, state, ionized) =
+        mapped(&SHORT_RANGE, light(), &small, MapRange { largest: 2.0, spacing: 2.0 * PI / 384.0 });
     let mut large = plane(640, 0.6, 0.15, 0.0);
     // The fastest pass the periodic edge after the pulse, which changes no momentum, and come nowhere near the atom.
     large.trailing_time = 90.0;
@@ -237,7 +238,8 @@ fn a_circular_pulse_makes_a_ring_of_the_vector_potential() {
     numerics.trailing_time = 250.0;
     let atom = Atom::on_plane(&well, &numerics.grid, &[GROUND]).unwrap();
     let keldysh = (2.0 * -atom.plane[0].energy).sqrt() * frequency / crest;
-    let (map, state, _) = mapped(&well, light, &numerics, MapRange { largest: 1.8, padding: 1 });
+    let (map, state, _) =
+        mapped(&well, light, &numerics, MapRange { largest: 1.8, spacing: 2.0 * PI / 230.4 });
     let (mut sum, mut mean) = (0.0, 0.0);
     for (i, d) in map.density.iter().enumerate() {
         let columns = map.momenta[0].len();

@@ -11,12 +11,13 @@
 //! The sum over steps is smooth: what the absorber overlaps with at momentum k changes at frequencies below k²/2. It is
 //! taken every few steps, by a trapezoid whose end is corrected to sixth order.
 
+mod chirp;
 mod motion;
 mod plane;
 mod tail;
 
+pub(crate) use chirp::sum_length;
 pub use motion::Motion;
-pub(crate) use plane::map_momenta;
 pub use plane::{MapCollector, MapRange, MapScratch, MomentumMap, map_interval};
 pub use tail::{TailLeft, tail_left};
 

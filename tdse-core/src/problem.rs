@@ -34,6 +34,14 @@ impl InitialState {
         }
     }
 
+    /// The state numbers that take part.
+    pub fn numbers(&self) -> Vec<usize> {
+        match self {
+            Self::Single(number) => vec![*number],
+            Self::Superposition(terms) => terms.iter().map(|t| t.number).collect(),
+        }
+    }
+
     /// The highest state number that takes part.
     pub fn highest(&self) -> usize {
         match self {

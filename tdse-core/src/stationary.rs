@@ -16,11 +16,11 @@ mod tune;
 pub use bound::{BoundStates, bound_states, bound_states_below};
 pub use level::{Level, count_below, level, radial_count_below, radial_level};
 pub use one_photon::{TransitionDipole, transition_dipole};
-pub use plane::{PlaneState, plane_level, plane_states};
+pub use plane::{PlaneState, lowest_plane_levels, plane_level, plane_states};
 pub use radial::RadialFunction;
 pub use round::RoundStates;
 pub use scattering::{NoContinuum, Scattering, ScatteringStates, Side};
-pub use tune::{Softenable, tune_radial_softening, tune_softening};
+pub use tune::{Softenable, tune_plane_softening, tune_radial_softening, tune_softening};
 
 /// Why a stationary state could not be had.
 #[derive(Clone, Debug, PartialEq, thiserror::Error)]

@@ -247,9 +247,69 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
-        name: "two dimensions",
-        edits: &[("/atom/dimensions", Some("2"))],
-        says: &["/atom/dimensions: 2 is not available in this version; allowed: 1; try 1"],
+        name: "angular momentum on a line",
+        edits: &[("/atom/state/angular_momentum", Some("1"))],
+        says: &[
+            r#"/atom/state/angular_momentum: 1 needs two dimensions; allowed: the key only beside dimensions 2; at /atom/state try {"kind":"single","number":0}"#,
+        ],
+    },
+    Case {
+        name: "round absorber on a line",
+        edits: &[("/numerics/absorber", Some(r#"{"kind":"smooth","shape":"round"}"#))],
+        says: &[
+            r#"/numerics/absorber/shape: "round" needs two dimensions; allowed: the key only beside dimensions 2; at /numerics/absorber try {"kind":"smooth"}"#,
+        ],
+    },
+    Case {
+        name: "one parity of two",
+        edits: &[("/atom/dimensions", Some("2")), ("/atom/state/parity_x", Some(r#""odd""#))],
+        says: &[r#"/atom/state/parity_y: is missing beside parity_x; allowed: even or odd; try "even""#],
+    },
+    Case {
+        name: "parity beside an angular momentum",
+        edits: &[
+            ("/atom/dimensions", Some("2")),
+            ("/atom/state/angular_momentum", Some("1")),
+            ("/atom/state/parity_x", Some(r#""odd""#)),
+        ],
+        says: &[
+            r#"/atom/state/parity_x: "odd" stands beside angular_momentum 1; allowed: angular_momentum, or parity_x with parity_y; at /atom/state try {"kind":"single","number":0,"angular_momentum":1}"#,
+        ],
+    },
+    Case {
+        name: "the same state of the plane twice",
+        edits: &[
+            ("/atom/dimensions", Some("2")),
+            (
+                "/atom/state",
+                Some(
+                    r#"{"kind":"superposition","terms":[{"number":0},{"number":0,"angular_momentum":1},{"number":0,"angular_momentum":0}]}"#,
+                ),
+            ),
+        ],
+        says: &["/atom/state/terms/2/number: 0 is repeated; allowed: every state at most once; try 1"],
+    },
+    Case {
+        name: "scattering states in the plane",
+        edits: &[
+            ("/atom/dimensions", Some("2")),
+            ("/outputs/photoelectrons", Some("{}")),
+            ("/numerics/electron_method", Some(r#""scattering_states""#)),
+        ],
+        says: &[
+            r#"/numerics/electron_method: "scattering_states" needs one dimension; allowed: outgoing_amplitude, with an absorber, in two dimensions; try "outgoing_amplitude""#,
+        ],
+    },
+    Case {
+        name: "electrons of the plane without absorber",
+        edits: &[
+            ("/atom/dimensions", Some("2")),
+            ("/outputs/photoelectrons", Some("{}")),
+            ("/numerics/absorber", Some(r#"{"kind":"none"}"#)),
+        ],
+        says: &[
+            r#"/numerics/absorber: {"kind":"none"} takes nothing, and the electrons of two dimensions are what an absorber takes; allowed: outgoing_amplitude, with an absorber, in two dimensions; at /numerics try {"accuracy":0.0001}"#,
+        ],
     },
     Case {
         name: "three dimensions",

@@ -3,13 +3,17 @@
 use tdse_cli::report::electrons::{ElectronPicture, MomentumPicture, Peaks};
 use tdse_cli::report::figure::{Across, Curve, Figure, Mark, Multiples, Origin, Panel, Trace, Up};
 use tdse_cli::report::harmonics::HarmonicPicture;
+use tdse_cli::report::lissajous::{Guides, PlanePicture};
 use tdse_cli::report::map::Shading;
+use tdse_cli::report::momentum_map::MomentumMapPicture;
 use tdse_cli::report::parameter::{Axis, Values};
 use tdse_cli::report::populations::PopulationPicture;
 use tdse_cli::report::scale::{Kind, Range};
 use tdse_cli::report::scan::{NumberMap, NumberScan, SpectrumScan};
 use tdse_cli::report::time_frequency::TimeFrequencyPicture;
-use tdse_cli::report::{electrons, field, figure, harmonics, populations, scan, time_frequency};
+use tdse_cli::report::{
+    electrons, field, figure, harmonics, lissajous, momentum_map, populations, scan, time_frequency,
+};
 
 /// `count` values from `from` to `to`, ends included.
 pub fn even(from: f64, to: f64, count: usize) -> Vec<f64> {
@@ -68,12 +72,54 @@ pub fn all() -> Vec<(&'static str, String)> {
         vector_potential: &[("x", &a), ("y", &b)],
     });
     pictures.push(("field_two_directions", svg));
+    pictures.extend(plane_pictures(&x, &y));
     pictures.push(("time_frequency", map_of_bursts()));
     pictures.extend(electron_pictures());
     pictures.extend([("populations_linear", populations_of(0.4)), ("populations_log", populations_of(1e-4))]);
     pictures.extend(scans());
     pictures.push(("comparison", comparison()));
     pictures
+}
+
+/// Of two dimensions: a field's figure, a rose, a ring of momenta, two helicities.
+fn plane_pictures(x: &[f64], y: &[f64]) -> [(&'static str, String); 4] {
+    let plane = |[across, up]: [&str; 2], [x, y]: [Vec<f64>; 2], guides| {
+        let (title, notes) = ("Invented elliptical pulse", ["Invented.".to_owned()]);
+        lissajous::draw(&PlanePicture { title, across, up, x: &x, y: &y, guides, notes: &notes })
+    };
+    let gigavolts = |v: &[f64]| v.iter().map(|v| v * 1e-9).collect::<Vec<f64>>();
+    let names = ["E along x (GV/m)", "E along y (GV/m)"];
+    let figure = plane(names, [gigavolts(x), gigavolts(y)], Guides::Cross);
+    let angles = even(0.0, std::f64::consts::TAU, 181);
+    let radius = |a: &f64| 0.02 + 0.03 * (a - 0.4).cos().powi(4);
+    let rose = |f: fn(f64) -> f64| angles.iter().map(|a| radius(a) * f(*a)).collect::<Vec<f64>>();
+    let names = ["towards x (1/rad)", "towards y (1/rad)"];
+    let rose = plane(names, [rose(f64::cos), rose(f64::sin)], Guides::Circles);
+    let (k, q) = (even(-1.5, 1.5, 151), even(-1.2, 1.2, 121));
+    let ring = |x: f64, y: f64| (-((x.hypot(y) - 0.8) / 0.15).powi(2)).exp() * (1.0 + 0.3 * (9.0 * x).cos());
+    let density: Vec<f64> = q.iter().flat_map(|y| k.iter().map(move |x| ring(*x, *y))).collect();
+    let turn = |f: fn(f64) -> f64| angles.iter().map(|a| 0.9 * f(*a)).collect::<Vec<f64>>();
+    let map = momentum_map::draw(&MomentumMapPicture {
+        title: "Invented ring",
+        momentum_x: &k,
+        momentum_y: &q,
+        density: &density,
+        potential: [&turn(f64::cos), &turn(f64::sin)],
+    });
+    let energy = even(0.0, 60.0, 3000);
+    let [plus, minus] = [(1.55, 40.0), (3.1, 30.0)].map(|(w, cut)| invented_spectrum(&energy, w, cut, 1e-12));
+    let helicities = harmonics::draw(&HarmonicPicture {
+        title: "Invented helicities",
+        photon_energy: &energy,
+        spectra: &[("helicity +1", &plus), ("helicity −1", &minus)],
+        errors: &[],
+        quantity: "|a(ω)|² (a.u.)",
+        fundamental: Some(1.55),
+        cutoff_law: None,
+        measured_cutoff: Some(38.0),
+        window: "blackman",
+    });
+    [("lissajous", figure), ("angular_distribution", rose), ("momentum_map", map), ("helicities", helicities)]
 }
 
 fn harmonics_of(photon: f64, cutoff: f64, end: f64, floor: f64) -> String {
@@ -84,7 +130,7 @@ fn harmonics_of(photon: f64, cutoff: f64, end: f64, floor: f64) -> String {
     harmonics::draw(&HarmonicPicture {
         title: "Invented data: phase dependence of the cutoff, 1030 nm compressor output on argon",
         photon_energy: &energy,
-        spectrum: &spectrum,
+        spectra: &[("", &spectrum)],
         errors: &errors,
         quantity: "|a(ω)|² (a.u.)",
         fundamental: Some(photon),

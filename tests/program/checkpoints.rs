@@ -94,6 +94,30 @@ fn a_signal_keeps_points_in_flight_and_they_go_on_to_the_same_bits() {
     }
 }
 
+/// The same in two dimensions, with a momentum map, on two threads.
+#[test]
+fn a_plane_and_its_map_go_on_to_the_same_bits() {
+    let place = Place::new();
+    let mut single = phases("0 deg", "0 deg", 1);
+    single["scan"] = json!([]);
+    single["atom"] = json!({ "dimensions": 2, "potential": {
+        "kind": "gaussian_well", "depth": "30 eV", "width": "1.2 bohr" } });
+    single["field"]["pulses"][0]["ellipticity"] = json!(0.7);
+    single["field"]["pulses"][0]["envelope"]["cycles"] = json!(1);
+    single["numerics"] = json!({ "spacing": "1 bohr", "extent": "120 bohr", "time_step": "0.3 au",
+        "absorber": { "kind": "smooth", "width": "25 bohr", "shape": "sides" }, "trailing_time": "4 fs",
+        "allow_inadequate": true });
+    single["outputs"]["photoelectrons"] = json!({ "max_energy": "40 eV", "energy_step": "0.5 eV" });
+    single["outputs"]["populations"]["states"] = json!(1);
+    place.write("single.json", &single);
+    place.tdse("run single.json --out whole --jobs 1").with(0);
+    let line = "run single.json --out out --jobs 2";
+    end(started(&place, line, "out", [EVERY, "50"], "checkpointed"), "-TERM").with(143);
+    place.tdse(line).with(0);
+    assert!(last_step(&place, "out", "continued") > 0);
+    assert_same_bits(&place.path("whole/result.h5"), &place.path("out/result.h5"));
+}
+
 /// What the absorber took before the stop is in the checkpoint.
 #[test]
 fn collected_electrons_go_on_to_the_same_bits() {

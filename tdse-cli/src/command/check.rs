@@ -14,7 +14,7 @@ use tdse_core::units::{
     intensity,
 };
 
-use crate::scan::cost::{Cost, cost};
+use crate::scan::cost::{Cost, cost, keeps_mirror, map_share};
 use crate::scan::prepare::{Point, Prepared};
 use crate::text::{Table, bytes, duration, number};
 
@@ -83,6 +83,15 @@ fn pulse_table(point: &Point, pulse: &Pulse) -> String {
     table.row("", number(pulse.peak_field), "au", "");
     let potential = pulse.peak_field / pulse.frequency;
     table.row("vector potential", number(potential), "au", "E0/omega");
+    if pulse.ellipticity != 0.0 {
+        let share = 1.0 / pulse.ellipticity.hypot(1.0);
+        table.row("ellipticity", number(pulse.ellipticity), "", "positive: from x to y, helicity +1");
+        table.row("major axis", number(share), "E0", "E0 / sqrt(1 + ellipticity^2), and so for A");
+        table.row("minor axis", number(share * pulse.ellipticity.abs()), "E0", "");
+    }
+    if pulse.angle != 0.0 {
+        table.row("angle", number(pulse.angle.to_degrees()), "deg", "of the major axis to x");
+    }
     table.row("", number(potential * VECTOR_POTENTIAL_V_S_PER_M), "V s/m", "");
     table.row("quiver amplitude", number(pulse.quiver_amplitude()), "bohr", "E0/omega^2");
     table.row("ponderomotive energy", number(up * HARTREE_EV), "eV", "Up = E0^2/(4 omega^2)");
@@ -94,8 +103,11 @@ fn pulse_table(point: &Point, pulse: &Pulse) -> String {
             let field = barrier_suppression_field(ip, charge);
             table.row("barrier suppression", number(intensity(field)), "W/cm^2", "field Ip^2/(4Z)");
         }
-        table.row("classical cutoff", number(classical_cutoff(ip, up) * HARTREE_EV), "eV", "Ip + 3.17 Up");
-        table.row("", number(classical_cutoff(ip, up) / pulse.frequency), "photons", "");
+        if pulse.ellipticity == 0.0 {
+            let cutoff = classical_cutoff(ip, up);
+            table.row("classical cutoff", number(cutoff * HARTREE_EV), "eV", "Ip + 3.17 Up");
+            table.row("", number(cutoff / pulse.frequency), "photons", "");
+        }
     }
     table.row("centroid", number(shape.centroid * HARTREE_EV), "eV", "of the power spectrum");
     table.row("", number(nanometres(shape.centroid)), "nm", "");
@@ -132,9 +144,8 @@ fn numerics(point: &Point) -> String {
             Knob::Extent => ("extent", number(numerics.grid.x.extent()), "bohr"),
             Knob::Absorber => match numerics.absorber {
                 Absorber::None => ("absorber", "none".into(), ""),
-                Absorber::Smooth { width } | Absorber::Round { width } => {
-                    ("absorber", number(width), "bohr per side")
-                }
+                Absorber::Smooth { width } => ("absorber", number(width), "bohr per side"),
+                Absorber::Round { width } => ("absorber", number(width), "bohr, in a ring"),
             },
             Knob::TimeStep => ("time step", number(numerics.time_step), "au"),
             Knob::Scheme => (
@@ -179,8 +190,14 @@ fn outputs(point: &Point) -> String {
     }
     if let Some(electrons) = &outputs.photoelectrons {
         let energies = point.job.electrons().map_or(0, |(_, axis)| axis.points);
-        let note = format!("in steps of {} eV, {energies} energies to each side", ev(electrons.energy_step));
+        let directions = if point.job.map_range().is_some() { "" } else { " to each side" };
+        let note = format!("in steps of {} eV, {energies} energies{directions}", ev(electrons.energy_step));
         table.row("electrons up to", ev(electrons.max_energy), "eV", &note);
+    }
+    if let Some(range) = point.job.map_range() {
+        let (count, work) = (2 * range.last() + 1, map_share(&point.job));
+        let note = format!("{count} x {count} momenta; collecting takes {} of the propagation", number(work));
+        table.row("momenta every", number(range.spacing), "/ bohr", &note);
     }
     if point.job.record.populations > 0 {
         table.row("populations of", point.job.record.populations.to_string(), "states", "");
@@ -194,12 +211,23 @@ fn costs(prepared: &Prepared, cores: usize) -> String {
     let largest = all.iter().map(|c| c.bytes).max().unwrap_or_default();
     let mut table = Table::new();
     if let [one] = all[..] {
-        table.row("grid points", one.points.to_string(), "", "");
+        let job = &prepared.points[0].job;
+        let note = match job.numerics.grid.y {
+            Some(y) if keeps_mirror(job) => {
+                format!("{} x {}, half of them kept by the mirror", job.numerics.grid.x.points, y.points)
+            }
+            Some(y) => format!("{} x {}", job.numerics.grid.x.points, y.points),
+            None => String::new(),
+        };
+        table.row("grid points", one.points.to_string(), "", &note);
         table.row("steps", one.steps.to_string(), "", "");
     }
     let together = cores.min(all.len()).max(1);
     table.row("memory", bytes(largest * together as u64), "", &format!("{together} point(s) at once"));
-    table.row("time", duration(seconds / together as f64), "", &format!("estimated, on {together} core(s)"));
+    // A plane shares its steps among the cores that have no point of their own.
+    let is_plane = |point: &Point| point.job.numerics.grid.dimensions() == 2;
+    let busy = if prepared.points.iter().all(is_plane) { cores.max(1) } else { together };
+    table.row("time", duration(seconds / busy as f64), "", &format!("estimated, on {busy} core(s)"));
     format!("\nCost\n{table}")
 }
 

@@ -22,7 +22,7 @@ pub struct Options {
     /// What to compare it with; left out together with --along
     #[arg(value_name = "B")]
     pub b: Option<PathBuf>,
-    /// Compare the points of a scan along this axis with the first of them
+    /// Compare the points of a scan along this axis, by its name or the place it varies, with the first of them
     #[arg(long, value_name = "AXIS")]
     pub along: Option<String>,
 }
@@ -48,8 +48,10 @@ pub fn compare(options: &Options) -> Result<Exit, Trouble> {
             text += &lines(&pairs(&a, &b));
         }
         (None, Some(name)) => {
+            // An axis without a name of its own is called after the place it varies.
+            let called = name.trim_start_matches('/').replace('/', "_");
             let dimension =
-                a.scan().iter().position(|dimension| dimension.axes.iter().any(|axis| axis.name == *name));
+                a.scan().iter().position(|dimension| dimension.axes.iter().any(|axis| axis.name == called));
             let Some(dimension) = dimension else {
                 let known: Vec<&str> =
                     a.scan().iter().flat_map(|d| &d.axes).map(|axis| axis.name.as_str()).collect();

@@ -27,6 +27,9 @@ pub fn text(prepared: &Prepared, highest: f64) -> Result<String, String> {
     let mut seen: Vec<String> = Vec::new();
     for point in &prepared.points {
         let job = &point.job;
+        if job.numerics.grid.dimensions() == 2 {
+            return Err("--continuum: needs /atom/dimensions 1".into());
+        }
         let atom = format!("{:?}", job.problem.potential);
         if seen.contains(&atom) {
             continue;

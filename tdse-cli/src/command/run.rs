@@ -132,7 +132,8 @@ impl<'a> Work<'a> {
     fn compute(&self, before: &[Standing]) -> Result<(), Trouble> {
         let retry = if self.effort.retry { Retry::Failed } else { Retry::Never };
         let tasks = tasks(&self.prepared, &self.ledger, before, self.effort.shard, retry);
-        let jobs = at_once(machine::jobs(self.effort.jobs), &tasks);
+        let threads = machine::jobs(self.effort.jobs);
+        let jobs = at_once(threads, &tasks);
         self.reporter.tell(&Event::Began {
             version: env!("CARGO_PKG_VERSION"),
             process: process_mark(),
@@ -145,7 +146,7 @@ impl<'a> Work<'a> {
         self.remark_on(before, retry);
         let (prepared, ledger, reporter, stop) = (&self.prepared, &self.ledger, &self.reporter, &self.stop);
         let shared = Shared { prepared, ledger, reporter, stop, atoms: crate::scan::atoms::Atoms::new() };
-        run::run(&shared, &tasks, jobs).map_err(Trouble::incomplete)
+        run::run(&shared, &tasks, jobs, threads).map_err(Trouble::incomplete)
     }
 
     /// Says what was found before computing starts.

@@ -3,9 +3,10 @@
 use std::fmt::Write as _;
 
 use tdse_core::potential::Potential;
-use tdse_core::stationary::{StationaryError, bound_states, count_below, level};
+use tdse_core::stationary::{StationaryError, bound_states, count_below, level, plane_level, plane_states};
 use tdse_core::units::HARTREE_EV;
 
+use crate::scan::levels::state_name;
 use crate::scan::prepare::{Point, Prepared};
 use crate::text::Table;
 
@@ -36,14 +37,14 @@ pub fn text(prepared: &Prepared) -> Result<String, StationaryError> {
 }
 
 fn atom(point: &Point) -> Result<String, StationaryError> {
+    if point.job.numerics.grid.dimensions() == 2 {
+        return on_plane(point);
+    }
     let (potential, grid) = (&point.job.problem.potential, point.job.numerics.grid);
     let half = 0.5 * grid.x.extent();
     let count = if potential.is_confining() { MOST } else { count_below(potential, 0.0, half).min(MOST) };
     let on_grid = bound_states(potential, &grid, count.max(point.job.states()))?;
-    let mut out = String::new();
-    if let Potential::SoftCoulomb { softening, .. } | Potential::Screened { softening, .. } = potential {
-        let _ = writeln!(out, "softening {softening:.12} bohr");
-    }
+    let mut out = softening(potential);
     let mut table = Table::new();
     table.row("state", "energy / eV", "energy / hartree", "on the grid, difference / hartree");
     for (number, energy) in on_grid.energies.iter().enumerate() {
@@ -63,4 +64,28 @@ fn atom(point: &Point) -> Result<String, StationaryError> {
     }
     let _ = write!(out, "{table}");
     Ok(out)
+}
+
+fn softening(potential: &Potential) -> String {
+    match potential {
+        Potential::SoftCoulomb { softening, .. } | Potential::Screened { softening, .. } => {
+            format!("softening {softening:.12} bohr\n")
+        }
+        _ => String::new(),
+    }
+}
+
+/// The states that the run lists, by symmetry.
+fn on_plane(point: &Point) -> Result<String, StationaryError> {
+    let job = &point.job;
+    let (potential, grid) = (&job.problem.potential, job.numerics.grid);
+    let mut table = Table::new();
+    table.row("state", "energy / eV", "energy / hartree", "on the grid, difference / hartree");
+    for state in plane_states(potential, &grid, &job.labels)? {
+        let free = plane_level(potential, state.label)?.energy;
+        let ev = format!("{:.8}", free * HARTREE_EV);
+        let difference = format!("{:+.1e}", state.energy - free);
+        table.row(&state_name(state.label), ev, &format!("{free:.12}"), &difference);
+    }
+    Ok(format!("{}{table}", softening(potential)))
 }

@@ -4,7 +4,7 @@ use tdse_core::choose::Pins;
 use tdse_core::elements::Element;
 use tdse_core::field::Field;
 use tdse_core::potential::Potential;
-use tdse_core::problem::{ElectronMethod, InitialState, Record};
+use tdse_core::problem::{ElectronMethod, InitialState, PlaneLabel, Record};
 use tdse_core::spectrum::Window;
 
 use super::raw;
@@ -64,12 +64,14 @@ pub struct AtomRequest {
     pub dimensions: usize,
     /// Potential energy.
     pub potential: AtomPotential,
-    /// State before the field.
+    /// State before the field; in two dimensions its numbers count `labels`.
     pub initial: InitialState,
+    /// The states of two dimensions that it names; empty in one.
+    pub labels: Vec<PlaneLabel>,
 }
 
 impl AtomRequest {
-    /// Number of the state whose binding energy tunes the softening: of a superposition the lowest member.
+    /// Number of the state of one dimension whose binding energy tunes the softening: of a superposition the lowest member.
     pub fn tuned_state(&self) -> usize {
         self.initial.lowest()
     }

@@ -45,6 +45,9 @@ pub fn text(resolved: &Value) -> String {
 }
 
 fn atom(atom: &mut raw::Atom, tuned: Option<f64>) {
+    if atom.dimensions == 2 {
+        name_symmetries(&mut atom.state);
+    }
     atom.element = None;
     atom.ionization_energy = None;
     if let raw::Potential::SoftCoulomb { softening, .. } | raw::Potential::Screened { softening, .. } =
@@ -52,6 +55,23 @@ fn atom(atom: &mut raw::Atom, tuned: Option<f64>) {
         && softening.is_none()
     {
         *softening = tuned.map(|a| Length(spelled(a, Quantity::Length, "au")));
+    }
+}
+
+/// States without a symmetry have no angular momentum.
+fn name_symmetries(state: &mut raw::State) {
+    let name = |angular_momentum: &mut Option<i32>, parity: Option<raw::Parity>| {
+        if parity.is_none() {
+            angular_momentum.get_or_insert(0);
+        }
+    };
+    match state {
+        raw::State::Single { angular_momentum, parity_x, .. } => name(angular_momentum, *parity_x),
+        raw::State::Superposition { terms, .. } => {
+            for term in terms {
+                name(&mut term.angular_momentum, term.parity_x);
+            }
+        }
     }
 }
 
@@ -82,13 +102,20 @@ fn numerics(written: &mut raw::Numerics, chosen: &Numerics) {
         Gauge::Length => raw::Gauge::Length,
         Gauge::Velocity => raw::Gauge::Velocity,
     });
-    written.absorber = Some(absorber(written.absorber.take(), chosen.absorber));
+    let mut edges = absorber(written.absorber.take(), chosen.absorber);
+    if let (raw::Absorber::Smooth { shape, .. }, 2) = (&mut edges, chosen.grid.dimensions()) {
+        *shape = Some(match chosen.absorber {
+            Absorber::Round { .. } => raw::Shape::Round,
+            Absorber::Smooth { .. } | Absorber::None => raw::Shape::Sides,
+        });
+    }
+    written.absorber = Some(edges);
     written.common = false;
 }
 
 fn absorber(written: Option<raw::Absorber>, chosen: Absorber) -> raw::Absorber {
     let (note, mut width) = match written {
-        Some(raw::Absorber::Smooth { note, width }) => (note, width),
+        Some(raw::Absorber::Smooth { note, width, .. }) => (note, width),
         Some(raw::Absorber::None { note }) => (note, None),
         None => (None, None),
     };
@@ -96,7 +123,7 @@ fn absorber(written: Option<raw::Absorber>, chosen: Absorber) -> raw::Absorber {
         Absorber::None => raw::Absorber::None { note },
         Absorber::Smooth { width: value } | Absorber::Round { width: value } => {
             length(&mut width, value);
-            raw::Absorber::Smooth { note, width }
+            raw::Absorber::Smooth { note, width, shape: None }
         }
     }
 }

@@ -1,20 +1,22 @@
 //! What a run recorded.
 
 use ndarray::Array2;
+use num_complex::Complex;
 use tdse_core::field::Pulse;
+use tdse_core::grid::{Grid, Transform};
 use tdse_core::problem::InitialState;
 use tdse_core::quantities::classical_cutoff;
 use tdse_core::simulate::{Atom, Plan, State};
 use tdse_core::spectrum::twice_integrated;
-use tdse_core::stationary::ScatteringStates;
+use tdse_core::stationary::{RoundStates, ScatteringStates};
 
 use super::electrons::electrons;
-use super::{doubts, electronvolts, femtoseconds, volt_seconds_per_metre, volts_per_metre};
+use super::{
+    components, doubts, electronvolts, femtoseconds, plane, volt_seconds_per_metre, volts_per_metre,
+};
+use crate::scan::levels::{LEVELS, state_name};
 use crate::scan::prepare::Point;
 use crate::store::{Contents, Provenance};
-
-/// Bound states listed after the field; where an atom has fewer, NaN stands for them.
-const LEVELS: usize = 10;
 
 /// A run at its end, with what it was made of.
 #[derive(Clone, Copy, Debug)]
@@ -27,8 +29,10 @@ pub struct Finished<'a> {
     pub plan: &'a Plan,
     /// Its last state.
     pub state: &'a State,
-    /// Scattering states, where electrons are asked for.
+    /// Scattering states, where electrons are asked for; in one dimension.
     pub continuum: Option<&'a ScatteringStates>,
+    /// Every bound state; in two dimensions.
+    pub round: Option<&'a RoundStates>,
 }
 
 /// Field, dynamics, populations, electrons and headline numbers of a finished run.
@@ -36,17 +40,19 @@ pub struct Finished<'a> {
 /// # Panics
 /// If the run is not finished.
 pub fn record(finished: &Finished, provenance: Provenance) -> Contents {
-    let Finished { point, atom, plan, state, continuum } = *finished;
+    let Finished { point, atom, plan, state, continuum, .. } = *finished;
     assert_eq!(state.series.norm.len(), plan.schedule().steps + 1, "the run is finished");
     let mut contents = Contents::new(provenance);
-    field(&mut contents, plan);
+    field(&mut contents, point, plan);
     dynamics(&mut contents, point, atom, plan, state);
     populations(&mut contents, point, atom, plan, state);
-    let bound = levels(&mut contents, point, atom, plan, state);
+    let bound = levels(&mut contents, finished);
     summary(&mut contents, point, atom, state, bound);
-    doubts::put(&mut contents, &doubts::of_run(point, plan, state));
-    if let (Some(continuum), Some(asked)) = (continuum, point.job.electrons()) {
-        electrons(&mut contents, finished, continuum, asked, bound);
+    doubts::put(&mut contents, &doubts::of_run(point, plan, state, bound));
+    match (continuum, point.job.electrons()) {
+        (Some(continuum), Some(asked)) => electrons(&mut contents, finished, continuum, asked, bound),
+        (None, Some((_, axis))) => plane::electrons(&mut contents, finished, axis, bound),
+        (_, None) => {}
     }
     contents
 }
@@ -55,37 +61,76 @@ fn times(plan: &Plan) -> Vec<f64> {
     plan.schedule().times().into_iter().map(femtoseconds).collect()
 }
 
-fn field(contents: &mut Contents, plan: &Plan) {
+fn field(contents: &mut Contents, point: &Point, plan: &Plan) {
+    let dimensions = begin_vectors(contents, "field", point);
     contents.insert("field", "time", times(plan));
-    let electric: Vec<f64> = plan.electric_field().iter().map(|e| volts_per_metre(e[0])).collect();
-    contents.insert("field", "electric_field", electric);
-    let potential: Vec<f64> = plan.vector_potential().iter().map(|a| volt_seconds_per_metre(a[0])).collect();
-    contents.insert("field", "vector_potential", potential);
+    let electric = plan.electric_field().into_iter().map(|e| e.map(volts_per_metre)).collect::<Vec<_>>();
+    contents.insert("field", "electric_field", components(electric.into_iter(), dimensions));
+    let potential = plan.vector_potential().iter().map(|a| a.map(volt_seconds_per_metre));
+    contents.insert("field", "vector_potential", components(potential, dimensions));
+}
+
+/// Puts the axis of components in where there are two; the number of dimensions.
+fn begin_vectors(contents: &mut Contents, group: &str, point: &Point) -> usize {
+    let dimensions = point.job.numerics.grid.dimensions();
+    if dimensions == 2 {
+        contents.insert(group, "component", vec![0i64, 1]);
+    }
+    dimensions
 }
 
 /// d²d/dt² = ⟨∇V⟩ + E(t) N(0), and the dipole from it.
 fn dynamics(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
     let (series, grid) = (&state.series, point.job.numerics.grid);
     let norm = series.norm[0];
-    let acceleration: Vec<f64> =
-        series.gradient.iter().zip(plan.electric_field()).map(|(g, e)| g[0] + e[0] * norm).collect();
+    let both = series.gradient.iter().zip(plan.electric_field());
+    let acceleration: Vec<[f64; 2]> = both.map(|(g, e)| [0, 1].map(|d| g[d] + e[d] * norm)).collect();
     let start = atom.wave_function(&point.job.problem.initial);
-    let (dipole, velocity) = start_of_dipole(&start, grid.x, grid.cell());
-    let step = plan.schedule().time_step;
+    let begun = start_of_dipole(&start, &grid);
+    let along = |d: usize| {
+        let component: Vec<f64> = acceleration.iter().map(|a| a[d]).collect();
+        twice_integrated(&component, plan.schedule().time_step, begun[d][0], begun[d][1])
+    };
+    let dimensions = begin_vectors(contents, "dynamics", point);
+    let second = if dimensions == 2 { along(1) } else { vec![0.0; acceleration.len()] };
+    let dipole: Vec<[f64; 2]> = along(0).into_iter().zip(second).map(|(x, y)| [x, y]).collect();
     contents.insert("dynamics", "time", times(plan));
-    contents.insert("dynamics", "dipole", twice_integrated(&acceleration, step, dipole, velocity));
-    contents.insert("dynamics", "dipole_acceleration", acceleration);
+    contents.insert("dynamics", "dipole", components(dipole.into_iter(), dimensions));
+    contents.insert("dynamics", "dipole_acceleration", components(acceleration.into_iter(), dimensions));
     contents.insert("dynamics", "norm", series.norm.clone());
 }
 
-/// d = -⟨x⟩ and dd/dt = -⟨p⟩ of a wave function, A = 0.
-fn start_of_dipole(psi: &[num_complex::Complex<f64>], axis: tdse_core::grid::Axis, cell: f64) -> (f64, f64) {
-    let position: f64 = psi.iter().zip(axis.positions()).map(|(p, x)| p.norm_sqr() * x).sum();
-    let transform = tdse_core::grid::Transform::new(psi.len());
-    let mut waves = psi.to_vec();
-    transform.forward(&mut waves, &mut transform.make_scratch());
-    let momentum: f64 = waves.iter().zip(axis.momenta()).map(|(p, k)| p.norm_sqr() * k).sum();
-    (-position * cell, -momentum * cell / psi.len() as f64)
+/// d = -⟨r⟩ and dd/dt = -⟨p⟩ of a wave function along x and y, A = 0.
+fn start_of_dipole(psi: &[Complex<f64>], grid: &Grid) -> [[f64; 2]; 2] {
+    let nx = grid.x.points;
+    let (mut along_x, mut along_y) = ([0.0; 2], [0.0; 2]);
+    let transform = Transform::new(nx);
+    let (mut scratch, mut waves) = (transform.make_scratch(), vec![Complex::default(); nx]);
+    let momenta: Vec<f64> = grid.x.momenta().collect();
+    for row in psi.chunks_exact(nx) {
+        waves.copy_from_slice(row);
+        transform.forward(&mut waves, &mut scratch);
+        for (i, (p, w)) in row.iter().zip(&waves).enumerate() {
+            along_x[0] -= p.norm_sqr() * grid.x.position(i) * grid.cell();
+            along_x[1] -= w.norm_sqr() * momenta[i] * grid.cell() / nx as f64;
+        }
+    }
+    if let Some(y) = grid.y {
+        let transform = Transform::new(y.points);
+        let mut scratch = transform.make_scratch();
+        let mut column = vec![Complex::default(); y.points];
+        let momenta: Vec<f64> = y.momenta().collect();
+        for x in 0..nx {
+            for (j, c) in column.iter_mut().enumerate() {
+                *c = psi[j * nx + x];
+                along_y[0] -= c.norm_sqr() * y.position(j) * grid.cell();
+            }
+            transform.forward(&mut column, &mut scratch);
+            let momentum: f64 = column.iter().zip(&momenta).map(|(c, k)| c.norm_sqr() * k).sum();
+            along_y[1] -= momentum * grid.cell() / y.points as f64;
+        }
+    }
+    [along_x, along_y]
 }
 
 fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) {
@@ -94,12 +139,15 @@ fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan,
     let samples = series.population_steps.len();
     let numbers: Vec<i64> = (0..count as i64).collect();
     let times: Vec<f64> = series.population_steps.iter().map(|&n| femtoseconds(schedule.time(n))).collect();
-    let energies: Vec<f64> = atom.bound.energies[..count].iter().map(|&e| electronvolts(e)).collect();
+    let energies: Vec<f64> = energies(atom)[..count].iter().map(|&e| electronvolts(e)).collect();
     contents.insert("populations", "time", times);
     contents.insert("populations", "initial_population", series.initial_population.clone());
     contents.remark("populations", "gauge", "length");
     if count == 0 {
         return;
+    }
+    if !atom.plane.is_empty() {
+        contents.remark("populations", "states", &state_names(atom, count));
     }
     contents.insert("populations", "state", numbers);
     contents.insert("populations", "energy", energies);
@@ -108,17 +156,44 @@ fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan,
 }
 
 /// Bound states after the field by level; returns the population of all of them.
-fn levels(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan, state: &State) -> f64 {
-    let populations = plan.populations(state, &atom.bound);
+fn levels(contents: &mut Contents, finished: &Finished) -> f64 {
+    let Finished { point, atom, plan, state, round, .. } = *finished;
     let confining = point.job.problem.potential.is_confining();
-    let all = atom.bound.energies.iter().zip(&populations);
-    let bound: Vec<_> = all.filter(|(energy, _)| confining || **energy < 0.0).collect();
-    let level = |n: usize| bound.get(n).map_or((f64::NAN, f64::NAN), |(e, p)| (electronvolts(**e), **p));
+    let cell = point.job.numerics.grid.cell();
+    let populations = if atom.plane.is_empty() {
+        plan.populations(state, &atom.bound)
+    } else {
+        let mut psi = vec![Complex::default(); point.job.numerics.grid.len()];
+        plan.wave_function(state, &mut psi);
+        contents.remark("levels", "states", &state_names(atom, LEVELS));
+        atom.plane.iter().map(|bound| bound.overlap(&psi, cell).norm_sqr()).collect()
+    };
+    let all = energies(atom).into_iter().zip(populations);
+    let bound: Vec<_> = all.filter(|(energy, _)| confining || *energy < 0.0).collect();
+    let level = |n: usize| bound.get(n).map_or((f64::NAN, f64::NAN), |(e, p)| (electronvolts(*e), *p));
     let (energies, populations): (Vec<_>, Vec<_>) = (0..LEVELS).map(level).unzip();
     contents.insert("levels", "state", (0..LEVELS as i64).collect::<Vec<_>>());
     contents.insert("levels", "energy", energies);
     contents.insert("levels", "population", populations);
-    if confining { state.series.norm[state.step] } else { bound.iter().map(|(_, p)| *p).sum() }
+    match round {
+        _ if confining => state.series.norm[state.step],
+        None => bound.iter().map(|(_, p)| *p).sum(),
+        Some(round) => {
+            let all = plan.round_populations(state, round, &mut plan.make_workspace());
+            all.iter().map(|(_, p)| *p).sum()
+        }
+    }
+}
+
+/// Energies of the atom's bound states on its grid, hartree.
+fn energies(atom: &Atom) -> Vec<f64> {
+    atom.bound.energies.iter().copied().chain(atom.plane.iter().map(|state| state.energy)).collect()
+}
+
+/// What the first states of two dimensions are.
+fn state_names(atom: &Atom, count: usize) -> String {
+    let named = atom.plane.iter().take(count).enumerate();
+    named.map(|(n, state)| format!("{n}: {}", state_name(state.label))).collect::<Vec<_>>().join("; ")
 }
 
 fn summary(contents: &mut Contents, point: &Point, atom: &Atom, state: &State, total: f64) {
@@ -126,9 +201,11 @@ fn summary(contents: &mut Contents, point: &Point, atom: &Atom, state: &State, t
     contents.insert(
         "summary",
         "initial_energy",
-        electronvolts(mean_energy(&point.job.problem.initial, &atom.bound.energies)),
+        electronvolts(mean_energy(&point.job.problem.initial, &energies(atom))),
     );
-    contents.insert("summary", "classical_cutoff", classical(point));
+    let is_linear = point.job.problem.field.pulses.iter().all(|pulse| pulse.ellipticity == 0.0);
+    let law = if is_linear { classical_law(point).map_or(f64::NAN, electronvolts) } else { f64::NAN };
+    contents.insert("summary", "classical_cutoff", law);
     let pulses = &point.job.problem.field.pulses;
     contents.insert("summary", "ponderomotive_energy", electronvolts(ponderomotive(pulses)));
     let photon = pulses.first().map_or(f64::NAN, |pulse| electronvolts(pulse.frequency));
@@ -156,12 +233,9 @@ fn ponderomotive(pulses: &[Pulse]) -> f64 {
     0.25 * potential * potential
 }
 
-/// Ip + 3.17 Up, eV; NaN where nothing is bound or no pulse is there.
-fn classical(point: &Point) -> f64 {
+/// Ip + 3.17 Up, hartree; none where nothing is bound or no pulse is there.
+pub(super) fn classical_law(point: &Point) -> Option<f64> {
     let pulses = &point.job.problem.field.pulses;
     let energy = point.facts.ionization_energy();
-    if energy <= 0.0 || pulses.is_empty() {
-        return f64::NAN;
-    }
-    electronvolts(classical_cutoff(energy, ponderomotive(pulses)))
+    (energy > 0.0 && !pulses.is_empty()).then(|| classical_cutoff(energy, ponderomotive(pulses)))
 }

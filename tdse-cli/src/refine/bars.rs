@@ -9,10 +9,16 @@ use crate::store::Contents;
 pub(super) const YIELD_FLOOR: f64 = 1e-22;
 /// Electron peaks below this part of the largest do not count in the median.
 pub(super) const ELECTRON_FLOOR: f64 = 1e-8;
-/// What has no bar: a phase is known up to full turns, the norm in the box is the box's own, and the others follow from
+/// What has no bar: a phase is known up to full turns, an orientation up to half ones, the norm in the box is the box's own, and the others follow from
 /// the request alone.
-const WITHOUT: [&str; 5] =
-    ["spectral_phase", "ponderomotive_energy", "first_photon_energy", "classical_cutoff", "final_norm"];
+const WITHOUT: [&str; 6] = [
+    "spectral_phase",
+    "harmonic_orientation",
+    "ponderomotive_energy",
+    "first_photon_energy",
+    "classical_cutoff",
+    "final_norm",
+];
 /// The knee is searched in steps of a tenth of a photon: a cutoff is not known better than half of that.
 const KNEE: f64 = 0.05;
 
@@ -94,6 +100,8 @@ fn neighbours(contents: &Contents, place: Place) -> Neighbours {
     match place.group {
         "harmonics" => half_photon("photon_energy"),
         "photoelectrons" => half_photon("energy"),
+        // A map has neighbours in two directions.
+        "momentum" if contents.get("momentum", "momentum_x").is_some() => Neighbours::None,
         "harmonic_yields" | "momentum" => Neighbours::Within(2),
         _ => Neighbours::None,
     }

@@ -45,6 +45,9 @@ impl ModelPlan {
         let mut names = vec!["as asked".to_owned()];
         for &index in &repeated {
             let point = &prepared.points[index];
+            if point.job.numerics.grid.dimensions() == 2 {
+                return Err("/atom/dimensions: 2 has no other model atoms in this version; allowed: 1".into());
+            }
             if point.job.problem.initial != InitialState::Single(0) {
                 return Err(format!(
                     "/atom/state: {} is no ground state; allowed: the ground state, which other model atoms can share",

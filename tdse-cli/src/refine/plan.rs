@@ -153,7 +153,10 @@ fn spelled(key: &str, numerics: &Numerics, base: &Numerics, written: &Value) -> 
         _ => match numerics.absorber {
             Absorber::None => json!({ "kind": "none" }),
             Absorber::Smooth { width } | Absorber::Round { width } => {
-                json!({ "kind": "smooth", "width": format!("{} au", short(width)) })
+                // In the words of the point but for the width: it keeps its shape.
+                let mut edges = written.clone();
+                edges["width"] = json!(format!("{} au", short(width)));
+                edges
             }
         },
     }

@@ -17,9 +17,9 @@ pub struct HarmonicPicture<'a> {
     pub title: &'a str,
     /// Photon energy in eV, rising.
     pub photon_energy: &'a [f64],
-    /// Spectrum in the unit that `quantity` names.
-    pub spectrum: &'a [f64],
-    /// Error bars of the spectrum; empty where there are none.
+    /// Spectra in the unit that `quantity` names, each with its name; empty where there is only one.
+    pub spectra: &'a [(&'a str, &'a [f64])],
+    /// Error bars of the first spectrum; empty where there are none.
     pub errors: &'a [f64],
     /// Name of the spectrum with unit, such as `|a(ω)|² (a.u.)`.
     pub quantity: &'a str,
@@ -35,12 +35,12 @@ pub struct HarmonicPicture<'a> {
 
 /// Draws the spectrum as SVG: logarithmic, photon energy below, harmonic order above.
 pub fn draw(picture: &HarmonicPicture<'_>) -> String {
-    let curve = Curve {
-        name: Cow::Borrowed(""),
+    let curves = picture.spectra.iter().map(|(name, spectrum)| Curve {
+        name: Cow::Borrowed(*name),
         x: Cow::Borrowed(picture.photon_energy),
-        y: Cow::Borrowed(picture.spectrum),
+        y: Cow::Borrowed(*spectrum),
         trace: Trace::Line,
-    };
+    });
     let marks = [
         (picture.cutoff_law, "cutoff law", Origin::Law),
         (picture.measured_cutoff, "cutoff measured", Origin::Measured),
@@ -52,7 +52,7 @@ pub fn draw(picture: &HarmonicPicture<'_>) -> String {
     let panel = Panel {
         marks: marks.collect(),
         band: (!picture.errors.is_empty()).then_some(band),
-        ..Panel::new(picture.quantity, Up::Decades(DECADES), vec![curve])
+        ..Panel::new(picture.quantity, Up::Decades(DECADES), curves.collect())
     };
     draw_figure(&Figure {
         title: picture.title,

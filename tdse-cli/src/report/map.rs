@@ -3,12 +3,13 @@
 
 use super::axes::{Frame, Side, TEXT, TICK, axis, widest, words};
 use super::font::{Weight, width};
-use super::palette::{HAIR, SHADES, SOFT, shade};
+use super::palette::{HAIR, INK, PAPER, SHADES, SOFT, shade};
 use super::parameter::{Axis, Band, Values, bands};
 use super::scale::{Kind, Range, Scale};
 use super::sheet::{EDGE, Sheet, WIDTH};
 use super::svg::{Anchor, Lettering, Stroke, Svg};
 use super::ticks::{Ticks, ticks};
+use super::trace::trace;
 use std::fmt::Write as _;
 
 /// Most cells along a row and a column; finer data are averaged.
@@ -44,20 +45,51 @@ pub enum Shading {
     Decades(f64),
 }
 
+/// A line over a map, in the values of its axes.
+#[derive(Debug, Clone, Copy)]
+pub struct Over<'a> {
+    /// Values along the axis below.
+    pub x: &'a [f64],
+    /// Values along the axis at the left.
+    pub y: &'a [f64],
+}
+
+/// How high the frame is.
+#[derive(Debug, Clone, Copy)]
+enum Height {
+    /// So many user units.
+    Fixed(f64),
+    /// As the axis at the left is to the one below.
+    ToScale,
+}
+
 /// Draws the map as SVG.
 pub fn draw(map: &Map<'_>) -> String {
+    draw_whole(map, Height::Fixed(HEIGHT), None)
+}
+
+/// Draws the map with the same scale along both axes, which are even, and a line over it.
+pub fn draw_square(map: &Map<'_>, over: Option<Over<'_>>) -> String {
+    draw_whole(map, Height::ToScale, over)
+}
+
+fn draw_whole(map: &Map<'_>, height: Height, over: Option<Over<'_>>) -> String {
     let mut sheet = Sheet::new(map.title);
     sheet.names(&map.up.label(), &map.name, WIDTH - EDGE);
     sheet.y += 12.0;
-    let frame = Frame { left: EDGE, right: WIDTH - EDGE, top: sheet.y, bottom: sheet.y + HEIGHT };
-    sheet.y = frame.bottom + 20.0;
     let planned = bands(&map.across, MOST.0).zip(bands(&map.up, MOST.1)).zip(shades(map));
     if let Some(((across, up), shades)) = planned {
-        shaded(&mut sheet, map, (&across, &up), shades, frame);
-    } else {
-        let middle = (WIDTH / 2.0, f64::midpoint(frame.top, frame.bottom));
-        sheet.svg.text(middle, "no data", Lettering::new(TEXT, Anchor::Middle));
+        let frame = shaded(&mut sheet, map, (&across, &up), shades, height);
+        if let Some(over) = over {
+            line_over(&mut sheet.svg, over, (across.0, up.0), frame);
+        }
+        sheet.y = frame.bottom + 20.0;
         sheet.lower_name(&map.across.label(), frame.right);
+    } else {
+        let middle = (WIDTH / 2.0, sheet.y + 0.5 * HEIGHT);
+        sheet.svg.text(middle, "no data", Lettering::new(TEXT, Anchor::Middle));
+        sheet.y += HEIGHT + 20.0;
+        sheet.lower_name(&map.across.label(), WIDTH - EDGE);
     }
     sheet.notes(&map.notes);
     sheet.finish()
@@ -74,15 +106,38 @@ fn shades(map: &Map<'_>) -> Option<Scale> {
     Some(Scale::new(kind, range, 0.0, 1.0))
 }
 
-fn shaded(sheet: &mut Sheet, map: &Map<'_>, (across, up): (&Bands, &Bands), shades: Scale, outer: Frame) {
+/// A line with a pale rim, so that it is seen on every shade.
+fn line_over(svg: &mut Svg, over: Over<'_>, (across, up): (Range, Range), frame: Frame) {
+    let across = Scale::new(Kind::Linear, across, frame.left, frame.right);
+    let up = Scale::new(Kind::Linear, up, frame.bottom, frame.top);
+    let pieces = trace(over.x, over.y, across, up, frame);
+    svg.open("over");
+    for stroke in [Stroke::solid(PAPER, 3.4), Stroke::solid(INK, 1.3)] {
+        for piece in &pieces {
+            svg.trace(piece, stroke);
+        }
+    }
+    svg.close();
+}
+
+fn shaded(
+    sheet: &mut Sheet,
+    map: &Map<'_>,
+    (across, up): (&Bands, &Bands),
+    shades: Scale,
+    height: Height,
+) -> Frame {
     let kind = if matches!(map.shading, Shading::Linear) { Kind::Linear } else { Kind::Log };
     let bar_ticks = ticks(kind, shades.range(), 8);
     let up_ticks = axis_ticks(&map.up, up.0, 8, 110.0);
-    let frame = Frame {
-        left: outer.left + widest(&up_ticks) + 1.7 * TICK,
-        right: outer.right - widest(&bar_ticks) - 1.7 * TICK - BAR - 14.0,
-        ..outer
+    let left = EDGE + widest(&up_ticks) + 1.7 * TICK;
+    let right = WIDTH - EDGE - widest(&bar_ticks) - 1.7 * TICK - BAR - 14.0;
+    let length = |range: &Range| range.high - range.low;
+    let height = match height {
+        Height::Fixed(height) => height,
+        Height::ToScale => (right - left) * length(&up.0) / length(&across.0),
     };
+    let frame = Frame { left, right, top: sheet.y, bottom: sheet.y + height };
     sheet.svg.rectangle((frame.left, frame.top), (frame.right, frame.bottom), shade(0));
     let rows: Vec<Row> = up.1.iter().map(|band| row(map, band, &across.1, shades)).collect();
     cells(&mut sheet.svg, &rows, frame);
@@ -97,7 +152,7 @@ fn shaded(sheet: &mut Sheet, map: &Map<'_>, (across, up): (&Bands, &Bands), shad
     axis(&mut sheet.svg, frame, Side::Left, left, &up_ticks);
     let bar = Frame { left: frame.right + 14.0, right: frame.right + 14.0 + BAR, ..frame };
     colour_bar(&mut sheet.svg, bar, Scale::new(kind, shades.range(), bar.bottom, bar.top), &bar_ticks);
-    sheet.lower_name(&map.across.label(), frame.right);
+    frame
 }
 
 fn axis_ticks(axis: &Axis<'_>, range: Range, wanted: usize, room: f64) -> Ticks {

@@ -1,7 +1,7 @@
 //! Pictures (SVG, and PNG of the same drawing) and the self-contained page. Draws only, computes no physics.
 //!
-//! Every picture is a pure function of plain data in file units: [`harmonics`], [`electrons`], [`field`],
-//! [`time_frequency`], [`populations`] and [`scan`], built on the line picture [`figure`] and the shaded picture [`map`]. Lines, letters
+//! Every picture is a pure function of plain data in file units: [`harmonics`], [`electrons`], [`field`], [`lissajous`],
+//! [`momentum_map`], [`time_frequency`], [`populations`] and [`scan`], built on the line picture [`figure`] and the shaded picture [`map`]. Lines, letters
 //! and axes are drawn by a small module of our own ([`svg`], [`axes`]): it measures letters in the very font the PNG
 //! uses, so that nothing overlaps, sets true superscripts, and lets a second axis count multiples of the first.
 //!
@@ -16,7 +16,9 @@ pub mod figure;
 pub mod font;
 pub mod gallery;
 pub mod harmonics;
+pub mod lissajous;
 pub mod map;
+pub mod momentum_map;
 pub mod number;
 pub mod page;
 pub mod palette;

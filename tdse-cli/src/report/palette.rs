@@ -10,6 +10,8 @@ use std::sync::OnceLock;
 
 /// Text, axes and marks.
 pub const INK: &str = "#1b2330";
+/// The rim of a line over a map.
+pub const PAPER: &str = "#ffffff";
 /// Secondary text.
 pub const SOFT: &str = "#566070";
 /// Error bands under a curve.

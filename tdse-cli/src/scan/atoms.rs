@@ -4,7 +4,7 @@ use std::collections::HashMap;
 use std::sync::{Arc, Mutex, OnceLock, PoisonError};
 
 use tdse_core::simulate::Atom;
-use tdse_core::stationary::{NoContinuum, ScatteringStates, StationaryError};
+use tdse_core::stationary::{NoContinuum, RoundStates, ScatteringStates, StationaryError};
 
 use super::prepare::Job;
 
@@ -14,8 +14,9 @@ type Slots<T, E> = Mutex<HashMap<String, Slot<T, E>>>;
 /// Atoms by potential, grid and number of states, and their scattering states; safe to share between threads, which wait for one another.
 #[derive(Debug, Default)]
 pub struct Atoms {
-    atoms: Slots<Atom, StationaryError>,
+    on_grids: Slots<Atom, StationaryError>,
     continua: Slots<ScatteringStates, NoContinuum>,
+    round: Slots<RoundStates, StationaryError>,
 }
 
 impl Atoms {
@@ -29,11 +30,14 @@ impl Atoms {
     /// # Errors
     /// As [`Atom::new`].
     pub fn get(&self, job: &Job) -> Result<Arc<Atom>, StationaryError> {
-        let states = job.states();
+        let (potential, grid, states) = (&job.problem.potential, &job.numerics.grid, job.states());
         // Debug output spells every number with all its digits.
-        let key = format!("{:?} {:?} {states}", job.problem.potential, job.numerics.grid);
-        let make = || Atom::new(&job.problem.potential, &job.numerics.grid, states);
-        slot(&self.atoms, key).get_or_init(|| make().map(Arc::new)).clone()
+        let key = format!("{potential:?} {grid:?} {states} {:?}", job.labels);
+        let make = || match grid.dimensions() {
+            1 => Atom::new(potential, grid, states),
+            _ => Atom::on_plane(potential, grid, &job.labels),
+        };
+        slot(&self.on_grids, key).get_or_init(|| make().map(Arc::new)).clone()
     }
 
     /// Its scattering states.
@@ -44,6 +48,16 @@ impl Atoms {
         let (potential, axis) = (&job.problem.potential, job.numerics.grid.x);
         let make = || ScatteringStates::new(potential, axis);
         slot(&self.continua, format!("{potential:?} {axis:?}")).get_or_init(|| make().map(Arc::new)).clone()
+    }
+
+    /// Every bound state it has in two dimensions.
+    ///
+    /// # Errors
+    /// As [`RoundStates::in_box`].
+    pub fn round(&self, job: &Job) -> Result<Arc<RoundStates>, StationaryError> {
+        let (potential, grid) = (&job.problem.potential, &job.numerics.grid);
+        let make = || RoundStates::in_box(potential, grid);
+        slot(&self.round, format!("{potential:?} {grid:?}")).get_or_init(|| make().map(Arc::new)).clone()
     }
 }
 

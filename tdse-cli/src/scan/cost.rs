@@ -1,9 +1,12 @@
 //! What a point costs: steps, memory, and time on one core.
 
+use num_complex::Complex;
+
 use super::electrons::energies;
 use super::prepare::Job;
+use super::run::machine;
 use tdse_core::choose::{electron_bytes, electron_work};
-use tdse_core::simulate::Schedule;
+use tdse_core::simulate::{Held, Load, Memory, Schedule};
 use tdse_core::stationary::count_below;
 
 /// Nanoseconds per point, binary logarithm of the number of points, and step (two transform pairs and what goes with
@@ -28,6 +31,9 @@ pub fn cost(job: &Job) -> Cost {
     let numerics = &job.numerics;
     let grid = numerics.grid;
     let schedule = Schedule::new(&job.problem.field, numerics.time_step, numerics.trailing_time);
+    if grid.dimensions() == 2 {
+        return on_plane(job, &schedule);
+    }
     let (points, steps) = (grid.len() as f64, schedule.steps as f64);
     // ψ, scratch and factors; the bound states with their iteration; fields and series; the map.
     let states = bound(job).max(8) as f64;
@@ -41,6 +47,51 @@ pub fn cost(job: &Job) -> Cost {
     }
     let seconds = work * NANOSECONDS * 1e-9;
     Cost { steps: schedule.steps, points: grid.len(), seconds, bytes: bytes as u64 }
+}
+
+/// Estimated cost in two dimensions; its memory is counted.
+fn on_plane(job: &Job, schedule: &Schedule) -> Cost {
+    let points = job.numerics.grid.len();
+    let memory = memory_on_plane(job);
+    let kept = points / parts(job, &memory);
+    // A map is made of the whole plane, whatever part is kept.
+    let passes = kept as f64 + map_share(job) * points as f64;
+    let steps = schedule.steps as f64;
+    let bytes = memory.total() as f64 + 16.0 * map(job, steps * schedule.time_step);
+    let seconds = steps * passes * (points as f64).log2() * NANOSECONDS * 1e-9;
+    Cost { steps: schedule.steps, points, seconds, bytes: bytes as u64 }
+}
+
+/// Memory of a run in two dimensions on all cores.
+fn memory_on_plane(job: &Job) -> Memory {
+    let load = Load {
+        field: &job.problem.field,
+        numerics: &job.numerics,
+        states: Held::Plane(&job.labels),
+        initial: &job.problem.initial,
+        record: job.record,
+        map: job.map_range(),
+        threads: machine::cores(),
+    };
+    load.memory()
+}
+
+/// Into how many mirror images a plane falls, of which one is computed.
+fn parts(job: &Job, memory: &Memory) -> usize {
+    size_of::<Complex<f64>>() * job.numerics.grid.len() / memory.wave_function
+}
+
+/// Whether a run in two dimensions keeps a mirror, so that half the plane is enough.
+pub fn keeps_mirror(job: &Job) -> bool {
+    parts(job, &memory_on_plane(job)) == 2
+}
+
+/// Work of a momentum map beside that of propagating the whole plane.
+pub fn map_share(job: &Job) -> f64 {
+    job.electrons().map_or(0.0, |(method, axis)| {
+        let [propagation, map] = electron_work(&job.problem, &job.numerics, energies(axis), method);
+        map / propagation
+    })
 }
 
 /// Bound states of the run: every one below zero in its box, and as many as it names.

@@ -40,17 +40,21 @@ pub fn energies(axis: EnergyAxis) -> Energies {
 pub fn choose_all(asked: &[Asked]) -> Vec<(ElectronMethod, Choice)> {
     let ways: Vec<Vec<Way>> = asked
         .iter()
-        .map(|one| match one.pinned {
-            Some(method) => vec![way(one, method)],
-            None => METHODS.map(|method| way(one, method)).to_vec(),
+        .map(|one| match (one.pinned, one.wish.facts.dimensions) {
+            (Some(method), _) => vec![way(one, method)],
+            (None, 2) => vec![way(one, ElectronMethod::OutgoingAmplitude)],
+            (None, _) => METHODS.map(|method| way(one, method)).to_vec(),
         })
         .collect();
     let work = |i: usize| ways.iter().filter(|ways| ways.len() > 1).map(|ways| ways[i].work).sum::<f64>();
     let better = usize::from(WORTH * work(1) < work(0));
     let why = reason(METHODS[better], work(better), work(1 - better));
-    let chosen = ways.into_iter().map(|mut ways| {
-        let (index, why) =
-            if ways.len() > 1 { (better, why.as_str()) } else { (0, "pinned by the configuration") };
+    let chosen = ways.into_iter().zip(asked).map(|(mut ways, asked)| {
+        let (index, why) = match (ways.len(), asked.wish.facts.dimensions) {
+            (_, 2) => (0, "in two dimensions: a map of what the absorber takes"),
+            (1, _) => (0, "pinned by the configuration"),
+            _ => (better, why.as_str()),
+        };
         let mut way = ways.swap_remove(index);
         way.choice.reasons.push(Reason { knob: Knob::ElectronMethod, why: why.into() });
         (way.method, way.choice)

@@ -5,7 +5,10 @@ use std::collections::HashMap;
 
 use tdse_core::choose::AtomFacts;
 use tdse_core::potential::Potential;
-use tdse_core::stationary::{Softenable, StationaryError, tune_softening};
+use tdse_core::problem::PlaneLabel;
+use tdse_core::stationary::{
+    Level, Softenable, StationaryError, lowest_plane_levels, tune_plane_softening, tune_softening,
+};
 
 use crate::config::request::{AtomPotential, AtomRequest};
 
@@ -14,6 +17,7 @@ use crate::config::request::{AtomPotential, AtomRequest};
 pub struct Facts {
     tuned: HashMap<String, Result<f64, StationaryError>>,
     atoms: HashMap<String, Result<AtomFacts, StationaryError>>,
+    levels: HashMap<String, Result<Vec<(PlaneLabel, Level)>, StationaryError>>,
 }
 
 impl Facts {
@@ -36,9 +40,13 @@ impl Facts {
             None => Softenable::SoftCoulomb { charge: *charge },
             Some(screening_length) => Softenable::Screened { charge: *charge, screening_length },
         };
-        let state = atom.tuned_state();
-        let key = format!("{family:?} {state} {target:?}");
-        self.tuned.entry(key).or_insert_with(|| tune_softening(&family, state, -target)).clone().map(Some)
+        let (state, labels) = (atom.tuned_state(), &atom.labels);
+        let key = format!("{family:?} {state} {labels:?} {target:?}");
+        let tune = || match atom.dimensions {
+            1 => tune_softening(&family, state, -target),
+            _ => tune_plane_softening(&family, labels, -target),
+        };
+        self.tuned.entry(key).or_insert_with(tune).clone().map(Some)
     }
 
     /// Facts of the atom with this potential.
@@ -46,7 +54,24 @@ impl Facts {
     /// # Errors
     /// [`StationaryError::NoSuchState`] where the initial state is not bound.
     pub fn of(&mut self, potential: &Potential, atom: &AtomRequest) -> Result<AtomFacts, StationaryError> {
-        let key = format!("{potential:?} {:?}", atom.initial);
-        self.atoms.entry(key).or_insert_with(|| AtomFacts::new(potential, &atom.initial)).clone()
+        let key = format!("{potential:?} {:?} {:?}", atom.initial, atom.labels);
+        let find = || match atom.dimensions {
+            1 => AtomFacts::new(potential, &atom.initial),
+            _ => AtomFacts::on_plane(potential, &atom.labels),
+        };
+        self.atoms.entry(key).or_insert_with(find).clone()
+    }
+
+    /// The lowest levels of an atom of two dimensions; see [`lowest_plane_levels`].
+    ///
+    /// # Errors
+    /// Where one does not converge.
+    pub fn levels(
+        &mut self,
+        potential: &Potential,
+        count: usize,
+    ) -> Result<Vec<(PlaneLabel, Level)>, StationaryError> {
+        let key = format!("{potential:?} {count}");
+        self.levels.entry(key).or_insert_with(|| lowest_plane_levels(potential, count)).clone()
     }
 }

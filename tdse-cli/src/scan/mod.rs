@@ -9,6 +9,7 @@ pub mod electrons;
 pub mod facts;
 pub mod gathering;
 pub mod ledger;
+pub mod levels;
 pub mod limits;
 pub mod objections;
 pub mod points;

@@ -69,11 +69,14 @@ pub fn stationary(request: &Request, tree: &Value, error: &StationaryError) -> C
             let place = match &request.atom.initial {
                 InitialState::Single(_) => "/atom/state/number".to_owned(),
                 InitialState::Superposition(terms) => {
-                    let index = terms.iter().position(|term| term.number == *number).unwrap_or(0);
+                    let labels = &request.atom.labels;
+                    let of = |own: usize| labels.get(own).map_or(own, |label| label.number);
+                    let index = terms.iter().position(|term| of(term.number) == *number).unwrap_or(0);
                     format!("/atom/state/terms/{index}/number")
                 }
             };
-            let reason = format!("does not exist: this potential binds {bound} state(s)");
+            let such = if request.atom.dimensions == 2 { " of this symmetry" } else { "" };
+            let reason = format!("does not exist: this potential binds {bound} state(s){such}");
             let complaint = Complaint::new(&place, tree.pointer(&place), reason);
             match bound {
                 0 => complaint.allowed("a bound state").fix(Fix::Words("deepen the potential".into())),

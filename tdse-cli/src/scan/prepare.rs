@@ -3,9 +3,10 @@
 //! A point runs from its resolved text, read again, so what is computed is what the text says.
 
 use serde_json::Value;
-use tdse_core::choose::{AtomFacts, Choice, Electrons, Wish, choose, fastest_electron, strictest};
+use tdse_core::choose::{AtomFacts, Choice, Electrons, Wish, choose, fastest_electron, map_range, strictest};
+use tdse_core::outgoing::MapRange;
 use tdse_core::potential::Potential;
-use tdse_core::problem::{ElectronMethod, Numerics, Problem, Record};
+use tdse_core::problem::{ElectronMethod, Numerics, PlaneLabel, Problem, Record};
 use tdse_core::simulate::Schedule;
 use tdse_core::spectrum::EnergyAxis;
 use tdse_core::stationary::{ScatteringStates, count_below};
@@ -13,6 +14,7 @@ use tdse_core::stationary::{ScatteringStates, count_below};
 use super::defaults::{self, Scales};
 use super::electrons::{self, Asked};
 use super::facts::Facts;
+use super::levels::{LEVELS, listed};
 use super::limits;
 use super::objections;
 use super::points::{self, Axis, ScanRequest};
@@ -67,8 +69,10 @@ pub struct Point {
 /// What a resolved configuration asks for.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Job {
-    /// Atom, state and field.
+    /// Atom, state and field; in two dimensions the state counts `labels`.
     pub problem: Problem,
+    /// Bound states of two dimensions, the lowest first; empty in one.
+    pub labels: Vec<PlaneLabel>,
     /// How it is computed.
     pub numerics: Numerics,
     /// What is recorded.
@@ -86,7 +90,13 @@ pub struct Job {
 impl Job {
     /// Bound states the run needs at least.
     pub fn states(&self) -> usize {
-        (self.problem.initial.highest() + 1).max(self.record.populations)
+        self.labels.len().max(self.problem.initial.highest() + 1).max(self.record.populations)
+    }
+
+    /// Momenta that a map is taken at, where one is: in two dimensions.
+    pub fn map_range(&self) -> Option<MapRange> {
+        let (_, axis) = self.electrons().filter(|_| self.numerics.grid.dimensions() == 2)?;
+        Some(map_range(&self.problem, &self.numerics, electrons::energies(axis)))
     }
 
     /// Method and energies of the electron spectrum, where one is asked for.
@@ -105,6 +115,7 @@ struct Draft<'a> {
     facts: AtomFacts,
     choice: Choice,
     electron_method: Option<ElectronMethod>,
+    labels: Vec<PlaneLabel>,
 }
 
 impl Draft<'_> {
@@ -138,6 +149,10 @@ pub fn prepare(source: &Source, sets: &[String]) -> Result<Prepared, Complaints>
     }
     choose_electrons(&mut drafts);
     share(&mut drafts);
+    for draft in &mut drafts {
+        let listed = list_states(draft, &mut facts);
+        found.extend(listed.map(|complaint| located(complaint, draft.source)));
+    }
     found.extend(drafts.iter().filter_map(|draft| Some(located(impossible(draft)?, draft.source))));
     let mut doubts = Vec::with_capacity(drafts.len());
     for draft in &drafts {
@@ -182,8 +197,28 @@ fn draft<'a>(point: &'a points::Point, facts: &mut Facts) -> Result<Draft<'a>, C
     let problem = Problem { potential, initial: request.atom.initial.clone(), field: request.field.clone() };
     let max_photon = request.outputs.harmonics.and_then(|h| h.max_energy);
     let (pins, accuracy) = (&request.pins, request.accuracy);
-    let choice = choose(&Wish { problem: &problem, facts: &found, pins, accuracy, max_photon });
-    Ok(Draft { source: point, tree, softening, problem, facts: found, choice, electron_method: None })
+    let wish = Wish { problem: &problem, facts: &found, pins, accuracy, max_photon };
+    let choice = choose(&wish);
+    let (electron_method, labels) = (None, Vec::new());
+    Ok(Draft { source: point, tree, softening, problem, facts: found, choice, electron_method, labels })
+}
+
+/// Lists the states of an atom of two dimensions, now that its box is known; a complaint where some are not there.
+fn list_states(draft: &mut Draft, facts: &mut Facts) -> Option<Complaint> {
+    let request = &draft.source.request;
+    if request.atom.dimensions == 1 {
+        return None;
+    }
+    let (potential, asked) = (&draft.problem.potential, request.record.populations);
+    let levels = match facts.levels(potential, asked.max(LEVELS)) {
+        Ok(levels) => levels,
+        Err(error) => return Some(objections::stationary(request, &draft.tree, &error)),
+    };
+    let half = 0.5 * draft.choice.numerics.grid.x.extent();
+    let listed = listed(&levels, half, &request.atom.labels, &request.atom.initial);
+    draft.problem.initial = listed.initial;
+    draft.labels = listed.labels;
+    (asked > listed.lowest).then(|| objections::populations(&draft.tree, listed.lowest))
 }
 
 /// Gives the points that ask for electrons their method, and numerics for it.
@@ -210,6 +245,9 @@ fn choose_electrons(drafts: &mut [Draft]) {
 
 /// What the chosen box does not hold, or the atom does not let go.
 fn impossible(draft: &Draft) -> Option<Complaint> {
+    if draft.choice.numerics.grid.dimensions() == 2 {
+        return None;
+    }
     let (potential, axis) = (&draft.problem.potential, draft.choice.numerics.grid.x);
     let (asked, half) = (draft.source.request.record.populations, 0.5 * axis.extent());
     if asked > 1 && !potential.is_confining() && half < 1e6 {
@@ -230,14 +268,16 @@ fn impossible(draft: &Draft) -> Option<Complaint> {
 fn share(drafts: &mut [Draft]) {
     if drafts.first().is_some_and(|draft| draft.source.request.sharing == Sharing::Common) {
         let methods = [None, Some(ElectronMethod::ScatteringStates), Some(ElectronMethod::OutgoingAmplitude)];
-        for method in methods {
-            let alike = || drafts.iter().filter(|draft| draft.electron_method == method);
+        let kinds = methods.into_iter().flat_map(|method| [(method, 1), (method, 2)]);
+        for kind in kinds {
+            let of = |draft: &Draft| (draft.electron_method, draft.choice.numerics.grid.dimensions());
+            let alike = || drafts.iter().filter(|draft| of(draft) == kind);
             let all: Vec<Numerics> = alike().map(|draft| draft.choice.numerics.clone()).collect();
             if all.is_empty() {
                 continue;
             }
             let common = strictest(&all);
-            for draft in drafts.iter_mut().filter(|draft| draft.electron_method == method) {
+            for draft in drafts.iter_mut().filter(|draft| of(draft) == kind) {
                 draft.choice.numerics = common.clone();
             }
         }
@@ -277,7 +317,7 @@ fn finish(
     let tree = resolved::resolved(request, &chosen);
     let stored = request.inputs.iter().map(|i| (i.name.clone(), i.contents.to_string())).collect();
     let read = config::request(&tree, &Library::new(Files::Stored(stored)))?;
-    let job = job(&read, &draft.choice.numerics);
+    let job = job(&read, &draft);
     if let Some(complaint) = limits::objection(&job, &draft.tree, free) {
         return Err(located(complaint, draft.source).into());
     }
@@ -293,14 +333,15 @@ fn finish(
 }
 
 /// The job of a resolved request; its numerics are all pinned, so they are the chosen ones.
-fn job(request: &Request, numerics: &Numerics) -> Job {
+fn job(request: &Request, draft: &Draft) -> Job {
     Job {
         problem: Problem {
             potential: request.atom.potential.with_softening(0.0),
-            initial: request.atom.initial.clone(),
+            initial: draft.problem.initial.clone(),
             field: request.field.clone(),
         },
-        numerics: numerics.clone(),
+        labels: draft.labels.clone(),
+        numerics: draft.choice.numerics.clone(),
         record: request.record,
         accuracy: request.accuracy,
         electron_method: request.electron_method,

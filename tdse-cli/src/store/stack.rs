@@ -84,6 +84,10 @@ impl<'a> GroupStack<'a> {
     fn add(&mut self, index: &[usize], file: &Path, group: &Group) -> Result<(), Refusal> {
         for (name, values) in &group.arrays {
             if let Some(array) = self.arrays.get_mut(name) {
+                if array.has_other_rank(values) {
+                    self.remarks.insert(LEFT_OUT.into(), LEFT_OUT_WHY.into());
+                    continue;
+                }
                 array.add(&mut self.writer, name, index, values)?;
             } else {
                 let state = self.begin(name, index, values)?;
@@ -141,7 +145,21 @@ enum State {
     Stacked(Vec<usize>),
 }
 
+/// Remark on arrays that stay in the files of their points.
+const LEFT_OUT: &str = "left_out";
+const LEFT_OUT_WHY: &str =
+    "arrays whose number of axes differs between one and two dimensions: those of the first point are here";
+
 impl ArrayStack {
+    /// Whether points in one and in two dimensions meet here: their vectors and momenta have other axes.
+    fn has_other_rank(&self, values: &Values) -> bool {
+        let rank = match &self.state {
+            State::Axis(known) | State::Common(known, _) => known.shape().len(),
+            State::Stacked(shape) => shape.len(),
+        };
+        rank != values.shape().len()
+    }
+
     /// Takes the array of a further point.
     fn add(
         &mut self,

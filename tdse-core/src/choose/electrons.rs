@@ -177,7 +177,7 @@ fn flight(wish: &Wish, electrons: &Electrons, strength: &Strength) -> f64 {
 }
 
 /// Distance of the absorber at which the ion's pull beyond it is weak enough, bohr.
-fn quiet(problem: &Problem, strength: &Strength) -> f64 {
+pub(super) fn quiet(problem: &Problem, strength: &Strength) -> f64 {
     let at_one = tail_left(problem.potential.far_charge(), 1.0, frequency(strength), strength.quiver);
     (at_one.sideband / SIDEBAND).sqrt().max((at_one.shift / (SHIFT * frequency(strength))).cbrt())
 }
@@ -190,7 +190,7 @@ fn wave_points(problem: &Problem, numerics: &Numerics) -> f64 {
 }
 
 /// A spacing at which the fastest electrons of the axis are not on the grid.
-fn unresolved(energies: Energies, numerics: &Numerics) -> Option<Finding> {
+pub(super) fn unresolved(energies: Energies, numerics: &Numerics) -> Option<Finding> {
     let (held, wanted) = (numerics.grid.x.largest_momentum(), energies.momentum());
     (held < wanted).then(|| Finding {
         knob: Some(Knob::Spacing),

@@ -1,8 +1,6 @@
 //! What a plane adds to the rules: facts of a round atom by symmetry, and the momentum map with the flight out of what is still
 //! in the box when the field has ended.
 
-use std::f64::consts::PI;
-
 use super::{AtomFacts, Choice, Energies, Finding, Knob, Reason, Verdict, Wish, ladder, smoothness};
 use crate::absorber::slowest_momentum;
 use crate::outgoing::{MapRange, map_interval};
@@ -10,13 +8,13 @@ use crate::potential::Potential;
 use crate::problem::{Absorber, ElectronMethod, Numerics, PlaneLabel, Problem};
 use crate::stationary::{Level, StationaryError, plane_level};
 
-/// Work of taking in one sample of the map, in units of a step's: at any padding, and per padding (benches/plane.rs).
-const SAMPLE: [f64; 2] = [0.3, 0.2];
-/// Largest part of the momenta a padded grid holds that a map may cover, so that map and scratch keep within one and a half
-/// wave functions: x + x² ≤ 3/2.
-const COVERED: f64 = 0.82;
-/// Finest map, in momenta per 2π/box length.
-const FINEST: usize = 8;
+/// Work of a chirp-z transform, in transforms of the same length: one forth and one back, and the chirps.
+const CHIRP: f64 = 4.0;
+/// Work of a step, in transforms of a line of the grid per line: two pairs along both axes.
+const STEP: f64 = 8.0;
+/// Most momenta to either side of zero up to the fastest electron: beside grids of 400 points each way and more, map and
+/// scratch then keep within one and a half wave functions.
+const MOST: f64 = 160.0;
 
 impl AtomFacts {
     /// Facts of a round `potential` whose initial state is made of the states that `labels` name.
@@ -42,33 +40,30 @@ impl AtomFacts {
     }
 }
 
-/// Range and fineness of the momentum map that a spectrum at `energies` is read from, on a grid: up to its last energy and as
-/// fine as its energies lie there, as far as memory for one and a half wave functions allows.
+/// Range and fineness of the momentum map that a spectrum at `energies` is read from: up to its last energy and as fine as its
+/// energies lie there, but for [`MOST`]. Of the grid only the range depends, so points of a scan share their momenta.
 pub fn map_range(problem: &Problem, numerics: &Numerics, energies: Energies) -> MapRange {
     let axis = numerics.grid.x;
     let inner = (0.5 * axis.extent() - numerics.absorber.width()).max(1.0);
     let fastest = energies.momentum();
+    let step = energies.largest / energies.count.saturating_sub(1).max(1) as f64;
+    let spacing = ladder::at_least((step / fastest).max(fastest / MOST));
     // Electrons are collected before they have climbed out of the tail, and read off by a cubic through neighbours.
     let at_absorber = (fastest * fastest + 2.0 * problem.potential.far_charge() / inner).sqrt();
-    let largest = (at_absorber + 3.0 * axis.momentum(1)).min(axis.largest_momentum());
-    let apart = energies.largest / energies.count.saturating_sub(1).max(1) as f64 / fastest;
-    let wanted = (axis.momentum(1) / apart).ceil() as usize;
-    let affordable = (COVERED * axis.largest_momentum() / largest) as usize;
-    MapRange { largest, padding: wanted.min(affordable).clamp(1, FINEST) }
+    MapRange { largest: (at_absorber + 3.0 * spacing).min(axis.largest_momentum()), spacing }
 }
 
-/// Work of the map beside that of the propagation.
+/// Work of the map beside that of the propagation of the whole plane.
 pub(super) fn map_work(problem: &Problem, numerics: &Numerics, energies: Energies) -> f64 {
     let range = map_range(problem, numerics, energies);
-    (SAMPLE[0] + SAMPLE[1] * range.padding as f64) / map_interval(range.largest, numerics.time_step) as f64
+    let more = 1.0 + (2.0 * range.last() as f64 + 1.0) / numerics.grid.x.points as f64;
+    CHIRP / STEP * more * more / map_interval(range.largest, numerics.time_step) as f64
 }
 
 /// Memory of the map with its scratch and tables, bytes; [`Load`](crate::simulate::Load) has it to the byte.
 pub(super) fn map_bytes(problem: &Problem, numerics: &Numerics, energies: Energies) -> f64 {
-    let range = map_range(problem, numerics, energies);
-    let axis = numerics.grid.x;
-    let momenta = 2.0 * range.largest / axis.momentum(1) * range.padding as f64 + 1.0;
-    16.0 * momenta * (momenta + axis.points as f64) + 8.0 * numerics.grid.len() as f64
+    let momenta = 2.0 * map_range(problem, numerics, energies).last() as f64 + 1.0;
+    16.0 * momenta * (momenta + numerics.grid.x.points as f64) + 8.0 * numerics.grid.len() as f64
 }
 
 /// Lengthens a run with a map until the slowest electrons that its absorber takes cleanly are out, unless the user pinned that.
@@ -113,8 +108,7 @@ pub(super) fn fly_out(wish: &Wish, method: ElectronMethod, energies: Energies, c
     let why = format!(
         "electrons of {slowest:.3} / bohr, the slowest that the absorber takes cleanly, fly {half:.0} bohr; the map holds momenta \
          up to {:.2} / bohr, {:.4} / bohr apart",
-        range.largest,
-        2.0 * PI / (2.0 * half * range.padding as f64)
+        range.largest, range.spacing
     );
     let kept = choice.reasons.iter_mut().find(|reason| reason.knob == Knob::TrailingTime);
     if let Some(reason) = kept {

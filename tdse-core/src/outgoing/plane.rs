@@ -8,9 +8,10 @@ use std::f64::consts::{PI, SQRT_2};
 
 use num_complex::Complex;
 
+use super::chirp::MomentumSum;
 use super::{GREGORY, sampling_interval};
 use crate::absorber;
-use crate::grid::{Axis, Grid, Transform};
+use crate::grid::Grid;
 use crate::problem::Numerics;
 use crate::step::Drive;
 
@@ -21,8 +22,21 @@ type C = Complex<f64>;
 pub struct MapRange {
     /// Largest momentum along x and along y, 1/bohr.
     pub largest: f64,
-    /// Momenta per 2π/box length, along either axis: the box is padded with zeros to this many times its length.
-    pub padding: usize,
+    /// Distance of neighbouring momenta along either axis, 1/bohr.
+    pub spacing: f64,
+}
+
+impl MapRange {
+    /// Momenta to either side of zero, along either axis.
+    pub fn last(&self) -> usize {
+        (self.largest / self.spacing * (1.0 + 1e-12)).floor() as usize
+    }
+
+    /// Momenta along either axis, rising, 1/bohr.
+    pub fn momenta(&self) -> Vec<f64> {
+        let last = self.last();
+        (0..=2 * last).map(|j| (j as f64 - last as f64) * self.spacing).collect()
+    }
 }
 
 /// Steps between two samples of a map up to `largest` along both axes, 1/bohr: its corners hold twice that energy.
@@ -30,24 +44,14 @@ pub fn map_interval(largest: f64, time_step: f64) -> usize {
     sampling_interval(largest * SQRT_2, time_step)
 }
 
-/// Momenta of a map along one axis of the grid, rising, 1/bohr.
-pub(crate) fn map_momenta(axis: Axis, range: MapRange) -> Vec<f64> {
-    let padded = Axis { points: axis.points * range.padding, ..axis };
-    let last = ((range.largest / padded.momentum(1)).floor() as i64).min(padded.points as i64 / 2 - 1);
-    (-last..=last).map(|j| j as f64 * padded.momentum(1)).collect()
-}
-
 /// Everything about the map that is known before a run.
 #[derive(Clone, Debug)]
 pub struct MapCollector {
     grid: Grid,
-    /// The axes, padded.
-    padded: [Axis; 2],
-    transforms: [Transform; 2],
+    /// Sums over x and over y.
+    sums: [MomentumSum; 2],
     /// Momenta of both axes, rising, 1/bohr.
     momenta: [Vec<f64>; 2],
-    /// e^{-ik·r₀} of the first point, along both axes.
-    origin: [Vec<C>; 2],
     /// 1 - e^{-τW}, shape of the grid.
     taken: Vec<f64>,
     motion: Vec<PlaneMotion>,
@@ -96,26 +100,25 @@ impl MapCollector {
     /// Collector for the absorber of `numerics`; `drives` and `potential` have one entry per sample of the run.
     ///
     /// # Panics
-    /// If `numerics` has no absorber or one dimension, or the range is empty.
+    /// If `numerics` has no absorber or one dimension, or the range is empty or beyond what the grid holds.
     pub fn new(numerics: &Numerics, range: MapRange, drives: &[Drive], potential: &[[f64; 2]]) -> Self {
         assert!(numerics.absorber.width() > 0.0, "only an absorber takes anything");
-        assert!(range.largest > 0.0 && range.padding > 0, "momenta to collect at");
+        assert!(range.spacing > 0.0 && range.largest >= range.spacing, "momenta to collect at");
         let grid = numerics.grid;
         let axes = [grid.x, grid.y.expect("a plane has two dimensions")];
-        let padded = axes.map(|axis| Axis { points: axis.points * range.padding, ..axis });
-        let momenta = axes.map(|axis| map_momenta(axis, range));
+        let momenta = range.momenta();
+        let held = axes[0].largest_momentum().min(axes[1].largest_momentum());
+        let largest = momenta[2 * range.last()];
+        assert!(largest <= held * (1.0 + 1e-12), "{largest} of the {held} / bohr that the grid holds");
         let tau = numerics.time_step;
         let taken =
             absorber::on_grid(&grid, numerics.absorber).iter().map(|w| -(-tau * w).exp_m1()).collect();
-        let origin = [0, 1].map(|d| momenta[d].iter().map(|k| C::cis(-k * axes[d].position(0))).collect());
         Self {
-            transforms: padded.map(|axis| Transform::new(axis.points)),
+            sums: axes.map(|axis| MomentumSum::new(axis, range.last(), range.spacing)),
             interval: map_interval(range.largest, tau),
             motion: PlaneMotion::samples(drives, potential, tau),
             grid,
-            padded,
-            momenta,
-            origin,
+            momenta: [momenta.clone(), momenta],
             taken,
         }
     }
@@ -137,14 +140,13 @@ impl MapCollector {
 
     /// Scratch for [`Self::collect`].
     pub fn make_scratch(&self) -> MapScratch {
-        let [x, y] = self.padded;
-        let fft = self.transforms.each_ref().map(|t| t.make_scratch().len()).into_iter().max().unwrap_or(0);
+        let longest = |length: fn(&MomentumSum) -> usize| self.sums.iter().map(length).max().unwrap_or(0);
         let rows = self.grid.y.map_or(1, |y| y.points);
         MapScratch {
-            line: vec![C::default(); x.points.max(y.points)],
+            line: vec![C::default(); longest(MomentumSum::length)],
             kick: vec![C::default(); self.grid.x.points],
             turned: vec![C::default(); self.momenta[0].len() * rows],
-            fft: vec![C::default(); fft],
+            fft: vec![C::default(); longest(|sum| sum.make_scratch().len())],
             phases: self.momenta.each_ref().map(|k| vec![C::default(); k.len()]),
         }
     }
@@ -174,32 +176,25 @@ impl MapCollector {
             *kick = C::cis(-motion.potential[0] * x);
         }
         for (j, y) in self.grid.y_positions().enumerate() {
-            let line = &mut line[..self.padded[0].points];
             row(j, &mut line[..nx]);
-            line[nx..].fill(C::default());
             let taken = &self.taken[j * nx..(j + 1) * nx];
             let turn = C::from_polar(weight, -motion.potential[1] * y);
             for ((p, t), kick) in line.iter_mut().zip(taken).zip(&*kick) {
                 *p *= turn * kick * t;
             }
-            self.transforms[0].forward(line, fft);
-            for (i, p) in kept(line, kx.len()).enumerate() {
+            for (i, p) in self.sums[0].evaluate(line, fft).enumerate() {
                 turned[i * rows + j] = p;
             }
         }
         for (d, phases) in phases.iter_mut().enumerate() {
-            let momenta = self.momenta[d].iter().zip(&self.origin[d]);
-            for (phase, (k, origin)) in phases.iter_mut().zip(momenta) {
-                *phase = origin * C::cis(0.5 * k * k * motion.time + k * motion.displacement[d]);
+            for (phase, k) in phases.iter_mut().zip(&self.momenta[d]) {
+                *phase = C::cis(0.5 * k * k * motion.time + k * motion.displacement[d]);
             }
         }
         let scale = C::from_polar(self.grid.cell() / (2.0 * PI), 0.5 * motion.square);
         for (i, column) in turned.chunks(rows).enumerate() {
-            let line = &mut line[..self.padded[1].points];
             line[..rows].copy_from_slice(column);
-            line[rows..].fill(C::default());
-            self.transforms[1].forward(line, fft);
-            for ((j, p), phase) in kept(line, ky.len()).enumerate().zip(&phases[1]) {
+            for ((j, p), phase) in self.sums[1].evaluate(line, fft).enumerate().zip(&phases[1]) {
                 map[j * kx.len() + i] += p * phase * phases[0][i] * scale;
             }
         }
@@ -210,12 +205,6 @@ impl MapCollector {
         let gregory = GREGORY.get(before_end / self.interval).copied().unwrap_or(1.0);
         gregory * self.interval as f64 - if before_end == 0 { 0.5 } else { 0.0 }
     }
-}
-
-/// The `count` lowest momenta of a transformed line, rising.
-fn kept(line: &[C], count: usize) -> impl Iterator<Item = C> {
-    let last = count / 2;
-    line[line.len() - last..].iter().chain(&line[..=last]).copied()
 }
 
 /// Density |a(k)|² of free electrons over a grid of momenta, ∫|a|² dk = probability.

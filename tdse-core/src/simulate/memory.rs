@@ -8,13 +8,15 @@ use std::mem::size_of;
 use super::{POPULATION_SAMPLES, Schedule, straight};
 use crate::field::Field;
 use crate::grid::{Axis, Transform};
-use crate::outgoing::{MapRange, map_momenta};
-use crate::problem::{Gauge, Mirror, Numerics, Parity, PlaneLabel, Record, Scheme, Symmetry};
+use crate::outgoing::{MapRange, sum_length};
+use crate::problem::{Gauge, InitialState, Mirror, Numerics, Parity, PlaneLabel, Record, Scheme, Symmetry};
 use crate::step::Drive;
 
 /// Bytes of a complex and of a real number.
 const C: usize = 16;
 const R: usize = 8;
+/// Most moments at which the direction of the field is looked at; most runs have fewer steps.
+const LOOKS: usize = 1 << 14;
 
 /// Bytes of a run, by what they are for.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -58,6 +60,8 @@ pub struct Load<'a> {
     pub numerics: &'a Numerics,
     /// The atom's states.
     pub states: Held<'a>,
+    /// Those of them that the run starts from.
+    pub initial: &'a InitialState,
     /// What is recorded.
     pub record: Record,
     /// The momentum map, in two dimensions.
@@ -103,15 +107,18 @@ impl Load<'_> {
     fn parts(&self) -> usize {
         let Held::Plane(labels) = self.states else { return 1 };
         let schedule = self.schedule();
-        let fields = schedule.times().into_iter().map(|t| self.field.electric_field(t));
+        let looks = (0..=schedule.steps).step_by(schedule.steps.div_ceil(LOOKS).max(1));
+        let fields = looks.map(|n| self.field.electric_field(schedule.time(n)));
         let Some(mirror) = straight(&self.numerics.grid, fields) else { return 1 };
         let parity = |label: &PlaneLabel| match (label.symmetry, mirror) {
             (Symmetry::Angular(m), _) => (m == 0).then_some(Parity::Even),
             (Symmetry::Mirror([x, _]), Mirror::X(_)) => Some(x),
             (Symmetry::Mirror([_, y]), Mirror::Y(_)) => Some(y),
         };
-        let first = labels.first().and_then(parity);
-        if first.is_some() && labels.iter().all(|label| parity(label) == first) { 2 } else { 1 }
+        let parities = self.initial.numbers().into_iter().map(|number| labels.get(number).and_then(parity));
+        let mut parities = parities.collect::<Vec<_>>();
+        parities.dedup();
+        if let [Some(_)] = parities[..] { 2 } else { 1 }
     }
 
     /// Real arrays of states.
@@ -161,13 +168,15 @@ impl Load<'_> {
 }
 
 fn add_map(axes: [Axis; 2], range: MapRange, samples: usize, memory: &mut Memory) {
-    let [kx, ky] = axes.map(|axis| map_momenta(axis, range).len());
-    let [x, y] = axes.map(|axis| axis.points * range.padding);
-    memory.tables += axes[0].points * axes[1].points * R + samples * 6 * R + (kx + ky) * (R + C);
-    memory.tables += own(x) + own(y);
-    let turned = kx * axes[1].points;
-    let line = x.max(y) + axes[0].points + scratch(x).max(scratch(y)) + kx + ky;
-    memory.map += (kx * ky + turned + line) * C;
+    let momenta = 2 * range.last() + 1;
+    let lines = axes.map(|axis| sum_length(axis.points, momenta));
+    memory.tables += axes[0].points * axes[1].points * R + samples * 6 * R + 2 * momenta * R;
+    for (axis, line) in axes.iter().zip(lines) {
+        memory.tables += (axis.points + line + momenta) * C + own(line);
+    }
+    let turned = momenta * axes[1].points;
+    let [line, longest] = [lines, lines.map(scratch)].map(|[x, y]| x.max(y));
+    memory.map += (momenta * momenta + turned + line + axes[0].points + longest + 2 * momenta) * C;
 }
 
 /// Bytes that a transform of this length, both ways, keeps.

@@ -83,6 +83,45 @@ pub fn plane_level(potential: &Potential, label: PlaneLabel) -> Result<Level, St
     radial_level(potential, part.angular, part.number)
 }
 
+/// Grid-free levels of angular momentum m and -m by rising energy, m ≥ 0 first: the `count` lowest at least, degenerate
+/// partners included; fewer where fewer are bound.
+///
+/// # Errors
+/// [`StationaryError::NotConverged`].
+pub fn lowest_plane_levels(
+    potential: &Potential,
+    count: usize,
+) -> Result<Vec<(PlaneLabel, Level)>, StationaryError> {
+    let mut found: Vec<(PlaneLabel, Level)> = Vec::new();
+    for m in 0.. {
+        let before = found.len();
+        for number in 0..count {
+            let level = match radial_level(potential, m, number) {
+                Ok(level) => level,
+                Err(StationaryError::NoSuchState { .. }) => break,
+                Err(error) => return Err(error),
+            };
+            // Levels of one m rise, and so do the lowest of every m.
+            if found.len() >= count && found.iter().filter(|f| f.1.energy <= level.energy).count() >= count {
+                break;
+            }
+            let signs = if m == 0 { &[1][..] } else { &[1, -1] };
+            found.extend(
+                signs
+                    .iter()
+                    .map(|sign| (PlaneLabel { symmetry: Symmetry::Angular(sign * m as i32), number }, level)),
+            );
+        }
+        if found.len() == before {
+            break;
+        }
+    }
+    found.sort_by(|a, b| a.1.energy.total_cmp(&b.1.energy));
+    let last = found.get(count.saturating_sub(1)).map_or(f64::INFINITY, |f| f.1.energy);
+    found.retain(|f| f.1.energy <= last);
+    Ok(found)
+}
+
 fn plane_state(
     potential: &Potential,
     axes: [Axis; 2],

@@ -1,8 +1,9 @@
 //! The softening that gives a model atom a wanted binding energy.
 
 use super::root::brent;
-use super::{StationaryError, level, radial_level};
+use super::{StationaryError, level, plane_level, radial_level};
 use crate::potential::Potential;
+use crate::problem::PlaneLabel;
 
 /// A potential whose softening is still open.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -59,6 +60,24 @@ pub fn tune_radial_softening(
     energy: f64,
 ) -> Result<f64, StationaryError> {
     tuned(atom, number, energy, |potential| Ok(radial_level(potential, angular, number)?.energy))
+}
+
+/// As [`tune_softening`] in two dimensions, for the lowest of the states that `labels` name.
+///
+/// # Errors
+/// As [`tune_softening`].
+pub fn tune_plane_softening(
+    atom: &Softenable,
+    labels: &[PlaneLabel],
+    energy: f64,
+) -> Result<f64, StationaryError> {
+    tuned(atom, 0, energy, |potential| {
+        labels.iter().try_fold(0.0f64, |lowest, label| match plane_level(potential, *label) {
+            Ok(level) => Ok(lowest.min(level.energy)),
+            Err(StationaryError::NoSuchState { .. }) => Ok(lowest),
+            Err(error) => Err(error),
+        })
+    })
 }
 
 fn tuned(

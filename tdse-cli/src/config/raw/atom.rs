@@ -141,10 +141,19 @@ pub enum State {
     Single {
         /// Anything worth remembering.
         note: Option<String>,
-        /// Number of the state, from 0 by rising energy.
+        /// Number of the state, from 0 by rising energy; in two dimensions among those of its symmetry.
         #[serde(default)]
         #[schemars(range(max = 1000))]
         number: u32,
+        /// Angular momentum about the centre, two dimensions only; 0 where no symmetry is given.
+        #[schemars(range(min = -50, max = 50), example = 1)]
+        angular_momentum: Option<i32>,
+        /// Parity along x, two dimensions only; instead of the angular momentum.
+        #[schemars(example = &"odd")]
+        parity_x: Option<Parity>,
+        /// Parity along y, two dimensions only; instead of the angular momentum.
+        #[schemars(example = &"even")]
+        parity_y: Option<Parity>,
     },
     /// Coherent sum of bound states.
     Superposition {
@@ -158,8 +167,18 @@ pub enum State {
 
 impl Default for State {
     fn default() -> Self {
-        Self::Single { note: None, number: 0 }
+        Self::Single { note: None, number: 0, angular_momentum: None, parity_x: None, parity_y: None }
     }
+}
+
+/// Behaviour under a mirror.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum Parity {
+    /// The same on both sides.
+    Even,
+    /// Of opposite sign.
+    Odd,
 }
 
 /// One member of a superposition.
@@ -168,9 +187,18 @@ impl Default for State {
 pub struct Term {
     /// Anything worth remembering.
     pub note: Option<String>,
-    /// Number of the state, from 0 by rising energy.
+    /// Number of the state, from 0 by rising energy; in two dimensions among those of its symmetry.
     #[schemars(range(max = 1000), example = 0)]
     pub number: u32,
+    /// Angular momentum about the centre, two dimensions only; 0 where no symmetry is given.
+    #[schemars(range(min = -50, max = 50), example = 1)]
+    pub angular_momentum: Option<i32>,
+    /// Parity along x, two dimensions only; instead of the angular momentum.
+    #[schemars(example = &"odd")]
+    pub parity_x: Option<Parity>,
+    /// Parity along y, two dimensions only; instead of the angular momentum.
+    #[schemars(example = &"even")]
+    pub parity_y: Option<Parity>,
     /// Probability of the state; the sum over all members is scaled to 1.
     #[serde(default = "unity")]
     #[schemars(extend("minimum" = 0, "maximum" = 1e6))]

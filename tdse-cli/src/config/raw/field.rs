@@ -16,7 +16,7 @@ pub struct Field {
     #[serde(default)]
     #[schemars(example = json!([example()]))]
     pub pulses: Vec<Pulse>,
-    /// A field given by a table.
+    /// A field given by a table; in two dimensions it points along x.
     #[schemars(example = json!({ "file": "field.csv" }))]
     pub sampled: Option<Sampled>,
 }

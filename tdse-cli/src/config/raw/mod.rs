@@ -18,10 +18,10 @@ use tdse_core::units::Quantity;
 
 use super::quantity;
 
-pub use atom::{Atom, ElementSymbol, Potential, State, Term};
+pub use atom::{Atom, ElementSymbol, Parity, Potential, State, Term};
 pub use field::example as example_pulse;
 pub use field::{Envelope, Field, Pulse, Sampled};
-pub use numerics::{Absorber, ElectronMethod, Gauge, Numerics, Scheme};
+pub use numerics::{Absorber, ElectronMethod, Gauge, Numerics, Scheme, Shape};
 pub use outputs::{Harmonics, Models, Outputs, Populations, TimeFrequency, Window};
 pub use scan::{Axis, Spacing};
 

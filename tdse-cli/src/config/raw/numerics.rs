@@ -108,12 +108,24 @@ pub enum Absorber {
         /// Anything worth remembering.
         note: Option<String>,
     },
-    /// A smooth complex potential at both sides.
+    /// A smooth complex potential at the edges.
     Smooth {
         /// Anything worth remembering.
         note: Option<String>,
         /// Width per side; chosen if left out.
         #[schemars(example = "40 bohr", extend("x-exclusive-minimum" = "0 bohr"))]
         width: Option<Length>,
+        /// Where it lies, two dimensions only; round if left out.
+        shape: Option<Shape>,
     },
+}
+
+/// Where an absorber of two dimensions lies.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum Shape {
+    /// In a ring that begins at one distance from the centre.
+    Round,
+    /// Along all four sides.
+    Sides,
 }

@@ -3,9 +3,10 @@
 use serde_json::json;
 use tdse_core::elements::Element;
 use tdse_core::potential::Potential;
-use tdse_core::problem::{InitialState, Term};
+use tdse_core::problem::{InitialState, PlaneLabel, Term};
 
 use super::Check;
+use super::symmetry::{self, Written};
 use crate::config::complaint::Fix;
 use crate::config::raw;
 use crate::config::request::{AtomPotential, AtomRequest, Softening};
@@ -16,13 +17,17 @@ const TUNERS: [&str; 2] = ["ionization_energy", "element"];
 
 /// `None` where a complaint says why.
 pub(super) fn atom(check: &mut Check, atom: &raw::Atom) -> Option<AtomRequest> {
-    if atom.dimensions != 1 {
-        let fix = Fix::Value(json!(1));
-        check.complain("/atom/dimensions", "is not available in this version", "1", fix);
+    if atom.dimensions == 2 && matches!(atom.potential, raw::Potential::Sampled { .. }) {
+        let fix = Fix::Elsewhere { place: "/atom/dimensions".into(), value: json!(1) };
+        let reason = "needs one dimension: potentials of two are round, and given by a formula";
+        check.complain("/atom/potential/kind", reason, "any other kind in two dimensions", fix);
     }
-    let initial = initial(check, &atom.state);
+    let (initial, labels) = match atom.dimensions {
+        1 => (on_the_line(check, &atom.state), Vec::new()),
+        _ => on_the_plane(check, &atom.state),
+    };
     let potential = potential(check, atom)?;
-    Some(AtomRequest { dimensions: atom.dimensions as usize, potential, initial })
+    Some(AtomRequest { dimensions: atom.dimensions as usize, potential, initial, labels })
 }
 
 fn potential(check: &mut Check, atom: &raw::Atom) -> Option<AtomPotential> {
@@ -89,36 +94,72 @@ fn nothing_to_tune(check: &mut Check) {
     }
 }
 
-fn initial(check: &mut Check, state: &raw::State) -> InitialState {
+const STATE: &str = "/atom/state";
+
+fn on_the_line(check: &mut Check, state: &raw::State) -> InitialState {
     match state {
-        raw::State::Single { number, .. } => InitialState::Single(*number as usize),
+        raw::State::Single { number, .. } => {
+            symmetry::on_the_line(check, STATE);
+            InitialState::Single(*number as usize)
+        }
         raw::State::Superposition { terms, .. } => {
-            distinct(check, terms);
-            if terms.iter().all(|term| term.weight == 0.0) {
-                let allowed = "at least one weight above 0";
-                check.complain(
-                    "/atom/state/terms/0/weight",
-                    "is 0, and so is every other",
-                    allowed,
-                    Fix::Value(json!(1)),
-                );
+            for i in 0..terms.len() {
+                symmetry::on_the_line(check, &format!("{STATE}/terms/{i}"));
             }
-            let term = |term: &raw::Term| Term {
-                number: term.number as usize,
-                weight: term.weight,
-                phase: term.phase.value(),
-            };
-            InitialState::Superposition(terms.iter().map(term).collect())
+            distinct(check, terms, &terms.iter().map(|term| term.number).collect::<Vec<_>>());
+            weighted(check, terms);
+            let numbered = terms.iter().map(|term| member(term, term.number as usize));
+            InitialState::Superposition(numbered.collect())
         }
     }
 }
 
-fn distinct(check: &mut Check, terms: &[raw::Term]) {
-    for (i, term) in terms.iter().enumerate() {
-        if terms[..i].iter().any(|before| before.number == term.number) {
+/// The state, which counts the labels beside it.
+fn on_the_plane(check: &mut Check, state: &raw::State) -> (InitialState, Vec<PlaneLabel>) {
+    match state {
+        raw::State::Single { number, angular_momentum, parity_x, parity_y, .. } => {
+            let (number, angular_momentum) = (*number, *angular_momentum);
+            let written = Written { number, angular_momentum, parity: [*parity_x, *parity_y] };
+            (InitialState::Single(0), vec![symmetry::on_the_plane(check, STATE, written)])
+        }
+        raw::State::Superposition { terms, .. } => {
+            let label = |(i, term): (usize, &raw::Term)| {
+                let raw::Term { number, angular_momentum, parity_x, parity_y, .. } = *term;
+                let written = Written { number, angular_momentum, parity: [parity_x, parity_y] };
+                symmetry::on_the_plane(check, &format!("{STATE}/terms/{i}"), written)
+            };
+            let labels: Vec<PlaneLabel> = terms.iter().enumerate().map(label).collect();
+            distinct(check, terms, &labels);
+            weighted(check, terms);
+            let counted = terms.iter().enumerate().map(|(i, term)| member(term, i));
+            (InitialState::Superposition(counted.collect()), labels)
+        }
+    }
+}
+
+fn member(term: &raw::Term, number: usize) -> Term {
+    Term { number, weight: term.weight, phase: term.phase.value() }
+}
+
+fn weighted(check: &mut Check, terms: &[raw::Term]) {
+    if terms.iter().all(|term| term.weight == 0.0) {
+        let place = "/atom/state/terms/0/weight";
+        check.complain(
+            place,
+            "is 0, and so is every other",
+            "at least one weight above 0",
+            Fix::Value(json!(1)),
+        );
+    }
+}
+
+/// Complains about terms that name the same state.
+fn distinct<S: PartialEq>(check: &mut Check, terms: &[raw::Term], states: &[S]) {
+    for (i, state) in states.iter().enumerate() {
+        if states[..i].contains(state) {
             let free =
                 (0..=u32::MAX).find(|number| terms.iter().all(|term| term.number != *number)).unwrap_or(0);
-            let place = format!("/atom/state/terms/{i}/number");
+            let place = format!("{STATE}/terms/{i}/number");
             check.complain(&place, "is repeated", "every state at most once", Fix::Value(json!(free)));
         }
     }

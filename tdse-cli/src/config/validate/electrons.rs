@@ -24,6 +24,10 @@ pub(super) fn method(check: &mut Check, written: &raw::Configuration) -> Option<
         let reason = "asks for electrons of an atom that lets none go: a harmonic potential has no continuum";
         check.complain("/outputs/photoelectrons", reason, "the key left out", fix);
     }
+    if written.atom.dimensions == 2 {
+        on_the_plane(check, written, pinned);
+        return Some(ElectronMethod::OutgoingAmplitude);
+    }
     let of_edges = written.numerics.absorber.as_ref().map(|absorber| match absorber {
         raw::Absorber::None { .. } => ElectronMethod::ScatteringStates,
         raw::Absorber::Smooth { .. } => ElectronMethod::OutgoingAmplitude,
@@ -42,6 +46,20 @@ pub(super) fn method(check: &mut Check, written: &raw::Configuration) -> Option<
         _ => {}
     }
     pinned.or(of_edges)
+}
+
+/// In two dimensions there is one way.
+fn on_the_plane(check: &mut Check, written: &raw::Configuration, pinned: Option<ElectronMethod>) {
+    let allowed = "outgoing_amplitude, with an absorber, in two dimensions";
+    if pinned == Some(ElectronMethod::ScatteringStates) {
+        let fix = Fix::Value(json!("outgoing_amplitude"));
+        check.complain(METHOD, "needs one dimension", allowed, fix);
+    }
+    if let Some(raw::Absorber::None { .. }) = written.numerics.absorber {
+        let fix = check.without("/numerics", "absorber");
+        let reason = "takes nothing, and the electrons of two dimensions are what an absorber takes";
+        check.complain("/numerics/absorber", reason, allowed, fix);
+    }
 }
 
 impl From<raw::ElectronMethod> for ElectronMethod {

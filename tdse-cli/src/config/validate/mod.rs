@@ -5,6 +5,7 @@ mod electrons;
 mod field;
 mod numerics;
 mod outputs;
+mod symmetry;
 mod table;
 
 use serde_json::Value;
@@ -27,6 +28,7 @@ pub fn validate(written: raw::Configuration, tree: &Value, library: &Library) ->
     let field = field::field(&mut check, &written.field, written.atom.dimensions);
     let (outputs, record) = outputs::outputs(&mut check, &written.outputs);
     let electron_method = electrons::method(&mut check, &written);
+    let pins = numerics::pins(&mut check, &written.numerics, written.atom.dimensions);
     let Check { found, inputs, .. } = check;
     Complaints(found).into_result(tree)?;
     Ok(Request {
@@ -34,7 +36,7 @@ pub fn validate(written: raw::Configuration, tree: &Value, library: &Library) ->
         atom: atom.ok_or_else(Complaints::default)?,
         field,
         record,
-        pins: numerics::pins(&written.numerics),
+        pins,
         electron_method,
         accuracy: written.numerics.accuracy,
         inadequate: numerics::inadequate(&written.numerics),

@@ -3,18 +3,28 @@
 use tdse_core::choose::{PinnedAbsorber, Pins};
 use tdse_core::problem::{Gauge, Scheme};
 
+use super::Check;
 use crate::config::raw;
 use crate::config::request::{Inadequate, Sharing};
 
 /// What the user fixed.
-pub(super) fn pins(numerics: &raw::Numerics) -> Pins {
+pub(super) fn pins(check: &mut Check, numerics: &raw::Numerics, dimensions: u32) -> Pins {
+    let shape = match numerics.absorber {
+        Some(raw::Absorber::Smooth { shape, .. }) => shape,
+        _ => None,
+    };
+    if shape.is_some() && dimensions == 1 {
+        let fix = check.without("/numerics/absorber", "shape");
+        let allowed = "the key only beside dimensions 2";
+        check.complain("/numerics/absorber/shape", "needs two dimensions", allowed, fix);
+    }
     Pins {
         spacing: numerics.spacing.as_ref().map(raw::Length::value),
         extent: numerics.extent.as_ref().map(raw::Length::value),
         time_step: numerics.time_step.as_ref().map(raw::Time::value),
         scheme: numerics.scheme.map(Scheme::from),
         gauge: numerics.gauge.map(Gauge::from),
-        absorber: numerics.absorber.as_ref().map(PinnedAbsorber::from),
+        absorber: numerics.absorber.as_ref().map(|absorber| pinned(absorber, dimensions)),
         trailing_time: numerics.trailing_time.as_ref().map(raw::Time::value),
     }
 }
@@ -45,12 +55,14 @@ impl From<raw::Gauge> for Gauge {
     }
 }
 
-impl From<&raw::Absorber> for PinnedAbsorber {
-    fn from(absorber: &raw::Absorber) -> Self {
-        match absorber {
-            raw::Absorber::None { .. } => Self::None,
-            raw::Absorber::Smooth { width: None, .. } => Self::Smooth,
-            raw::Absorber::Smooth { width: Some(width), .. } => Self::Width(width.value()),
-        }
+/// In two dimensions an absorber is round unless it is to lie along the sides.
+fn pinned(absorber: &raw::Absorber, dimensions: u32) -> PinnedAbsorber {
+    let raw::Absorber::Smooth { width, shape, .. } = absorber else { return PinnedAbsorber::None };
+    let is_round = dimensions == 2 && *shape != Some(raw::Shape::Sides);
+    match (width.as_ref().map(raw::Length::value), is_round) {
+        (None, true) => PinnedAbsorber::Round,
+        (None, false) => PinnedAbsorber::Smooth,
+        (Some(width), true) => PinnedAbsorber::RoundWidth(width),
+        (Some(width), false) => PinnedAbsorber::Width(width),
     }
 }

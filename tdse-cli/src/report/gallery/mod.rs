@@ -107,6 +107,14 @@ fn slice<'a>(contents: &'a Contents, group: &str, name: &str) -> &'a [f64] {
     contents.real(group, name).and_then(|array| array.as_slice()).unwrap_or_default()
 }
 
+/// Rows of an array of two dimensions; empty where it is not there or has another number of them.
+fn rows<'a>(contents: &'a Contents, group: &str, name: &str) -> Vec<&'a [f64]> {
+    match contents.real(group, name).map(|array| (array.shape(), array.as_slice())) {
+        Some(([_, length], Some(flat))) => flat.chunks(*length).collect(),
+        _ => Vec::new(),
+    }
+}
+
 /// A remark of a group.
 fn remark<'a>(contents: &'a Contents, group: &str, name: &str) -> &'a str {
     let found = contents.groups().find(|(path, _)| *path == group);

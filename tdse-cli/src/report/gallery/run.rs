@@ -3,10 +3,12 @@
 use super::super::electrons::{ElectronPicture, MomentumPicture, Peaks};
 use super::super::field::FieldPicture;
 use super::super::harmonics::HarmonicPicture;
+use super::super::lissajous::{Guides, PlanePicture};
+use super::super::momentum_map::MomentumMapPicture;
 use super::super::populations::PopulationPicture;
 use super::super::time_frequency::TimeFrequencyPicture;
-use super::super::{electrons, field, harmonics, populations, time_frequency};
-use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, slice};
+use super::super::{electrons, field, harmonics, lissajous, momentum_map, populations, time_frequency};
+use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, rows, slice};
 use crate::store::{Contents, Values};
 
 pub(super) fn pictures(contents: &Contents) -> Vec<Drawn> {
@@ -14,7 +16,10 @@ pub(super) fn pictures(contents: &Contents) -> Vec<Drawn> {
         spectrum(contents),
         electron_spectrum(contents),
         momenta(contents),
+        momenta_of_plane(contents),
+        angles(contents),
         laser(contents),
+        figure_of_field(contents),
         map(contents),
         motion(contents),
     ];
@@ -32,20 +37,34 @@ fn spectrum(contents: &Contents) -> Option<Drawn> {
         return None;
     }
     let window = remark(contents, "harmonics", "window");
+    let by_helicity = rows(contents, "harmonics", "helicity_spectrum");
+    let errors = rows(contents, "harmonics", "helicity_spectrum_errors");
+    let (names, caption) = match by_helicity.len() {
+        2 => (["helicity +1", "helicity −1"], " by helicity"),
+        _ => ([""; 2], ""),
+    };
+    let spectra: Vec<(&str, &[f64])> = match by_helicity.len() {
+        2 => names.into_iter().zip(by_helicity).collect(),
+        _ => vec![("", slice(contents, "harmonics", "spectrum"))],
+    };
     Some(Drawn {
         name: "harmonics".into(),
         svg: harmonics::draw(&HarmonicPicture {
             title: &contents.provenance.title,
             photon_energy,
-            spectrum: slice(contents, "harmonics", "spectrum"),
-            errors: slice(contents, "harmonics", "spectrum_errors"),
+            spectra: &spectra,
+            errors: match errors.first() {
+                Some(first) => first,
+                None if spectra.len() == 1 => slice(contents, "harmonics", "spectrum_errors"),
+                None => &[],
+            },
             quantity: SPECTRUM,
             fundamental: fundamental(contents),
             cutoff_law: number(contents, "classical_cutoff"),
             measured_cutoff: number(contents, "cutoff_energy"),
             window,
         }),
-        caption: format!("Harmonic spectrum of the dipole acceleration, window {window}."),
+        caption: format!("Harmonic spectrum of the dipole acceleration{caption}, window {window}."),
         alternative:
             "Logarithmic spectrum against photon energy, with the classical and the measured cutoff marked."
                 .into(),
@@ -79,10 +98,13 @@ fn electron_spectrum(contents: &Contents) -> Option<Drawn> {
             peaks: peaks(),
             notes: &notes,
         }),
-        caption: "Photoelectron spectrum: both directions together, and apart.".into(),
+        caption: match slice(contents, group, "left") {
+            [] => "Photoelectron spectrum: all directions together.".into(),
+            _ => "Photoelectron spectrum: both directions together, and apart.".into(),
+        },
         alternative:
             "Logarithmic electron spectrum against kinetic energy, with 2 Up, 10 Up and the expected peaks \
-                      marked; below it the electrons to the left and to the right."
+                      marked; below it the electrons by direction, where there are two."
                 .into(),
     })
 }
@@ -104,18 +126,106 @@ fn momenta(contents: &Contents) -> Option<Drawn> {
     })
 }
 
+/// A.u. of momentum over charge in V s/m: what turns a vector potential of the file into ħ/bohr.
+const VECTOR_POTENTIAL: f64 = tdse_core::units::VECTOR_POTENTIAL_V_S_PER_M;
+
+fn momenta_of_plane(contents: &Contents) -> Option<Drawn> {
+    let group = "momentum";
+    let density = contents.real(group, "density")?.as_slice()?;
+    let momentum_x = slice(contents, group, "momentum_x");
+    if momentum_x.is_empty() {
+        return None;
+    }
+    let minus: Vec<Vec<f64>> = rows(contents, "field", "vector_potential")
+        .into_iter()
+        .map(|row| row.iter().map(|a| -a / VECTOR_POTENTIAL).collect())
+        .collect();
+    let potential = [0, 1].map(|d| minus.get(d).map_or(&[][..], Vec::as_slice));
+    Some(Drawn {
+        name: "momentum_map".into(),
+        svg: momentum_map::draw(&MomentumMapPicture {
+            title: &contents.provenance.title,
+            momentum_x,
+            momentum_y: slice(contents, group, "momentum_y"),
+            density,
+            potential,
+        }),
+        caption: "Momentum distribution of the photoelectrons; the line is −A(t).".into(),
+        alternative:
+            "Map of the density over both momenta, logarithmic shades, with the curve of minus the vector \
+                      potential over it."
+                .into(),
+    })
+}
+
+fn angles(contents: &Contents) -> Option<Drawn> {
+    let angle = slice(contents, "photoelectrons", "emission_angle");
+    let density = slice(contents, "photoelectrons", "angular_distribution");
+    if angle.is_empty() {
+        return None;
+    }
+    // Closed: the first point once more.
+    let around = |f: fn(f64) -> f64| -> Vec<f64> {
+        let points = angle.iter().zip(density).map(|(a, d)| d * f(*a));
+        points.clone().chain(points.take(1)).collect()
+    };
+    let (x, y) = (around(f64::cos), around(f64::sin));
+    let note = "Distance from the centre: probability per radian of a momentum in this direction.";
+    Some(Drawn {
+        name: "angular_distribution".into(),
+        svg: lissajous::draw(&PlanePicture {
+            title: &contents.provenance.title,
+            across: "towards x (1/rad)",
+            up: "towards y (1/rad)",
+            x: &x,
+            y: &y,
+            guides: Guides::Circles,
+            notes: &[note.into()],
+        }),
+        caption: "Angular distribution of the photoelectrons.".into(),
+        alternative: "Polar curve: probability per radian against the direction of the momentum.".into(),
+    })
+}
+
+fn figure_of_field(contents: &Contents) -> Option<Drawn> {
+    let components = rows(contents, "field", "electric_field");
+    let [x, y] = components[..] else { return None };
+    let in_gigavolts = |component: &[f64]| component.iter().map(|e| e * 1e-9).collect::<Vec<f64>>();
+    let (x, y) = (in_gigavolts(x), in_gigavolts(y));
+    Some(Drawn {
+        name: "lissajous".into(),
+        svg: lissajous::draw(&PlanePicture {
+            title: &contents.provenance.title,
+            across: "E along x (GV/m)",
+            up: "E along y (GV/m)",
+            x: &x,
+            y: &y,
+            guides: Guides::Cross,
+            notes: &[],
+        }),
+        caption: "Lissajous figure of the electric field.".into(),
+        alternative: "Curve that the tip of the electric field draws in the plane.".into(),
+    })
+}
+
 fn laser(contents: &Contents) -> Option<Drawn> {
     let time = slice(contents, "field", "time");
     if time.is_empty() {
         return None;
     }
+    let named = |name: &str| -> Vec<(&str, &[f64])> {
+        match rows(contents, "field", name)[..] {
+            [x, y] => vec![("along x", x), ("along y", y)],
+            _ => vec![("", slice(contents, "field", name))],
+        }
+    };
     Some(Drawn {
         name: "field".into(),
         svg: field::draw(&FieldPicture {
             title: &contents.provenance.title,
             time,
-            electric_field: &[("", slice(contents, "field", "electric_field"))],
-            vector_potential: &[("", slice(contents, "field", "vector_potential"))],
+            electric_field: &named("electric_field"),
+            vector_potential: &named("vector_potential"),
         }),
         caption: "Electric field and vector potential.".into(),
         alternative: "Electric field above, vector potential below, against time.".into(),

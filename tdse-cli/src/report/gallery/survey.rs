@@ -105,13 +105,21 @@ fn spectrum(contents: &Contents, parameter: &Parameter, asked: &Asked) -> Option
     if energies.is_empty() {
         return None;
     }
+    // Of two components the sum.
+    let all = slice(contents, asked.group, asked.spectrum);
+    let summed: Vec<f64> = match contents.real(asked.group, asked.spectrum)?.shape() {
+        [_, components, length] => {
+            all.chunks(components * length).flat_map(|point| sum(point, *length)).collect()
+        }
+        _ => all.to_vec(),
+    };
     Some(Drawn {
         name: asked.group.into(),
         svg: scan::spectrum(&SpectrumScan {
             title: &contents.provenance.title,
             parameter: parameter.axis(),
             energy: Axis { name: asked.axis, unit: "eV", values: Spread::Linear(energies) },
-            spectrum: slice(contents, asked.group, asked.spectrum),
+            spectrum: &summed,
             quantity: asked.quantity,
             decades: 2.0 * MAP_DECADES,
         }),
@@ -121,6 +129,11 @@ fn spectrum(contents: &Contents, parameter: &Parameter, asked: &Asked) -> Option
             asked.caption.to_lowercase()
         ),
     })
+}
+
+/// Sum of rows that lie behind one another.
+fn sum(rows: &[f64], length: usize) -> Vec<f64> {
+    (0..length).map(|i| rows.iter().skip(i).step_by(length).sum()).collect()
 }
 
 /// Every number of the summary that is not the same at all points.

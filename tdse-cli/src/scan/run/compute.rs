@@ -67,7 +67,12 @@ fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String>
     let atom = shared.atoms.get(job).map_err(|error| error.to_string())?;
     let plan = Plan::new(&job.problem, atom.clone(), &job.numerics, job.record);
     let mut plan = plan.map_err(|error| error.to_string())?;
-    let electrons = job.electrons().map(|(method, axis)| (method, axis, shared.atoms.continuum(job)));
+    if let Some(range) = job.map_range() {
+        plan = plan.mapping(&job.numerics, range);
+    }
+    let is_plane = job.numerics.grid.dimensions() == 2;
+    let on_line = job.electrons().filter(|_| !is_plane);
+    let electrons = on_line.map(|(method, axis)| (method, axis, shared.atoms.continuum(job)));
     let continuum = match electrons {
         Some((method, axis, states)) => {
             let states = states.map_err(|error| error.to_string())?;
@@ -78,6 +83,7 @@ fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String>
         }
         None => None,
     };
+    let round = is_plane.then(|| shared.atoms.round(job)).transpose().map_err(|error| error.to_string())?;
     let watch = |step| {
         if shared.prepared.points.len() == 1 {
             shared.reporter.tell(&Event::Advanced { step });
@@ -87,8 +93,8 @@ fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String>
         .map_err(|error| error.to_string())?;
     let times = (start, now());
     Ok(state.map(|state| {
-        let finished =
-            Finished { point, atom: &atom, plan: &plan, state: &state, continuum: continuum.as_deref() };
+        let (continuum, round) = (continuum.as_deref(), round.as_deref());
+        let finished = Finished { point, atom: &atom, plan: &plan, state: &state, continuum, round };
         derive::record(&finished, provenance(shared, point, times))
     }))
 }
@@ -102,7 +108,8 @@ fn propagate(
 ) -> Result<Option<State>, Failure> {
     let steps = plan.schedule().steps;
     let mut state = keeper.start(plan);
-    let mut work = plan.make_workspace();
+    // Threads of the pool that have no point of their own help with this one, in two dimensions.
+    let mut work = plan.make_workspace_on(rayon::current_num_threads());
     let mut chunk = 16;
     while state.series.norm.len() <= steps {
         if stop.is_due() {

@@ -63,17 +63,23 @@ pub fn at_once(jobs: usize, tasks: &[Task]) -> usize {
     machine::fitting(jobs, largest).min(tasks.len()).max(1)
 }
 
-/// Does the tasks, `jobs` at once, until all are done or a stop is due.
+/// Does the tasks, `at_once` at once on `jobs` threads, until all are done or a stop is due.
 ///
 /// # Errors
 /// If the machine gives no threads.
-pub fn run(shared: &Shared, tasks: &[Task], jobs: usize) -> Result<(), ThreadPoolBuildError> {
-    let pool = ThreadPoolBuilder::new().num_threads(jobs).thread_name(|n| format!("point {n}")).build()?;
+pub fn run(shared: &Shared, tasks: &[Task], at_once: usize, jobs: usize) -> Result<(), ThreadPoolBuildError> {
+    let pool = ThreadPoolBuilder::new()
+        .num_threads(jobs.max(at_once))
+        .thread_name(|n| format!("point {n}"))
+        .build()?;
     let next = AtomicUsize::new(0);
-    let (sender, receiver) = sync_channel(jobs);
+    let (sender, receiver) = sync_channel(at_once);
     thread::scope(|scope| {
         scope.spawn(|| write_all(shared, receiver));
-        pool.broadcast(|_| {
+        pool.broadcast(|thread| {
+            if thread.index() >= at_once {
+                return;
+            }
             while let Some(task) = tasks.get(next.fetch_add(1, Ordering::Relaxed)) {
                 if shared.stop.is_due() {
                     break;

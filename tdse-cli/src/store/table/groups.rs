@@ -12,6 +12,7 @@ const NUMBER: &str = "1";
 
 const TIME: Dataset = axis("time", "fs", "Time");
 const PHOTON_ENERGY: Dataset = axis("photon_energy", "eV", "Photon energy");
+const HELICITY: Dataset = count("helicity", "Helicity of light along +z: +1 turns from x to y");
 const COMPONENT: Dataset = count("component", "Component: 0 along x, 1 along y");
 
 /// The groups in the order in which the first one present becomes the default.
@@ -71,6 +72,15 @@ pub static GROUPS: &[Group] = &[
             vector("spectrum", SPECTRUM, &["component", "photon_energy"], "Harmonic intensity"),
             vector("spectral_phase", "rad", &["component", "photon_energy"], "Spectral phase"),
             value("radiated_energy", NUMBER, &["photon_energy"], "Radiated energy per unit photon energy"),
+            HELICITY,
+            value("helicity_spectrum", SPECTRUM, &["helicity", "photon_energy"], "Harmonic intensity"),
+            value(
+                "harmonic_ellipticity",
+                NUMBER,
+                &["photon_energy"],
+                "Ellipticity, positive where helicity +1 is the stronger",
+            ),
+            value("harmonic_orientation", "rad", &["photon_energy"], "Angle of the major axis to x"),
         ],
     },
     Group {
@@ -81,6 +91,8 @@ pub static GROUPS: &[Group] = &[
         datasets: &[
             count("order", "Harmonic order"),
             value("yield", "eV", &["order"], "Energy radiated within half a photon of the order"),
+            HELICITY,
+            value("helicity_yield", "eV", &["helicity", "order"], "The same by helicity"),
         ],
     },
     Group {
@@ -104,6 +116,13 @@ pub static GROUPS: &[Group] = &[
             value("yield", PER_ENERGY, &["energy"], "Ionization probability per unit energy"),
             value("left", PER_ENERGY, &["energy"], "The same, towards negative x"),
             value("right", PER_ENERGY, &["energy"], "The same, towards positive x"),
+            axis("emission_angle", "rad", "Angle of the momentum to x"),
+            value(
+                "angular_distribution",
+                "1 / rad",
+                &["emission_angle"],
+                "Ionization probability per unit angle",
+            ),
         ],
     },
     Group {
