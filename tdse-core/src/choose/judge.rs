@@ -104,7 +104,7 @@ fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
                     Verdict::Doubtful
                 },
                 reason: format!(
-                    "reflects {:.1e} of the electrons of {:.3} / bohr, twice as fast as the slowest that come back within the run",
+                    "reflects {:.1e} of the electrons of {:.3} / bohr, 1.5 times as fast as the slowest that come back within the run",
                     reflection(needs.slowest, width),
                     needs.slowest
                 ),

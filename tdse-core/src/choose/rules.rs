@@ -22,7 +22,7 @@ pub(super) const NARROWEST_ABSORBER: f64 = 20.0;
 const REFLECTED: f64 = 2.0;
 /// Momentum, in units of the slowest that comes back, of which it may reflect that much: those that are slower carry less of
 /// the plateau (measured there too, and on the shipped scenarios).
-const HELD: f64 = 2.0;
+const HELD: f64 = 1.5;
 /// Digits by which the bound state's momenta are held beyond the accuracy, in e-folds (measured there too).
 const SPARE: f64 = 3.0;
 /// Shift of the bound state by a kink, in units of J² h⁵, measured on four screened atoms.
@@ -277,7 +277,7 @@ impl Needs {
         match absorber {
             Absorber::None => "none: nothing comes back from the edge".into(),
             Absorber::Smooth { width } | Absorber::Round { width } => format!(
-                "reflects {:.1e} of electrons twice as fast as the slowest that come back within the run, {:.3} / bohr, and less above \
+                "reflects {:.1e} of electrons 1.5 times as fast as the slowest that come back within the run, {:.3} / bohr, and less above \
                  (even form of Gonzalez-Lezana, Rackham, Manolopoulos 2004)",
                 reflection(self.slowest, width),
                 self.slowest
