@@ -41,7 +41,8 @@ impl AtomFacts {
 }
 
 /// Range and fineness of the momentum map that a spectrum at `energies` is read from: up to its last energy and as fine as its
-/// energies lie there, but for [`MOST`]. Of the grid only the range depends, so points of a scan share their momenta.
+/// energies lie there, but at most 160 momenta to either side of zero. Only the range depends on the grid, so points of a scan
+/// share their momenta.
 pub fn map_range(problem: &Problem, numerics: &Numerics, energies: Energies) -> MapRange {
     let axis = numerics.grid.x;
     let inner = (0.5 * axis.extent() - numerics.absorber.width()).max(1.0);
