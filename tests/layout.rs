@@ -109,7 +109,25 @@ fn point(photon: f64, cep: f64) -> Contents {
     }
     result.insert("summary", "status", Status::Done as i64);
     result.insert("summary", "reason", "");
+    for group in ["returns", "orbits", "ionization", "comparison"] {
+        filled(&mut result, group, cep);
+    }
     result
+}
+
+/// Puts every dataset of a group in, three values along every axis.
+fn filled(result: &mut Contents, group: &str, seed: f64) {
+    for dataset in table::group(group).unwrap().datasets {
+        let rank = if dataset.role == table::Role::Axis { 1 } else { dataset.line.axes.len() };
+        let shape = vec![3; rank];
+        let values: Values = match (dataset.kind, dataset.role) {
+            (table::Kind::Real, table::Role::Axis) => Array1::linspace(0.0, 1.0, 3).into(),
+            (table::Kind::Real, _) => some(&shape, seed).into(),
+            (_, table::Role::Axis) => vec![0i64, 1, 2].into(),
+            _ => ArrayD::from_elem(IxDyn(&shape), 1i64).into(),
+        };
+        result.insert(group, dataset.name, values);
+    }
 }
 
 fn spectra(result: &mut Contents, group: &str, photon: f64, cep: f64) {
@@ -481,8 +499,8 @@ fn files_that_contradict_themselves_are_refused() {
         ("entry/harmonics/radiated_energy", "wrong number of dimensions"),
         ("entry/harmonics/photon_energy", "120 values along photon_energy of 4"),
         ("entry/momentum/momentum", "21 values along momentum of 4"),
-        ("entry/harmonic_yields/cep", "the scan axis shape has the shape [3]"),
-        ("entry/harmonic_yields/shape", "the scan axis shape has the shape [4]"),
+        ("entry/comparison/cep", "the scan axis shape has the shape [3]"),
+        ("entry/comparison/shape", "the scan axis shape has the shape [4]"),
         ("entry/summary/reason", "wrong number of dimensions"),
         ("entry/title", "title holds 4 texts"),
     ] {

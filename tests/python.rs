@@ -12,6 +12,10 @@ use std::{env, fs, io};
 
 use sha2::{Digest, Sha256};
 
+/// Every simpler model without a file.
+const MODELS: &str = r#"/models={"three_step": {}, "strong_field": {}, "quantum_orbits": {}, "tunnelling": {}, "perturbation": {},
+    "recombination": {}}"#;
+
 type Outcome<T> = Result<T, Box<dyn Error>>;
 
 #[test]
@@ -23,7 +27,8 @@ fn python_opens_every_file_of_a_run() -> Outcome<()> {
     let scratch = tempfile::tempdir()?;
     let out = scratch.path().join("out");
     let config = root.join("configs/quickstart.json");
-    run(Command::new(env!("CARGO_BIN_EXE_tdse")).arg("run").arg(config).arg("--out").arg(&out))?;
+    let mut program = Command::new(env!("CARGO_BIN_EXE_tdse"));
+    run(program.arg("run").arg(config).arg("--out").arg(&out).args(["--set", MODELS]))?;
 
     let points = point_files(&out.join("points"))?;
     assert!(!points.is_empty(), "the run left no point file");
@@ -49,7 +54,8 @@ fn xarray_selects_from_a_scan_by_value() -> Outcome<()> {
     let mut program = Command::new(env!("CARGO_BIN_EXE_tdse"));
     program.arg("run").arg(root.join("configs/quickstart.json")).arg("--out").arg(&out);
     let electrons = r#"/outputs/photoelectrons={"max_energy": "20 eV", "energy_step": "0.2 eV"}"#;
-    run(program.args(["--set", scan, "--set", "/field/pulses/0/envelope/cycles=2", "--set", electrons]))?;
+    let sets = [scan, "/field/pulses/0/envelope/cycles=2", electrons, MODELS];
+    run(program.args(sets.iter().flat_map(|set| ["--set", set])))?;
     let python = python_with(&root.join("tests/python/requirements.txt"))?;
     let result = out.join("result.h5");
     let scripts = root.join("tests/python");

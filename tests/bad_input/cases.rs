@@ -521,10 +521,94 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
-        name: "models",
-        edits: &[("/models", Some(r#"{"three_step": {}}"#))],
+        name: "an unknown model",
+        edits: &[("/models", Some(r#"{"three_steps": {}}"#))],
         says: &[
-            "/models/three_step: {} is not available in this version; allowed: the key left out; at /models try {}",
+            r#"/models/three_steps: {} stands under an unknown key; allowed: the keys note, tolerance, three_step, strong_field, quantum_orbits, tunnelling, perturbation, recombination, curve; as its key try "three_step""#,
+        ],
+    },
+    Case {
+        name: "a model where none is",
+        edits: &[("/models", Some(r#"{"barrier": {}}"#))],
+        says: &[
+            "/models/barrier: {} stands under an unknown key; allowed: the keys note, tolerance, three_step, strong_field, quantum_orbits, tunnelling, perturbation, recombination, curve; at /models try {}",
+        ],
+    },
+    Case {
+        name: "a tolerance below zero",
+        edits: &[("/models", Some(r#"{"tolerance": {"orders": -1}, "three_step": {}}"#))],
+        says: &["/models/tolerance/orders: -1 is out of range; allowed: a number from 0; try 2"],
+    },
+    Case {
+        name: "strong field from a superposition",
+        edits: &[
+            ("/models", Some(r#"{"strong_field": {}}"#)),
+            ("/atom/ionization_energy", None),
+            ("/atom/potential/softening", Some(r#""1.4 bohr""#)),
+            (
+                "/atom/state",
+                Some(
+                    r#"{"kind": "superposition", "terms": [{"number": 0, "weight": 1}, {"number": 1, "weight": 1}]}"#,
+                ),
+            ),
+        ],
+        says: &[
+            "/models/strong_field: {} starts from one bound state, and /atom/state is a superposition; allowed: three_step and curve beside a superposition; every model beside a single state; at /models try {}",
+        ],
+    },
+    Case {
+        name: "strong field in two dimensions",
+        edits: &[
+            ("/models", Some(r#"{"three_step": {}, "strong_field": {}}"#)),
+            ("/atom/dimensions", Some("2")),
+        ],
+        says: &[
+            "/atom/dimensions: 2 is not available in this version; allowed: 1; try 1",
+            r#"/models/strong_field: {} is a model that is not there in two dimensions; allowed: three_step and curve in two dimensions; every model in one; at /models try {"three_step":{}}"#,
+        ],
+    },
+    Case {
+        name: "quantum orbits of a Gaussian pulse",
+        edits: &[
+            ("/models", Some(r#"{"quantum_orbits": {}}"#)),
+            ("/field/pulses/0/envelope", Some(r#"{"kind": "gaussian", "fwhm": "6 fs"}"#)),
+        ],
+        says: &[
+            "/models/quantum_orbits: {} needs a field known at complex times; allowed: a single pulse, sin2 or flat_top, polarized along x, without chirp; at /models try {}",
+        ],
+    },
+    Case {
+        name: "quantum orbits of a sampled field",
+        edits: &[
+            ("/models", Some(r#"{"quantum_orbits": {}}"#)),
+            ("/field/sampled", Some(r#"{"file": "pulse.csv"}"#)),
+        ],
+        says: &[
+            "/models/quantum_orbits: {} needs a field known at complex times; allowed: a single pulse, sin2 or flat_top, polarized along x, without chirp; at /models try {}",
+        ],
+    },
+    Case {
+        name: "recombination without harmonics",
+        edits: &[("/models", Some(r#"{"recombination": {}}"#)), ("/outputs", Some("{}"))],
+        says: &[
+            "/models/recombination: {} has no use without outputs.harmonics; allowed: that output, or the key left out; at /models try {}",
+        ],
+    },
+    Case {
+        name: "strong field without outputs",
+        edits: &[("/models", Some(r#"{"strong_field": {}}"#)), ("/outputs", Some("{}"))],
+        says: &[
+            "/models/strong_field: {} has no use without outputs.harmonics or outputs.photoelectrons; allowed: one of these outputs, or the key left out; at /models try {}",
+        ],
+    },
+    Case {
+        name: "tunnelling out of a harmonic potential",
+        edits: &[
+            ("/models", Some(r#"{"tunnelling": {}}"#)),
+            ("/atom", Some(r#"{"potential": {"kind": "harmonic", "frequency": "2 eV"}}"#)),
+        ],
+        says: &[
+            "/models/tunnelling: {} asks for electrons of an atom that lets none go: a harmonic potential has no continuum; allowed: an atom that can be ionized; at /models try {}",
         ],
     },
     Case {

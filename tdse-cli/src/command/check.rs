@@ -202,6 +202,9 @@ fn outputs(point: &Point) -> String {
     if point.job.record.populations > 0 {
         table.row("populations of", point.job.record.populations.to_string(), "states", "");
     }
+    for model in outputs.models.iter().flat_map(|models| &models.asked) {
+        table.row("model", model.name(), "", "");
+    }
     format!("\nOutputs\n{table}")
 }
 

@@ -13,6 +13,7 @@ pub mod report;
 pub mod run;
 pub mod states;
 pub mod status;
+mod verdict;
 
 use std::process::ExitCode;
 

@@ -10,6 +10,7 @@ use super::headline::headline;
 use super::options::{Effort, RunOptions};
 use super::output::data;
 use super::report;
+use super::verdict;
 use crate::progress::{Audience, Counts, Event, Reporter, Wish, voice};
 use crate::refine;
 use crate::scan::asked;
@@ -233,11 +234,13 @@ impl<'a> Work<'a> {
             } else {
                 String::new()
             };
-            return Ok(format!("{numbers}{}\n", path.display()));
+            let models = verdict::text(&path).map_err(Trouble::incomplete)?;
+            return Ok(format!("{numbers}{models}{}\n", path.display()));
         }
         let there = standings.iter().filter(|standing| standing.is_there()).count();
         let failed = standings.iter().filter(|standing| matches!(standing, Standing::Failed(_))).count();
         let failed = if failed > 0 { format!(", {failed} failed") } else { String::new() };
-        Ok(format!("{there} of {} points{failed}: {}\n", standings.len(), path.display()))
+        let models = verdict::text(&path).map_err(Trouble::incomplete)?;
+        Ok(format!("{models}{there} of {} points{failed}: {}\n", standings.len(), path.display()))
     }
 }

@@ -8,6 +8,7 @@ pub mod complaint;
 pub mod files;
 pub mod identity;
 pub mod library;
+pub mod models;
 pub mod overrides;
 pub mod pointer;
 pub mod quantity;

@@ -7,6 +7,7 @@ use tdse_core::potential::Potential;
 use tdse_core::problem::{ElectronMethod, InitialState, PlaneLabel, Record};
 use tdse_core::spectrum::Window;
 
+use super::models::Models;
 use super::raw;
 use super::tables::Input;
 
@@ -144,6 +145,8 @@ pub struct Outputs {
     pub time_frequency: Option<TimeFrequency>,
     /// Spectrum of the electrons.
     pub photoelectrons: Option<Photoelectrons>,
+    /// Simpler models.
+    pub models: Option<Models>,
 }
 
 /// Spectrum of the electrons.

@@ -77,6 +77,11 @@ fn name_symmetries(state: &mut raw::State) {
 
 fn inputs(written: &mut raw::Configuration, request: &Request) {
     for input in &request.inputs {
+        if let Some(curve) = written.models.as_mut().and_then(|models| models.curve.as_mut())
+            && input.user == "/models/curve"
+        {
+            (curve.file, curve.sha256) = (input.reference(), Some(input.sha256.clone()));
+        }
         match (&mut written.atom.potential, &mut written.field.sampled) {
             (raw::Potential::Sampled { file, sha256, .. }, _) if input.user == "/atom/potential" => {
                 (*file, *sha256) = (input.reference(), Some(input.sha256.clone()));

@@ -171,7 +171,7 @@ fn unknown_key(
 fn is_planned(place: &str) -> bool {
     const PLANNED: [&str; 3] =
         ["/atom/state/angular_momentum", "/atom/state/parity_x", "/atom/state/parity_y"];
-    PLANNED.contains(&place) || place.starts_with("/models/")
+    PLANNED.contains(&place)
 }
 
 fn quantity_fault(schema: &Value, quantity: Quantity, text: &str) -> Option<String> {

@@ -45,8 +45,34 @@ impl Input {
 pub struct Column {
     /// Name in the header.
     pub name: &'static str,
-    /// Quantity of its unit.
-    pub quantity: Quantity,
+    /// What its unit may be.
+    pub measure: Measure,
+}
+
+/// Units that a column may have.
+#[derive(Clone, Copy, Debug)]
+pub enum Measure {
+    /// Those of a quantity.
+    Of(Quantity),
+    /// This one.
+    Fixed(&'static str),
+}
+
+impl Measure {
+    fn symbols(self) -> Vec<&'static str> {
+        match self {
+            Self::Of(quantity) => quantity.units().iter().map(|unit| unit.symbol).collect(),
+            Self::Fixed(symbol) => vec![symbol],
+        }
+    }
+
+    /// Factor from the unit with this symbol to the one that results of reading are in.
+    fn factor(self, symbol: &str) -> Option<f64> {
+        match self {
+            Self::Of(quantity) => quantity.unit(symbol).map(|unit| unit.factor),
+            Self::Fixed(known) => (symbol == known).then_some(1.0),
+        }
+    }
 }
 
 /// What a table holds.
@@ -61,8 +87,8 @@ pub struct Layout {
 /// Electric field over time.
 pub const FIELD: Layout = Layout {
     columns: [
-        Column { name: "time", quantity: Quantity::Time },
-        Column { name: "electric_field", quantity: Quantity::ElectricField },
+        Column { name: "time", measure: Measure::Of(Quantity::Time) },
+        Column { name: "electric_field", measure: Measure::Of(Quantity::ElectricField) },
     ],
     header: "time [fs],electric_field [V/m]",
 };
@@ -70,10 +96,28 @@ pub const FIELD: Layout = Layout {
 /// Potential energy over position.
 pub const POTENTIAL: Layout = Layout {
     columns: [
-        Column { name: "position", quantity: Quantity::Length },
-        Column { name: "potential", quantity: Quantity::Energy },
+        Column { name: "position", measure: Measure::Of(Quantity::Length) },
+        Column { name: "potential", measure: Measure::Of(Quantity::Energy) },
     ],
     header: "position [bohr],potential [eV]",
+};
+
+/// A harmonic spectrum |a(ω)|² over photon energy.
+pub const SPECTRUM: Layout = Layout {
+    columns: [
+        Column { name: "photon_energy", measure: Measure::Of(Quantity::Energy) },
+        Column { name: "spectrum", measure: Measure::Fixed("au") },
+    ],
+    header: "photon_energy [eV],spectrum [au]",
+};
+
+/// An electron spectrum over kinetic energy.
+pub const YIELD: Layout = Layout {
+    columns: [
+        Column { name: "energy", measure: Measure::Of(Quantity::Energy) },
+        Column { name: "yield", measure: Measure::Fixed("1/eV") },
+    ],
+    header: "energy [eV],yield [1/eV]",
 };
 
 /// What is wrong with a table, where, and what belongs there.
@@ -130,11 +174,11 @@ impl Source<'_> {
         for (i, column) in layout.columns.into_iter().enumerate() {
             let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
             let unit = unit.filter(|(name, _)| name.trim() == column.name);
-            let unit = unit.and_then(|(_, symbol)| column.quantity.unit(symbol.trim()));
-            let symbols: Vec<&str> = column.quantity.units().iter().map(|unit| unit.symbol).collect();
+            let factor = unit.and_then(|(_, symbol)| column.measure.factor(symbol.trim()));
+            let symbols = column.measure.symbols();
             let reason = format!("{:?} is not {} and its unit", &header[i], column.name);
             let allowed = format!("a header such as {}, with the unit {}", layout.header, either(&symbols));
-            factors[i] = unit.ok_or_else(|| self.fault(header, reason, allowed))?.factor;
+            factors[i] = factor.ok_or_else(|| self.fault(header, reason, allowed))?;
         }
         Ok(factors)
     }

@@ -5,10 +5,12 @@
 
 mod doubts;
 mod electrons;
+pub mod models;
 mod plane;
 mod recorded;
 mod spectra;
 
+pub use models::models;
 pub use recorded::{Finished, record};
 pub use spectra::derive;
 

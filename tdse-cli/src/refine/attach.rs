@@ -9,6 +9,7 @@ use tdse_core::refine::{Cause, Errors};
 use super::bars::{self, Counted, Found, Place};
 use super::models::{ModelPlan, attach_models, models_folder};
 use super::plan::Plan;
+use crate::derive::models;
 use crate::scan::prepare::Prepared;
 use crate::store::table;
 use crate::store::{self, Contents, Error, Folder, Request};
@@ -56,7 +57,7 @@ pub fn restore(root: &Path, prepared: &Prepared, request: &Request) -> Result<()
 }
 
 /// Writes the bars that the finished scan in [`folder()`] gives into `result.h5`; nothing where there is no such scan, or
-/// one of another request.
+/// one of another request. Comparisons of models are made anew with them.
 ///
 /// # Errors
 /// Where a result cannot be read or written.
@@ -104,6 +105,7 @@ pub fn attach(root: &Path, plan: &Plan) -> Result<Option<Vec<Bar>>, Error> {
     said.extend(medians(plan, "Harmonic yields up to the cutoff, median relative", &yields, &orders));
     let all = vec![ALL_ELECTRONS; plan.repeated.len()];
     said.extend(medians(plan, "Electron spectrum, median relative", &electrons, &all));
+    models::compare(&mut base, |index| plan.tolerances[index]);
     store::write(&result, &base)?;
     Ok(Some(said))
 }

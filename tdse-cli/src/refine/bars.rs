@@ -32,10 +32,12 @@ pub(super) struct Place<'a> {
 /// Groups that are about errors themselves.
 const ABOUT_ERRORS: [&str; 2] = ["refinement", "model_atoms"];
 
-/// Arrays that get bars.
+/// Arrays that get bars. Models have none of their own: their comparison takes those of the full result.
 pub(super) fn places(contents: &Contents) -> Vec<(String, &'static str)> {
     let with_bars = |group: &str, name: &str| {
-        !ABOUT_ERRORS.iter().any(|about| group.ends_with(about)) && !WITHOUT.contains(&name)
+        !ABOUT_ERRORS.iter().any(|about| group.ends_with(about))
+            && !group.starts_with("models/")
+            && !WITHOUT.contains(&name)
     };
     let places = contents.numbers().map(|(group, dataset, _)| (group.to_owned(), dataset.name));
     places.filter(|(group, name)| with_bars(group, name)).collect()

@@ -10,7 +10,7 @@ use tdse_core::problem::InitialState;
 use tdse_core::refine::{ModelAtom, model_atoms};
 
 use super::attach::finished;
-use super::plan::{own_axes, representatives};
+use super::plan::{is_of_models, own_axes, representatives, without_models};
 use crate::config::Files;
 use crate::config::quantity::digits;
 use crate::scan::asked;
@@ -79,6 +79,7 @@ impl ModelPlan {
 fn configuration(prepared: &Prepared, request: &Request, repeated: &[usize], atoms: &[Value]) -> Value {
     let mut tree = request.configuration.clone();
     let scan = tree.as_object_mut().and_then(|map| map.shift_remove("scan")).unwrap_or_default();
+    without_models(&mut tree);
     let first: Value = serde_json::from_str(&prepared.points[repeated[0]].configuration).unwrap_or_default();
     tree["outputs"] = first["outputs"].clone();
     if let Some(outputs) = tree["outputs"].as_object_mut() {
@@ -87,7 +88,9 @@ fn configuration(prepared: &Prepared, request: &Request, repeated: &[usize], ato
     }
     let each = atoms.len() / repeated.len();
     let points: Vec<(usize, usize)> = repeated.iter().map(|index| (*index, each)).collect();
-    let mut axes = own_axes(prepared, &scan, &points, |parameter| !parameter.starts_with("/atom"));
+    let mut axes = own_axes(prepared, &scan, &points, |parameter| {
+        !parameter.starts_with("/atom") && !is_of_models(parameter)
+    });
     axes.push(json!({ "parameter": "/atom", "name": "atom", "values": atoms, "together": "refine" }));
     tree["scan"] = Value::Array(axes);
     tree

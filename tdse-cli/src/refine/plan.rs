@@ -1,6 +1,7 @@
 //! The scan over finer numerics: which points are repeated, and how.
 
 use serde_json::{Value, json};
+use tdse_core::model::metrics::Tolerance;
 use tdse_core::problem::{Absorber, Numerics};
 use tdse_core::refine::{Variation, variations};
 use tdse_core::simulate::Schedule;
@@ -37,6 +38,8 @@ pub struct Plan {
     pub configuration: Value,
     /// The tables it names.
     files: Files,
+    /// What counts as agreement of a model at every point of the request.
+    pub(super) tolerances: Vec<Tolerance>,
 }
 
 impl Plan {
@@ -47,7 +50,11 @@ impl Plan {
             .map(|index| Repeated { index, runs: runs(&prepared.points[index]) })
             .collect();
         let configuration = configuration(prepared, request, &repeated);
-        Self { repeated, configuration, files: Files::Stored(asked::inputs(prepared)) }
+        let tolerance = |point: &Point| {
+            point.job.outputs.models.as_ref().map_or_else(Tolerance::default, |m| m.tolerance)
+        };
+        let tolerances = prepared.points.iter().map(tolerance).collect();
+        Self { repeated, configuration, files: Files::Stored(asked::inputs(prepared)), tolerances }
     }
 
     /// What is to be prepared and run.
@@ -88,6 +95,7 @@ fn runs(point: &Point) -> Vec<Variation> {
 fn configuration(prepared: &Prepared, request: &Request, repeated: &[Repeated]) -> Value {
     let mut tree = request.configuration.clone();
     let scan = tree.as_object_mut().and_then(|map| map.shift_remove("scan")).unwrap_or_default();
+    without_models(&mut tree);
     let resolved = |index: usize| -> Value {
         serde_json::from_str(&prepared.points[index].configuration).unwrap_or_default()
     };
@@ -95,7 +103,8 @@ fn configuration(prepared: &Prepared, request: &Request, repeated: &[Repeated]) 
     tree["outputs"] = first["outputs"].clone();
     tree["numerics"] = first["numerics"].clone();
     let points: Vec<(usize, usize)> = repeated.iter().map(|point| (point.index, point.runs.len())).collect();
-    let mut axes = own_axes(prepared, &scan, &points, |parameter| !is_varied(parameter));
+    let mut axes =
+        own_axes(prepared, &scan, &points, |parameter| !is_varied(parameter) && !is_of_models(parameter));
     for key in KEYS {
         let values = repeated.iter().flat_map(|point| {
             let written = resolved(point.index)["numerics"][key].clone();
@@ -128,6 +137,18 @@ pub(super) fn own_axes(
                 "together": "refine" })
     })
     .collect()
+}
+
+/// Takes the simpler models out: repeated runs are there for the full result.
+pub(super) fn without_models(tree: &mut Value) {
+    if let Some(map) = tree.as_object_mut() {
+        map.shift_remove("models");
+    }
+}
+
+/// Whether an axis of the request is about them.
+pub(super) fn is_of_models(parameter: &str) -> bool {
+    parameter == "/models" || parameter.starts_with("/models/")
 }
 
 /// Whether an axis of the request sets what is varied here.

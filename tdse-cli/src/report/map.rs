@@ -7,9 +7,9 @@ use super::palette::{HAIR, INK, PAPER, SHADES, SOFT, shade};
 use super::parameter::{Axis, Band, Values, bands};
 use super::scale::{Kind, Range, Scale};
 use super::sheet::{EDGE, Sheet, WIDTH};
-use super::svg::{Anchor, Lettering, Stroke, Svg};
+use super::svg::{Anchor, Lettering, Point, Stroke, Svg};
 use super::ticks::{Ticks, ticks};
-use super::trace::trace;
+use super::trace::{inside, trace};
 use std::fmt::Write as _;
 
 /// Most cells along a row and a column; finer data are averaged.
@@ -54,6 +54,14 @@ pub struct Over<'a> {
     pub y: &'a [f64],
 }
 
+/// What is drawn over a map.
+#[derive(Debug, Clone, Copy)]
+enum Marks<'a> {
+    None,
+    Line(Over<'a>),
+    Dots(&'a [Point]),
+}
+
 /// How high the frame is.
 #[derive(Debug, Clone, Copy)]
 enum Height {
@@ -65,23 +73,32 @@ enum Height {
 
 /// Draws the map as SVG.
 pub fn draw(map: &Map<'_>) -> String {
-    draw_whole(map, Height::Fixed(HEIGHT), None)
+    draw_whole(map, Height::Fixed(HEIGHT), Marks::None)
+}
+
+/// Draws the map with dots over it at points (across, up).
+pub fn draw_under(map: &Map<'_>, dots: &[Point]) -> String {
+    draw_whole(map, Height::Fixed(HEIGHT), Marks::Dots(dots))
 }
 
 /// Draws the map with the same scale along both axes, which are even, and a line over it.
 pub fn draw_square(map: &Map<'_>, over: Option<Over<'_>>) -> String {
-    draw_whole(map, Height::ToScale, over)
+    draw_whole(map, Height::ToScale, over.map_or(Marks::None, Marks::Line))
 }
 
-fn draw_whole(map: &Map<'_>, height: Height, over: Option<Over<'_>>) -> String {
+fn draw_whole(map: &Map<'_>, height: Height, marks: Marks<'_>) -> String {
     let mut sheet = Sheet::new(map.title);
     sheet.names(&map.up.label(), &map.name, WIDTH - EDGE);
     sheet.y += 12.0;
     let planned = bands(&map.across, MOST.0).zip(bands(&map.up, MOST.1)).zip(shades(map));
     if let Some(((across, up), shades)) = planned {
         let frame = shaded(&mut sheet, map, (&across, &up), shades, height);
-        if let Some(over) = over {
-            line_over(&mut sheet.svg, over, (across.0, up.0), frame);
+        let below = Scale::new(map.across.kind(), across.0, frame.left, frame.right);
+        let left = Scale::new(map.up.kind(), up.0, frame.bottom, frame.top);
+        match marks {
+            Marks::None => {}
+            Marks::Line(over) => line_over(&mut sheet.svg, over, (below, left), frame),
+            Marks::Dots(dots) => dotted(&mut sheet.svg, dots, (below, left), frame),
         }
         sheet.y = frame.bottom + 20.0;
         sheet.lower_name(&map.across.label(), frame.right);
@@ -107,9 +124,7 @@ fn shades(map: &Map<'_>) -> Option<Scale> {
 }
 
 /// A line with a pale rim, so that it is seen on every shade.
-fn line_over(svg: &mut Svg, over: Over<'_>, (across, up): (Range, Range), frame: Frame) {
-    let across = Scale::new(Kind::Linear, across, frame.left, frame.right);
-    let up = Scale::new(Kind::Linear, up, frame.bottom, frame.top);
+fn line_over(svg: &mut Svg, over: Over<'_>, (across, up): (Scale, Scale), frame: Frame) {
     let pieces = trace(over.x, over.y, across, up, frame);
     svg.open("over");
     for stroke in [Stroke::solid(PAPER, 3.4), Stroke::solid(INK, 1.3)] {
@@ -142,17 +157,37 @@ fn shaded(
     let rows: Vec<Row> = up.1.iter().map(|band| row(map, band, &across.1, shades)).collect();
     cells(&mut sheet.svg, &rows, frame);
     hatching(&mut sheet.svg, &rows, frame);
+    let below = Scale::new(map.across.kind(), across.0, frame.left, frame.right);
+    let left = Scale::new(map.up.kind(), up.0, frame.bottom, frame.top);
     let room = (frame.right - frame.left) / map.across.len().max(1) as f64 - 8.0;
     let sample = super::number::at_step(across.0.high, (across.0.high - across.0.low) / 5.0);
     let wanted = ((frame.right - frame.left) / (width(&sample, TEXT, Weight::Regular) + 18.0)) as usize;
     let across_ticks = axis_ticks(&map.across, across.0, wanted, room);
-    let below = Scale::new(map.across.kind(), across.0, frame.left, frame.right);
     axis(&mut sheet.svg, frame, Side::Bottom, below, &across_ticks);
-    let left = Scale::new(map.up.kind(), up.0, frame.bottom, frame.top);
     axis(&mut sheet.svg, frame, Side::Left, left, &up_ticks);
     let bar = Frame { left: frame.right + 14.0, right: frame.right + 14.0 + BAR, ..frame };
     colour_bar(&mut sheet.svg, bar, Scale::new(kind, shades.range(), bar.bottom, bar.top), &bar_ticks);
     frame
+}
+
+/// Small dots that stand out on every shade.
+fn dotted(svg: &mut Svg, dots: &[Point], (across, up): (Scale, Scale), frame: Frame) {
+    const RADIUS: f64 = 1.5;
+    if dots.is_empty() {
+        return;
+    }
+    svg.open("dots");
+    let (x, y): (Vec<f64>, Vec<f64>) = dots.iter().copied().unzip();
+    for (x, y) in inside(&x, &y, across, up, frame) {
+        let (from, width) = (x - RADIUS, 2.0 * RADIUS);
+        svg.shape(
+            &format!(
+                "M{from:.2} {y:.2}a{RADIUS} {RADIUS} 0 1 0 {width} 0a{RADIUS} {RADIUS} 0 1 0 -{width} 0Z"
+            ),
+            INK,
+        );
+    }
+    svg.close();
 }
 
 fn axis_ticks(axis: &Axis<'_>, range: Range, wanted: usize, room: f64) -> Ticks {
@@ -244,21 +279,25 @@ fn cells(svg: &mut Svg, rows: &[Row], frame: Frame) {
 
 /// Slanted lines over the cells without a value, continuous over neighbours.
 fn hatching(svg: &mut Svg, rows: &[Row], frame: Frame) {
-    const APART: f64 = 7.0;
     svg.open("missing");
     for row in rows {
         for run in row.runs.iter().filter(|run| run.shade.is_none()) {
-            let hole = corners(row, run, frame);
-            svg.rectangle((hole.left, hole.top), (hole.right, hole.bottom), HAIR);
-            // The lines x + y = const, every APART, within the hole.
-            let first = ((hole.left + hole.top) / APART).ceil() as i64;
-            let last = ((hole.right + hole.bottom) / APART).floor() as i64;
-            for number in first..=last {
-                let sum = number as f64 * APART;
-                let (from, to) = (hole.left.max(sum - hole.bottom), hole.right.min(sum - hole.top));
-                svg.line((from, sum - from), (to, sum - to), Stroke::solid(SOFT, 0.8));
-            }
+            hatched(svg, corners(row, run, frame));
         }
     }
     svg.close();
+}
+
+/// A place without a value.
+pub(super) fn hatched(svg: &mut Svg, hole: Frame) {
+    const APART: f64 = 7.0;
+    svg.rectangle((hole.left, hole.top), (hole.right, hole.bottom), HAIR);
+    // The lines x + y = const, every APART, within the hole.
+    let first = ((hole.left + hole.top) / APART).ceil() as i64;
+    let last = ((hole.right + hole.bottom) / APART).floor() as i64;
+    for number in first..=last {
+        let sum = number as f64 * APART;
+        let (from, to) = (hole.left.max(sum - hole.bottom), hole.right.min(sum - hole.top));
+        svg.line((from, sum - from), (to, sum - to), Stroke::solid(SOFT, 0.8));
+    }
 }

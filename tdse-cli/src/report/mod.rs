@@ -1,7 +1,8 @@
 //! Pictures (SVG, and PNG of the same drawing) and the self-contained page. Draws only, computes no physics.
 //!
 //! Every picture is a pure function of plain data in file units: [`harmonics`], [`electrons`], [`field`], [`lissajous`],
-//! [`momentum_map`], [`time_frequency`], [`populations`] and [`scan`], built on the line picture [`figure`] and the shaded picture [`map`]. Lines, letters
+//! [`momentum_map`], [`time_frequency`], [`populations`], [`models`], [`verdict`] and [`scan`], built on the line picture
+//! [`figure`] and the shaded picture [`map`]. Lines, letters
 //! and axes are drawn by a small module of our own ([`svg`], [`axes`]): it measures letters in the very font the PNG
 //! uses, so that nothing overlaps, sets true superscripts, and lets a second axis count multiples of the first.
 //!
@@ -18,6 +19,7 @@ pub mod gallery;
 pub mod harmonics;
 pub mod lissajous;
 pub mod map;
+pub mod models;
 pub mod momentum_map;
 pub mod number;
 pub mod page;
@@ -33,3 +35,4 @@ pub mod svg;
 pub mod ticks;
 pub mod time_frequency;
 mod trace;
+pub mod verdict;

@@ -19,6 +19,9 @@ pub const BAND: &str = "#f0c48e";
 /// Grid lines.
 pub const HAIR: &str = "#dfe3ea";
 
+/// Cells of verdicts: within the full result's error, within the tolerance, different.
+pub const VERDICTS: [&str; 3] = ["#1b818c", "#a9d8d3", "#f0c48e"];
+
 /// The marker that stands on points of a curve.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Marker {

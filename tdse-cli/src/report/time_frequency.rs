@@ -1,6 +1,6 @@
 //! When which photon energies are emitted.
 
-use super::map::{Map, Shading, draw as draw_map};
+use super::map::{Map, Shading, draw_under};
 use super::parameter::{Axis, Values};
 
 /// A time–frequency map.
@@ -24,7 +24,20 @@ pub struct TimeFrequencyPicture<'a> {
 
 /// Draws the map as SVG with logarithmic shades.
 pub fn draw(picture: &TimeFrequencyPicture<'_>) -> String {
-    draw_map(&Map {
+    draw_under(&map(picture), &[])
+}
+
+/// The same under classical returns, fs and eV.
+pub fn draw_with_returns(picture: &TimeFrequencyPicture<'_>, returns: &[(f64, f64)]) -> String {
+    let mut map = map(picture);
+    map.notes.push(
+        "Dots: first returns of classical electrons, ionization energy plus energy at the return.".into(),
+    );
+    draw_under(&map, returns)
+}
+
+fn map<'a>(picture: &TimeFrequencyPicture<'a>) -> Map<'a> {
+    Map {
         title: picture.title,
         across: Axis { name: "time", unit: "fs", values: Values::Linear(picture.time) },
         up: Axis { name: "photon energy", unit: "eV", values: Values::Linear(picture.photon_energy) },
@@ -32,5 +45,5 @@ pub fn draw(picture: &TimeFrequencyPicture<'_>) -> String {
         name: picture.quantity.to_owned(),
         shading: Shading::Decades(picture.decades),
         notes: vec![format!("Window: {}.", picture.window)],
-    })
+    }
 }

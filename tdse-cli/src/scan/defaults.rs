@@ -84,7 +84,7 @@ pub fn fill(outputs: &Outputs, points: &[Scales]) -> Outputs {
         time_step: map.time_step.or_else(|| Some(time(ladder::at_most(femtoseconds(period / TIMES))))),
     });
     let photoelectrons = outputs.photoelectrons.map(|electrons| filled(electrons, points));
-    Outputs { harmonics, time_frequency, photoelectrons }
+    Outputs { harmonics, time_frequency, photoelectrons, models: outputs.models.clone() }
 }
 
 /// Electrons with their axis: beyond the fastest of all points, fine enough for the fringes of the longest.

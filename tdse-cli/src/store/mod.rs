@@ -41,7 +41,7 @@ pub use gather::{Gathering, Point, gather, gather_while};
 pub use partial::{may_run, process_mark};
 pub use pattern::Patterns;
 pub use provenance::Provenance;
-pub use read::{read, read_groups, read_headline};
+pub use read::{read, read_groups, read_groups_where, read_headline};
 pub use table::{Status, is_reserved_name};
 pub use values::Values;
 pub use write::write;

@@ -21,6 +21,11 @@ pub fn read_groups(path: &Path, groups: &[&str]) -> Result<Contents, Error> {
     read_where(path, |group| groups.contains(&group))
 }
 
+/// Reads the provenance and the groups that `wanted` accepts by their path.
+pub fn read_groups_where(path: &Path, wanted: impl Fn(&str) -> bool) -> Result<Contents, Error> {
+    read_where(path, wanted)
+}
+
 /// Reads the resolved configuration and the group `summary` only: what tells how far a point has come.
 pub fn read_headline(path: &Path) -> Result<Contents, Error> {
     take(path, Provenance::read_configuration, |group| group == "summary")

@@ -6,8 +6,10 @@
 use tdse_core::problem::ElectronMethod;
 
 mod groups;
+mod models;
 
 pub use groups::GROUPS;
+pub use models::verdict_number;
 
 /// Version of the layout. Readers take lower ones and refuse higher ones; raised when the meaning of an existing
 /// name changes, not when names are added.
@@ -138,6 +140,8 @@ impl Dataset {
         match self.name {
             "status" => Some(Status::MEANINGS.map(|(status, word)| (status as i64, word)).to_vec()),
             "electron_method" => Some(electron_methods()),
+            "branch" => Some(models::branches()),
+            name if name.ends_with("verdict") => Some(models::verdicts()),
             _ => None,
         }
     }

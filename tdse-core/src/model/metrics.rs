@@ -120,6 +120,8 @@ pub struct HarmonicComparison {
     pub plateau: RangeInclusive<usize>,
     /// Difference of the measured cutoffs, model - full, orders.
     pub cutoff: Metric,
+    /// Measured cutoff of the model, orders; NaN where there is none.
+    pub model_cutoff: f64,
     /// Difference of the plateau's slopes, decades per order.
     pub slope: Metric,
     /// Difference of the plateau's levels in its middle, decades.
@@ -147,7 +149,8 @@ impl HarmonicComparison {
 
 /// Compares yields of orders 1, 2, …, of a model with those of the full run over the orders `plateau`.
 ///
-/// The cutoff's bar is the one of the full run's cutoff where it is given in `cutoff_error`, orders. Orders without a positive yield
+/// Cutoffs are knees of the orders from the plateau's middle on, where there is one: the rise up to the ionization energy, steep in
+/// some models, is no part of them. The cutoff's bar is the one of the full run's cutoff where it is given in `cutoff_error`, orders. Orders without a positive yield
 /// on both sides are left out.
 ///
 /// # Panics
@@ -160,14 +163,19 @@ pub fn compare_harmonics(
 ) -> HarmonicComparison {
     assert!(*plateau.start() >= 1 && !plateau.is_empty(), "a plateau of orders from 1 on, got {plateau:?}");
     let values: Vec<f64> = full.iter().map(|f| f.value).collect();
-    let knee = |yields: &[f64]| measured_cutoff(yields).map_or(f64::NAN, |c| c.order);
+    let middle = usize::midpoint(*plateau.start(), *plateau.end());
+    let knee = |yields: &[f64]| {
+        let upper = yields.get(middle - 1..).and_then(measured_cutoff).map(|c| c.order + (middle - 1) as f64);
+        upper.or_else(|| measured_cutoff(yields).map(|c| c.order)).unwrap_or(f64::NAN)
+    };
+    let model_cutoff = knee(model);
     let points = points(model, full, &plateau);
     let differences: Vec<f64> = points.iter().map(|p| p.model - p.full).collect();
     let bars: Option<Vec<f64>> = points.iter().map(|p| p.bar).collect();
     let shift = -mean(&differences);
     let shifted: Vec<f64> = differences.iter().map(|d| d + shift).collect();
     let rms_bar = bars.as_deref().map(rms);
-    let [slope, middle] = line(&points, &differences);
+    let [slope, level] = line(&points, &differences);
     let slope_bar = bars.as_deref().map(|bars| slope_error(&points, bars));
     let sums = (
         points.iter().map(|p| 10f64.powf(p.model)).sum::<f64>(),
@@ -178,9 +186,10 @@ pub fn compare_harmonics(
     );
     HarmonicComparison {
         plateau,
-        cutoff: Metric::difference(knee(model) - knee(&values), cutoff_error),
+        cutoff: Metric::difference(model_cutoff - knee(&values), cutoff_error),
+        model_cutoff,
         slope: Metric::difference(slope, slope_bar),
-        level: Metric::difference(middle, bars.as_deref().map(mean)),
+        level: Metric::difference(level, bars.as_deref().map(mean)),
         distance: Metric::difference(rms(&differences), rms_bar),
         shifted_distance: Metric::difference(rms(&shifted), rms_bar),
         shift,

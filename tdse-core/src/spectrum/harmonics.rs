@@ -134,15 +134,19 @@ pub fn order_yields(
     sums_by_order(&spectrum, axis, orders)
 }
 
-/// Axis to half a photon beyond the last order: four samples per resolvable width 2π/length, an even number per half photon.
-pub(super) fn sampled_by_order(schedule: &Schedule, photon: f64, orders: usize) -> EnergyAxis {
+/// Axis to half a photon beyond the last order: four samples per resolvable width 2π/length, an even number per half photon. Order q
+/// stands at its index q (points - 1)/(orders + ½).
+pub fn sampled_by_order(schedule: &Schedule, photon: f64, orders: usize) -> EnergyAxis {
     let length = schedule.time_step * schedule.steps as f64;
     let per_half = 2 * (photon * length / (2.0 * PI)).ceil().max(4.0) as usize;
     EnergyAxis { step: 0.5 * photon / per_half as f64, points: (2 * orders + 1) * per_half + 1 }
 }
 
-/// Radiated energy within half a photon of every order of a spectrum on [`sampled_by_order`].
-pub(super) fn sums_by_order(spectrum: &[f64], axis: EnergyAxis, orders: usize) -> Vec<f64> {
+/// Radiated energy within half a photon of every order of a spectrum on [`sampled_by_order`], hartree.
+///
+/// # Panics
+/// If the spectrum is shorter than the axis.
+pub fn sums_by_order(spectrum: &[f64], axis: EnergyAxis, orders: usize) -> Vec<f64> {
     let per_half = (axis.points - 1) / (2 * orders + 1);
     (1..=orders)
         .map(|order| {

@@ -5,6 +5,7 @@
 
 mod atom;
 mod field;
+mod models;
 mod numerics;
 mod outputs;
 mod scan;
@@ -21,8 +22,9 @@ use super::quantity;
 pub use atom::{Atom, ElementSymbol, Parity, Potential, State, Term};
 pub use field::example as example_pulse;
 pub use field::{Envelope, Field, Pulse, Sampled};
+pub use models::{Curve, CurveOf, Models, Tolerance};
 pub use numerics::{Absorber, ElectronMethod, Gauge, Numerics, Scheme, Shape};
-pub use outputs::{Harmonics, Models, Outputs, Populations, TimeFrequency, Window};
+pub use outputs::{Harmonics, Outputs, Populations, TimeFrequency, Window};
 pub use scan::{Axis, Spacing};
 
 /// One calculation, or a scan of many: one atom in one laser field.
@@ -50,7 +52,8 @@ pub struct Configuration {
     /// What is derived from the run and written; without any, only the series in time.
     #[serde(default)]
     pub outputs: Outputs,
-    /// Simpler models to compare with.
+    /// Simpler models to compare with; what they are can be changed without a new propagation.
+    #[schemars(example = json!({ "three_step": {}, "strong_field": {} }))]
     pub models: Option<Models>,
     /// Axes of a scan, combined as a grid, the last one fastest.
     #[schemars(example = json!([]))]

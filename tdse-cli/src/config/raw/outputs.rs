@@ -1,4 +1,4 @@
-//! `outputs` and `models`.
+//! `outputs`.
 
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
@@ -124,12 +124,4 @@ pub struct Populations {
     /// Number of states, from the lowest.
     #[schemars(range(min = 1, max = 1000), example = 4)]
     pub states: u32,
-}
-
-/// Simpler models; none in this version.
-#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct Models {
-    /// Anything worth remembering.
-    pub note: Option<String>,
 }

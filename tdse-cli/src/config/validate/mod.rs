@@ -3,6 +3,7 @@
 mod atom;
 mod electrons;
 mod field;
+mod models;
 mod numerics;
 mod outputs;
 mod symmetry;
@@ -26,7 +27,8 @@ pub fn validate(written: raw::Configuration, tree: &Value, library: &Library) ->
     let mut check = Check { tree, library, found: Vec::new(), inputs: Vec::new() };
     let atom = atom::atom(&mut check, &written.atom);
     let field = field::field(&mut check, &written.field, written.atom.dimensions);
-    let (outputs, record) = outputs::outputs(&mut check, &written.outputs);
+    let (mut outputs, record) = outputs::outputs(&mut check, &written.outputs);
+    outputs.models = models::models(&mut check, &written, &field);
     let electron_method = electrons::method(&mut check, &written);
     let pins = numerics::pins(&mut check, &written.numerics, written.atom.dimensions);
     let Check { found, inputs, .. } = check;

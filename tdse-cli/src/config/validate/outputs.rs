@@ -37,6 +37,7 @@ pub(super) fn outputs(check: &mut Check, outputs: &raw::Outputs) -> (Outputs, Re
             max_energy: raw.max_energy.as_ref().map(Energy::value),
             energy_step: raw.energy_step.as_ref().map(Energy::value),
         }),
+        models: None,
     };
     (derived, record)
 }

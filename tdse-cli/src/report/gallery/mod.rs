@@ -1,5 +1,6 @@
 //! What a result is drawn as: which pictures, with which captions, and what the page says beside them.
 
+mod models;
 mod run;
 mod survey;
 
@@ -21,7 +22,10 @@ pub struct Drawn {
 
 /// Pictures of a result: of a single run or a point, or of a whole scan.
 pub fn pictures(contents: &Contents) -> Vec<Drawn> {
-    if contents.scan().is_empty() { run::pictures(contents) } else { survey::pictures(contents) }
+    if contents.scan().is_empty() {
+        return run::pictures(contents).into_iter().chain(models::of_run(contents)).collect();
+    }
+    models::of_scan(contents).into_iter().chain(survey::pictures(contents)).collect()
 }
 
 /// The page with these pictures.

@@ -23,7 +23,7 @@ pub(super) fn pictures(contents: &Contents) -> Vec<Drawn> {
 }
 
 /// A scan axis with values that pictures can hold on to.
-struct Parameter {
+pub(super) struct Parameter {
     name: String,
     unit: String,
     numbers: Vec<f64>,
@@ -32,7 +32,7 @@ struct Parameter {
 
 impl Parameter {
     /// The first axis of a dimension stands for those that move with it.
-    fn of(dimension: &ScanDimension) -> Self {
+    pub(super) fn of(dimension: &ScanDimension) -> Self {
         let ScanAxis { name, units, values, .. } = &dimension.axes[0];
         let (numbers, words) = match values {
             Values::Real(numbers) => (numbers.iter().copied().collect(), Vec::new()),
@@ -47,7 +47,7 @@ impl Parameter {
         }
     }
 
-    fn axis(&self) -> Axis<'_> {
+    pub(super) fn axis(&self) -> Axis<'_> {
         let values = if self.words.is_empty() && self.is_geometric() {
             Spread::Log(&self.numbers)
         } else if self.words.is_empty() {

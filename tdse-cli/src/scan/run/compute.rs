@@ -55,9 +55,10 @@ pub fn compute(shared: &Shared, task: &Task) -> Result<Outcome, String> {
         let times = (contents.provenance.start_time, contents.provenance.end_time);
         contents.provenance = provenance(shared, point, times);
         derive::derive(point, &mut contents);
-        contents
+        derive::models(point, &shared.atoms, &mut contents)?;
+        Ok(contents)
     });
-    Ok(Outcome::Whole(how, derived.collect()))
+    Ok(Outcome::Whole(how, derived.collect::<Result<_, String>>()?))
 }
 
 fn propagated(shared: &Shared, index: usize) -> Result<Option<Contents>, String> {

@@ -8,7 +8,7 @@ use serde_json::Value;
 use crate::config::pointer;
 
 /// Parts of a configuration that may change: points that belong are kept.
-const FREE: [&str; 3] = ["scan", "outputs", "title"];
+const FREE: [&str; 4] = ["scan", "outputs", "models", "title"];
 
 /// One place where two configurations differ.
 #[derive(Clone, Debug, PartialEq)]

@@ -1,5 +1,6 @@
 //! The table itself.
 
+use super::models::{COMPARISON, IONIZATION, ORBITS, RETURNS};
 use super::{Dataset, Form, Group, Kind, Role};
 
 const ACCELERATION: &str = "bohr / atomic_unit_of_time**2";
@@ -10,7 +11,7 @@ const MOMENTUM: &str = "hbar / bohr";
 const PER_ENERGY: &str = "1 / eV";
 const NUMBER: &str = "1";
 
-const TIME: Dataset = axis("time", "fs", "Time");
+pub(super) const TIME: Dataset = axis("time", "fs", "Time");
 const PHOTON_ENERGY: Dataset = axis("photon_energy", "eV", "Photon energy");
 const HELICITY: Dataset = count("helicity", "Helicity of light along +z: +1 turns from x to y");
 const COMPONENT: Dataset = count("component", "Component: 0 along x, 1 along y");
@@ -235,13 +236,17 @@ pub static GROUPS: &[Group] = &[
             text("reason", "Why the point is doubtful or not there"),
         ],
     },
+    RETURNS,
+    ORBITS,
+    IONIZATION,
+    COMPARISON,
 ];
 
 const fn dataset(name: &'static str, long_name: &'static str, role: Role, form: Form) -> Dataset {
     Dataset { name, long_name, kind: Kind::Real, role, line: form, plane: form }
 }
 
-const fn value(
+pub(super) const fn value(
     name: &'static str,
     units: &'static str,
     axes: &'static [&'static str],
@@ -261,7 +266,7 @@ const fn vector(
     Dataset { line: Form { axes: rest, units: Some(units) }, ..value(name, units, axes, long_name) }
 }
 
-const fn coordinate(
+pub(super) const fn coordinate(
     name: &'static str,
     units: &'static str,
     axes: &'static [&'static str],
@@ -275,8 +280,17 @@ const fn axis(name: &'static str, units: &'static str, long_name: &'static str) 
     dataset(name, long_name, Role::Axis, Form { axes: &[], units: Some(units) })
 }
 
-const fn count(name: &'static str, long_name: &'static str) -> Dataset {
+pub(super) const fn count(name: &'static str, long_name: &'static str) -> Dataset {
     Dataset { kind: Kind::Integer, ..axis(name, NUMBER, long_name) }
+}
+
+/// A whole number that stands for a word, see [`Dataset::flags`].
+pub(super) const fn flag(
+    name: &'static str,
+    axes: &'static [&'static str],
+    long_name: &'static str,
+) -> Dataset {
+    Dataset { kind: Kind::Integer, ..value(name, NUMBER, axes, long_name) }
 }
 
 const fn text(name: &'static str, long_name: &'static str) -> Dataset {

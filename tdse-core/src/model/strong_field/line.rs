@@ -98,22 +98,29 @@ impl StrongField {
         let fastest = momenta.iter().fold(0.0, |m: f64, &k| m.max(k)) + reach(&self.field, &self.schedule).1;
         let step = DIRECT_PHASE / (0.5 * fastest * fastest + self.ionization_energy);
         let schedule = Schedule::new(&self.field, step.min(self.schedule.time_step), 0.0);
-        let (left, right) =
-            momenta.iter().map(|&k| (self.direct(-k, &schedule), self.direct(k, &schedule))).unzip();
+        // A, E and what the phase grows by to the next sample: the same for every momentum.
+        let samples: Vec<[f64; 4]> = schedule
+            .times()
+            .into_iter()
+            .map(|t| {
+                let (a, e) = self.field.potential_and_field(t);
+                let ([first, _], second) = self.field.potential_integrals(t, schedule.time_step);
+                [a[0], e[0], first, second]
+            })
+            .collect();
+        let direct = |p: f64| self.direct(p, &schedule, &samples);
+        let (left, right) = momenta.iter().map(|&k| (direct(-k), direct(k))).unzip();
         ContinuumAmplitude { momenta, left, right }
     }
 
-    /// -i b_p after the field.
-    fn direct(&self, p: f64, schedule: &Schedule) -> Complex<f64> {
+    /// -i b_p after the field, given A, E, ∫A and ∫A² at its samples.
+    fn direct(&self, p: f64, schedule: &Schedule, samples: &[[f64; 4]]) -> Complex<f64> {
         let tau = schedule.time_step;
         // The phase is counted from t = 0 as if A were zero before the field.
         let mut phase = (0.5 * p * p + self.ionization_energy) * schedule.start;
         let mut sum: Complex<f64> = Complex::default();
-        for n in 0..=schedule.steps {
-            let t = schedule.time(n);
-            let (a, e) = self.field.potential_and_field(t);
-            sum += self.bare.at(p + a[0]) * Complex::cis(phase) * e[0];
-            let ([first, _], second) = self.field.potential_integrals(t, tau);
+        for &[a, e, first, second] in samples {
+            sum += self.bare.at(p + a) * Complex::cis(phase) * e;
             phase += (0.5 * p * p + self.ionization_energy) * tau + p * first + 0.5 * second;
         }
         Complex::new(0.0, -tau) * sum

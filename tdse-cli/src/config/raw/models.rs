@@ -1,0 +1,128 @@
+//! `models`.
+
+use schemars::JsonSchema;
+use serde::{Deserialize, Serialize};
+use serde_json::json;
+use tdse_core::model::metrics;
+
+/// Simpler models of the same atom in the same field, compared with the full result.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Models {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Differences from the full result that still count as agreement.
+    #[serde(default)]
+    pub tolerance: Tolerance,
+    /// Classical electrons that start at rest, return and are scattered.
+    #[schemars(example = json!({}))]
+    pub three_step: Option<Plain>,
+    /// Strong-field approximation with the model atom's own matrix elements: harmonics, and electrons that do not return.
+    #[schemars(example = json!({}))]
+    pub strong_field: Option<StrongField>,
+    /// Complex times of start and return of the short and the long orbit, and the dipole phase.
+    #[schemars(example = json!({}))]
+    pub quantum_orbits: Option<Plain>,
+    /// Ionization in time by rates: quasi-static of the model atom, ADK and PPT of an atom in three dimensions.
+    #[schemars(example = json!({}))]
+    pub tunnelling: Option<Tunnelling>,
+    /// Ionization by one photon; two resonant levels where populations are written.
+    #[schemars(example = json!({}))]
+    pub perturbation: Option<Plain>,
+    /// Harmonics of the strong-field packet that recombines by the atom's own dipole.
+    #[schemars(example = json!({}))]
+    pub recombination: Option<Plain>,
+    /// A spectrum of your own.
+    #[schemars(example = json!({ "file": "curve.csv" }))]
+    pub curve: Option<Curve>,
+}
+
+/// A model without choices.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Plain {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+}
+
+/// Strong-field approximation.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct StrongField {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Let the bound state be emptied at the quasi-static rate of the model atom.
+    #[serde(default)]
+    pub depletion: bool,
+}
+
+/// Rates of tunnelling.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Tunnelling {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Angular momentum of the orbital in three dimensions, none along the field; of ADK and PPT alone.
+    #[serde(default)]
+    #[schemars(range(max = 6), example = 1)]
+    pub angular_momentum: u32,
+}
+
+/// A table laid beside a spectrum.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Curve {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// CSV file, relative to the configuration's folder, with the header `photon_energy [eV],spectrum [au]` for harmonics or
+    /// `energy [eV],yield [1/eV]` for photoelectrons (any unit of energy).
+    #[schemars(example = "curve.csv")]
+    pub file: String,
+    /// SHA-256 that the contents must have.
+    pub sha256: Option<String>,
+    /// The spectrum that it is laid beside.
+    #[serde(default)]
+    pub of: CurveOf,
+}
+
+/// What a curve is laid beside.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum CurveOf {
+    /// The harmonic spectrum |a(ω)|².
+    #[default]
+    Harmonics,
+    /// The electron spectrum of both directions.
+    Photoelectrons,
+}
+
+/// Largest differences that count as agreement.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields, default)]
+pub struct Tolerance {
+    /// Anything worth remembering.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub note: Option<String>,
+    /// Of cutoffs, in photons of the first pulse.
+    #[schemars(extend("minimum" = 0))]
+    pub orders: f64,
+    /// Of levels and distances, in decades; 0.3 is a factor of two.
+    #[schemars(extend("minimum" = 0))]
+    pub decades: f64,
+    /// Of slopes of the plateau, in decades per order.
+    #[schemars(extend("minimum" = 0))]
+    pub slope: f64,
+    /// Of ratios of yields and of ionization, as |ratio - 1|.
+    #[schemars(extend("minimum" = 0))]
+    pub ratio: f64,
+    /// Of harmonic phases, in rad.
+    #[schemars(extend("minimum" = 0))]
+    pub phase: f64,
+}
+
+impl Default for Tolerance {
+    fn default() -> Self {
+        let metrics::Tolerance { orders, decades, slope, ratio, phase } = metrics::Tolerance::default();
+        Self { note: None, orders, decades, slope, ratio, phase }
+    }
+}

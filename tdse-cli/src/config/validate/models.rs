@@ -1,0 +1,110 @@
+//! `models`: what each needs of atom, field and outputs.
+
+use tdse_core::field::Field;
+use tdse_core::model::curve::Curve;
+use tdse_core::model::metrics::Tolerance;
+use tdse_core::model::quantum_orbits::Tones;
+
+use super::Check;
+use crate::config::complaint::Fix;
+use crate::config::models::{CurveOf, Model, Models, Survival};
+use crate::config::pointer::join;
+use crate::config::{raw, tables};
+
+/// The models asked for; `None` without the key.
+pub(super) fn models(check: &mut Check, written: &raw::Configuration, field: &Field) -> Option<Models> {
+    let raw = written.models.as_ref()?;
+    let mut asked = Vec::new();
+    asked.extend(raw.three_step.as_ref().map(|_| Model::ThreeStep));
+    asked.extend(
+        raw.strong_field.as_ref().map(|model| {
+            Model::StrongField(if model.depletion { Survival::Depleted } else { Survival::Whole })
+        }),
+    );
+    asked.extend(raw.quantum_orbits.as_ref().map(|_| Model::QuantumOrbits));
+    asked.extend(
+        raw.tunnelling.as_ref().map(|model| Model::Tunnelling { angular_momentum: model.angular_momentum }),
+    );
+    asked.extend(raw.perturbation.as_ref().map(|_| Model::Perturbation));
+    asked.extend(raw.recombination.as_ref().map(|_| Model::Recombination));
+    asked.extend(raw.curve.as_ref().and_then(|curve| user_curve(check, curve)));
+    for model in &asked {
+        if let Some((reason, allowed)) = unfit(model, written, field) {
+            let fix = check.without("/models", model.name());
+            check.complain(&join("/models", model.name()), reason, allowed, fix);
+        }
+    }
+    let raw::Tolerance { orders, decades, slope, ratio, phase, .. } = raw.tolerance;
+    Some(Models { tolerance: Tolerance { orders, decades, slope, ratio, phase }, asked })
+}
+
+/// Why a model cannot be had here, and where it can.
+fn unfit(model: &Model, written: &raw::Configuration, field: &Field) -> Option<(String, &'static str)> {
+    let reason = |text: &str| text.to_owned();
+    if matches!(model, Model::Curve { .. }) {
+        return None;
+    }
+    let of_quanta = !matches!(model, Model::ThreeStep);
+    if of_quanta && written.atom.dimensions != 1 {
+        let allowed = "three_step and curve in two dimensions; every model in one";
+        return Some((reason("is a model that is not there in two dimensions"), allowed));
+    }
+    if of_quanta && matches!(written.atom.state, raw::State::Superposition { .. }) {
+        let allowed = "three_step and curve beside a superposition; every model beside a single state";
+        return Some((reason("starts from one bound state, and /atom/state is a superposition"), allowed));
+    }
+    if matches!(written.atom.potential, raw::Potential::Harmonic { .. }) {
+        return Some((
+            reason("asks for electrons of an atom that lets none go: a harmonic potential has no continuum"),
+            "an atom that can be ionized",
+        ));
+    }
+    let harmonics = written.outputs.harmonics.is_some();
+    match model {
+        Model::StrongField(_) if !harmonics && written.outputs.photoelectrons.is_none() => Some((
+            reason("has no use without outputs.harmonics or outputs.photoelectrons"),
+            "one of these outputs, or the key left out",
+        )),
+        Model::Recombination | Model::QuantumOrbits if !harmonics => {
+            Some((reason("has no use without outputs.harmonics"), "that output, or the key left out"))
+        }
+        Model::QuantumOrbits => match (&field.pulses[..], &field.sampled) {
+            ([pulse], None) if Tones::of(pulse).is_ok() => None,
+            _ => Some((
+                reason("needs a field known at complex times"),
+                "a single pulse, sin2 or flat_top, polarized along x, without chirp",
+            )),
+        },
+        _ => None,
+    }
+}
+
+fn user_curve(check: &mut Check, raw: &raw::Curve) -> Option<Model> {
+    const PLACE: &str = "/models/curve";
+    let (of, layout, key, output) = match raw.of {
+        raw::CurveOf::Harmonics => (CurveOf::Harmonics, tables::SPECTRUM, "harmonics", "/outputs/harmonics"),
+        raw::CurveOf::Photoelectrons => {
+            (CurveOf::Photoelectrons, tables::YIELD, "photoelectrons", "/outputs/photoelectrons")
+        }
+    };
+    if check.tree.pointer(output).is_none() {
+        let fix = check.without("/models", "curve");
+        let reason = format!("is laid beside outputs.{key}, which is not there");
+        check.complain(PLACE, reason, "that output, or the key left out", fix);
+    }
+    let table = check.table(PLACE, &raw.file, raw.sha256.as_ref(), layout)?;
+    let (positions, values) = table.points();
+    match Curve::new(positions.to_vec(), values.to_vec()) {
+        Ok(curve) => Some(Model::Curve { of, curve }),
+        Err(error) => {
+            let fix = Fix::Words("correct the file".into());
+            check.complain(
+                &join(PLACE, "file"),
+                format!("holds no curve: {error}"),
+                "values of 0 or more",
+                fix,
+            );
+            None
+        }
+    }
+}

@@ -1,0 +1,130 @@
+//! Pictures of simpler models: of one run, and of verdicts over a scan.
+
+use super::super::models::{IonizationPicture, SpectraPicture, draw_ionization, draw_spectra};
+use super::super::time_frequency::{self, TimeFrequencyPicture};
+use super::super::verdict::{self, VerdictPicture};
+use super::survey::Parameter;
+use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, slice};
+use crate::derive::models::names;
+use crate::store::{Contents, Values};
+
+/// Pictures of one run.
+pub(super) fn of_run(contents: &Contents) -> Vec<Drawn> {
+    [spectra(contents), returns(contents), ionization(contents)].into_iter().flatten().collect()
+}
+
+fn spectra(contents: &Contents) -> Option<Drawn> {
+    let all = names(contents);
+    let of = |name: &str, group: &str, array: &str| slice(contents, &format!("models/{name}/{group}"), array);
+    let models: Vec<&String> =
+        all.iter().filter(|name| !of(name, "harmonics", "spectrum").is_empty()).collect();
+    if models.is_empty() {
+        return None;
+    }
+    let full = std::iter::once(("full result", slice(contents, "harmonics", "spectrum")));
+    let written: Vec<String> = models.iter().map(|name| name.replace('_', " ")).collect();
+    let beside =
+        written.iter().zip(&models).map(|(shown, name)| (shown.as_str(), of(name, "harmonics", "spectrum")));
+    let own = std::iter::once(slice(contents, "harmonic_yields", "yield"));
+    let yields = own.chain(models.iter().map(|name| of(name, "harmonic_yields", "yield")));
+    Some(Drawn {
+        name: "model_spectra".into(),
+        svg: draw_spectra(&SpectraPicture {
+            title: &contents.provenance.title,
+            photon_energy: slice(contents, "harmonics", "photon_energy"),
+            spectra: full.chain(beside).collect(),
+            quantity: SPECTRUM,
+            fundamental: fundamental(contents)?,
+            yields: yields.collect(),
+            measured_cutoff: slice(contents, "summary", "cutoff_energy")
+                .first()
+                .copied()
+                .filter(|c| c.is_finite()),
+        }),
+        caption: "Harmonic spectra of simpler models over the full result; below the ratio of their yields."
+            .into(),
+        alternative: "Logarithmic spectra against photon energy, and the ratio of yields by order.".into(),
+    })
+}
+
+fn returns(contents: &Contents) -> Option<Drawn> {
+    let group = "models/three_step/returns";
+    let count = slice(contents, group, "time").len();
+    let of = |name: &str| slice(contents, group, name).get(..count);
+    let first = of("return_time")?.iter().copied().zip(of("photon_energy")?.iter().copied());
+    let first: Vec<(f64, f64)> = first.filter(|(t, _)| t.is_finite()).collect();
+    let map = "time_frequency";
+    let turned: Vec<f64> = contents.real(map, "intensity")?.t().iter().copied().collect();
+    let picture = TimeFrequencyPicture {
+        title: &contents.provenance.title,
+        time: slice(contents, map, "time"),
+        photon_energy: slice(contents, map, "photon_energy"),
+        intensity: &turned,
+        quantity: SPECTRUM,
+        decades: MAP_DECADES,
+        window: remark(contents, map, "window"),
+    };
+    Some(Drawn {
+        name: "classical_returns".into(),
+        svg: time_frequency::draw_with_returns(&picture, &first),
+        caption: "When each photon energy is emitted, and when classical electrons return with it.".into(),
+        alternative: "Map of the emission over time and photon energy, with the classical returns as dots."
+            .into(),
+    })
+}
+
+fn ionization(contents: &Contents) -> Option<Drawn> {
+    let group = "models/tunnelling/ionization";
+    let time = slice(contents, group, "time");
+    let left = slice(contents, "populations", "initial_population");
+    if time.is_empty() || left.len() != time.len() {
+        return None;
+    }
+    let gone: Vec<f64> = left.iter().map(|p| 1.0 - p).collect();
+    let rates = [("quasi-static", "probability"), ("ADK (3D)", "adk"), ("PPT (3D)", "ppt")];
+    let rates = rates.map(|(name, array)| (name, slice(contents, group, array)));
+    let rates = rates.into_iter().filter(|(_, values)| !values.is_empty());
+    Some(Drawn {
+        name: "ionization".into(),
+        svg: draw_ionization(&IonizationPicture {
+            title: &contents.provenance.title,
+            time,
+            probabilities: std::iter::once(("full result", gone.as_slice())).chain(rates).collect(),
+            after: slice(contents, "summary", "ionization_probability").first().copied(),
+        }),
+        caption: "Ionization in time: the full result and rates of tunnelling.".into(),
+        alternative: "Logarithmic ionization probability against time, full and by rates.".into(),
+    })
+}
+
+/// Verdicts over a scan of one or two dimensions.
+pub(super) fn of_scan(contents: &Contents) -> Option<Drawn> {
+    let parameters: Vec<Parameter> = contents.scan().iter().map(Parameter::of).collect();
+    let (first, second) = match &parameters[..] {
+        [first] => (first, None),
+        [first, second] => (first, Some(second)),
+        _ => return None,
+    };
+    let names = names(contents);
+    let group = |name: &str| format!("models/{name}/comparison");
+    let models: Vec<(&str, Vec<i64>)> = names
+        .iter()
+        .filter_map(|name| match contents.get(&group(name), "verdict")? {
+            Values::Integer(verdicts) => Some((name.as_str(), verdicts.iter().copied().collect())),
+            _ => None,
+        })
+        .collect();
+    let keldysh = slice(contents, &group(models.first()?.0), "keldysh_parameter");
+    Some(Drawn {
+        name: "verdict".into(),
+        svg: verdict::draw(&VerdictPicture {
+            title: &contents.provenance.title,
+            first: first.axis(),
+            second: second.map(Parameter::axis),
+            models: models.iter().map(|(name, verdicts)| (*name, verdicts.as_slice())).collect(),
+            keldysh,
+        }),
+        caption: "Where each simpler model stays within the tolerance; γ is the Keldysh parameter.".into(),
+        alternative: "Cells over the scanned parameters, coloured by the verdict on every model.".into(),
+    })
+}
