@@ -563,7 +563,6 @@ pub const CASES: &[Case] = &[
             ("/atom/dimensions", Some("2")),
         ],
         says: &[
-            "/atom/dimensions: 2 is not available in this version; allowed: 1; try 1",
             r#"/models/strong_field: {} is a model that is not there in two dimensions; allowed: three_step and curve in two dimensions; every model in one; at /models try {"three_step":{}}"#,
         ],
     },

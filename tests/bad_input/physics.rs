@@ -57,7 +57,7 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
         &[
             "/numerics/time_step: \"0.5 au\" is above the splitting's resonance at",
             "allowed: below",
-            "try \"0.1 au\"",
+            "try \"0.08 au\"",
         ],
     ),
     (
@@ -67,7 +67,7 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
             "/numerics/extent: \"160 bohr\" leaves",
             "where electrons need",
             "allowed: at least",
-            "try \"400 bohr\"",
+            "try \"300 bohr\"",
         ],
     ),
     (
@@ -97,7 +97,7 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
             "/numerics/absorber/width: \"5 bohr\" reflects",
             "the slowest that come back within the run",
             "allowed: at least",
-            "try \"80 bohr\"",
+            "try \"60 bohr\"",
         ],
     ),
     (
