@@ -213,7 +213,7 @@ impl Needs {
     }
 
     /// Step at which the largest error of a harmonic yield of the plateau, measured as (τΩ)⁴ and 3 (τΩ)² with Ω the fastest
-    /// change an electron sees, is four tenths of the accuracy; the root-mean-square is fifty times less.
+    /// change an electron sees, is four tenths of the accuracy.
     fn accurate_step(&self, scheme: Scheme) -> f64 {
         let (accuracy, fastest) = (0.4 * self.accuracy, self.stiffness.max(self.passing));
         match scheme {
