@@ -17,7 +17,14 @@ fn main() {
         let pins = Pins::default();
         let start = Instant::now();
         for _ in 0..ROUNDS {
-            let wish = Wish { problem, facts: &facts, pins: &pins, accuracy: 1e-4, max_photon: None };
+            let wish = Wish {
+                problem,
+                facts: &facts,
+                pins: &pins,
+                accuracy: 1e-4,
+                populations: 2,
+                max_photon: None,
+            };
             std::hint::black_box(choose(&wish));
         }
         let milliseconds = 1e3 * start.elapsed().as_secs_f64() / f64::from(ROUNDS);

@@ -45,7 +45,7 @@ fn scenarios() -> Vec<(&'static str, Problem)> {
 
 fn chosen(problem: &Problem, accuracy: f64, pins: &Pins) -> Numerics {
     let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
-    choose(&Wish { problem, facts: &facts, pins, accuracy, max_photon: None }).numerics
+    choose(&Wish { problem, facts: &facts, pins, accuracy, populations: 0, max_photon: None }).numerics
 }
 
 #[test]

@@ -22,7 +22,7 @@ fn problem() -> Problem {
 
 fn choice(problem: &Problem, pins: &Pins) -> Choice {
     let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
-    choose(&Wish { problem, facts: &facts, pins, accuracy: ACCURACY, max_photon: None })
+    choose(&Wish { problem, facts: &facts, pins, accuracy: ACCURACY, populations: 0, max_photon: None })
 }
 
 /// Verdicts of the one knob that is objected to, and of nothing else.

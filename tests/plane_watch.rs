@@ -37,7 +37,14 @@ fn chosen() -> Numerics {
         trailing_time: Some(30.0),
         ..Pins::default()
     };
-    let wish = Wish { problem: &problem, facts: &facts, pins: &pins, accuracy: ACCURACY, max_photon: None };
+    let wish = Wish {
+        problem: &problem,
+        facts: &facts,
+        pins: &pins,
+        accuracy: ACCURACY,
+        populations: 0,
+        max_photon: None,
+    };
     let numerics = choose(&wish).numerics;
     println!("{numerics:?}");
     numerics

@@ -104,8 +104,14 @@ fn how_far_each_choice_can_be_relaxed() {
     for (name, (problem, binding)) in scenarios {
         let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
         let pins = Pins::default();
-        let wish =
-            Wish { problem: &problem, facts: &facts, pins: &pins, accuracy: ACCURACY, max_photon: None };
+        let wish = Wish {
+            problem: &problem,
+            facts: &facts,
+            pins: &pins,
+            accuracy: ACCURACY,
+            populations: 0,
+            max_photon: None,
+        };
         let mut base = choose(&wish).numerics;
         let (start, end) = problem.field.interval();
         // Steps that all the factors divide: every relaxed run ends with the others.

@@ -114,9 +114,10 @@ pub struct Wish<'a> {
     /// What the user fixed.
     pub pins: &'a Pins,
     /// Error asked for: of the dipole acceleration, relative in root-mean-square over the run; of every harmonic yield up to the
-    /// cutoff and above [`FLOOR`], relative. The rules do not look at probabilities: diffuse bound states in the box's edges may
-    /// leave the ionization probability less accurate.
+    /// cutoff and above [`FLOOR`], relative; and absolute of the ionization probability, where populations are asked for.
     pub accuracy: f64,
+    /// Number of bound states whose populations are asked for.
+    pub populations: usize,
     /// Largest photon energy that is written, hartree, where the user gave one.
     pub max_photon: Option<f64>,
 }

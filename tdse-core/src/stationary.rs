@@ -11,6 +11,7 @@ pub(crate) mod root;
 mod round;
 mod scattering;
 mod tail;
+mod threshold;
 mod tune;
 
 pub use bound::{BoundStates, bound_states, bound_states_below};
@@ -20,6 +21,7 @@ pub use plane::{PlaneState, lowest_plane_levels, plane_level, plane_states};
 pub use radial::RadialFunction;
 pub use round::RoundStates;
 pub use scattering::{NoContinuum, Scattering, ScatteringStates, Side};
+pub use threshold::Tail;
 pub use tune::{Softenable, tune_plane_softening, tune_radial_softening, tune_softening};
 
 /// Why a stationary state could not be had.

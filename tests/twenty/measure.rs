@@ -43,7 +43,8 @@ impl Errors {
 pub fn chosen(case: &Case, accuracy: f64, pins: &Pins) -> Numerics {
     let problem = &case.problem;
     let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
-    let mut numerics = choose(&Wish { problem, facts: &facts, pins, accuracy, max_photon: None }).numerics;
+    let mut numerics =
+        choose(&Wish { problem, facts: &facts, pins, accuracy, populations: 0, max_photon: None }).numerics;
     whole(&mut numerics, &problem.field);
     numerics
 }

@@ -8,7 +8,7 @@ use tdse_core::problem::InitialState;
 use tdse_core::quantities::classical_cutoff;
 use tdse_core::simulate::{Atom, Plan, State};
 use tdse_core::spectrum::twice_integrated;
-use tdse_core::stationary::{RoundStates, ScatteringStates};
+use tdse_core::stationary::{RoundStates, ScatteringStates, Tail};
 
 use super::electrons::electrons;
 use super::{
@@ -155,7 +155,7 @@ fn populations(contents: &mut Contents, point: &Point, atom: &Atom, plan: &Plan,
     contents.insert("populations", "populations", rows.into_dyn());
 }
 
-/// Bound states after the field by level; returns the population of all of them.
+/// Bound states after the field by level; returns the population of all of them, those included that the box lacks.
 fn levels(contents: &mut Contents, finished: &Finished) -> f64 {
     let Finished { point, atom, plan, state, round, .. } = *finished;
     let confining = point.job.problem.potential.is_confining();
@@ -170,6 +170,7 @@ fn levels(contents: &mut Contents, finished: &Finished) -> f64 {
     };
     let all = energies(atom).into_iter().zip(populations);
     let bound: Vec<_> = all.filter(|(energy, _)| confining || *energy < 0.0).collect();
+    let every: (Vec<_>, Vec<_>) = bound.iter().copied().unzip();
     let level = |n: usize| bound.get(n).map_or((f64::NAN, f64::NAN), |(e, p)| (electronvolts(*e), *p));
     let (energies, populations): (Vec<_>, Vec<_>) = (0..LEVELS).map(level).unzip();
     contents.insert("levels", "state", (0..LEVELS as i64).collect::<Vec<_>>());
@@ -177,7 +178,8 @@ fn levels(contents: &mut Contents, finished: &Finished) -> f64 {
     contents.insert("levels", "population", populations);
     match round {
         _ if confining => state.series.norm[state.step],
-        None => bound.iter().map(|(_, p)| *p).sum(),
+        None => Tail::new(&point.job.problem.potential, &point.job.numerics.grid)
+            .bound_on_line(&every.0, &every.1),
         Some(round) => {
             let all = plan.round_populations(state, round, &mut plan.make_workspace());
             all.iter().map(|(_, p)| *p).sum()

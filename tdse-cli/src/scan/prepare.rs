@@ -28,7 +28,7 @@ use crate::config::{self, Files, Library, Request, identity};
 use crate::store;
 
 /// Raised whenever result bits change.
-pub const NUMERICS_VERSION: u32 = 3;
+pub const NUMERICS_VERSION: u32 = 4;
 
 /// A request whose every point is ready.
 #[derive(Clone, Debug)]
@@ -126,6 +126,7 @@ impl Draft<'_> {
             facts: &self.facts,
             pins: &request.pins,
             accuracy: request.accuracy,
+            populations: request.record.populations,
             max_photon: request.outputs.harmonics.and_then(|h| h.max_energy),
         }
     }
@@ -197,7 +198,8 @@ fn draft<'a>(point: &'a points::Point, facts: &mut Facts) -> Result<Draft<'a>, C
     let problem = Problem { potential, initial: request.atom.initial.clone(), field: request.field.clone() };
     let max_photon = request.outputs.harmonics.and_then(|h| h.max_energy);
     let (pins, accuracy) = (&request.pins, request.accuracy);
-    let wish = Wish { problem: &problem, facts: &found, pins, accuracy, max_photon };
+    let populations = request.record.populations;
+    let wish = Wish { problem: &problem, facts: &found, pins, accuracy, populations, max_photon };
     let choice = choose(&wish);
     let (electron_method, labels) = (None, Vec::new());
     Ok(Draft { source: point, tree, softening, problem, facts: found, choice, electron_method, labels })

@@ -54,12 +54,19 @@ fn extent(needs: &Needs, numerics: &Numerics) -> Option<Finding> {
         return finding(Verdict::Impossible, reason);
     }
     let wanted = needs.inner(numerics.absorber);
-    if inner < 0.5 * wanted {
-        let reason = format!("leaves {inner:.1} bohr to each side where electrons need {wanted:.1} bohr");
+    let least = needs.without_diffuse(numerics.absorber);
+    if inner < 0.5 * least {
+        let reason = format!("leaves {inner:.1} bohr to each side where electrons need {least:.1} bohr");
         return finding(Verdict::Inadequate, reason);
     }
+    if inner < 0.8 * least {
+        let reason = format!("leaves {inner:.1} bohr to each side where electrons may need {least:.1} bohr");
+        return finding(Verdict::Doubtful, reason);
+    }
     if inner < 0.8 * wanted {
-        let reason = format!("leaves {inner:.1} bohr to each side where electrons may need {wanted:.1} bohr");
+        let reason = format!(
+            "leaves {inner:.1} bohr to each side where electrons that stay bound come {wanted:.1} bohr far: the ionization probability may miss the accuracy"
+        );
         return finding(Verdict::Doubtful, reason);
     }
     None

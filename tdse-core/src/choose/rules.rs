@@ -43,6 +43,16 @@ const RETURNING: f64 = 1.2596;
 /// drift √5 (10 Up; Paulus et al., J. Phys. B 27, L703 (1994)) plus quiver 1.
 const FASTEST: f64 = 3.24;
 
+/// Distance an electron that stays bound by -Z/r comes within a time: the fall from rest at infinity, E = 0, reversed
+/// (textbook), bohr.
+fn bound_flight(charge: f64, duration: f64) -> f64 {
+    (4.5 * charge * duration * duration).cbrt()
+}
+
+/// Accuracy of the ionization probability with the absorber just where electrons that stay bound come; it goes with the third
+/// power of the distance (measured on four pulses and soft cores: 1e-6 to 2e-5, no better than 1e-6 at four times the distance).
+const BOUND_ACCURACY: f64 = 1e-4;
+
 /// Maxima of the field over all envelopes, free of phases and delays.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(super) struct Strength {
@@ -108,8 +118,10 @@ pub(super) struct Needs {
     pub(super) flight: f64,
     /// Absorber's width per side, bohr; zero where none is needed.
     pub(super) absorber_width: f64,
-    /// Half of the box within an absorber, bohr.
-    pub(super) inner: f64,
+    /// Half of the box within an absorber, for the harmonics, bohr.
+    inner: f64,
+    /// Distance that bound electrons come, where ionization is asked for, bohr.
+    diffuse: f64,
     /// Momentum of the slowest electrons that count, [`HELD`] times that of those that go to the absorber and back within the
     /// run, 1/bohr.
     pub(super) slowest: f64,
@@ -168,10 +180,18 @@ impl Needs {
         // What comes back went twice through the inner box: the wider that is, the faster it was, and the narrower the
         // absorber may be.
         let product = width_times_momentum((REFLECTED * wish.accuracy).powi(2));
+        // Where ionization is asked for, the absorber shall take nothing that is bound.
+        let diffuse = if wish.populations == 0 {
+            0.0
+        } else {
+            bound_flight(potential.far_charge(), duration) * (BOUND_ACCURACY / wish.accuracy).cbrt()
+                + strength.quiver
+        };
         let inner = atom_reach.max((0.5 * product * duration).sqrt());
-        let slowest = HELD * 2.0 * inner / duration;
+        let slowest = HELD * 2.0 * inner.max(diffuse) / duration;
         let width = (product / slowest).max(NARROWEST_ABSORBER);
-        let needs_absorber = !confined && strength.field > 0.0 && flight.max(atom_reach) > inner + width;
+        let needs_absorber =
+            !confined && strength.field > 0.0 && flight.max(atom_reach) > inner.max(diffuse) + width;
         Self {
             spacing: std::f64::consts::PI / momentum,
             momentum,
@@ -179,6 +199,7 @@ impl Needs {
             flight,
             absorber_width: if needs_absorber { width } else { 0.0 },
             inner,
+            diffuse,
             slowest,
             binding: wish.facts.ionization_energy(),
             stiffness,
@@ -192,6 +213,14 @@ impl Needs {
 
     /// Half the box without its absorber, bohr.
     pub(super) fn inner(&self, absorber: Absorber) -> f64 {
+        match absorber {
+            Absorber::None => self.closed(),
+            Absorber::Smooth { .. } | Absorber::Round { .. } => self.inner.max(self.diffuse),
+        }
+    }
+
+    /// What of it is not only for probabilities.
+    pub(super) fn without_diffuse(&self, absorber: Absorber) -> f64 {
         match absorber {
             Absorber::None => self.closed(),
             Absorber::Smooth { .. } | Absorber::Round { .. } => self.inner,
@@ -294,6 +323,10 @@ impl Needs {
             Absorber::None => {
                 format!("the bound state, {:.0} bohr to each side; {points}", self.atom_reach)
             }
+            Absorber::Smooth { .. } | Absorber::Round { .. } if self.diffuse > self.inner => format!(
+                "{:.0} bohr to each side: electrons that stay bound come that far within the run, and ionization is asked for; {points}",
+                self.diffuse
+            ),
             Absorber::Smooth { width } | Absorber::Round { width } => format!(
                 "{:.0} bohr to each side: bound state and returning electrons take {:.0} bohr (quiver amplitude {:.1} bohr), \
                  and what the absorber of {width:.0} bohr reflects shall come back late; {points}",

@@ -9,7 +9,7 @@ use nalgebra::{DMatrix, DVector};
 use num_complex::Complex;
 
 use super::level::rough_radial_level;
-use super::{RadialFunction, StationaryError, radial_count_below};
+use super::{RadialFunction, StationaryError, Tail, radial_count_below};
 use crate::grid::{Axis, Grid};
 use crate::potential::Potential;
 
@@ -23,6 +23,10 @@ const BOUND: f64 = -1e-9;
 pub struct RoundStates {
     /// The radial functions of |m| = 0, 1, 2, … , by rising energy.
     radial: Vec<Vec<RadialFunction>>,
+    /// The highest energy of each |m|, hartree.
+    highest: Vec<f64>,
+    /// What the box lacks of them.
+    tail: Tail,
 }
 
 impl RoundStates {
@@ -38,17 +42,19 @@ impl RoundStates {
         assert_eq!(grid.dimensions(), 2, "a plane has two dimensions");
         let [x, y] = grid.extents();
         let reach = 0.5 * x.min(y);
-        let mut radial = Vec::new();
+        let (mut radial, mut highest) = (Vec::new(), Vec::new());
         while !potential.is_confining() {
             let m = radial.len() as u32;
             let count = radial_count_below(potential, m, BOUND, reach);
             if count == 0 {
                 break;
             }
-            let function = |number| Ok(rough_radial_level(potential, m, number, reach)?.1);
-            radial.push((0..count).map(function).collect::<Result<_, StationaryError>>()?);
+            let level = |number| rough_radial_level(potential, m, number, reach);
+            let all = (0..count).map(level).collect::<Result<Vec<_>, StationaryError>>()?;
+            highest.extend(all.last().map(|(energy, _)| *energy));
+            radial.push(all.into_iter().map(|(_, function)| function).collect());
         }
-        Ok(Self { radial })
+        Ok(Self { radial, highest, tail: Tail::new(potential, grid) })
     }
 
     /// Number of states, m and -m counted apart.
@@ -73,8 +79,9 @@ impl RoundStates {
             self.add_rows([&above, &below], axes, j, &mut sums);
         }
         let mut found = Vec::new();
-        for (m, sums) in (0..).zip(&sums) {
-            let [forth, back] = sums.projected(grid.cell());
+        for ((m, sums), highest) in (0..).zip(&sums).zip(&self.highest) {
+            let [forth, back] =
+                sums.shares(grid.cell()).map(|shares| self.tail.bound(Some(*highest), &shares));
             found.push((m, forth));
             if m > 0 {
                 found.push((-m, back));
@@ -139,15 +146,18 @@ impl Sums {
         }
     }
 
-    /// b† G⁻¹ b of both directions.
-    fn projected(&self, cell: f64) -> [f64; 2] {
+    /// b† G⁻¹ b of both directions, as what each state adds to those below it: the squares of L⁻¹ b with G = L L†.
+    fn shares(&self, cell: f64) -> [Vec<f64>; 2] {
         let mut gram = self.gram.clone();
         gram.fill_lower_triangle_with_upper_triangle();
-        let inverse = gram.cholesky().map(|factors| factors.inverse());
-        let Some(inverse) = inverse else { return [0.0; 2] };
+        let factors = gram.cholesky();
         self.overlaps.each_ref().map(|b| {
+            let Some(factors) = &factors else { return vec![0.0; b.len()] };
             let parts = [b.map(|c| c.re), b.map(|c| c.im)];
-            parts.iter().map(|part| part.dot(&(&inverse * part))).sum::<f64>() * cell
+            let [re, im] = parts.map(|part| {
+                factors.l_dirty().solve_lower_triangular(&part).unwrap_or_else(|| DVector::zeros(b.len()))
+            });
+            re.iter().zip(&im).map(|(re, im)| (re * re + im * im) * cell).collect()
         })
     }
 }

@@ -1,0 +1,168 @@
+//! The ionization probability is as good as the accuracy asked for. Laser scenarios are invented.
+
+mod support;
+
+use std::f64::consts::PI;
+
+use nalgebra::{DMatrix, SymmetricEigen};
+use support::*;
+use tdse_core::choose::{AtomFacts, PinnedAbsorber, Pins, Wish, choose};
+use tdse_core::field::{Envelope, Pulse};
+use tdse_core::grid::Grid;
+use tdse_core::potential::Potential;
+use tdse_core::problem::{Numerics, Problem};
+use tdse_core::simulate::Atom;
+use tdse_core::stationary::Tail;
+use tdse_core::units::{self, Quantity};
+
+/// ∫₀^{nπ} (1 - cos u)/u du for n = 0 … `most`, by Simpson's rule.
+fn cosine_integrals(most: usize) -> Vec<f64> {
+    let f = |u: f64| if u == 0.0 { 0.0 } else { (1.0 - u.cos()) / u };
+    let (parts, mut sums) = (64, vec![0.0]);
+    let h = PI / f64::from(parts);
+    for n in 0..most {
+        let start = n as f64 * PI;
+        let third = |i: i32| {
+            let u = start + f64::from(i) * h;
+            f(u) + 4.0 * f(u + 0.5 * h) + f(u + h)
+        };
+        sums.push(sums[n] + (0..parts).map(third).sum::<f64>() * h / 6.0);
+    }
+    sums
+}
+
+/// Energies below zero of an s electron at charge `z` in a sphere, and the populations that the 1s state of charge 1 has in
+/// them; matrix elements of 1/r between sin(iπr/L) in closed form.
+fn sudden(z: f64, radius: f64, size: usize) -> (Vec<f64>, Vec<f64>) {
+    let cosines = cosine_integrals(2 * size);
+    let h = DMatrix::from_fn(size, size, |a, b| {
+        let (i, j) = (a + 1, b + 1);
+        let kinetic = if i == j { 0.5 * (i as f64 * PI / radius).powi(2) } else { 0.0 };
+        kinetic - z / radius * (cosines[i + j] - cosines[i.abs_diff(j)])
+    });
+    let eigen = SymmetricEigen::new(h);
+    // ∫ 2 r e^{-r} √(2/L) sin(kr) dr, beyond the sphere too.
+    let start: Vec<f64> = (1..=size)
+        .map(|i| {
+            let k = i as f64 * PI / radius;
+            (2.0 / radius).sqrt() * 4.0 * k / (1.0 + k * k).powi(2)
+        })
+        .collect();
+    let mut found: Vec<(f64, f64)> = (0..size)
+        .map(|n| {
+            let overlap: f64 = eigen.eigenvectors.column(n).iter().zip(&start).map(|(v, s)| v * s).sum();
+            (eigen.eigenvalues[n], overlap * overlap)
+        })
+        .filter(|(energy, _)| *energy < 0.0)
+        .collect();
+    found.sort_by(|a, b| a.0.total_cmp(&b.0));
+    found.into_iter().unzip()
+}
+
+/// Hydrogenic closed form: |⟨ns, Z = 2|1s, Z = 1⟩|² = 2⁹ n⁵ (n - 2)^{2n-4} / (n + 2)^{2n+4} (Migdal 1941, from memory; its
+/// first values are the textbook's 0.702 and 1/4), summed to 20 000 and the rest, which falls as n⁻³, added.
+fn tritium() -> f64 {
+    let term = |n: i32| {
+        let n_ = f64::from(n);
+        let powers = if n == 2 {
+            -8.0 * 4f64.ln()
+        } else {
+            f64::from(2 * n - 4) * (n_ - 2.0).abs().ln() - f64::from(2 * n + 4) * (n_ + 2.0).ln()
+        };
+        (powers + 512f64.ln() + 5.0 * n_.ln()).exp()
+    };
+    assert!((term(1) - (512.0f64 / 729.0)).abs() < 1e-12, "(16 √2/27)², textbook: {}", term(1));
+    assert!((term(2) - 0.25).abs() < 1e-12, "textbook: {}", term(2));
+    let most = 20_000;
+    (1..=most).map(term).sum::<f64>() + 0.5 * term(most) * (f64::from(most) - 1.0)
+}
+
+/// Exact: the helium ion left by tritium's β decay is bound with 0.974 (sudden change of the charge, Migdal, J. Phys. USSR 4,
+/// 449 (1941), from memory); a sphere holds a few of its levels.
+#[test]
+fn what_a_box_lacks_of_the_levels_is_added() {
+    let exact = tritium();
+    println!("exact {exact:.7}");
+    for radius in [20.0, 25.0, 31.0] {
+        let (energies, populations) = sudden(2.0, radius, 30 * radius as usize);
+        let whole: f64 = populations.iter().sum();
+        // One series: a line whose levels of the other parity are all empty.
+        let tail = Tail::new(
+            &Potential::SoftCoulomb { charge: 2.0, softening: 1.0 },
+            &Grid::line(1000, radius / 500.0),
+        );
+        let found = tail.bound(energies.last().copied(), &populations);
+        println!(
+            "{radius} bohr, {} levels: whole {:.1e}, with what lacks {:.1e}",
+            energies.len(),
+            whole - exact,
+            found - exact
+        );
+        assert!(
+            (found - exact).abs() < 0.1 * (whole - exact).abs().max(1e-4),
+            "{radius}: {found} of {exact}"
+        );
+    }
+}
+
+fn light(nanometres: f64, intensity: f64, cycles: f64) -> Pulse {
+    let frequency = units::angular_frequency(nanometres * Quantity::Length.unit("nm").unwrap().factor);
+    pulse(frequency, units::peak_field(intensity), Envelope::Sin2 { duration: cycles * 2.0 * PI / frequency })
+}
+
+fn chosen(problem: &Problem, accuracy: f64, pins: &Pins) -> Numerics {
+    let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
+    choose(&Wish { problem, facts: &facts, pins, accuracy, populations: 1, max_photon: None }).numerics
+}
+
+fn ionized(problem: &Problem, numerics: &Numerics) -> f64 {
+    let (plan, state) = solve(problem, numerics);
+    let atom = Atom::new(&problem.potential, &numerics.grid, 1).unwrap();
+    let populations = plan.populations(&state, &atom.bound);
+    1.0 - Tail::new(&problem.potential, &numerics.grid).bound_on_line(&atom.bound.energies, &populations)
+}
+
+/// Against spacing and step of the finest, and a box that nothing leaves, at least 1200 bohr to each side.
+#[test]
+fn ionization_is_as_accurate_as_asked() {
+    let soft = |softening| Potential::SoftCoulomb { charge: 1.0, softening };
+    let scenarios = [
+        ("800 nm, 1e14, a = 1.414", ground(soft(2f64.sqrt()), field(light(800.0, 1e14, 6.0)))),
+        ("1600 nm, 6e13, a = 1.414", ground(soft(2f64.sqrt()), field(light(1600.0, 6e13, 3.0)))),
+        ("400 nm, 1.5e14, a = 1.414", ground(soft(2f64.sqrt()), field(light(400.0, 1.5e14, 12.0)))),
+        ("800 nm, 3e14, a = 0.9", ground(soft(0.9), field(light(800.0, 3e14, 3.0)))),
+        ("60 nm, 1e13, a = 1", ground(soft(1.0), field(light(60.0, 1e13, 8.0)))),
+        (
+            "600 nm, 1e14, Gaussian well",
+            ground(Potential::GaussianWell { depth: 1.0, width: 1.2 }, field(light(600.0, 1e14, 4.0))),
+        ),
+    ];
+    std::thread::scope(|scope| {
+        for (name, problem) in &scenarios {
+            scope.spawn(|| judge(name, problem));
+        }
+    });
+}
+
+fn judge(name: &str, problem: &Problem) {
+    let finest = chosen(problem, 1e-6, &Pins::default());
+    let pins = Pins {
+        spacing: Some(finest.grid.x.spacing),
+        time_step: Some(finest.time_step),
+        extent: Some(2400.0),
+        absorber: Some(PinnedAbsorber::None),
+        ..Pins::default()
+    };
+    let exact = ionized(problem, &chosen(problem, 1e-6, &pins));
+    for accuracy in [1e-3, 1e-4, 1e-6] {
+        let numerics = chosen(problem, accuracy, &Pins::default());
+        let error = (ionized(problem, &numerics) - exact).abs();
+        println!(
+            "{name}, {accuracy:.0e}: ionized {exact:.7}, error {error:.1e}; {} points of {} bohr, absorber {} bohr",
+            numerics.grid.x.points,
+            numerics.grid.x.spacing,
+            numerics.absorber.width()
+        );
+        assert!(error < accuracy, "{name}, {accuracy:e}: {error:e}");
+    }
+}
