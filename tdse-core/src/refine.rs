@@ -6,7 +6,7 @@
 
 mod models;
 
-pub use models::{ModelAtom, model_atoms};
+pub use models::{ModelAtom, model_atoms, plane_model_atoms};
 
 use crate::problem::{Absorber, Numerics, Scheme};
 use crate::step::resonant_step;

@@ -6,15 +6,15 @@ use std::path::{Path, PathBuf};
 use ndarray::ArrayD;
 use serde_json::{Value, json};
 use tdse_core::potential::Potential;
-use tdse_core::problem::InitialState;
-use tdse_core::refine::{ModelAtom, model_atoms};
+use tdse_core::problem::{InitialState, Parity, Symmetry};
+use tdse_core::refine::{ModelAtom, model_atoms, plane_model_atoms};
 
 use super::attach::finished;
 use super::plan::{is_of_models, own_axes, representatives, without_models};
 use crate::config::Files;
 use crate::config::quantity::digits;
 use crate::scan::asked;
-use crate::scan::prepare::Prepared;
+use crate::scan::prepare::{Job, Prepared};
 use crate::scan::source::Source;
 use crate::store::{self, Contents, Error, Request};
 
@@ -45,10 +45,7 @@ impl ModelPlan {
         let mut names = vec!["as asked".to_owned()];
         for &index in &repeated {
             let point = &prepared.points[index];
-            if point.job.numerics.grid.dimensions() == 2 {
-                return Err("/atom/dimensions: 2 has no other model atoms in this version; allowed: 1".into());
-            }
-            if point.job.problem.initial != InitialState::Single(0) {
+            if !is_ground(&point.job) {
                 return Err(format!(
                     "/atom/state: {} is no ground state; allowed: the ground state, which other model atoms can share",
                     request.configuration["atom"]["state"]
@@ -59,7 +56,8 @@ impl ModelPlan {
                     "/atom/potential: binds nothing below zero; allowed: an atom that can be ionized".into(),
                 );
             }
-            let models = model_atoms(point.facts.ionization_energy()).map_err(|error| error.to_string())?;
+            let make = if point.job.labels.is_empty() { model_atoms } else { plane_model_atoms };
+            let models = make(point.facts.ionization_energy()).map_err(|error| error.to_string())?;
             let resolved: Value = serde_json::from_str(&point.configuration).unwrap_or_default();
             atoms.push(resolved["atom"].clone());
             atoms.extend(models.iter().map(|model| spelled(model, &resolved["atom"])));
@@ -73,6 +71,16 @@ impl ModelPlan {
     /// What is to be prepared and run.
     pub fn source(&self) -> Source {
         Source { text: format!("{:#}\n", self.configuration), files: self.files.clone() }
+    }
+}
+
+/// On a plane the ground state is named by its angular momentum or by its parities.
+fn is_ground(job: &Job) -> bool {
+    let InitialState::Single(number) = job.problem.initial else { return false };
+    let symmetries = [Symmetry::Angular(0), Symmetry::Mirror([Parity::Even; 2])];
+    match job.labels.get(number) {
+        None => number == 0,
+        Some(label) => label.number == 0 && symmetries.contains(&label.symmetry),
     }
 }
 
