@@ -1,5 +1,6 @@
 //! Two dimensions through the program. The scenarios are the shipped ones at a size fit for a test, all invented.
 
+use std::fmt::Write as _;
 use std::path::{Path, PathBuf};
 use std::process::{Command, Output};
 
@@ -192,6 +193,52 @@ fn other_model_atoms_of_the_plane() {
     assert_eq!(ended.status.code(), Some(2), "{said}");
     assert!(said.contains("/atom/state") && said.contains("ground state"), "{said}");
     assert!(!no.exists(), "nothing is made where it is refused");
+}
+
+/// The pulse a run wrote, read back as a table, drives the same electron but for the spline between its samples (a fourth of
+/// the step's fourth power, and tables are rounded to nothing); turned by a right angle it turns everything.
+#[test]
+fn a_sampled_field_with_both_components() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = config("elliptical_scan.json");
+    let light = ["/field/pulses/0/angle=20 deg", "/numerics/trailing_time=0 fs"];
+    let found = |name: &str, more: &[String]| {
+        let out = folder.path().join(name);
+        let more: Vec<&str> =
+            QUICK.iter().chain(&light).copied().chain(more.iter().map(String::as_str)).collect();
+        let sets: Vec<&str> = SMALL.iter().copied().chain(more).collect();
+        let ended = tdse(&["run", text(&path), "--quiet", "--out", text(&out)], &sets);
+        assert!(ended.status.success(), "{ended:?}");
+        store::read(&out.join("result.h5")).unwrap()
+    };
+    let pulse = found("pulse", &[]);
+    let (times, field) = (values(&pulse, "field", "time"), pulse.real("field", "electric_field").unwrap());
+    let sampled = |name: &str, turned: fn([f64; 2]) -> [f64; 2]| {
+        let mut table = "time [fs],electric_field_x [V/m],electric_field_y [V/m]\n".to_owned();
+        for (n, time) in times.iter().enumerate() {
+            let [x, y] = turned([field[[0, n]], field[[1, n]]]);
+            writeln!(table, "{time:e},{x:e},{y:e}").unwrap();
+        }
+        let file = folder.path().join(format!("{name}.csv"));
+        std::fs::write(&file, table).unwrap();
+        let light = format!(r#"/field={{"sampled": {{"file": {:?}}}}}"#, text(&file));
+        found(name, &[light]).real("dynamics", "dipole_acceleration").unwrap().clone()
+    };
+    let straight = sampled("straight", |e| e);
+    let turned = sampled("turned", |[x, y]| [-y, x]);
+    let given = pulse.real("dynamics", "dipole_acceleration").unwrap();
+    let largest = given.iter().fold(0.0f64, |most, a| most.max(a.abs()));
+    let (mut off, mut swapped) = (0.0f64, 0.0f64);
+    for n in 0..times.len() {
+        for d in 0..2 {
+            off = off.max((straight[[d, n]] - given[[d, n]]).abs() / largest);
+        }
+        swapped = swapped.max((turned[[0, n]] + straight[[1, n]]).abs() / largest);
+        swapped = swapped.max((turned[[1, n]] - straight[[0, n]]).abs() / largest);
+    }
+    println!("sampled against given {off:.1e}, turned {swapped:.1e}");
+    assert!(off < 1e-4, "{off}");
+    assert!(swapped < 1e-10, "{swapped}");
 }
 
 /// Bars on the numbers of two dimensions, the absorber kept round, and points in one and in two dimensions beside each other.

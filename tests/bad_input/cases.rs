@@ -422,6 +422,13 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
+        name: "a sampled component along y on the line",
+        edits: &[("/field/sampled", Some(r#"{"file": "crossed.csv"}"#))],
+        says: &[
+            r#"/field/sampled/file: "crossed.csv" has a component along y, which needs two dimensions; allowed: the header time [fs],electric_field [V/m] in one dimension; at /atom/dimensions try 2"#,
+        ],
+    },
+    Case {
         name: "wrong hash",
         edits: &[("/field/sampled", Some(r#"{"file": "pulse.csv", "sha256": "00"}"#))],
         says: &[

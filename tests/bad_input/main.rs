@@ -34,6 +34,9 @@ const SOUND: &str = r#"{
 
 const PULSE: &str = "time [fs],electric_field [GV/m]\n0,0\n1,0.5\n2,-0.5\n3,0\n";
 
+const CROSSED: &str =
+    "time [fs],electric_field_x [GV/m],electric_field_y [GV/m]\n0,0,0\n1,0.5,0\n2,-0.5,0.5\n3,0,0\n";
+
 fn edited(edits: &[(&str, Option<&str>)]) -> Value {
     let mut tree: Value = serde_json::from_str(SOUND).expect("the sound configuration");
     for (place, json) in edits {
@@ -59,7 +62,9 @@ fn read_in(folder: &Path, tree: &Value) -> Result<Request, Complaints> {
 
 fn folder() -> tempfile::TempDir {
     let folder = tempfile::tempdir().expect("a temporary folder");
-    std::fs::write(folder.path().join("pulse.csv"), PULSE).expect("a table");
+    for (name, table) in [("pulse.csv", PULSE), ("crossed.csv", CROSSED)] {
+        std::fs::write(folder.path().join(name), table).expect("a table");
+    }
     folder
 }
 

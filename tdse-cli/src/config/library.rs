@@ -17,13 +17,13 @@ pub struct Library {
     read: RefCell<BTreeMap<(String, &'static str), Table>>,
 }
 
-/// A table: its text, and the curve through it.
+/// A table: its text, and the curves through it.
 #[derive(Clone, Debug)]
 pub struct Table {
     /// Contents of the file.
     pub contents: Arc<str>,
-    /// The curve, atomic units.
-    pub curve: Result<Arc<Cubic>, TableFault>,
+    /// One curve for every column but the first, atomic units.
+    pub curves: Result<Vec<Arc<Cubic>>, TableFault>,
 }
 
 impl Library {
@@ -32,18 +32,18 @@ impl Library {
         Self { files, read: RefCell::default() }
     }
 
-    /// The table in `file`.
+    /// The table in `file`, in one of `layouts`.
     ///
     /// # Errors
-    /// If the file cannot be read; faults of what it holds are told by [`Table::curve`].
-    pub fn table(&self, file: &str, layout: Layout) -> io::Result<Table> {
-        let key = (file.to_owned(), layout.header);
+    /// If the file cannot be read; faults of what it holds are told by [`Table::curves`].
+    pub fn table(&self, file: &str, layouts: &[Layout]) -> io::Result<Table> {
+        let key = (file.to_owned(), layouts[0].header);
         if let Some(table) = self.read.borrow().get(&key) {
             return Ok(table.clone());
         }
         let contents: Arc<str> = self.files.contents(file)?.into();
-        let curve = tables::read(&contents, layout).map(Arc::new);
-        let table = Table { contents, curve };
+        let curves = tables::read(&contents, layouts);
+        let table = Table { contents, curves };
         self.read.borrow_mut().insert(key, table.clone());
         Ok(table)
     }

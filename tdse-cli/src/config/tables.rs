@@ -78,24 +78,34 @@ impl Measure {
 /// What a table holds.
 #[derive(Clone, Copy, Debug)]
 pub struct Layout {
-    /// The rising column and the one interpolated.
-    pub columns: [Column; 2],
+    /// The rising column and those interpolated.
+    pub columns: &'static [Column],
     /// An example of the header.
     pub header: &'static str,
 }
 
-/// Electric field over time.
+/// Electric field along x over time.
 pub const FIELD: Layout = Layout {
-    columns: [
+    columns: &[
         Column { name: "time", measure: Measure::Of(Quantity::Time) },
         Column { name: "electric_field", measure: Measure::Of(Quantity::ElectricField) },
     ],
     header: "time [fs],electric_field [V/m]",
 };
 
+/// Electric field along x and y over time.
+pub const PLANE_FIELD: Layout = Layout {
+    columns: &[
+        Column { name: "time", measure: Measure::Of(Quantity::Time) },
+        Column { name: "electric_field_x", measure: Measure::Of(Quantity::ElectricField) },
+        Column { name: "electric_field_y", measure: Measure::Of(Quantity::ElectricField) },
+    ],
+    header: "time [fs],electric_field_x [V/m],electric_field_y [V/m]",
+};
+
 /// Potential energy over position.
 pub const POTENTIAL: Layout = Layout {
-    columns: [
+    columns: &[
         Column { name: "position", measure: Measure::Of(Quantity::Length) },
         Column { name: "potential", measure: Measure::Of(Quantity::Energy) },
     ],
@@ -104,7 +114,7 @@ pub const POTENTIAL: Layout = Layout {
 
 /// A harmonic spectrum |a(ω)|² over photon energy.
 pub const SPECTRUM: Layout = Layout {
-    columns: [
+    columns: &[
         Column { name: "photon_energy", measure: Measure::Of(Quantity::Energy) },
         Column { name: "spectrum", measure: Measure::Fixed("au") },
     ],
@@ -113,7 +123,7 @@ pub const SPECTRUM: Layout = Layout {
 
 /// An electron spectrum over kinetic energy.
 pub const YIELD: Layout = Layout {
-    columns: [
+    columns: &[
         Column { name: "energy", measure: Measure::Of(Quantity::Energy) },
         Column { name: "yield", measure: Measure::Fixed("1/eV") },
     ],
@@ -131,11 +141,15 @@ pub struct TableFault {
     pub allowed: String,
 }
 
-/// Reads a table in atomic units.
+/// Reads a table in atomic units: a curve for every column but the first. Of several layouts the first that is as wide as the
+/// header is taken, or else the first.
 ///
 /// # Errors
 /// The first fault from the top.
-pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
+///
+/// # Panics
+/// Without a layout.
+pub fn read(contents: &str, layouts: &[Layout]) -> Result<Vec<Arc<Cubic>>, TableFault> {
     let source = Source { contents };
     let mut reader = ReaderBuilder::new()
         .comment(Some(b'#'))
@@ -144,12 +158,14 @@ pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
         .has_headers(false)
         .from_reader(contents.as_bytes());
     let mut records = reader.records();
-    let header = records.next().ok_or_else(|| source.too_short(layout.header))?;
-    let factors = source.units(&source.record(header)?, layout)?;
-    let mut columns = [Vec::new(), Vec::new()];
+    let header = records.next().ok_or_else(|| source.too_short(layouts[0].header))?;
+    let header = source.record(header)?;
+    let layout = layouts.iter().find(|layout| layout.columns.len() == header.len()).unwrap_or(&layouts[0]);
+    let factors = source.units(&header, layout)?;
+    let mut columns = vec![Vec::new(); factors.len()];
     for record in records {
         let record = source.record(record)?;
-        let row = source.row(&record, factors)?;
+        let row = source.row(&record, &factors)?;
         if columns[0].last().is_some_and(|before| row[0] <= *before) {
             return Err(source.fault(&record, format!("{:?} does not rise", &record[0]), "rising values"));
         }
@@ -157,8 +173,11 @@ pub fn read(contents: &str, layout: Layout) -> Result<Cubic, TableFault> {
             column.push(value);
         }
     }
-    let [x, y] = columns;
-    if x.len() < 4 { Err(source.too_short("at least 4 rows of numbers")) } else { Ok(Cubic::new(x, y)) }
+    if columns[0].len() < 4 {
+        return Err(source.too_short("at least 4 rows of numbers"));
+    }
+    let curve = |y: &Vec<f64>| Arc::new(Cubic::new(columns[0].clone(), y.clone()));
+    Ok(columns[1..].iter().map(curve).collect())
 }
 
 /// The text of a table, for faults by line.
@@ -167,40 +186,40 @@ struct Source<'a> {
 }
 
 impl Source<'_> {
-    /// Factors to atomic units of both columns.
-    fn units(&self, header: &StringRecord, layout: Layout) -> Result<[f64; 2], TableFault> {
-        self.width(header)?;
-        let mut factors = [0.0; 2];
-        for (i, column) in layout.columns.into_iter().enumerate() {
+    /// Factors to atomic units of all columns.
+    fn units(&self, header: &StringRecord, layout: &Layout) -> Result<Vec<f64>, TableFault> {
+        self.width(header, layout.columns.len())?;
+        let factor = |(i, column): (usize, &Column)| {
             let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
             let unit = unit.filter(|(name, _)| name.trim() == column.name);
             let factor = unit.and_then(|(_, symbol)| column.measure.factor(symbol.trim()));
             let symbols = column.measure.symbols();
             let reason = format!("{:?} is not {} and its unit", &header[i], column.name);
             let allowed = format!("a header such as {}, with the unit {}", layout.header, either(&symbols));
-            factors[i] = factor.ok_or_else(|| self.fault(header, reason, allowed))?;
-        }
-        Ok(factors)
+            factor.ok_or_else(|| self.fault(header, reason, allowed))
+        };
+        layout.columns.iter().enumerate().map(factor).collect()
     }
 
-    /// Both values of a row in atomic units.
-    fn row(&self, record: &StringRecord, factors: [f64; 2]) -> Result<[f64; 2], TableFault> {
-        self.width(record)?;
-        let value = |text: &str, factor: f64| {
+    /// The values of a row in atomic units.
+    fn row(&self, record: &StringRecord, factors: &[f64]) -> Result<Vec<f64>, TableFault> {
+        self.width(record, factors.len())?;
+        let value = |(text, factor): (&str, &f64)| {
             let value =
                 text.parse().ok().map(|number: f64| number * factor).filter(|value| value.is_finite());
             let reason = || format!("{text:?} is not a number");
             value.ok_or_else(|| self.fault(record, reason(), "a finite number such as 0.5"))
         };
-        Ok([value(&record[0], factors[0])?, value(&record[1], factors[1])?])
+        record.iter().zip(factors).map(value).collect()
     }
 
-    fn width(&self, record: &StringRecord) -> Result<(), TableFault> {
+    fn width(&self, record: &StringRecord, wanted: usize) -> Result<(), TableFault> {
         let reason = match record.len() {
-            2 => return Ok(()),
+            n if n == wanted => return Ok(()),
             n => format!("{:?} has {n} columns", &record[0]),
         };
-        Err(self.fault(record, reason, "two columns, parted by a comma"))
+        let wanted = if wanted == 2 { "two" } else { "three" };
+        Err(self.fault(record, reason, format!("{wanted} columns, parted by a comma")))
     }
 
     fn record(&self, record: csv::Result<StringRecord>) -> Result<StringRecord, TableFault> {

@@ -97,7 +97,8 @@ pub enum Envelope {
     },
 }
 
-/// A field from a CSV file with the header `time [fs],electric_field [V/m]` (any units): cubic spline, zero outside.
+/// A field from a CSV file with the header `time [fs],electric_field [V/m]` (any units): cubic spline, zero outside. It points along
+/// x; in two dimensions `time [fs],electric_field_x [V/m],electric_field_y [V/m]` has both components.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Sampled {

@@ -23,11 +23,24 @@ pub(super) fn field(check: &mut Check, field: &raw::Field, dimensions: u32) -> F
         }
         pulses.extend(pulse(check, raw, &place));
     }
-    let sampled = field.sampled.as_ref().and_then(|raw| {
-        let table = check.table("/field/sampled", &raw.file, raw.sha256.as_ref(), tables::FIELD)?;
-        Some(SampledField { components: [Some(table), None] })
-    });
+    let sampled = field.sampled.as_ref().and_then(|raw| sampled(check, raw, dimensions));
     Field { pulses, sampled }
+}
+
+/// One column is the field along x, two are both components.
+fn sampled(check: &mut Check, raw: &raw::Sampled, dimensions: u32) -> Option<SampledField> {
+    const PLACE: &str = "/field/sampled";
+    let layouts = [tables::FIELD, tables::PLANE_FIELD];
+    let mut components = check.curves(PLACE, &raw.file, raw.sha256.as_ref(), &layouts)?.into_iter();
+    let components = [components.next(), components.next()];
+    if dimensions == 1 && components[1].is_some() {
+        let fix = Fix::Elsewhere { place: "/atom/dimensions".into(), value: json!(2) };
+        let allowed = format!("the header {} in one dimension", tables::FIELD.header);
+        let reason = "has a component along y, which needs two dimensions";
+        check.complain(&format!("{PLACE}/file"), reason, allowed, fix);
+        return None;
+    }
+    Some(SampledField { components })
 }
 
 fn on_the_line(check: &mut Check, pulse: &raw::Pulse, place: &str) {

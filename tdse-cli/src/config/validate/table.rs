@@ -12,7 +12,7 @@ use crate::config::pointer::{join, nearest};
 use crate::config::tables::{Input, Layout};
 
 impl Check<'_> {
-    /// The table that the object at `user` names, kept among the inputs.
+    /// The curve in the table that the object at `user` names, which is kept among the inputs.
     pub(super) fn table(
         &mut self,
         user: &str,
@@ -20,7 +20,18 @@ impl Check<'_> {
         sha256: Option<&String>,
         layout: Layout,
     ) -> Option<Arc<Cubic>> {
-        let table = match self.library.table(file, layout) {
+        self.curves(user, file, sha256, &[layout])?.into_iter().next()
+    }
+
+    /// The same for a table in one of `layouts`: every curve it holds.
+    pub(super) fn curves(
+        &mut self,
+        user: &str,
+        file: &str,
+        sha256: Option<&String>,
+        layouts: &[Layout],
+    ) -> Option<Vec<Arc<Cubic>>> {
+        let table = match self.library.table(file, layouts) {
             Ok(table) => table,
             Err(error) => {
                 self.unreadable(user, file, &error);
@@ -37,8 +48,8 @@ impl Check<'_> {
             );
         }
         self.inputs.push(input);
-        match table.curve {
-            Ok(curve) => Some(curve),
+        match table.curves {
+            Ok(curves) => Some(curves),
             Err(fault) => {
                 let fix = Fix::Words(format!("correct line {} of the file", fault.line));
                 let reason = format!("has a fault in line {}: {}", fault.line, fault.reason);
