@@ -123,9 +123,8 @@ fn mapped(
 ) -> (MomentumMap, State, f64) {
     let plan = planned(potential, field, numerics).mapping(numerics, range);
     let state = run(&plan);
-    let inner = 0.5 * numerics.grid.x.extent() - numerics.absorber.width();
     let amplitudes = &state.outgoing.as_ref().unwrap().map;
-    let map = MomentumMap::new(plan.map_collector().unwrap(), amplitudes, potential.far_charge(), inner);
+    let map = MomentumMap::new(plan.map_collector().unwrap(), amplitudes);
     println!("map every {} steps, {} in it", plan.map_collector().unwrap().interval(), map.probability());
     let bound = RoundStates::in_box(potential, &numerics.grid).unwrap();
     let held: f64 =

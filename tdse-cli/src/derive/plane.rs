@@ -4,6 +4,7 @@ use std::f64::consts::PI;
 
 use ndarray::Array2;
 use tdse_core::absorber::slowest_momentum;
+use tdse_core::choose::tail_of;
 use tdse_core::outgoing::MomentumMap;
 use tdse_core::problem::ElectronMethod;
 use tdse_core::spectrum::EnergyAxis;
@@ -21,9 +22,7 @@ pub(super) fn electrons(contents: &mut Contents, finished: &Finished, axis: Ener
     let Finished { point, plan, state, .. } = *finished;
     let (Some(collector), Some(outgoing)) = (plan.map_collector(), &state.outgoing) else { return };
     let job = &point.job;
-    let (half, width) = (0.5 * job.numerics.grid.x.extent(), job.numerics.absorber.width());
-    let charge = job.problem.potential.far_charge();
-    let map = MomentumMap::new(collector, &outgoing.map, charge, half - width);
+    let map = MomentumMap::new(collector, &outgoing.map);
 
     let energies = axis.values();
     let spectrum = map.energy_spectrum(&energies);
@@ -43,9 +42,11 @@ pub(super) fn electrons(contents: &mut Contents, finished: &Finished, axis: Ener
     contents.insert("summary", "electron_yield", total);
     contents.insert("summary", "unaccounted_probability", 1.0 - bound - total);
     contents.insert("summary", "electron_method", ElectronMethod::OutgoingAmplitude as i64);
-    contents.insert("summary", "lowest_clean_momentum", slowest_momentum(width));
-    // Corrected for is the pull where the absorber begins; it may take electrons anywhere up to the edge.
-    contents.insert("summary", "coulomb_shift", electronvolts(charge / (half - width) - charge / half));
+    let slowest = slowest_momentum(job.numerics.absorber.width());
+    contents.insert("summary", "lowest_clean_momentum", slowest);
+    let left = tail_of(&job.problem, &job.numerics);
+    contents.insert("summary", "coulomb_shift", electronvolts(left.shift));
+    contents.insert("summary", "coulomb_sideband", left.sideband);
 }
 
 /// The density over final momenta, on the momenta of the map as far as the energies go.
@@ -57,11 +58,7 @@ fn momenta(contents: &mut Contents, map: &MomentumMap, largest_energy: f64) {
     let (x, y) = (kept(0), kept(1));
     let first = (map.momenta[0].len() - x.len()) / 2;
     let density = Array2::from_shape_fn((y.len(), x.len()), |(j, i)| {
-        if map.tail == 0.0 {
-            map.density[(j + first) * map.momenta[0].len() + i + first]
-        } else {
-            map.at(x[i].hypot(y[j]), y[j].atan2(x[i]))
-        }
+        map.density[(j + first) * map.momenta[0].len() + i + first]
     });
     contents.insert("momentum", "momentum_y", y);
     contents.insert("momentum", "momentum_x", x);

@@ -3,6 +3,10 @@
 //! As in one dimension ⟨χ_k|ψ⟩ falls by ⟨χ_k|Wψ⟩ per unit of time, here with plane Volkov states
 //! χ_k = e^{i(k+A)·r} e^{-i∫(k+A)²/2}/2π (Volkov, Z. Phys. 94, 250 (1935)), A counted from its last value. What is still
 //! inside at the end flies on until it is out: the run is as long as the slowest electrons of interest need.
+//!
+//! A long tail beyond the absorber shifts no electron: where the absorber takes it, it is faster than it ends, but the sum over
+//! time keeps what turns like e^{-ik²t/2}, and that is its whole energy, the tail's included. What plane waves err there is
+//! the height (`tests/plane_tail.rs`).
 
 use std::f64::consts::{PI, SQRT_2};
 
@@ -214,17 +218,13 @@ pub struct MomentumMap {
     pub momenta: [Vec<f64>; 2],
     /// |a|², bohr², shape `[k_y, k_x]`.
     pub density: Vec<f64>,
-    /// Energy that electrons still lose in the tail beyond the absorber, Z/R, hartree: a momentum k of the grid ends as
-    /// √(k² - 2 Z/R) in the same direction; k dk, and so the density, stays.
-    pub tail: f64,
 }
 
 impl MomentumMap {
-    /// Map of collected amplitudes of electrons that leave an ion of charge `charge` through an absorber that begins
-    /// `inner` bohr away.
-    pub fn new(collector: &MapCollector, amplitudes: &[C], charge: f64, inner: f64) -> Self {
+    /// Map of collected amplitudes.
+    pub fn new(collector: &MapCollector, amplitudes: &[C]) -> Self {
         let density = amplitudes.iter().map(C::norm_sqr).collect();
-        Self { momenta: collector.momenta.clone(), density, tail: charge / inner }
+        Self { momenta: collector.momenta.clone(), density }
     }
 
     fn spacing(&self) -> [f64; 2] {
@@ -237,11 +237,10 @@ impl MomentumMap {
         self.density.iter().sum::<f64>() * dx * dy
     }
 
-    /// Density at final momentum (`k`, `angle`), by cubic interpolation along both axes, not below zero; zero outside.
+    /// Density at momentum (`k`, `angle`), by cubic interpolation along both axes, not below zero; zero outside.
     pub fn at(&self, k: f64, angle: f64) -> f64 {
-        let radius = (k * k + 2.0 * self.tail).sqrt();
         let (sin, cos) = angle.sin_cos();
-        let place = [(radius * cos, 0), (radius * sin, 1)].map(|(k, d)| {
+        let place = [(k * cos, 0), (k * sin, 1)].map(|(k, d)| {
             let u = (k - self.momenta[d][0]) / self.spacing()[d];
             (u.floor() as i64, u - u.floor())
         });
@@ -268,7 +267,7 @@ impl MomentumMap {
             .iter()
             .map(|e| {
                 let k = (2.0 * e).sqrt();
-                let count = (4.0 * PI * (k * k + 2.0 * self.tail).sqrt() / spacing).ceil().max(16.0);
+                let count = (4.0 * PI * k / spacing).ceil().max(16.0);
                 let angle = |n: usize| 2.0 * PI * n as f64 / count;
                 (0..count as usize).map(|n| self.at(k, angle(n))).sum::<f64>() * 2.0 * PI / count
             })
