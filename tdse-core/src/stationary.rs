@@ -4,18 +4,21 @@
 mod bound;
 mod level;
 mod magnus;
+mod mirrored;
 mod one_photon;
 mod plane;
 mod radial;
 pub(crate) mod root;
 mod round;
 mod scattering;
+mod sector;
 mod tail;
 mod threshold;
 mod tune;
 
 pub use bound::{BoundStates, bound_states, bound_states_below};
 pub use level::{Level, count_below, level, radial_count_below, radial_level};
+pub use mirrored::parity_states;
 pub use one_photon::{TransitionDipole, transition_dipole};
 pub use plane::{PlaneState, lowest_plane_levels, plane_level, plane_states};
 pub use radial::RadialFunction;
@@ -53,6 +56,16 @@ pub enum StationaryError {
         lowest: f64,
         /// Energy at the largest softening.
         highest: f64,
+    },
+    /// A potential on a grid has no parity.
+    #[error(
+        "the potential at {axis} and -{axis} differs by up to {difference:e} hartree: its states have no parity"
+    )]
+    NoMirror {
+        /// Axis that the mirror turns round.
+        axis: &'static str,
+        /// Largest difference, hartree.
+        difference: f64,
     },
     /// An iteration did not reach its accuracy.
     #[error("{what} did not converge: {reached:e} reached, {wanted:e} wanted ({unit})")]

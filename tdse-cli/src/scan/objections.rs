@@ -97,6 +97,9 @@ pub fn stationary(request: &Request, tree: &Value, error: &StationaryError) -> C
                 _ => complaint.fix(Fix::Words("choose another state or potential".into())),
             }
         }
+        StationaryError::NoMirror { .. } => Complaint::new("/atom", None, error.to_string())
+            .allowed("a potential that is even in x and in y")
+            .fix(Fix::Words("make it even".into())),
         StationaryError::NotConverged { .. } => Complaint::new("/atom", None, error.to_string())
             .allowed("a potential that is smooth on the scale of a thousandth of its width")
             .fix(Fix::Words("smooth the table".into())),

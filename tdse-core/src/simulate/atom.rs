@@ -5,7 +5,9 @@ use num_complex::Complex;
 use crate::grid::Grid;
 use crate::potential::{Potential, PotentialOnGrid};
 use crate::problem::{InitialState, PlaneLabel};
-use crate::stationary::{BoundStates, PlaneState, StationaryError, bound_states_below, plane_states};
+use crate::stationary::{
+    BoundStates, PlaneState, StationaryError, bound_states_below, parity_states, plane_states,
+};
 
 /// A model atom on a grid: computed once for all runs that share it.
 #[derive(Clone, Debug, PartialEq)]
@@ -40,6 +42,24 @@ impl Atom {
             bound: BoundStates { energies: Vec::new(), states: Vec::new() },
             plane: plane_states(potential, grid, labels)?,
         })
+    }
+
+    /// Atom in two dimensions of any potential that keeps both mirrors, with the states that `labels` name by parity. A run starts
+    /// with [`Plan::from_wave_function`](super::Plan::from_wave_function) and [`Self::wave_function`].
+    ///
+    /// # Errors
+    /// As [`parity_states`].
+    ///
+    /// # Panics
+    /// As [`parity_states`].
+    pub fn of_values(
+        potential: PotentialOnGrid,
+        grid: &Grid,
+        labels: &[PlaneLabel],
+    ) -> Result<Self, StationaryError> {
+        let plane = parity_states(&potential, grid, labels)?;
+        let bound = BoundStates { energies: Vec::new(), states: Vec::new() };
+        Ok(Self { potential, bound, plane })
     }
 
     /// Number of bound states it holds.

@@ -1,16 +1,15 @@
 //! Bound states of a round atom as a two-dimensional grid represents it, by symmetry.
 //!
 //! The grid keeps the mirrors x → -x and y → -y exactly, so a state lives on a quarter of the plane in one of four
-//! sectors. There the kinetic energy is a small dense matrix per axis, exactly the one of the periodic grid. A state is
-//! first found on the part of the grid that it fills, then checked, and where needed improved, on the whole grid.
+//! sectors. A state is first found on the part of the grid that it fills, then checked, and where needed improved, on the
+//! whole grid.
 
-use std::f64::consts::PI;
-
-use nalgebra::{DMatrix, DVector};
+use nalgebra::DVector;
 use num_complex::Complex;
 
 use super::bound::{ITERATIONS, Operator, RESIDUAL, improved};
 use super::level::rough_radial_level;
+use super::sector::Sector;
 use super::{Level, RadialFunction, StationaryError, radial_level};
 use crate::grid::{Axis, Grid};
 use crate::potential::Potential;
@@ -238,13 +237,13 @@ fn real_state(
         let points = 2 * (FILLED * level.reach / axis.spacing).ceil() as usize + 2;
         Axis { points: points.min(axis.points), ..axis }
     };
-    let cropped = Sector::new(potential, axes.map(crop), part.parity());
-    let guesses: Vec<DVector<f64>> =
-        below.iter().map(|(part, radial)| cropped.sample(part, radial)).collect();
+    let cropped = round(potential, axes.map(crop), part);
+    let sample = |(part, radial): &(Part, RadialFunction)| cropped.sample(|x, y| part.value(radial, x, y));
+    let guesses: Vec<DVector<f64>> = below.iter().map(sample).collect();
     let wanted = guesses[0].clone();
     let (states, energies, _) = improved(&cropped, guesses, ITERATIONS);
     let at = nearest(&states, &wanted);
-    let whole = Sector::new(potential, axes, part.parity());
+    let whole = round(potential, axes, part);
     let mut psi = whole.padded(&cropped, &states[at]);
     let mut energy = energies[at];
     let mut residual = whole.residual(&psi, energy);
@@ -265,6 +264,12 @@ fn real_state(
     }
     let sign = whole.padded(&cropped, &wanted).dot(&psi).signum();
     Ok((energy, whole.unfolded(&(psi * sign))))
+}
+
+/// The sector of a state of a round atom.
+fn round(potential: &Potential, axes: [Axis; 2], part: Part) -> Sector {
+    let at = |axis: Axis, i: usize| (i as f64 + 0.5) * axis.spacing;
+    Sector::new(axes, part.parity(), |i, j| potential.value(at(axes[0], i).hypot(at(axes[1], j))))
 }
 
 /// The state wanted first, then every other state of its sector that is not above it.
@@ -298,128 +303,4 @@ fn not_above(
 fn nearest(states: &[DVector<f64>], wanted: &DVector<f64>) -> usize {
     let overlap = |i: &usize| states[*i].dot(wanted).abs();
     (0..states.len()).max_by(|i, j| overlap(i).total_cmp(&overlap(j))).unwrap_or(0)
-}
-
-/// H on the functions of given parities, on the quarter x, y > 0, x fastest; unit vectors are normalised states.
-struct Sector {
-    axes: [Axis; 2],
-    parity: [Parity; 2],
-    potential: DMatrix<f64>,
-    directions: [Direction; 2],
-}
-
-/// Kinetic energy along one half axis for one parity.
-struct Direction {
-    /// Rows: orthonormal cosines or sines on the half axis.
-    waves: DMatrix<f64>,
-    /// k²/2 of each.
-    energies: Vec<f64>,
-    kinetic: DMatrix<f64>,
-}
-
-impl Direction {
-    fn new(axis: Axis, parity: Parity) -> Self {
-        let half = axis.points / 2;
-        let first = usize::from(parity == Parity::Odd);
-        let waves = DMatrix::from_fn(half, half, |k, j| {
-            let k = k + first;
-            let angle = PI * k as f64 * (j as f64 + 0.5) / half as f64;
-            let scale = if k == 0 || k == half { 1.0 } else { 2.0 };
-            (scale / half as f64).sqrt() * if first == 0 { angle.cos() } else { angle.sin() }
-        });
-        let momentum = |k: usize| 2.0 * PI * (k + first) as f64 / axis.extent();
-        let energies: Vec<f64> = (0..half).map(|k| 0.5 * momentum(k).powi(2)).collect();
-        let mut weighted = waves.clone();
-        for (mut row, t) in weighted.row_iter_mut().zip(&energies) {
-            row *= *t;
-        }
-        let kinetic = waves.tr_mul(&weighted);
-        Self { waves, energies, kinetic }
-    }
-}
-
-impl Sector {
-    fn new(potential: &Potential, axes: [Axis; 2], parity: [Parity; 2]) -> Self {
-        let [nx, ny] = axes.map(|a| a.points / 2);
-        let at = |axis: Axis, i: usize| (i as f64 + 0.5) * axis.spacing;
-        let potential =
-            DMatrix::from_fn(nx, ny, |i, j| potential.value(at(axes[0], i).hypot(at(axes[1], j))));
-        let directions = [0, 1].map(|d| Direction::new(axes[d], parity[d]));
-        Self { axes, parity, potential, directions }
-    }
-
-    fn shape(&self) -> (usize, usize) {
-        self.potential.shape()
-    }
-
-    fn sample(&self, part: &Part, radial: &RadialFunction) -> DVector<f64> {
-        let (nx, ny) = self.shape();
-        let at = |d: usize, i: usize| (i as f64 + 0.5) * self.axes[d].spacing;
-        let values = DMatrix::from_fn(nx, ny, |i, j| part.value(radial, at(0, i), at(1, j)));
-        DVector::from_column_slice(values.as_slice())
-    }
-
-    /// A vector of a smaller sector with the same spacings, zero outside.
-    fn padded(&self, small: &Self, psi: &DVector<f64>) -> DVector<f64> {
-        let ((nx, ny), (sx, sy)) = (self.shape(), small.shape());
-        let mut out = DVector::zeros(nx * ny);
-        for j in 0..sy {
-            out.rows_mut(j * nx, sx).copy_from(&psi.rows(j * sx, sx));
-        }
-        out
-    }
-
-    fn residual(&self, psi: &DVector<f64>, energy: f64) -> f64 {
-        (self.apply(psi) - energy * psi).norm() / psi.norm()
-    }
-
-    /// Values on the whole plane, ∫ψ² = 1.
-    fn unfolded(&self, psi: &DVector<f64>) -> Vec<f64> {
-        let (nx, ny) = self.shape();
-        let scale = 0.5 / (psi.norm() * (self.axes[0].spacing * self.axes[1].spacing).sqrt());
-        let fold = |i: usize, n: usize, parity: Parity| {
-            if i < n { (n - 1 - i, parity.sign()) } else { (i - n, 1.0) }
-        };
-        let mut out = Vec::with_capacity(4 * nx * ny);
-        for j in 0..2 * ny {
-            let (row, row_sign) = fold(j, ny, self.parity[1]);
-            for i in 0..2 * nx {
-                let (column, sign) = fold(i, nx, self.parity[0]);
-                out.push(psi[row * nx + column] * sign * row_sign * scale);
-            }
-        }
-        out
-    }
-
-    fn matrix(&self, psi: &DVector<f64>) -> DMatrix<f64> {
-        let (nx, ny) = self.shape();
-        DMatrix::from_column_slice(nx, ny, psi.as_slice())
-    }
-}
-
-impl Operator for Sector {
-    fn largest(&self) -> f64 {
-        let kinetic = |d: &Direction| d.energies.iter().copied().fold(0.0, f64::max);
-        self.directions.iter().map(kinetic).sum::<f64>() + self.potential.amax()
-    }
-
-    fn apply(&self, psi: &DVector<f64>) -> DVector<f64> {
-        let psi = self.matrix(psi);
-        let mut out = psi.component_mul(&self.potential);
-        out.gemm(1.0, &self.directions[0].kinetic, &psi, 1.0);
-        out.gemm(1.0, &psi, &self.directions[1].kinetic, 1.0);
-        DVector::from_column_slice(out.as_slice())
-    }
-
-    fn precondition(&self, psi: &DVector<f64>, shift: f64) -> DVector<f64> {
-        let [x, y] = &self.directions;
-        let mut inside = &x.waves * self.matrix(psi) * y.waves.transpose();
-        for (mut column, ty) in inside.column_iter_mut().zip(&y.energies) {
-            for (value, tx) in column.iter_mut().zip(&x.energies) {
-                *value /= tx + ty + shift;
-            }
-        }
-        let out = x.waves.tr_mul(&inside) * &y.waves;
-        DVector::from_column_slice(out.as_slice())
-    }
 }
