@@ -121,7 +121,7 @@ fn memory_in_the_plane_is_what_was_foretold() {
             for (ellipticity, angle, labels) in [
                 (0.0, 0.0, vec![label(0, 0)]),
                 (0.0, upright, vec![label(0, 0)]),
-                (0.5, 0.0, vec![label(0, 0), label(1, 0)]),
+                (0.5, 0.0, vec![label(0, 0), label(1, 0), label(-1, 0)]),
             ] {
                 let light = Pulse { ellipticity, angle, ..near_infrared() };
                 one_plane(&well, &labels, light, (gauge, scheme));

@@ -60,7 +60,7 @@ fn levels_of_the_anisotropic_oscillator() {
         for (state, level) in parity_states(&potential, &grid, &labels).unwrap().iter().zip(levels) {
             println!("{:?}: {:.12} of {level:.12}", state.label, state.energy);
             assert!((state.energy - level).abs() < 1e-9, "{:?}: {} of {level}", state.label, state.energy);
-            let norm = state.real.iter().map(|v| v * v).sum::<f64>() * grid.cell();
+            let norm = state.wave_function().iter().map(C::norm_sqr).sum::<f64>() * grid.cell();
             assert!((norm - 1.0).abs() < 1e-12, "norm {norm}");
         }
     }
@@ -84,8 +84,7 @@ fn states_of_a_round_atom_are_those_found_along_the_radius() {
     let (found, expected) =
         (parity_states(&potential, &grid, &labels).unwrap(), plane_states(&well, &grid, &labels).unwrap());
     for (found, expected) in found.iter().zip(&expected) {
-        let overlap: f64 =
-            found.real.iter().zip(&expected.real).map(|(a, b)| a * b).sum::<f64>() * grid.cell();
+        let overlap = found.overlap(&expected.wave_function(), grid.cell()).re;
         println!("{:?}: {:.12}, overlap {overlap:.10}", found.label, found.energy);
         assert!((found.energy - expected.energy).abs() < 1e-10, "{} of {}", found.energy, expected.energy);
         assert!((overlap - 1.0).abs() < 1e-8, "overlap {overlap}");

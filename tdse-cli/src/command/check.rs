@@ -14,8 +14,8 @@ use tdse_core::units::{
     intensity,
 };
 
-use crate::scan::cost::{Cost, cost, keeps_mirror, map_share};
-use crate::scan::prepare::{Point, Prepared};
+use crate::scan::cost::{Cost, cost, keeps_mirror, map_share, memory_on_plane};
+use crate::scan::prepare::{Job, Point, Prepared};
 use crate::text::{Table, bytes, duration, number};
 
 const CAUTION: &str = "Model prediction for one atom. Intense lasers and extreme-ultraviolet light injure; \
@@ -227,11 +227,35 @@ fn costs(prepared: &Prepared, cores: usize) -> String {
     }
     let together = cores.min(all.len()).max(1);
     table.row("memory", bytes(largest * together as u64), "", &format!("{together} point(s) at once"));
+    match &prepared.points[..] {
+        [point] if point.job.numerics.grid.dimensions() == 2 => shares(&point.job, &mut table),
+        _ => {}
+    }
     // A plane shares its steps among the cores that have no point of their own.
     let is_plane = |point: &Point| point.job.numerics.grid.dimensions() == 2;
     let busy = if prepared.points.iter().all(is_plane) { cores.max(1) } else { together };
     table.row("time", duration(seconds / busy as f64), "", &format!("estimated, on {busy} core(s)"));
     format!("\nCost\n{table}")
+}
+
+/// What the memory of a plane is for: what changes in wave functions of the whole grid, and what does not.
+fn shares(job: &Job, table: &mut Table) {
+    let memory = memory_on_plane(job);
+    let one = 16 * job.numerics.grid.len();
+    let beside = |part: usize| format!("{:.2} wave functions of the whole grid", part as f64 / one as f64);
+    let moving = memory.wave_function + memory.workspace;
+    table.row("  the step", bytes(moving as u64), "", &beside(moving));
+    if memory.map > 0 {
+        table.row("  momentum map", bytes(memory.map as u64), "", &beside(memory.map));
+    }
+    table.row(
+        "  static tables",
+        bytes(memory.tables as u64),
+        "",
+        "factors of the step, potential, absorber, field",
+    );
+    let note = format!("static too: {}, on a quarter of the plane, and the initial one", job.labels.len());
+    table.row("  bound states", bytes(memory.states as u64), "", &note);
 }
 
 fn doubts(prepared: &Prepared) -> String {

@@ -63,7 +63,7 @@ fn on_plane(job: &Job, schedule: &Schedule) -> Cost {
 }
 
 /// Memory of a run in two dimensions on all cores.
-fn memory_on_plane(job: &Job) -> Memory {
+pub fn memory_on_plane(job: &Job) -> Memory {
     let load = Load {
         field: &job.problem.field,
         numerics: &job.numerics,

@@ -3,6 +3,7 @@
 //! Counted array by array as plans, states and workspaces allocate them (the test counts the allocator's bytes); of the
 //! transforms' own tables only the length is known, one number per point and direction.
 
+use std::collections::HashSet;
 use std::mem::size_of;
 
 use super::{POPULATION_SAMPLES, Schedule, straight};
@@ -85,7 +86,7 @@ impl Load<'_> {
             wave_function: C * kept,
             workspace: 0,
             tables: field + points * R * (1 + dimensions),
-            states: self.states() * points * R + kept * C,
+            states: self.states() * R + kept * C,
             map: 0,
             series: recorded,
         };
@@ -121,16 +122,23 @@ impl Load<'_> {
         if let [Some(_)] = parities[..] { 2 } else { 1 }
     }
 
-    /// Real arrays of states.
+    /// Numbers of all states: on a plane they lie on a quarter, and m and -m share both of theirs.
     fn states(&self) -> usize {
-        let arrays = |label: &PlaneLabel| match label.symmetry {
-            Symmetry::Angular(m) if m != 0 => 2,
+        let points = self.numerics.grid.len();
+        let labels = match self.states {
+            Held::Line(count) => return count * points,
+            Held::Plane(labels) => labels,
+        };
+        let name = |label: &PlaneLabel| match label.symmetry {
+            Symmetry::Angular(m) => (Symmetry::Angular(m.abs()), label.number),
+            mirror @ Symmetry::Mirror(_) => (mirror, label.number),
+        };
+        let different: HashSet<_> = labels.iter().map(name).collect();
+        let quarters = |(symmetry, _): &(Symmetry, usize)| match symmetry {
+            Symmetry::Angular(m) if *m != 0 => 2,
             _ => 1,
         };
-        match self.states {
-            Held::Line(count) => count,
-            Held::Plane(labels) => labels.iter().map(arrays).sum(),
-        }
+        different.iter().map(quarters).sum::<usize>() * (points / 4)
     }
 
     /// Arrays of one number per point kept that a step holds: closing and outer factor, gradient, what the middle needs.

@@ -76,8 +76,8 @@ fn parity_state(values: &[f64], axes: [Axis; 2], label: PlaneLabel) -> Result<Pl
         });
     }
     let psi = &states[label.number];
-    let real = sector.unfolded(&(psi * outermost(psi)));
-    Ok(PlaneState { label, energy: energies[label.number], real, imaginary: Vec::new() })
+    let real = sector.normalised(&(psi * outermost(psi)));
+    Ok(PlaneState::real(label, energies[label.number], real))
 }
 
 /// The `count` products of lowest energy; fewer where the quarter has fewer points.

@@ -9,7 +9,7 @@ use num_complex::Complex;
 
 use super::bound::{ITERATIONS, Operator, RESIDUAL, improved};
 use super::level::rough_radial_level;
-use super::sector::Sector;
+use super::sector::{Quarter, Sector};
 use super::{Level, RadialFunction, StationaryError, radial_level};
 use crate::grid::{Axis, Grid};
 use crate::potential::Potential;
@@ -18,28 +18,33 @@ use crate::problem::{Parity, PlaneLabel, Symmetry};
 /// Part of the grid a state is first found on, in units of the distance where it has decayed by e⁻²⁰.
 const FILLED: f64 = 1.5;
 
-/// A bound state on the plane.
+/// A bound state on the plane. It is kept on a quarter of it, which states of angular momentum m and -m share.
 #[derive(Clone, Debug, PartialEq)]
 pub struct PlaneState {
     /// Which one.
     pub label: PlaneLabel,
     /// Energy of the grid's Hamiltonian, hartree; of R e^{imφ} with m ≠ 0 the mean of its two real parts.
     pub energy: f64,
-    /// Real part, shape `[ny, nx]`, ∫|ψ|² = 1, positive towards x → +∞ (or towards the first quadrant).
-    pub real: Vec<f64>,
-    /// Imaginary part; empty for a real state.
-    pub imaginary: Vec<f64>,
+    /// Real part; ∫|ψ|² = 1, positive towards x → +∞ (or towards the first quadrant).
+    real: Quarter,
+    /// Imaginary part, where it has one.
+    imaginary: Option<Quarter>,
 }
 
 impl PlaneState {
-    /// ψ at point `i` of the grid.
-    pub fn at(&self, i: usize) -> Complex<f64> {
-        Complex::new(self.real[i], self.imaginary.get(i).copied().unwrap_or(0.0))
+    /// A real state.
+    pub(super) fn real(label: PlaneLabel, energy: f64, real: Quarter) -> Self {
+        Self { label, energy, real, imaginary: None }
     }
 
-    /// ψ as complex numbers.
+    /// ψ at point `i` of the grid, x fastest.
+    pub fn at(&self, i: usize) -> Complex<f64> {
+        Complex::new(self.real.at(i), self.imaginary.as_ref().map_or(0.0, |imaginary| imaginary.at(i)))
+    }
+
+    /// ψ as complex numbers, shape `[ny, nx]`.
     pub fn wave_function(&self) -> Vec<Complex<f64>> {
-        (0..self.real.len()).map(|i| self.at(i)).collect()
+        (0..self.real.points()).map(|i| self.at(i)).collect()
     }
 
     /// ⟨state|ψ⟩ over the grid's cells of size `cell`.
@@ -47,9 +52,10 @@ impl PlaneState {
     /// # Panics
     /// If the lengths differ.
     pub fn overlap(&self, psi: &[Complex<f64>], cell: f64) -> Complex<f64> {
-        assert_eq!(psi.len(), self.real.len(), "wave function and state have the same length");
-        let with = |part: &[f64]| psi.iter().zip(part).map(|(p, s)| p * s).sum::<Complex<f64>>() * cell;
-        with(&self.real) - Complex::<f64>::i() * with(&self.imaginary)
+        assert_eq!(psi.len(), self.real.points(), "wave function and state have the same length");
+        let with =
+            |part: &Quarter| psi.iter().enumerate().map(|(i, p)| p * part.at(i)).sum::<Complex<f64>>() * cell;
+        with(&self.real) - Complex::<f64>::i() * self.imaginary.as_ref().map_or(Complex::default(), with)
     }
 }
 
@@ -67,7 +73,8 @@ pub fn plane_states(
 ) -> Result<Vec<PlaneState>, StationaryError> {
     let y = grid.y.expect("a plane has two dimensions");
     assert!(grid.x.points.is_multiple_of(2) && y.points.is_multiple_of(2), "even numbers of points");
-    labels.iter().map(|label| plane_state(potential, [grid.x, y], *label)).collect()
+    let mut found = Found { potential, axes: [grid.x, y], parts: Vec::new() };
+    labels.iter().map(|label| found.state(*label)).collect()
 }
 
 /// The grid-free level that `label` names.
@@ -121,31 +128,45 @@ pub fn lowest_plane_levels(
     Ok(found)
 }
 
-fn plane_state(
-    potential: &Potential,
+/// Real states found so far, which several labels may name.
+struct Found<'a> {
+    potential: &'a Potential,
     axes: [Axis; 2],
-    label: PlaneLabel,
-) -> Result<PlaneState, StationaryError> {
-    let (m, number) = match label.symmetry {
-        Symmetry::Angular(m) => (m, label.number),
-        Symmetry::Mirror(parity) => {
-            let part = nth_of_sector(potential, parity, label.number)?;
-            let (energy, real) = real_state(potential, axes, part)?;
-            return Ok(PlaneState { label, energy, real, imaginary: Vec::new() });
+    parts: Vec<(Part, f64, Quarter)>,
+}
+
+impl Found<'_> {
+    fn state(&mut self, label: PlaneLabel) -> Result<PlaneState, StationaryError> {
+        let (m, number) = match label.symmetry {
+            Symmetry::Angular(m) => (m, label.number),
+            Symmetry::Mirror(parity) => {
+                let (energy, real) = self.part(nth_of_sector(self.potential, parity, label.number)?)?;
+                return Ok(PlaneState::real(label, energy, real));
+            }
+        };
+        let part = |wave| Part { angular: m.unsigned_abs(), number, wave };
+        let (energy, real) = self.part(part(Wave::Cosine))?;
+        if m == 0 {
+            return Ok(PlaneState::real(label, energy, real));
         }
-    };
-    let angular = m.unsigned_abs();
-    let (energy, mut real) = real_state(potential, axes, Part { angular, number, wave: Wave::Cosine })?;
-    if m == 0 {
-        return Ok(PlaneState { label, energy, real, imaginary: Vec::new() });
+        let (other, imaginary) = self.part(part(Wave::Sine))?;
+        let scale = 0.5f64.sqrt();
+        Ok(PlaneState {
+            label,
+            energy: 0.5 * (energy + other),
+            real: real.times(scale),
+            imaginary: Some(imaginary.times(scale * f64::from(m.signum()))),
+        })
     }
-    let (other, mut imaginary) = real_state(potential, axes, Part { angular, number, wave: Wave::Sine })?;
-    let scale = 0.5f64.sqrt();
-    for (re, im) in real.iter_mut().zip(&mut imaginary) {
-        *re *= scale;
-        *im *= scale * f64::from(m.signum());
+
+    fn part(&mut self, part: Part) -> Result<(f64, Quarter), StationaryError> {
+        if let Some((_, energy, quarter)) = self.parts.iter().find(|found| found.0 == part) {
+            return Ok((*energy, quarter.clone()));
+        }
+        let (energy, quarter) = real_state(self.potential, self.axes, part)?;
+        self.parts.push((part, energy, quarter.clone()));
+        Ok((energy, quarter))
     }
-    Ok(PlaneState { label, energy: 0.5 * (energy + other), real, imaginary })
 }
 
 /// cos mφ or sin mφ.
@@ -225,12 +246,8 @@ fn nth_of_sector(potential: &Potential, parity: [Parity; 2], number: usize) -> R
     }
 }
 
-/// Energy and values, normalised, of one real state on the whole grid.
-fn real_state(
-    potential: &Potential,
-    axes: [Axis; 2],
-    part: Part,
-) -> Result<(f64, Vec<f64>), StationaryError> {
+/// Energy and values, normalised, of one real state.
+fn real_state(potential: &Potential, axes: [Axis; 2], part: Part) -> Result<(f64, Quarter), StationaryError> {
     let level = radial_level(potential, part.angular, part.number)?;
     let below = not_above(potential, part, level.energy, level.reach)?;
     let crop = |axis: Axis| {
@@ -263,7 +280,7 @@ fn real_state(
         });
     }
     let sign = whole.padded(&cropped, &wanted).dot(&psi).signum();
-    Ok((energy, whole.unfolded(&(psi * sign))))
+    Ok((energy, whole.normalised(&(psi * sign))))
 }
 
 /// The sector of a state of a round atom.

@@ -4,12 +4,46 @@
 //! the periodic grid.
 
 use std::f64::consts::PI;
+use std::sync::Arc;
 
 use nalgebra::{DMatrix, DVector};
 
 use super::bound::Operator;
 use crate::grid::Axis;
 use crate::problem::Parity;
+
+/// A real function of given parities, kept where x, y > 0; copies share its values.
+#[derive(Clone, Debug, PartialEq)]
+pub(super) struct Quarter {
+    /// x fastest.
+    values: Arc<[f64]>,
+    /// Points along half of each axis.
+    half: [usize; 2],
+    /// Signs of the images at -x and at -y.
+    signs: [f64; 2],
+    factor: f64,
+}
+
+impl Quarter {
+    /// The function times a number.
+    pub(super) fn times(&self, factor: f64) -> Self {
+        Self { factor, ..self.clone() }
+    }
+
+    /// Points of the whole grid.
+    pub(super) fn points(&self) -> usize {
+        4 * self.values.len()
+    }
+
+    /// Value at point `i` of the whole grid, x fastest.
+    pub(super) fn at(&self, i: usize) -> f64 {
+        let [nx, ny] = self.half;
+        let fold = |i: usize, n: usize, sign: f64| if i < n { (n - 1 - i, sign) } else { (i - n, 1.0) };
+        let (row, row_sign) = fold(i / (2 * nx), ny, self.signs[1]);
+        let (column, sign) = fold(i % (2 * nx), nx, self.signs[0]);
+        self.values[row * nx + column] * sign * row_sign * self.factor
+    }
+}
 
 /// H on the functions of given parities, on the quarter x, y > 0, x fastest; unit vectors are normalised states.
 pub(super) struct Sector {
@@ -98,22 +132,15 @@ impl Sector {
         (self.apply(psi) - energy * psi).norm() / psi.norm()
     }
 
-    /// Values on the whole plane, ∫ψ² = 1.
-    pub(super) fn unfolded(&self, psi: &DVector<f64>) -> Vec<f64> {
-        let (nx, ny) = self.shape();
+    /// The function with ∫ψ² = 1 over the whole plane.
+    pub(super) fn normalised(&self, psi: &DVector<f64>) -> Quarter {
         let scale = 0.5 / (psi.norm() * (self.axes[0].spacing * self.axes[1].spacing).sqrt());
-        let fold = |i: usize, n: usize, parity: Parity| {
-            if i < n { (n - 1 - i, parity.sign()) } else { (i - n, 1.0) }
-        };
-        let mut out = Vec::with_capacity(4 * nx * ny);
-        for j in 0..2 * ny {
-            let (row, row_sign) = fold(j, ny, self.parity[1]);
-            for i in 0..2 * nx {
-                let (column, sign) = fold(i, nx, self.parity[0]);
-                out.push(psi[row * nx + column] * sign * row_sign * scale);
-            }
+        Quarter {
+            values: psi.iter().map(|value| value * scale).collect(),
+            half: [self.shape().0, self.shape().1],
+            signs: self.parity.map(Parity::sign),
+            factor: 1.0,
         }
-        out
     }
 
     fn matrix(&self, psi: &DVector<f64>) -> DMatrix<f64> {
