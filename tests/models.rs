@@ -128,6 +128,26 @@ fn models_are_derived_anew_and_a_planted_curve_is_recognised() {
     assert!(!gone.result().groups().any(|(path, _)| path.starts_with("models/")));
 }
 
+/// Quantum orbits of a chirped Gaussian pulse with its second harmonic: the cutoff lies above the classical one by (F - 1) Ip with F
+/// above 1 (Lewenstein et al. 1994, of a long pulse of one colour: up to 1.325).
+#[test]
+fn orbits_of_a_chirped_gaussian_pulse_with_a_second_colour() {
+    let folder = tempfile::tempdir().unwrap();
+    let sets = [
+        r#"/field/pulses=[{"wavelength": "800 nm", "intensity": "1e14 W/cm^2", "envelope": {"kind": "gaussian", "fwhm": "4 fs"},
+            "chirp": "0.02 rad/fs^2"}, {"wavelength": "400 nm", "intensity": "2e12 W/cm^2", "envelope": {"kind": "gaussian", "fwhm": "4 fs"}}]"#,
+        r#"/models={"three_step": {}, "quantum_orbits": {}}"#,
+    ];
+    let result = tdse("run", &shipped("quickstart.json"), &folder.path().join("out"), &sets).result();
+    let [classical, quantum] =
+        ["three_step", "quantum_orbits"].map(|model| of(&result, model, "cutoff_energy")[0]);
+    let above = (quantum - classical) / 13.598;
+    println!("classical {classical} eV, quantum {quantum} eV: {above:.3} Ip above");
+    assert!(above > 0.0 && above < 0.5, "{above}");
+    let times = numbers(&result, "models/quantum_orbits/orbits", "barrier_time");
+    assert!(times.iter().filter(|time| time.is_finite()).count() > 20, "{times:?}");
+}
+
 /// Bars of the full result come into the comparison, and the repeated runs do without models.
 #[test]
 fn comparisons_get_the_bars_of_the_full_result() {

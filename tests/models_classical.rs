@@ -1,4 +1,4 @@
-//! Classical paths and quantum orbits against numbers computed independently with forty digits and handed to the project:
+//! Classical paths against numbers computed independently with forty digits and handed to the project:
 //! field E0 cos ωt, start at rest at the nucleus (Schafer, Yang, DiMauro, Kulander, Phys. Rev. Lett. 70, 1599 (1993);
 //! Kulander, Schafer, Krause (1993); Paulus, Becker, Nicklich, Walther, J. Phys. B 27, L703 (1994), from memory).
 
@@ -10,7 +10,6 @@ use num_complex::Complex;
 use support::*;
 use tdse_core::field::{Envelope, Field};
 use tdse_core::model::branches::IntensityWindow;
-use tdse_core::model::quantum_orbits::{NotAnalytic, QuantumOrbits, Tones};
 use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep};
 
 const FREQUENCY: f64 = 0.057;
@@ -121,157 +120,6 @@ fn a_short_pulse_has_a_lower_cutoff_that_depends_on_its_phase() {
     let (crest, quarter) = (cutoff(0.0), cutoff(PI / 2.0));
     println!("{crest} and {quarter} Up");
     assert!(crest < 3.173 && quarter < 3.173 && (crest - quarter).abs() > 0.05);
-}
-
-fn orbits(ionization_energy: f64) -> QuantumOrbits {
-    let tones = Tones::monochromatic(PEAK, FREQUENCY, 0.0);
-    QuantumOrbits { tones, frequency: FREQUENCY, ionization_energy, dimensions: 3 }
-}
-
-/// F(Ip/Up) of the cutoff Ip F + 3.17 Up (Lewenstein, Balcou, Ivanov, L'Huillier, Corkum, Phys. Rev. A 49, 2117 (1994)), as the real
-/// part of the complex cutoff (Pisanty, Ciappina, Lewenstein, J. Phys. Photonics 2, 034013 (2020)).
-#[test]
-fn cutoff_of_quantum_orbits() {
-    let cases = [
-        (0.1, 1.320_314_024_882_177_2),
-        (0.5, 1.306_654_039_301_338_8),
-        (1.0, 1.292_174_063_748_476_9),
-        (5.0, 1.225_408_733_617_551_9),
-        (10.0, 1.186_078_814_400_590_7),
-    ];
-    let f = |ratio: f64| {
-        let ionization_energy = ratio * ponderomotive();
-        let cutoff = orbits(ionization_energy).cutoff(0.0).unwrap();
-        (cutoff.energy.re - 3.173_136_566_678_666_6 * ponderomotive()) / ionization_energy
-    };
-    for (ratio, expected) in cases {
-        assert!((f(ratio) - expected).abs() < 1e-8, "Ip/Up = {ratio}: {} against {expected}", f(ratio));
-    }
-    // F(0) from the classical second derivative.
-    assert!((f(1e-3) - 1.324_088_820_140_331).abs() < 1e-4, "{}", f(1e-3));
-}
-
-/// As Ip/Up → 0 the orbits of one energy become the two classical paths to it, in proportion to Ip; before the cutoff there are two.
-#[test]
-fn quantum_orbits_become_classical_paths() {
-    let up = ponderomotive();
-    let cases = [
-        (Branch::Long, 1.718_112_228_234_207, [5.0, 302.891_856_499_360_3]),
-        (Branch::Short, 2.531_523_048_170_123_4, [30.0, 218.686_641_029_567_26]),
-    ];
-    for (branch, energy, times) in cases {
-        let off = |ratio: f64| {
-            let ionization_energy = ratio * up;
-            let found = orbits(ionization_energy).orbits(0.0, &[energy * up + ionization_energy]);
-            let orbit = found.iter().flatten().flatten().find(|o| o.branch == branch).copied().unwrap();
-            println!(
-                "{branch:?}, Ip/Up = {ratio}: {} and {}",
-                degrees(orbit.emission.re),
-                degrees(orbit.time.re)
-            );
-            assert!(orbit.contributes && orbit.emission.im > 0.0);
-            (degrees(orbit.emission.re) - times[0]).abs() + (degrees(orbit.time.re) - times[1]).abs()
-        };
-        let (near, nearer) = (off(4e-3), off(1e-3));
-        assert!(nearer < 0.2 && nearer < 0.3 * near, "{branch:?}: {near}° and {nearer}°");
-    }
-}
-
-/// Under the barrier for asinh γ/ω at momentum zero (Keldysh 1965), so about that long near the crest; beyond the cutoff one orbit
-/// contributes, and its weight falls; the phase at the cutoff is ∫v²/2 = 3.3089 Up/ω (classical; Lewenstein, Salières, L'Huillier,
-/// Phys. Rev. A 52, 4747 (1995), give 3.2).
-#[test]
-fn weights_and_phases_of_quantum_orbits() {
-    let (up, ionization_energy) = (ponderomotive(), 0.5);
-    let model = orbits(ionization_energy);
-    let cutoff = model.cutoff(0.0).unwrap().energy.re;
-    let energies: Vec<f64> = (0..40).map(|i| ionization_energy + 0.2 + 0.04 * f64::from(i)).collect();
-    let [short, long] = model.orbits(0.0, &energies);
-    let gamma = (ionization_energy / (2.0 * up)).sqrt();
-    for (short, long) in short.iter().zip(&long) {
-        let (short, long) = (short.unwrap(), long.unwrap());
-        let excursion = |o: &tdse_core::model::quantum_orbits::Orbit| (o.time - o.emission).re;
-        if short.energy < cutoff {
-            assert!(
-                excursion(&short) < excursion(&long) && short.contributes && long.contributes,
-                "{short:?} {long:?}"
-            );
-            let barrier = long.emission.im * FREQUENCY / gamma.asinh();
-            assert!((0.8..1.4).contains(&barrier), "{barrier}");
-        } else if short.energy > 1.05 * cutoff {
-            assert!(short.contributes != long.contributes, "{short:?} {long:?}");
-        }
-    }
-    let falls = |orbits: &[Option<tdse_core::model::quantum_orbits::Orbit>]| {
-        let beyond: Vec<f64> = orbits
-            .iter()
-            .flatten()
-            .filter(|o| o.contributes && o.energy > 1.05 * cutoff)
-            .map(|o| o.action.im)
-            .collect();
-        beyond.len() > 2 && beyond.windows(2).all(|w| w[1] > w[0])
-    };
-    assert!(falls(&short) || falls(&long));
-
-    let tiny = 1e-3 * up;
-    let classical = orbits(tiny);
-    let at = classical.cutoff(0.0).unwrap();
-    let energy = at.energy.re - 0.02 * up;
-    let [short, long] = classical.orbits(0.0, &[energy]).map(|o| o[0].unwrap());
-    let action =
-        |o: &tdse_core::model::quantum_orbits::Orbit| (o.energy * o.time - o.action).re * FREQUENCY / up;
-    println!("{} and {} Up/ω", action(&short), action(&long));
-    assert!(
-        action(&short) < 3.31
-            && action(&long) > 3.3
-            && (0.5 * (action(&short) + action(&long)) - 3.3089).abs() < 0.03
-    );
-}
-
-/// In a few-cycle pulse the complex cutoff of the half cycle that leads to the highest classical return becomes that as Ip → 0, in
-/// proportion to Ip with a factor that, other than in a long pulse (1.324), depends on the pulse.
-#[test]
-fn quantum_orbits_in_a_short_pulse() {
-    let ionization_energy = 1e-3 * ponderomotive();
-    for (cycles, phase) in [(4.0, 0.0), (4.0, 1.2), (6.0, -0.5)] {
-        let mut light = sin2_pulse(FREQUENCY, PEAK, cycles);
-        light.phase = phase;
-        let highest = ThreeStep::new(&field(light)).highest(1, Extreme::Return).unwrap();
-        let model = QuantumOrbits {
-            tones: Tones::of(&light).unwrap(),
-            frequency: FREQUENCY,
-            ionization_energy,
-            dimensions: 1,
-        };
-        // The crest a classical electron of the highest energy starts 18° after.
-        let crest = highest.emission - 17.957 / 180.0 * PI / FREQUENCY;
-        let cutoff = model.cutoff(crest).unwrap();
-        let f = (cutoff.energy.re - highest.energy) / ionization_energy;
-        println!("{cycles} cycles, phase {phase}: F = {f}");
-        assert!((1.0..1.6).contains(&f), "F = {f}");
-        assert!((cutoff.time.re - highest.time).abs() < 1e-2 / FREQUENCY, "{cutoff:?} against {highest:?}");
-        let energies = [cutoff.energy.re * 0.7, cutoff.energy.re * 0.9];
-        assert!(model.orbits(crest, &energies).iter().flatten().all(Option::is_some));
-    }
-}
-
-/// The sines of a sin² pulse are the pulse.
-#[test]
-fn a_pulse_as_a_sum_of_sines() {
-    let mut light = sin2_pulse(FREQUENCY, PEAK, 5.0);
-    (light.phase, light.centre) = (0.7, 30.0);
-    let tones = Tones::of(&light).unwrap();
-    for t in [-120.0, 3.0, 200.0] {
-        let (a, e) = light.potential_and_field(t);
-        let t = Complex::from(t);
-        assert!((tones.potential(t) - a[0]).norm() < 1e-12 && (tones.field(t) - e[0]).norm() < 1e-12);
-        let h = 1e-3;
-        let slope = (tones.integral(t + h) - tones.integral(t - h)) / (2.0 * h);
-        let square = (tones.square_integral(t + h) - tones.square_integral(t - h)) / (2.0 * h);
-        assert!((slope - a[0]).norm() < 1e-6 && (square - a[0] * a[0]).norm() < 1e-6);
-    }
-    light.chirp = 1e-6;
-    assert_eq!(Tones::of(&light), Err(NotAnalytic));
 }
 
 /// Planted: two paths with known phase slopes and amplitudes over an intensity scan are found as they were put in.

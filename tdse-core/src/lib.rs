@@ -25,6 +25,7 @@ pub mod model;
 pub mod outgoing;
 pub mod potential;
 pub mod problem;
+mod quadrature;
 pub mod quantities;
 pub mod refine;
 pub mod simulate;

@@ -574,13 +574,16 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
-        name: "quantum orbits of a Gaussian pulse",
+        name: "quantum orbits across the joints of a flat top",
         edits: &[
             ("/models", Some(r#"{"quantum_orbits": {}}"#)),
-            ("/field/pulses/0/envelope", Some(r#"{"kind": "gaussian", "fwhm": "6 fs"}"#)),
+            (
+                "/field/pulses/0/envelope",
+                Some(r#"{"kind": "flat_top", "ramp_cycles": 1, "plateau_cycles": 0.3}"#),
+            ),
         ],
         says: &[
-            "/models/quantum_orbits: {} needs a field known at complex times; allowed: a single pulse, sin2 or flat_top, polarized along x, without chirp; at /models try {}",
+            "/models/quantum_orbits: {} cannot be had: the electron of highest energy passes a joint of an envelope, where nothing continues to complex times; allowed: pulses alone: sin2, gaussian, or flat_top with a plateau of more than a cycle, not one beginning within another; at /models try {}",
         ],
     },
     Case {
@@ -590,7 +593,7 @@ pub const CASES: &[Case] = &[
             ("/field/sampled", Some(r#"{"file": "pulse.csv"}"#)),
         ],
         says: &[
-            "/models/quantum_orbits: {} needs a field known at complex times; allowed: a single pulse, sin2 or flat_top, polarized along x, without chirp; at /models try {}",
+            "/models/quantum_orbits: {} cannot be had: a table is known at real times alone, and quantum orbits start at complex ones; allowed: pulses alone: sin2, gaussian, or flat_top with a plateau of more than a cycle, not one beginning within another; at /models try {}",
         ],
     },
     Case {

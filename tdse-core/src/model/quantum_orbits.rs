@@ -3,23 +3,27 @@
 //!
 //! (p+A(t'))² = -2 Ip and (p+A(t))² = 2(Ω - Ip), p = -∫A/(t - t'). Along the first condition the photon energy Ω(t) is an analytic
 //! function of t, and dΩ/dt = 0 where the short and the long orbit meet: the complex cutoff (Pisanty, Ciappina, Lewenstein, J. Phys.
-//! Photonics 2, 034013 (2020)). Both orbits are followed from there.
+//! Photonics 2, 034013 (2020)). Both orbits are followed from there. In two dimensions p, A and E are vectors and products of two of
+//! them are x x' + y y' without conjugation.
 
-mod tones;
+mod continued;
 
-pub use tones::{NotAnalytic, Tones};
+pub use continued::Continued;
 
 use std::f64::consts::PI;
 
 use num_complex::Complex;
 
 use super::strong_field::spreading;
-use super::three_step::Branch;
+use super::three_step::{Branch, Extreme, Return, ThreeStep};
+use crate::field::{Envelope, Field};
 
 type C = Complex<f64>;
 
-/// Times of the classical cutoff after the crest, in units of the phase, rad (17.96° and 252.04°).
-const CLASSICAL: [f64; 2] = [0.313_407_54, 4.398_981_47];
+/// Flight of the classical electron of highest energy, in units of the phase, rad (from 17.96° to 252.04°).
+const FLIGHT: f64 = 4.085_573_93;
+/// Part of the highest return energy by which another electron may return with less and still stand for it.
+const SHORT_OF_HIGHEST: f64 = 0.01;
 /// Newton steps at the most.
 const ITERATIONS: usize = 60;
 /// Part of the cutoff's distance from the threshold by which energies follow each other.
@@ -45,13 +49,29 @@ pub struct Orbit {
     pub contributes: bool,
 }
 
-/// Orbits in one field.
+/// Why a field has no quantum orbits.
+#[derive(Clone, Copy, Debug, PartialEq, thiserror::Error)]
+pub enum NotAnalytic {
+    /// It comes from a table.
+    #[error("a table is known at real times alone, and quantum orbits start at complex ones")]
+    Sampled,
+    /// The orbits of highest energy pass where the field is not analytic.
+    #[error(
+        "the electron of highest energy passes a joint of an envelope, where nothing continues to complex times"
+    )]
+    Joint,
+    /// Nothing returns.
+    #[error("no electron returns in this field")]
+    NoReturn,
+}
+
+/// The orbits around one classical path of highest energy.
 #[derive(Clone, Debug)]
 pub struct QuantumOrbits {
     /// The field.
-    pub tones: Tones,
-    /// Carrier frequency, hartree.
-    pub frequency: f64,
+    pub field: Continued,
+    /// Times of start and return of the classical path, a.u.
+    pub classical: [f64; 2],
     /// Ionization energy, hartree.
     pub ionization_energy: f64,
     /// Number of dimensions, for the spreading.
@@ -79,32 +99,78 @@ struct Curve {
 }
 
 impl QuantumOrbits {
-    /// The cutoff of electrons that start in the half cycle after the field's crest at `crest`, a.u.; `None` where it was not found.
-    pub fn cutoff(&self, crest: f64) -> Option<ComplexCutoff> {
-        let [start, back] = CLASSICAL.map(|phase| C::from(crest + phase / self.frequency));
+    /// The orbits around the electron that classically returns with the highest energy, in `dimensions` dimensions.
+    ///
+    /// # Errors
+    /// [`NotAnalytic`].
+    pub fn highest(field: &Field, ionization_energy: f64, dimensions: u32) -> Result<Self, NotAnalytic> {
+        if field.sampled.is_some() {
+            return Err(NotAnalytic::Sampled);
+        }
+        let model = ThreeStep::new(field);
+        let within = |path: &Return| {
+            let continued = Continued::around(field, path.emission).ok()?;
+            let orbits = Self {
+                field: continued,
+                classical: [path.emission, path.time],
+                ionization_energy,
+                dimensions,
+            };
+            (path.time <= orbits.field.interval()[1]).then_some(orbits)
+        };
+        let highest = model.highest(1, Extreme::Return).ok_or(NotAnalytic::NoReturn)?;
+        if let Some(orbits) = within(&highest) {
+            return Ok(orbits);
+        }
+        let mut others = model.all_returns(1);
+        others.retain(|path| path.energy > (1.0 - SHORT_OF_HIGHEST) * highest.energy);
+        others.sort_by(|a, b| b.energy.total_cmp(&a.energy));
+        others.iter().find_map(within).ok_or(NotAnalytic::Joint)
+    }
+
+    /// Whether [`Self::highest`] finds them: at once where the field has no joint between its ends.
+    ///
+    /// # Errors
+    /// [`NotAnalytic`].
+    pub fn fit(field: &Field) -> Result<(), NotAnalytic> {
+        let joined = field.pulses.iter().any(|pulse| matches!(pulse.envelope, Envelope::FlatTop { .. }));
+        if joined || field.pulses.len() != 1 || field.sampled.is_some() {
+            return Self::highest(field, 0.0, 1).map(|_| ());
+        }
+        Ok(())
+    }
+
+    /// The cutoff; `None` where it was not found.
+    pub fn cutoff(&self) -> Option<ComplexCutoff> {
+        let frequency = self.frequency();
         // From the classical limit on: the root moves smoothly with the ionization energy.
-        let strength = self.tones.field(C::from(crest)).re.abs();
-        let ponderomotive = (strength / (2.0 * self.frequency)).powi(2);
+        let strength = self.field.field(C::from(self.classical[0])).map(|part| part.re);
+        let strength = strength[0].hypot(strength[1]);
+        let ponderomotive = (strength / (2.0 * frequency)).powi(2);
         let first = (1e-3 * ponderomotive).min(self.ionization_energy);
         let count = ((self.ionization_energy / first).ln() / 0.3).ceil().max(1.0);
-        let mut at = [start, back];
+        let mut at = self.classical.map(C::from);
         at[0] += C::i() * (2.0 * first).sqrt() / strength;
         for n in 0..=count as usize {
             let energy = first * (self.ionization_energy / first).powf(n as f64 / count);
             let here = Self { ionization_energy: energy, ..self.clone() };
             at = here.stationary(at)?;
         }
-        let step = 1e-3 / self.frequency;
+        let step = 1e-3 / frequency;
         let here = self.curve(at[1], at[0])?;
         let [before, after] = [-step, step].map(|h| self.curve(at[1] + h, at[0]).map(|c| c.slope));
         let curvature = (after? - before?) / (2.0 * step);
         Some(ComplexCutoff { energy: here.energy, emission: at[0], time: at[1], curvature })
     }
 
-    /// Short and long orbit at photon energies `energies` (above the ionization energy, hartree) for the half cycle after `crest`;
-    /// `None` where an orbit was lost.
-    pub fn orbits(&self, crest: f64, energies: &[f64]) -> [Vec<Option<Orbit>>; 2] {
-        let Some(cutoff) = self.cutoff(crest) else {
+    /// Frequency of light whose classical path of highest energy flies as long: the scale of steps in time.
+    fn frequency(&self) -> f64 {
+        FLIGHT / (self.classical[1] - self.classical[0])
+    }
+
+    /// Short and long orbit at photon energies `energies` (above the ionization energy, hartree); `None` where an orbit was lost.
+    pub fn orbits(&self, energies: &[f64]) -> [Vec<Option<Orbit>>; 2] {
+        let Some(cutoff) = self.cutoff() else {
             return [vec![None; energies.len()], vec![None; energies.len()]];
         };
         // Of both roots the one that returns earlier below the cutoff is the short orbit.
@@ -153,12 +219,12 @@ impl QuantumOrbits {
             emission = here.emission;
             let mut change = (here.energy - energy) / here.slope;
             // No further than a tenth of a radian at once.
-            let limit = 0.1 / self.frequency;
+            let limit = 0.1 / self.frequency();
             if change.norm() > limit {
                 change *= limit / change.norm();
             }
             time -= change;
-            if change.norm() < 1e-12 / self.frequency {
+            if change.norm() < 1e-12 / self.frequency() {
                 return Some((time, emission));
             }
         }
@@ -167,9 +233,12 @@ impl QuantumOrbits {
 
     fn orbit(&self, energy: f64, emission: C, time: C, branch: Branch) -> Orbit {
         let tau = time - emission;
-        let [v0, v] = self.velocities(emission, time);
-        let (e0, e) = (self.tones.field(emission), self.tones.field(time));
-        let determinant = v * (v / tau + e) * v0 * (v0 / tau - e0) - (v * v0 / tau).powi(2);
+        let [start, back] = self.at(emission, time);
+        let mixed = dot(back.velocity, start.velocity) / tau;
+        let twice = [dot(start.velocity, start.velocity), dot(back.velocity, back.velocity)];
+        let determinant = (twice[1] / tau + dot(back.velocity, back.field))
+            * (twice[0] / tau - dot(start.velocity, start.field))
+            - mixed * mixed;
         let action = self.action(energy, emission, time);
         let spread = spreading(self.dimensions, 1.0, 0.0) * tau.powf(-0.5 * f64::from(self.dimensions));
         let amplitude = spread * C::new(0.0, 2.0 * PI) / determinant.sqrt() * (C::i() * action).exp();
@@ -179,34 +248,42 @@ impl QuantumOrbits {
     fn action(&self, energy: f64, emission: C, time: C) -> C {
         let tau = time - emission;
         let p = self.momentum(emission, time);
-        let quiver = self.tones.square_integral(time) - self.tones.square_integral(emission);
-        time * energy - 0.5 * (quiver - p * p * tau) - tau * self.ionization_energy
+        let quiver = self.field.square_integral(time) - self.field.square_integral(emission);
+        time * energy - 0.5 * (quiver - dot(p, p) * tau) - tau * self.ionization_energy
     }
 
-    fn momentum(&self, emission: C, time: C) -> C {
-        -(self.tones.integral(time) - self.tones.integral(emission)) / (time - emission)
+    /// p of the orbit between two times.
+    pub fn momentum(&self, emission: C, time: C) -> [C; 2] {
+        let (from, to) = (self.field.integral(emission), self.field.integral(time));
+        [0, 1].map(|d| -(to[d] - from[d]) / (time - emission))
     }
 
-    /// p + A at the start and at the return.
-    fn velocities(&self, emission: C, time: C) -> [C; 2] {
+    /// p + A and E at the start and at the return.
+    fn at(&self, emission: C, time: C) -> [End; 2] {
         let p = self.momentum(emission, time);
-        [emission, time].map(|t| p + self.tones.potential(t))
+        [emission, time].map(|t| {
+            let a = self.field.potential(t);
+            End { velocity: [p[0] + a[0], p[1] + a[1]], field: self.field.field(t) }
+        })
     }
 
     /// Solves the first condition for t' at a given t, from a guess.
     fn curve(&self, time: C, mut emission: C) -> Option<Curve> {
+        let frequency = self.frequency();
         for _ in 0..ITERATIONS {
-            let [v0, _] = self.velocities(emission, time);
-            let slope = v0 * (v0 / (time - emission) - self.tones.field(emission));
-            let change = (0.5 * v0 * v0 + self.ionization_energy) / slope;
+            let [start, _] = self.at(emission, time);
+            let twice = dot(start.velocity, start.velocity);
+            let slope = twice / (time - emission) - dot(start.velocity, start.field);
+            let change = (0.5 * twice + self.ionization_energy) / slope;
             emission -= change;
-            if change.norm() < 1e-13 / self.frequency {
-                let [v0, v] = self.velocities(emission, time);
+            if change.norm() < 1e-13 / frequency {
+                let [start, back] = self.at(emission, time);
                 let tau = time - emission;
-                let (e0, e) = (self.tones.field(emission), self.tones.field(time));
-                let moves = v / tau / (v0 / tau - e0); // dt'/dt
-                let slope = v * (v0 / tau * moves - v / tau - e);
-                return Some(Curve { emission, energy: 0.5 * v * v + self.ionization_energy, slope });
+                let (mixed, twice) = (dot(back.velocity, start.velocity), dot(back.velocity, back.velocity));
+                let own = dot(start.velocity, start.velocity) / tau - dot(start.velocity, start.field);
+                // dt'/dt = (v·v'/τ)/own
+                let slope = mixed * mixed / (tau * tau * own) - twice / tau - dot(back.velocity, back.field);
+                return Some(Curve { emission, energy: 0.5 * twice + self.ionization_energy, slope });
             }
         }
         None
@@ -214,7 +291,8 @@ impl QuantumOrbits {
 
     /// Secant method for dΩ/dt = 0, from guesses of t' and t.
     fn stationary(&self, [mut emission, time]: [C; 2]) -> Option<[C; 2]> {
-        let mut old = time + 1e-3 / self.frequency;
+        let frequency = self.frequency();
+        let mut old = time + 1e-3 / frequency;
         let mut new = time;
         let first = self.curve(old, emission)?;
         let mut at_old = first.slope;
@@ -223,11 +301,22 @@ impl QuantumOrbits {
             emission = here.emission;
             let change = here.slope * (new - old) / (here.slope - at_old);
             (old, at_old) = (new, here.slope);
-            if change.norm() < 1e-12 / self.frequency || here.slope == C::default() {
+            if change.norm() < 1e-12 / frequency || here.slope == C::default() {
                 return Some([emission, new]);
             }
             new -= change;
         }
         None
     }
+}
+
+/// p + A and E at either end of an orbit.
+struct End {
+    velocity: [C; 2],
+    field: [C; 2],
+}
+
+/// x x' + y y'.
+fn dot(a: [C; 2], b: [C; 2]) -> C {
+    a[0] * b[0] + a[1] * b[1]
 }

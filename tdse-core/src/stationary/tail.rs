@@ -3,6 +3,7 @@
 use num_complex::Complex;
 
 use crate::potential::Potential;
+use crate::quadrature::gauss_6;
 
 /// V = -Z/√(r²+a²) far from the atom; Z = 0 for a short-range potential.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -52,9 +53,7 @@ impl Tail {
         // ∫ (p - q) dr over u, where r₀/r = u² - c and p = √(2Z/r₀) u, so that no root is left: c = k² r₀/2Z.
         let c = 0.5 * k * k * r / self.charge;
         let (first, last) = (c.sqrt(), (1.0 + c).sqrt());
-        let rest: f64 = GAUSS_6
-            .iter()
-            .flat_map(|&(node, weight)| [(0.5 + node, weight), (0.5 - node, weight)])
+        let rest: f64 = gauss_6()
             .map(|(at, weight)| {
                 let u = first + (last - first) * at;
                 let s = (u - first) * (u + first);
@@ -92,13 +91,6 @@ impl Tail {
         q
     }
 }
-
-/// Positive nodes on [-½, ½] and weights of six-point Gauss–Legendre quadrature (Abramowitz, Stegun, table 25.4).
-const GAUSS_6: [(f64, f64); 3] = [
-    (0.5 * 0.238_619_186_083_196_9, 0.5 * 0.467_913_934_572_691_04),
-    (0.5 * 0.661_209_386_466_264_5, 0.5 * 0.360_761_573_048_138_6),
-    (0.5 * 0.932_469_514_203_152, 0.5 * 0.171_324_492_379_170_35),
-];
 
 /// Coefficients c_n of Σ c_n (r - r₀)ⁿ, n < 8.
 #[derive(Clone, Copy, Debug, PartialEq)]

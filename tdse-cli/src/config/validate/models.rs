@@ -3,7 +3,7 @@
 use tdse_core::field::Field;
 use tdse_core::model::curve::Curve;
 use tdse_core::model::metrics::Tolerance;
-use tdse_core::model::quantum_orbits::Tones;
+use tdse_core::model::quantum_orbits::QuantumOrbits;
 
 use super::Check;
 use crate::config::complaint::Fix;
@@ -68,13 +68,12 @@ fn unfit(model: &Model, written: &raw::Configuration, field: &Field) -> Option<(
         Model::Recombination | Model::QuantumOrbits if !harmonics => {
             Some((reason("has no use without outputs.harmonics"), "that output, or the key left out"))
         }
-        Model::QuantumOrbits => match (&field.pulses[..], &field.sampled) {
-            ([pulse], None) if Tones::of(pulse).is_ok() => None,
-            _ => Some((
-                reason("needs a field known at complex times"),
-                "a single pulse, sin2 or flat_top, polarized along x, without chirp",
-            )),
-        },
+        Model::QuantumOrbits => QuantumOrbits::fit(field).err().map(|error| {
+            (
+                format!("cannot be had: {error}"),
+                "pulses alone: sin2, gaussian, or flat_top with a plateau of more than a cycle, not one beginning within another",
+            )
+        }),
         _ => None,
     }
 }

@@ -2,7 +2,7 @@
 
 use ndarray::Array2;
 use tdse_core::field::Pulse;
-use tdse_core::model::quantum_orbits::{Orbit, QuantumOrbits, Tones};
+use tdse_core::model::quantum_orbits::{Orbit, QuantumOrbits};
 use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep};
 
 use super::{Run, electronvolts, own};
@@ -15,8 +15,6 @@ const RETURNS: usize = 3;
 const PER_PERIOD: f64 = 100.0;
 /// Most starts.
 const MOST: f64 = 20_000.0;
-/// Phase after its crest at which the electron of largest return energy starts in a long pulse, rad (17.96°).
-const START: f64 = 0.313_407_54;
 
 fn branch(branch: Branch) -> i64 {
     match branch {
@@ -56,24 +54,17 @@ pub(super) fn three_step(contents: &mut Contents, run: &Run) {
     contents.insert(&comparison, "rescattering_limit", ev(scattered));
 }
 
-/// Both orbits of the crest that gives the highest classical return energy.
+/// Both orbits around the classical path of highest return energy.
 pub(super) fn quantum_orbits(contents: &mut Contents, run: &Run) -> Result<(), String> {
     let Some(full) = &run.spectrum else { return Ok(()) };
-    let pulse = &run.field.pulses[0];
-    let model = QuantumOrbits {
-        tones: Tones::of(pulse).map_err(|error| error.to_string())?,
-        frequency: pulse.frequency,
-        ionization_energy: run.ground.ionization_energy,
-        dimensions: 1,
-    };
-    let highest = ThreeStep::new(run.field).highest(1, Extreme::Return);
-    let crest = highest.map_or(pulse.centre, |path| path.emission - START / pulse.frequency);
-    let cutoff = model.cutoff(crest).map_or(f64::NAN, |cutoff| electronvolts(cutoff.energy.re));
+    let (ip, dimensions) = (run.ground.ionization_energy, 1);
+    let model = QuantumOrbits::highest(run.field, ip, dimensions).map_err(|error| error.to_string())?;
+    let cutoff = model.cutoff().map_or(f64::NAN, |cutoff| electronvolts(cutoff.energy.re));
     contents.insert(&own("quantum_orbits"), "cutoff_energy", cutoff);
     // Orders above the ionization energy: below it nothing classical returns.
-    let first = (model.ionization_energy / full.photon) as usize + 1;
+    let first = (ip / full.photon) as usize + 1;
     let energies: Vec<f64> = (first..=full.orders).map(|order| order as f64 * full.photon).collect();
-    let orbits = model.orbits(crest, &energies);
+    let orbits = model.orbits(&energies);
     let over = |value: &dyn Fn(&Orbit) -> f64| {
         let at = |(o, i): (usize, usize)| {
             let orbit = (i + 1).checked_sub(first).and_then(|k| orbits[o].get(k)?.as_ref());
