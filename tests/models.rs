@@ -148,6 +148,91 @@ fn orbits_of_a_chirped_gaussian_pulse_with_a_second_colour() {
     assert!(times.iter().filter(|time| time.is_finite()).count() > 20, "{times:?}");
 }
 
+/// A box and a grid far too coarse for results, fine for the laws below.
+const SMALL: [&str; 6] = [
+    "/numerics/spacing=0.8 bohr",
+    "/numerics/extent=120 bohr",
+    "/numerics/time_step=0.2 au",
+    "/numerics/absorber={\"kind\": \"smooth\", \"width\": \"25 bohr\"}",
+    "/numerics/allow_inadequate=true",
+    "/field/pulses/0/wavelength=500 nm",
+];
+
+/// Every model in two dimensions: on the axes of the full run, by component and helicity, in the same pictures; linear light along x has
+/// no y.
+#[test]
+fn every_model_in_two_dimensions() {
+    let folder = tempfile::tempdir().unwrap();
+    let models = r#"/models={"three_step": {}, "strong_field": {"depletion": true}, "quantum_orbits": {}, "tunnelling": {},
+        "perturbation": {}, "recombination": {}}"#;
+    let result = |name: &str, more: &[&str]| {
+        let sets: Vec<&str> = SMALL.iter().chain(more).chain([&models]).copied().collect();
+        let out = folder.path().join(name);
+        let ran = tdse("run", &shipped("circular.json"), &out, &sets);
+        for picture in ["model_spectra.png", "ionization.png"] {
+            assert!(out.join("report").join(picture).is_file(), "{picture}");
+        }
+        ran.result()
+    };
+    let elliptical = result("elliptical", &["/field/pulses/0/ellipticity=0.3"]);
+    let linear = result("linear", &["/field/pulses/0/ellipticity=0"]);
+    for full in [&elliptical, &linear] {
+        for model in ["strong_field", "recombination"] {
+            for group in [
+                "harmonics/component",
+                "harmonics/photon_energy",
+                "harmonics/helicity",
+                "harmonic_yields/helicity",
+            ] {
+                let (group, axis) = group.split_once('/').unwrap();
+                let own = format!("models/{model}/{group}");
+                assert!(full.get(group, axis).is_some(), "{group}/{axis}");
+                assert_eq!(full.get(group, axis), full.get(&own, axis), "{own}/{axis}");
+            }
+            let yields = numbers(full, &format!("models/{model}/harmonic_yields"), "yield");
+            let both = numbers(full, &format!("models/{model}/harmonic_yields"), "helicity_yield");
+            let (plus, minus) = both.split_at(yields.len());
+            for ((y, p), m) in yields.iter().zip(plus).zip(minus).filter(|((y, _), _)| y.is_finite()) {
+                assert!((p + m - y).abs() < 1e-9 * y, "{p:e} and {m:e} are not {y:e}");
+            }
+        }
+        for group in [
+            "momentum/momentum_x",
+            "momentum/momentum_y",
+            "photoelectrons/energy",
+            "photoelectrons/emission_angle",
+        ] {
+            let (group, axis) = group.split_once('/').unwrap();
+            let own = format!("models/strong_field/{group}");
+            assert!(
+                full.get(group, axis).is_some() && full.get(group, axis) == full.get(&own, axis),
+                "{own}/{axis}"
+            );
+        }
+        for (model, number) in [
+            ("three_step", "cutoff_energy"),
+            ("quantum_orbits", "cutoff_energy"),
+            ("strong_field", "electron_yield_ratio"),
+            ("perturbation", "electron_yield_ratio"),
+            ("perturbation", "ionization_ratio"),
+            ("tunnelling", "ionization_ratio"),
+        ] {
+            let value = of(full, model, number)[0];
+            println!("{model} {number}: {value}");
+            assert!(value.is_finite() && value > 0.0, "{model}/{number}: {value}");
+        }
+    }
+    // A short-range atom lets electrons go directly: the model's yield is about right (bounds invented by us).
+    let ratio = of(&linear, "strong_field", "electron_yield_ratio")[0];
+    assert!((0.3..3.0).contains(&ratio), "{ratio}");
+    let spectrum = numbers(&linear, "models/strong_field/harmonics", "spectrum");
+    let (x, y) = spectrum.split_at(spectrum.len() / 2);
+    let largest = x.iter().copied().filter(|v| v.is_finite()).fold(0.0, f64::max);
+    assert!(largest > 0.0 && y.iter().all(|v| v.is_nan() || *v < 1e-20 * largest));
+    let [straight, bent] = [&linear, &elliptical].map(|full| of(full, "quantum_orbits", "cutoff_energy")[0]);
+    assert!((bent / straight - 1.0).abs() < 0.2, "{straight} and {bent} eV");
+}
+
 /// Bars of the full result come into the comparison, and the repeated runs do without models.
 #[test]
 fn comparisons_get_the_bars_of_the_full_result() {

@@ -564,13 +564,25 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
-        name: "strong field in two dimensions",
+        name: "strong field from a state of a parity",
         edits: &[
             ("/models", Some(r#"{"three_step": {}, "strong_field": {}}"#)),
             ("/atom/dimensions", Some("2")),
+            ("/atom/state", Some(r#"{"kind": "single", "parity_x": "odd", "parity_y": "even"}"#)),
         ],
         says: &[
-            r#"/models/strong_field: {} is a model that is not there in two dimensions; allowed: three_step and curve in two dimensions; every model in one; at /models try {"three_step":{}}"#,
+            r#"/models/strong_field: {} starts from one angular momentum, and /atom/state is named by its parity; allowed: three_step, quantum_orbits and curve beside this state; every model beside one of angular momentum 0; at /models try {"three_step":{}}"#,
+        ],
+    },
+    Case {
+        name: "recombination to a state that turns",
+        edits: &[
+            ("/models", Some(r#"{"recombination": {}}"#)),
+            ("/atom/dimensions", Some("2")),
+            ("/atom/state", Some(r#"{"kind": "single", "angular_momentum": 1}"#)),
+        ],
+        says: &[
+            "/models/recombination: {} needs a state that is the same in all directions, and /atom/state has angular momentum 1; allowed: the key beside a state of angular momentum 0; every other model beside this one; at /models try {}",
         ],
     },
     Case {

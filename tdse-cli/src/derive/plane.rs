@@ -14,7 +14,7 @@ use super::electronvolts;
 use super::recorded::Finished;
 use crate::store::Contents;
 
-/// Angles at which the angular distribution is written.
+/// Their number.
 const ANGLES: usize = 180;
 
 /// Puts the electrons in, with `bound` the population of all bound states.
@@ -24,21 +24,8 @@ pub(super) fn electrons(contents: &mut Contents, finished: &Finished, axis: Ener
     let job = &point.job;
     let map = MomentumMap::new(collector, &outgoing.map);
 
-    let energies = axis.values();
-    let spectrum = map.energy_spectrum(&energies);
-    let group = "photoelectrons";
-    contents.insert(group, "energy", energies.iter().map(|&e| electronvolts(e)).collect::<Vec<_>>());
-    contents.insert(group, "yield", spectrum.iter().map(|y| y / HARTREE_EV).collect::<Vec<_>>());
-    let last = axis.step * (axis.points - 1) as f64;
-    let angles: Vec<f64> = (0..ANGLES).map(|n| 2.0 * PI * n as f64 / ANGLES as f64).collect();
-    let distribution = map.angular_distribution(&angles, [0.0, last]);
-    contents.insert(group, "emission_angle", angles);
-    contents.insert(group, "angular_distribution", distribution);
-    contents.remark(group, "method", ElectronMethod::OutgoingAmplitude.name());
-    momenta(contents, &map, last);
-
-    let inner: f64 = spectrum.iter().sum();
-    let total = axis.step * (inner - 0.5 * (spectrum[0] + spectrum[axis.points - 1]));
+    let total = spectra(contents, "", &map, axis);
+    contents.remark("photoelectrons", "method", ElectronMethod::OutgoingAmplitude.name());
     contents.insert("summary", "electron_yield", total);
     contents.insert("summary", "unaccounted_probability", 1.0 - bound - total);
     contents.insert("summary", "electron_method", ElectronMethod::OutgoingAmplitude as i64);
@@ -49,8 +36,31 @@ pub(super) fn electrons(contents: &mut Contents, finished: &Finished, axis: Ener
     contents.insert("summary", "coulomb_sideband", left.sideband);
 }
 
+/// Puts energy spectrum, angular distribution and density of a map in, in the groups of this name after `prefix`; the probability of
+/// an electron within the axis.
+pub(super) fn spectra(contents: &mut Contents, prefix: &str, map: &MomentumMap, axis: EnergyAxis) -> f64 {
+    let energies = axis.values();
+    let spectrum = map.energy_spectrum(&energies);
+    let group = &format!("{prefix}photoelectrons");
+    contents.insert(group, "energy", energies.iter().map(|&e| electronvolts(e)).collect::<Vec<_>>());
+    contents.insert(group, "yield", spectrum.iter().map(|y| y / HARTREE_EV).collect::<Vec<_>>());
+    let last = axis.step * (axis.points - 1) as f64;
+    let angles = emission_angles();
+    let distribution = map.angular_distribution(&angles, [0.0, last]);
+    contents.insert(group, "emission_angle", angles);
+    contents.insert(group, "angular_distribution", distribution);
+    momenta(contents, &format!("{prefix}momentum"), map, last);
+    let inner: f64 = spectrum.iter().sum();
+    axis.step * (inner - 0.5 * (spectrum[0] + spectrum[axis.points - 1]))
+}
+
+/// Angles at which angular distributions are written, rad.
+pub(super) fn emission_angles() -> Vec<f64> {
+    (0..ANGLES).map(|n| 2.0 * PI * n as f64 / ANGLES as f64).collect()
+}
+
 /// The density over final momenta, on the momenta of the map as far as the energies go.
-fn momenta(contents: &mut Contents, map: &MomentumMap, largest_energy: f64) {
+fn momenta(contents: &mut Contents, group: &str, map: &MomentumMap, largest_energy: f64) {
     let largest = (2.0 * largest_energy).sqrt() * (1.0 + 1e-9);
     let kept = |d: usize| -> Vec<f64> {
         map.momenta[d].iter().copied().filter(|k: &f64| k.abs() <= largest).collect()
@@ -60,7 +70,7 @@ fn momenta(contents: &mut Contents, map: &MomentumMap, largest_energy: f64) {
     let density = Array2::from_shape_fn((y.len(), x.len()), |(j, i)| {
         map.density[(j + first) * map.momenta[0].len() + i + first]
     });
-    contents.insert("momentum", "momentum_y", y);
-    contents.insert("momentum", "momentum_x", x);
-    contents.insert("momentum", "density", density);
+    contents.insert(group, "momentum_y", y);
+    contents.insert(group, "momentum_x", x);
+    contents.insert(group, "density", density);
 }

@@ -16,7 +16,7 @@ use crate::store::{Contents, Values};
 const DERIVED: [&str; 3] = ["harmonics", "harmonic_yields", "time_frequency"];
 
 /// Helicities in the order of their axis, with their numbers.
-const HELICITIES: [(Helicity, i64); 2] = [(Helicity::Positive, 1), (Helicity::Negative, -1)];
+pub(super) const HELICITIES: [(Helicity, i64); 2] = [(Helicity::Positive, 1), (Helicity::Negative, -1)];
 
 const FILLED: &str = "defaults are filled in before a point runs";
 
@@ -78,14 +78,13 @@ fn spectrum(
     contents.insert(group, "spectrum", rows(spectra));
     contents.insert(group, "spectral_phase", rows(found.iter().map(Harmonics::phase).collect()));
     if let Ok(components) = <[Harmonics; 2]>::try_from(found) {
-        polarization(contents, &PlaneHarmonics { components });
+        polarization(contents, group, &PlaneHarmonics { components });
     }
     contents.remark(group, "window", wanted.window.name());
 }
 
 /// Spectra per helicity, ellipticity and orientation.
-fn polarization(contents: &mut Contents, found: &PlaneHarmonics) {
-    let group = "harmonics";
+pub(super) fn polarization(contents: &mut Contents, group: &str, found: &PlaneHarmonics) {
     let spectra = HELICITIES.map(|(helicity, _)| found.helicity(helicity).spectrum());
     contents.insert(group, "helicity", HELICITIES.map(|(_, number)| number).to_vec());
     contents.insert(group, "helicity_spectrum", rows(spectra.to_vec()));
@@ -94,7 +93,7 @@ fn polarization(contents: &mut Contents, found: &PlaneHarmonics) {
 }
 
 /// One series as it is, several below one another.
-fn rows(series: Vec<Vec<f64>>) -> Values {
+pub(super) fn rows(series: Vec<Vec<f64>>) -> Values {
     match <[Vec<f64>; 1]>::try_from(series) {
         Ok([only]) => only.into(),
         Err(several) => {

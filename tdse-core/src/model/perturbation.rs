@@ -1,5 +1,9 @@
 //! Perturbation theory for weak or extreme-ultraviolet fields: ionization by one photon, and two resonant levels.
 
+mod plane;
+
+pub use plane::PlaneOnePhoton;
+
 use std::f64::consts::PI;
 
 use num_complex::Complex;
@@ -27,7 +31,7 @@ pub fn one_photon(
 ) -> ContinuumAmplitude {
     let fastest = momenta.iter().fold(0.0, |m: f64, &k| m.max(k));
     let highest = 0.5 * fastest * fastest + ground.ionization_energy;
-    let step = (2.0 * PI / SAMPLES / highest).min(sampling(field));
+    let step = steps(highest).min(sampling(field));
     let schedule = Schedule::new(field, step, 0.0);
     let samples: Vec<f64> = schedule.times().into_iter().map(|t| field.electric_field(t)[0]).collect();
     let amplitudes = momenta.iter().map(|&k| {
@@ -38,6 +42,11 @@ pub fn one_photon(
     });
     let (left, right) = amplitudes.unzip();
     ContinuumAmplitude { momenta, left, right }
+}
+
+/// A time step that resolves a transition.
+fn steps(highest: f64) -> f64 {
+    2.0 * PI / SAMPLES / highest
 }
 
 /// ∫E(t) e^{iωt} dt by the trapezoidal rule: E is smooth and zero at both ends.

@@ -4,7 +4,8 @@
 //! (p+A(t'))² = -2 Ip and (p+A(t))² = 2(Ω - Ip), p = -∫A/(t - t'). Along the first condition the photon energy Ω(t) is an analytic
 //! function of t, and dΩ/dt = 0 where the short and the long orbit meet: the complex cutoff (Pisanty, Ciappina, Lewenstein, J. Phys.
 //! Photonics 2, 034013 (2020)). Both orbits are followed from there. In two dimensions p, A and E are vectors and products of two of
-//! them are x x' + y y' without conjugation.
+//! them are x x' + y y' without conjugation; there the orbits of the field's part along its strongest direction come first, and then
+//! the rest of it grows.
 
 mod continued;
 
@@ -16,12 +17,15 @@ use num_complex::Complex;
 
 use super::strong_field::spreading;
 use super::three_step::{Branch, Extreme, Return, ThreeStep};
-use crate::field::{Envelope, Field};
+use crate::field::{Envelope, Field, Pulse};
+use crate::quantities::field_shape;
 
 type C = Complex<f64>;
 
 /// Flight of the classical electron of highest energy, in units of the phase, rad (from 17.96° to 252.04°).
 const FLIGHT: f64 = 4.085_573_93;
+/// Steps in which the part of the field across its strongest direction grows.
+const WIDER: u32 = 20;
 /// Part of the highest return energy by which another electron may return with less and still stand for it.
 const SHORT_OF_HIGHEST: f64 = 0.01;
 /// Newton steps at the most.
@@ -70,7 +74,9 @@ pub enum NotAnalytic {
 pub struct QuantumOrbits {
     /// The field.
     pub field: Continued,
-    /// Times of start and return of the classical path, a.u.
+    /// Unit vector along which it is strongest.
+    pub direction: [f64; 2],
+    /// Times of start and return of the classical path in its part along that direction, a.u.
     pub classical: [f64; 2],
     /// Ionization energy, hartree.
     pub ionization_energy: f64,
@@ -107,11 +113,14 @@ impl QuantumOrbits {
         if field.sampled.is_some() {
             return Err(NotAnalytic::Sampled);
         }
-        let model = ThreeStep::new(field);
+        let peak = field.electric_field(field_shape(field).peak_time);
+        let angle = peak[1].atan2(peak[0]);
+        let model = ThreeStep::new(&part_along(field, angle));
         let within = |path: &Return| {
             let continued = Continued::around(field, path.emission).ok()?;
             let orbits = Self {
                 field: continued,
+                direction: [angle.cos(), angle.sin()],
                 classical: [path.emission, path.time],
                 ionization_energy,
                 dimensions,
@@ -151,10 +160,17 @@ impl QuantumOrbits {
         let count = ((self.ionization_energy / first).ln() / 0.3).ceil().max(1.0);
         let mut at = self.classical.map(C::from);
         at[0] += C::i() * (2.0 * first).sqrt() / strength;
+        let squeezed = |part: f64| Self { field: self.field.squeezed(self.direction, part), ..self.clone() };
+        let straight = squeezed(0.0);
         for n in 0..=count as usize {
             let energy = first * (self.ionization_energy / first).powf(n as f64 / count);
-            let here = Self { ionization_energy: energy, ..self.clone() };
+            let here = Self { ionization_energy: energy, ..straight.clone() };
             at = here.stationary(at)?;
+        }
+        if straight.field != self.field {
+            for n in 1..=WIDER {
+                at = squeezed(f64::from(n) / f64::from(WIDER)).stationary(at)?;
+            }
         }
         let step = 1e-3 / frequency;
         let here = self.curve(at[1], at[0])?;
@@ -308,6 +324,24 @@ impl QuantumOrbits {
         }
         None
     }
+}
+
+/// The part along `angle` of pulses, turned to x: of A = a f (-sin Φ, ε cos Φ) along an angle β to the major axis it is
+/// -a ρ f sin(Φ - χ), ρ e^{iχ} = cos β + iε sin β.
+fn part_along(field: &Field, angle: f64) -> Field {
+    let pulses = field.pulses.iter().map(|pulse| {
+        let s = 1.0 / (1.0 + pulse.ellipticity.powi(2)).sqrt();
+        let (sin, cos) = (angle - pulse.angle).sin_cos();
+        let part = C::new(cos, pulse.ellipticity * sin);
+        Pulse {
+            peak_field: pulse.peak_field * s * part.norm(),
+            phase: pulse.phase - part.arg(),
+            ellipticity: 0.0,
+            angle: 0.0,
+            ..*pulse
+        }
+    });
+    Field { pulses: pulses.collect(), sampled: None }
 }
 
 /// p + A and E at either end of an orbit.

@@ -7,7 +7,7 @@ use num_complex::Complex;
 
 use super::strong_field::Ground;
 use crate::spectrum::Harmonics;
-use crate::stationary::{ScatteringStates, transition_dipole};
+use crate::stationary::{RoundTransitions, ScatteringStates, transition_dipole};
 
 /// ⟨n|x|ψ⁺_k⟩/⟨n|x|k⟩, exact over plane wave, of electrons that come in with momentum k > 0, mean over both directions; they are the same for a
 /// symmetric atom.
@@ -29,14 +29,22 @@ pub fn recombination_ratio(states: &ScatteringStates, ground: &Ground, k: f64) -
 /// # Panics
 /// If the state does not have the length of the axis that `states` were made for.
 pub fn recombined(harmonics: &Harmonics, states: &ScatteringStates, ground: &Ground) -> Harmonics {
+    scaled(harmonics, ground.ionization_energy, |k| recombination_ratio(states, ground, k))
+}
+
+/// The same of either component in two dimensions, for a level without angular momentum: its dipole is along the returning momentum.
+///
+/// # Panics
+/// As [`RoundTransitions::recombination_ratio`].
+pub fn recombined_on_plane(harmonics: &Harmonics, transitions: &RoundTransitions) -> Harmonics {
+    scaled(harmonics, -transitions.energy(), |k| transitions.recombination_ratio(k))
+}
+
+fn scaled(harmonics: &Harmonics, ionization_energy: f64, ratio: impl Fn(f64) -> Complex<f64>) -> Harmonics {
     let energies = harmonics.axis.values();
     let amplitude = harmonics.amplitude.iter().zip(energies).map(|(a, energy)| {
-        let kinetic = energy - ground.ionization_energy;
-        if kinetic > 0.0 {
-            a * recombination_ratio(states, ground, (2.0 * kinetic).sqrt())
-        } else {
-            Complex::default()
-        }
+        let kinetic = energy - ionization_energy;
+        if kinetic > 0.0 { a * ratio((2.0 * kinetic).sqrt()) } else { Complex::default() }
     });
     Harmonics { axis: harmonics.axis, amplitude: amplitude.collect() }
 }

@@ -14,7 +14,7 @@ mod stationary;
 pub use bare::{Ground, LineDipole, PlaneDipole};
 pub use line::StrongField;
 pub use plane::PlaneElectrons;
-pub use stationary::{Bare, Stationary, spreading};
+pub use stationary::{Bare, Round, Stationary, spreading};
 
 use crate::simulate::Schedule;
 
@@ -48,7 +48,12 @@ impl DipoleSeries {
 
     /// The acceleration along x, for [`harmonics`](crate::spectrum::harmonics()).
     pub fn along_x(&self) -> Vec<f64> {
-        self.acceleration.iter().map(|a| a[0]).collect()
+        self.along(0)
+    }
+
+    /// The acceleration along axis 0 (x) or 1 (y).
+    pub fn along(&self, axis: usize) -> Vec<f64> {
+        self.acceleration.iter().map(|a| a[axis]).collect()
     }
 }
 

@@ -2,10 +2,12 @@
 
 mod atoms;
 mod gamma;
+mod polarizability;
 mod quasi_static;
 mod resonance;
 
 pub use atoms::{Orbital, PptSum, keldysh_exponent};
+pub use polarizability::polarizability;
 pub use quasi_static::{Asymptotic, QuasiStatic, Stark};
 pub use resonance::{Resonance, resonance, resonances};
 

@@ -118,6 +118,18 @@ impl RadialMesh {
         Self::through(radii, potential, m, Variable::Radius, start)
     }
 
+    /// From the centre to `far`, near the centre uniform in ln r and then in r, in intervals of `longest` or less.
+    pub(super) fn outward(potential: &Potential, m: u32, far: f64, longest: f64) -> Self {
+        let mut mesh = Self::inner(potential, m, 1.0 / 32.0);
+        let near = meeting_radius(potential, m);
+        let count = ((far - near) / longest).ceil().max(1.0) as usize;
+        let radii = (0..=count).map(|i| near + (far - near) * i as f64 / count as f64).collect();
+        let outside = Self::through(radii, potential, m, Variable::Radius, mesh.start);
+        mesh.radii.extend(&outside.radii[1..]);
+        mesh.intervals.extend(outside.intervals);
+        mesh
+    }
+
     fn through(radii: Vec<f64>, potential: &Potential, m: u32, variable: Variable, start: Start) -> Self {
         let intervals =
             radii.windows(2).map(|pair| Interval::new(potential, m, pair[0], pair[1], variable)).collect();
@@ -143,7 +155,7 @@ impl RadialMesh {
     }
 
     /// (r, R, slope along the integration) at every node, R rescaled on the way so that it neither over- nor underflows.
-    fn solution(&self, energy: f64) -> Vec<[f64; 3]> {
+    pub(super) fn solution(&self, energy: f64) -> Vec<[f64; 3]> {
         let mut y = self.first(energy);
         let mut out = vec![[self.radii[0], y[0], y[1]]];
         for (interval, r) in self.intervals.iter().zip(&self.radii[1..]) {
@@ -188,6 +200,11 @@ impl RadialFunction {
             n[1] /= norm.sqrt();
             n[2] /= norm.sqrt();
         }
+        Self { nodes, m: m as i32 }
+    }
+
+    /// R through nodes (r, R, R') of rising r, of angular momentum ±`m`.
+    pub(super) fn through(nodes: Vec<[f64; 3]>, m: u32) -> Self {
         Self { nodes, m: m as i32 }
     }
 

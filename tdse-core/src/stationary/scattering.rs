@@ -9,12 +9,13 @@
 mod mesh;
 
 pub use mesh::NoContinuum;
+pub(super) use mesh::free_from;
 
 use std::f64::consts::PI;
 
 use num_complex::Complex;
 
-use mesh::{free_from, mesh_through};
+use mesh::mesh_through;
 
 use super::magnus::Interval;
 use super::tail::{Tail, Wave};

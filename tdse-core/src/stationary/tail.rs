@@ -5,11 +5,13 @@ use num_complex::Complex;
 use crate::potential::Potential;
 use crate::quadrature::gauss_6;
 
-/// V = -Z/√(r²+a²) far from the atom; Z = 0 for a short-range potential.
+/// V = -Z/√(r²+a²) + (m² - ¼)/2r² far from the atom; Z = 0 for a short-range potential, and no centrifugal term in one dimension.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(super) struct Tail {
     charge: f64,
     softening: f64,
+    /// m² - ¼.
+    centrifugal: f64,
 }
 
 /// Value and outward slope of a wave at one point.
@@ -22,9 +24,19 @@ pub(super) struct Wave {
 impl Tail {
     pub(super) fn of(potential: &Potential) -> Self {
         match *potential {
-            Potential::SoftCoulomb { charge, softening } => Self { charge, softening },
-            _ => Self { charge: 0.0, softening: 0.0 },
+            Potential::SoftCoulomb { charge, softening } => Self { charge, softening, centrifugal: 0.0 },
+            _ => Self { charge: 0.0, softening: 0.0, centrifugal: 0.0 },
         }
+    }
+
+    /// Of √r R at angular momentum ±`m` in two dimensions.
+    pub(super) fn with_angular_momentum(potential: &Potential, m: u32) -> Self {
+        Self { centrifugal: f64::from(m * m) - 0.25, ..Self::of(potential) }
+    }
+
+    /// Whether no charge pulls.
+    pub(super) fn is_free(&self) -> bool {
+        self.charge == 0.0
     }
 
     /// Distance from which the wave is good to 1e-9 at every momentum: its expansion parameter, V'/p³, is largest at
@@ -71,6 +83,12 @@ impl Tail {
             Taylor([r * r + self.softening * self.softening, 2.0 * r, 1.0, 0.0, 0.0, 0.0, 0.0, 0.0]);
         let mut square = Taylor([2.0 * self.charge, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0]).over(distance.sqrt());
         square.0[0] += k * k;
+        if self.centrifugal != 0.0 {
+            // 1/r² = (1/r₀²) Σ (n + 1) (-(r - r₀)/r₀)ⁿ
+            for (n, s) in square.0.iter_mut().enumerate() {
+                *s -= self.centrifugal * (n + 1) as f64 * (-1.0 / r).powi(n as i32) / (r * r);
+            }
+        }
         let mut q = square.sqrt();
         if self.charge == 0.0 {
             return q;

@@ -45,9 +45,10 @@ fn unfit(model: &Model, written: &raw::Configuration, field: &Field) -> Option<(
         return None;
     }
     let of_quanta = !matches!(model, Model::ThreeStep);
-    if of_quanta && written.atom.dimensions != 1 {
-        let allowed = "three_step and curve in two dimensions; every model in one";
-        return Some((reason("is a model that is not there in two dimensions"), allowed));
+    if let raw::State::Single { parity_x, angular_momentum, .. } = &written.atom.state
+        && let Some(unfit) = unfit_on_plane(model, parity_x.is_some(), angular_momentum.unwrap_or(0))
+    {
+        return Some(unfit);
     }
     if of_quanta && matches!(written.atom.state, raw::State::Superposition { .. }) {
         let allowed = "three_step and curve beside a superposition; every model beside a single state";
@@ -74,6 +75,24 @@ fn unfit(model: &Model, written: &raw::Configuration, field: &Field) -> Option<(
                 "pulses alone: sin2, gaussian, or flat_top with a plateau of more than a cycle, not one beginning within another",
             )
         }),
+        _ => None,
+    }
+}
+
+/// What a model asks of a state in two dimensions, named by parity or of one angular momentum.
+fn unfit_on_plane(model: &Model, by_parity: bool, m: i32) -> Option<(String, &'static str)> {
+    match model {
+        Model::ThreeStep | Model::QuantumOrbits | Model::Curve { .. } => None,
+        _ if by_parity => Some((
+            "starts from one angular momentum, and /atom/state is named by its parity".to_owned(),
+            "three_step, quantum_orbits and curve beside this state; every model beside one of angular momentum 0",
+        )),
+        Model::Recombination if m != 0 => Some((
+            format!(
+                "needs a state that is the same in all directions, and /atom/state has angular momentum {m}"
+            ),
+            "the key beside a state of angular momentum 0; every other model beside this one",
+        )),
         _ => None,
     }
 }

@@ -3,7 +3,8 @@
 use tdse_core::model::curve::Curve;
 use tdse_core::spectrum::radiated_energy;
 
-use super::{Run, electronvolts, harmonics, own};
+use super::run::Run;
+use super::{electronvolts, harmonics, own};
 use crate::config::models::CurveOf;
 use crate::store::Contents;
 
@@ -12,7 +13,7 @@ pub(super) fn put(contents: &mut Contents, run: &Run, of: CurveOf, curve: &Curve
     const NAME: &str = "curve";
     match (of, &run.spectrum, run.electron_axis()) {
         (CurveOf::Harmonics, Some(full), _) => {
-            harmonics::spectrum(contents, run, NAME, &curve.on(full.axis));
+            harmonics::spectra(contents, run, NAME, vec![curve.on(full.axis)]);
             // |a(ω)|² and the radiated energy are in proportion.
             let integrals = curve.order_yields(full.photon, full.orders);
             let yields: Vec<f64> = integrals.into_iter().map(radiated_energy).collect();

@@ -4,14 +4,21 @@ use tdse_core::model::tunnelling::{Orbital, QuasiStatic, Rate};
 use tdse_core::quantities::field_shape;
 use tdse_core::units::TIME_FS;
 
-use super::{Run, own};
+use super::own;
+use super::run::Run;
 use crate::store::Contents;
 
 /// The quasi-static rate of the model atom in the fields of the run.
 pub(super) fn quasi_static(run: &Run) -> Result<QuasiStatic, String> {
     let (problem, peak) = (&run.job.problem, field_shape(run.field).peak);
-    QuasiStatic::on_line(&problem.potential, problem.initial.lowest(), peak)
-        .map_err(|error| error.to_string())
+    let rate = match run.dimensions() {
+        1 => QuasiStatic::on_line(&problem.potential, problem.initial.lowest(), peak),
+        _ => {
+            let round = run.round()?;
+            QuasiStatic::on_plane(&problem.potential, round.m.unsigned_abs(), round.number)
+        }
+    };
+    rate.map_err(|error| error.to_string())
 }
 
 /// Probabilities at the times of the populations; the model atom's own rate is the one that is compared.
@@ -30,9 +37,12 @@ pub(super) fn tunnelling(contents: &mut Contents, run: &Run, l: u32) -> Result<(
     contents.insert(&comparison, "saturation_intensity", saturation);
     let charge = run.job.problem.potential.far_charge();
     if charge > 0.0 {
-        let orbital = Orbital { ionization_energy: run.ground.ionization_energy, charge, l, m: 0 };
+        let orbital = Orbital { ionization_energy: run.ionization_energy, charge, l, m: 0 };
         contents.insert(group, "adk", Rate::Adk(orbital).ionization(run.field, &atomic));
-        if let ([pulse], None) = (&run.field.pulses[..], &run.field.sampled) {
+        // Averaged over a cycle of linear polarization.
+        if let ([pulse], None) = (&run.field.pulses[..], &run.field.sampled)
+            && pulse.ellipticity == 0.0
+        {
             let rate = Rate::Ppt { orbital, frequency: pulse.frequency };
             contents.insert(group, "ppt", rate.ionization(run.field, &atomic));
         }

@@ -5,7 +5,8 @@ use tdse_core::field::Pulse;
 use tdse_core::model::quantum_orbits::{Orbit, QuantumOrbits};
 use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep};
 
-use super::{Run, electronvolts, own};
+use super::run::Run;
+use super::{electronvolts, own};
 use crate::derive::femtoseconds;
 use crate::store::Contents;
 
@@ -37,7 +38,7 @@ pub(super) fn three_step(contents: &mut Contents, run: &Run) {
         Array2::from_shape_fn((RETURNS, count), at).into_dyn()
     };
     let group = "models/three_step/returns";
-    let ip = run.ground.ionization_energy;
+    let ip = run.ionization_energy;
     contents.insert(group, "return_number", (1..=RETURNS as i64).collect::<Vec<_>>());
     contents.insert(group, "time", starts.iter().map(|&t| femtoseconds(t)).collect::<Vec<_>>());
     contents.insert(group, "return_time", over(&|r| femtoseconds(r.time)));
@@ -57,7 +58,7 @@ pub(super) fn three_step(contents: &mut Contents, run: &Run) {
 /// Both orbits around the classical path of highest return energy.
 pub(super) fn quantum_orbits(contents: &mut Contents, run: &Run) -> Result<(), String> {
     let Some(full) = &run.spectrum else { return Ok(()) };
-    let (ip, dimensions) = (run.ground.ionization_energy, 1);
+    let (ip, dimensions) = (run.ionization_energy, run.dimensions() as u32);
     let model = QuantumOrbits::highest(run.field, ip, dimensions).map_err(|error| error.to_string())?;
     let cutoff = model.cutoff().map_or(f64::NAN, |cutoff| electronvolts(cutoff.energy.re));
     contents.insert(&own("quantum_orbits"), "cutoff_energy", cutoff);

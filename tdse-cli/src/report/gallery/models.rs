@@ -4,9 +4,12 @@ use super::super::models::{IonizationPicture, SpectraPicture, draw_ionization, d
 use super::super::time_frequency::{self, TimeFrequencyPicture};
 use super::super::verdict::{self, VerdictPicture};
 use super::survey::Parameter;
-use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, slice};
+use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, rows, slice};
 use crate::derive::models::names;
 use crate::store::{Contents, Values};
+
+/// What both components radiate.
+const RADIATED: &str = "radiated energy per unit photon energy";
 
 /// Pictures of one run.
 pub(super) fn of_run(contents: &Contents) -> Vec<Drawn> {
@@ -16,15 +19,19 @@ pub(super) fn of_run(contents: &Contents) -> Vec<Drawn> {
 fn spectra(contents: &Contents) -> Option<Drawn> {
     let all = names(contents);
     let of = |name: &str, group: &str, array: &str| slice(contents, &format!("models/{name}/{group}"), array);
-    let models: Vec<&String> =
-        all.iter().filter(|name| !of(name, "harmonics", "spectrum").is_empty()).collect();
+    // Of two components what they radiate together.
+    let (shown, quantity) = match rows(contents, "harmonics", "spectrum").len() {
+        2 => ("radiated_energy", RADIATED),
+        _ => ("spectrum", SPECTRUM),
+    };
+    let models: Vec<&String> = all.iter().filter(|name| !of(name, "harmonics", shown).is_empty()).collect();
     if models.is_empty() {
         return None;
     }
-    let full = std::iter::once(("full result", slice(contents, "harmonics", "spectrum")));
+    let full = std::iter::once(("full result", slice(contents, "harmonics", shown)));
     let written: Vec<String> = models.iter().map(|name| name.replace('_', " ")).collect();
     let beside =
-        written.iter().zip(&models).map(|(shown, name)| (shown.as_str(), of(name, "harmonics", "spectrum")));
+        written.iter().zip(&models).map(|(label, name)| (label.as_str(), of(name, "harmonics", shown)));
     let own = std::iter::once(slice(contents, "harmonic_yields", "yield"));
     let yields = own.chain(models.iter().map(|name| of(name, "harmonic_yields", "yield")));
     Some(Drawn {
@@ -33,7 +40,7 @@ fn spectra(contents: &Contents) -> Option<Drawn> {
             title: &contents.provenance.title,
             photon_energy: slice(contents, "harmonics", "photon_energy"),
             spectra: full.chain(beside).collect(),
-            quantity: SPECTRUM,
+            quantity,
             fundamental: fundamental(contents)?,
             yields: yields.collect(),
             measured_cutoff: slice(contents, "summary", "cutoff_energy")

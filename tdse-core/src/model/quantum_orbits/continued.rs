@@ -85,6 +85,22 @@ impl Continued {
         Ok(Self { waves, interval, squares })
     }
 
+    /// The same field with its part across `direction` (a unit vector) multiplied by `part`.
+    pub fn squeezed(&self, direction: [f64; 2], part: f64) -> Self {
+        let [x, y] = direction;
+        let mut waves = self.waves.clone();
+        for wave in &mut waves {
+            let [a, b] = wave.amplitude;
+            let (along, across) = (a * x + b * y, (b * x - a * y) * part);
+            wave.amplitude = [along * x - across * y, along * y + across * x];
+        }
+        let squares = match self.squares {
+            Squares::Closed(_) => Squares::Closed(products(&waves)),
+            Squares::Table { .. } => table(&waves, self.interval),
+        };
+        Self { waves, interval: self.interval, squares }
+    }
+
     /// First and last real time at which it is the field.
     pub fn interval(&self) -> [f64; 2] {
         self.interval
@@ -104,7 +120,7 @@ impl Continued {
     pub fn integral(&self, t: C) -> [C; 2] {
         match &self.squares {
             Squares::Closed(_) => self.sum(|wave| primitive(wave.rate, t)),
-            Squares::Table { step, nodes } => self.from_table(*step, nodes, t).0,
+            Squares::Table { step, nodes } => self.tabulated(*step, nodes, t).0,
         }
     }
 
@@ -112,7 +128,7 @@ impl Continued {
     pub fn square_integral(&self, t: C) -> C {
         match &self.squares {
             Squares::Closed(products) => products.iter().map(|(c, rate)| c * primitive(*rate, t)).sum(),
-            Squares::Table { step, nodes } => self.from_table(*step, nodes, t).1,
+            Squares::Table { step, nodes } => self.tabulated(*step, nodes, t).1,
         }
     }
 
@@ -121,7 +137,7 @@ impl Continued {
     }
 
     /// From the node nearest to `t` straight on.
-    fn from_table(&self, step: f64, nodes: &[([C; 2], C)], t: C) -> ([C; 2], C) {
+    fn tabulated(&self, step: f64, nodes: &[([C; 2], C)], t: C) -> ([C; 2], C) {
         let place = ((t.re - self.interval[0]) / step).round().clamp(0.0, (nodes.len() - 1) as f64);
         let from = self.interval[0] + place * step;
         let count = ((t - from).norm() / step).ceil().max(1.0);

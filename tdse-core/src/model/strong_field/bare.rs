@@ -107,8 +107,9 @@ impl PlaneDipole {
     /// # Errors
     /// As [`radial_level`].
     pub fn new(potential: &Potential, m: i32, number: usize, largest: f64) -> Result<Self, StationaryError> {
-        let level = radial_level(potential, m.unsigned_abs(), number)?;
-        let radial = level.radial_function(potential, m.unsigned_abs());
+        let order = m.unsigned_abs();
+        let level = radial_level(potential, order, number)?;
+        let radial = level.radial_function(potential, order);
         let step = (0.1 * potential.smallest_length()).min(0.5 / largest);
         let radii: Vec<(f64, f64)> = (0..(level.reach / step) as usize)
             .map(|i| (i as f64 + 0.5) * step)
@@ -116,7 +117,6 @@ impl PlaneDipole {
             .collect();
         let spacing = 0.5 / level.reach.max(1.0);
         let count = (largest / spacing).ceil() as usize + 2;
-        let order = m.unsigned_abs();
         let table = (0..count)
             .map(|i| {
                 let k = i as f64 * spacing;
@@ -146,27 +146,16 @@ impl PlaneDipole {
         let g = u * u * ((1.0 + 2.0 * t) * g0 + t * h * s0) + t * t * ((1.0 + 2.0 * u) * g1 - u * h * s1);
         let slope = 6.0 * t * u * (g1 - g0) / h + u * (1.0 - 3.0 * t) * s0 + t * (1.0 - 3.0 * u) * s1;
         let sign = if self.m < 0 && self.m % 2 != 0 { -1.0 } else { 1.0 }; // J_{-m} = (-1)^m J_m
-        let turn = Complex::new(0.0, -1.0).powi(self.m)
-            * Complex::cis(f64::from(self.m) * ky.atan2(kx))
-            * Complex::i()
-            * sign;
-        let around = Complex::new(0.0, f64::from(self.m) * g / k);
         let (x, y) = (kx / k, ky / k);
+        let turn = Complex::new(y, -x).powi(self.m) * Complex::i() * sign; // (-i)^m e^{imφ} i
+        let around = Complex::new(0.0, f64::from(self.m) * g / k);
         [turn * (slope * x - around * y), turn * (slope * y + around * x)]
     }
 }
 
-/// J_m and its derivative, (1/π) ∫ cos(mτ - x sin τ) dτ by the trapezoidal rule, which converges geometrically
-/// (Abramowitz, Stegun, eq. 9.1.21).
+/// J_m and its derivative (J_{m-1} - J_{m+1})/2 (Abramowitz, Stegun, eq. 9.1.27).
 fn bessel(m: u32, x: f64) -> [f64; 2] {
-    let count = 24 + m as usize + (1.3 * x) as usize;
-    let mut sums = [0.0; 2];
-    for i in 0..=count {
-        let tau = PI * i as f64 / count as f64;
-        let weight = if i == 0 || i == count { 0.5 } else { 1.0 };
-        let (sin, cos) = (f64::from(m) * tau - x * tau.sin()).sin_cos();
-        sums[0] += weight * cos;
-        sums[1] += weight * sin * tau.sin();
-    }
-    sums.map(|s| s / count as f64)
+    let j = |order: i32| libm::jn(order, x);
+    let m = m as i32;
+    [j(m), 0.5 * (j(m - 1) - j(m + 1))]
 }

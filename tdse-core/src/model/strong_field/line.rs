@@ -10,11 +10,11 @@ use crate::spectrum::ContinuumAmplitude;
 use crate::step::{BLOCK, Ramp};
 
 /// Largest phase of a step of the dipole's integral, rad: error of fourth order in it.
-const PHASE: f64 = 0.4;
+pub(super) const PHASE: f64 = 0.4;
 /// The same of the electrons' integral, whose integrand vanishes at both ends.
 const DIRECT_PHASE: f64 = 0.8;
 /// Velocities kept beyond that of the largest energy asked for.
-const ROOM: f64 = 1.25;
+pub(super) const ROOM: f64 = 1.25;
 /// Beyond the farthest classical electron, bohr, and velocity by which electrons may be faster: sums over momenta repeat in space, and
 /// nothing may come back from a neighbour.
 const BEYOND: (f64, f64) = (60.0, 0.5);

@@ -3,9 +3,11 @@
 use std::f64::consts::PI;
 
 use num_complex::Complex;
+use rayon::prelude::*;
 
 use super::PlaneDipole;
 use crate::field::Field;
+use crate::outgoing::MomentumMap;
 use crate::simulate::Schedule;
 use crate::spectrum::{EnergyAxis, momenta_of};
 
@@ -17,6 +19,7 @@ const PHASE: f64 = 0.8;
 pub struct PlaneElectrons<'a> {
     dipole: &'a PlaneDipole,
     ionization_energy: f64,
+    largest: f64,
     time_step: f64,
     samples: Vec<Sample>,
 }
@@ -46,7 +49,7 @@ impl<'a> PlaneElectrons<'a> {
             quiver += 0.5 * second;
             sample
         });
-        Self { dipole, ionization_energy, time_step: step, samples: samples.collect() }
+        Self { dipole, ionization_energy, largest, time_step: step, samples: samples.collect() }
     }
 
     /// Amplitude a(k), bohr, ∫|a|² d²k being the probability: -i ∫E·d(k+A) e^{iS} dt.
@@ -62,6 +65,18 @@ impl<'a> PlaneElectrons<'a> {
             })
             .sum();
         Complex::new(0.0, -self.time_step) * sum
+    }
+
+    /// |a|² at momenta along x and y, in the form of a full run's; zero beyond the largest momentum of the plan.
+    pub fn map(&self, momenta: [Vec<f64>; 2]) -> MomentumMap {
+        let row = |&y: &f64| -> Vec<f64> {
+            let at = |&x: &f64| {
+                if x.hypot(y) > self.largest { 0.0 } else { self.amplitude([x, y]).norm_sqr() }
+            };
+            momenta[0].iter().map(at).collect()
+        };
+        let density = momenta[1].par_iter().map(row).collect::<Vec<_>>().concat();
+        MomentumMap { momenta, density, tail: 0.0 }
     }
 
     /// dP/dE = ∫|a|² dθ on `axis`, 1/hartree, by `directions` equally spaced directions.

@@ -2,7 +2,7 @@
 
 use std::f64::consts::PI;
 
-use super::resonances;
+use super::{polarizability, resonances};
 use crate::cubic::Cubic;
 use crate::potential::Potential;
 use crate::stationary::{StationaryError, level, radial_level};
@@ -12,16 +12,16 @@ const READ_AT: f64 = 0.75;
 /// Fields of the table of Stark shifts.
 const FIELDS: usize = 24;
 
-/// ψ → C x^{Z/κ} e^{-κx} in one dimension, C r^{Z/κ-1/2} e^{-κr} e^{imφ}/√2π in two, far from the atom.
+/// ψ → C r^{Z/κ-(D-1)/2} e^{-κr} Y far from the atom in D dimensions, Y = 1, e^{imφ}/√2π, 1/√4π.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Asymptotic {
-    /// 1 or 2.
+    /// D, from 1 to 3.
     pub dimensions: u32,
     /// Energy of the level, hartree.
     pub energy: f64,
     /// Charge Z seen from far away.
     pub charge: f64,
-    /// C towards x → -∞ and x → +∞; the same twice in two dimensions.
+    /// C towards x → -∞ and x → +∞; the same twice in more dimensions than one.
     pub coefficient: [f64; 2],
 }
 
@@ -65,19 +65,25 @@ impl Asymptotic {
     }
 
     /// Leading-order rate in a static field, 1/a.u. of time, for electrons that leave against it, at level energy `energy`:
-    /// κ |C|² (2κ²/F)^{2Z/κ} e^{-2κ³/3F} in one dimension. In two, each momentum q across the field tunnels with e^{-κq²/F} less,
-    /// which makes it κ |C|²/2π (πF/κ³)^{1/2} (2κ²/F)^{2Z/κ} e^{-2κ³/3F} (the derivation of Landau, Lifshitz, Quantum Mechanics, §77,
-    /// for any number of dimensions; three give (4/F) e^{-2/3F} for hydrogen).
+    /// κ |C|²/Ω (πF/κ³)^{(D-1)/2} (2κ²/F)^{2Z/κ} e^{-2κ³/3F}, Ω = 1, 2π, 4π: each momentum q across the field tunnels with e^{-κq²/F}
+    /// less, and is integrated over (the derivation of Landau, Lifshitz, Quantum Mechanics, §77, for any number of dimensions; three
+    /// give (4/F) e^{-2/3F} for hydrogen).
+    ///
+    /// # Panics
+    /// If the number of dimensions is not 1, 2 or 3.
     pub fn leading_rate(&self, field: f64, energy: f64) -> f64 {
         if field == 0.0 {
             return 0.0;
         }
         let strength = field.abs();
         let kappa = (-2.0 * energy).sqrt();
-        let across = match self.dimensions {
+        let directions = match self.dimensions {
             1 => 1.0,
-            _ => (PI * strength / kappa.powi(3)).sqrt() / (2.0 * PI),
+            2 => 2.0 * PI,
+            3 => 4.0 * PI,
+            other => panic!("1 <= dimensions <= 3, got {other}"),
         };
+        let across = (PI * strength / kappa.powi(3)).powf(0.5 * f64::from(self.dimensions - 1)) / directions;
         let side = usize::from(field < 0.0);
         kappa
             * self.coefficient[side].powi(2)
@@ -162,6 +168,17 @@ impl QuasiStatic {
             _ => positive.clone(),
         };
         Ok(Self { asymptotic, stark: Stark::Resonance([negative, positive]) })
+    }
+
+    /// Rate of the level with `number` radial nodes at angular momentum ±`angular` in two dimensions, its shift by its polarizability.
+    ///
+    /// # Errors
+    /// As [`radial_level`] and [`polarizability`].
+    pub fn on_plane(potential: &Potential, angular: u32, number: usize) -> Result<Self, StationaryError> {
+        Ok(Self {
+            asymptotic: Asymptotic::on_plane(potential, angular, number)?,
+            stark: Stark::Polarizability(polarizability(potential, angular, number)?),
+        })
     }
 
     /// Energy of the level in a field, hartree; beyond the table that at its end.

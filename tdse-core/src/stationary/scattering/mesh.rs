@@ -44,7 +44,7 @@ pub enum NoContinuum {
 }
 
 /// Distance from zero, at least `edge`, from which on waves have the form of [`Tail`].
-pub(super) fn free_from(
+pub(in crate::stationary) fn free_from(
     potential: &Potential,
     tail: Tail,
     side: Side,
