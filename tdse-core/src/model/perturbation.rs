@@ -10,9 +10,11 @@ use num_complex::Complex;
 
 use super::strong_field::Ground;
 use crate::field::Field;
+use crate::potential::Potential;
+use crate::quadrature::gauss_6;
 use crate::simulate::Schedule;
 use crate::spectrum::ContinuumAmplitude;
-use crate::stationary::{ScatteringStates, transition_dipole};
+use crate::stationary::{ScatteringStates, StationaryError, radial_level, transition_dipole};
 
 /// Samples per period of the highest transition frequency.
 const SAMPLES: f64 = 24.0;
@@ -106,8 +108,25 @@ impl TwoLevels {
         }
     }
 
+    /// Of a plane atom's level without angular momentum, with `lower` radial nodes, and the level of |m| = 1 with `upper` ones that linear
+    /// light reaches from it, ±1 in equal parts: along the light the dipole is D/√2, D = ∫R₁ R₀ r² dr.
+    ///
+    /// # Errors
+    /// As [`radial_level`].
+    pub fn on_plane(potential: &Potential, [lower, upper]: [usize; 2]) -> Result<Self, StationaryError> {
+        let levels = [radial_level(potential, 0, lower)?, radial_level(potential, 1, upper)?];
+        let radial = [levels[0].radial_function(potential, 0), levels[1].radial_function(potential, 1)];
+        let panel = 0.1 * potential.smallest_length();
+        let count = (levels[0].reach.min(levels[1].reach) / panel).ceil() as usize;
+        let points =
+            (0..count).flat_map(|i| gauss_6().map(move |(at, w)| ((i as f64 + at) * panel, w * panel)));
+        let element: f64 = points.map(|(r, w)| w * r * r * radial[0].value(r) * radial[1].value(r)).sum();
+        let transition = levels[1].energy - levels[0].energy;
+        Ok(Self { transition, dipole: element * std::f64::consts::FRAC_1_SQRT_2, asymmetry: 0.0 })
+    }
+
     /// Population of the upper level at `times` (rising, from a time before the field on) in the actual field: the two-level
-    /// Schrödinger equation without rotating-wave approximation, by midpoint exponentials of steps short beside its frequencies.
+    /// Schrödinger equation without rotating-wave approximation, light along x, by midpoint exponentials of steps short beside its frequencies.
     pub fn populations(&self, field: &Field, times: &[f64]) -> Vec<f64> {
         let Some(&first) = times.first() else { return Vec::new() };
         let step = (2.0 * PI / 100.0 / self.transition).min(0.25 * sampling(field));

@@ -11,12 +11,11 @@ use crate::store::Contents;
 /// The quasi-static rate of the model atom in the fields of the run.
 pub(super) fn quasi_static(run: &Run) -> Result<QuasiStatic, String> {
     let (problem, peak) = (&run.job.problem, field_shape(run.field).peak);
-    let rate = match run.dimensions() {
-        1 => QuasiStatic::on_line(&problem.potential, problem.initial.lowest(), peak),
-        _ => {
-            let round = run.round()?;
-            QuasiStatic::on_plane(&problem.potential, round.m.unsigned_abs(), round.number)
-        }
+    let rate = if run.dimensions() == 1 {
+        QuasiStatic::on_line(&problem.potential, problem.initial.lowest(), peak)
+    } else {
+        let round = run.round()?;
+        QuasiStatic::on_plane(&problem.potential, round.m.unsigned_abs(), round.number)
     };
     rate.map_err(|error| error.to_string())
 }

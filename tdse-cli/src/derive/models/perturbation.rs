@@ -1,7 +1,9 @@
 //! First order in the field, and two resonant levels.
 
 use ndarray::Array2;
+use tdse_core::field::{Field, Pulse};
 use tdse_core::model::perturbation::{PlaneOnePhoton, TwoLevels, one_photon};
+use tdse_core::problem::{PlaneLabel, Symmetry};
 use tdse_core::spectrum::{EnergyAxis, momenta_of};
 use tdse_core::stationary::{RoundTransitions, ScatteringStates};
 use tdse_core::units::TIME_FS;
@@ -45,7 +47,60 @@ pub(super) fn on_plane(contents: &mut Contents, run: &Run) -> Result<(), String>
         contents.insert(&group, "angular_distribution", distribution);
         contents.insert(&own(NAME), "electron_yield", probability);
     }
+    levels_on_plane(contents, run)
+}
+
+/// The initial level without angular momentum and those of |m| = 1 that linear light along one direction is nearest to.
+fn levels_on_plane(contents: &mut Contents, run: &Run) -> Result<(), String> {
+    let (round, Some(field)) = (run.round()?, along_x(run.field)) else { return Ok(()) };
+    let photon = field.pulses[0].frequency;
+    let place = |m: i32, number: usize| {
+        let label = PlaneLabel { symmetry: Symmetry::Angular(m), number };
+        run.job.labels[..run.job.record.populations].iter().position(|other| *other == label)
+    };
+    let (0, Some(from)) = (round.m, place(0, round.number)) else { return Ok(()) };
+    let reached = |number: usize| {
+        let both = [place(-1, number)?, place(1, number)?];
+        let levels = TwoLevels::on_plane(&run.job.problem.potential, [round.number, number]).ok()?;
+        Some((both, levels))
+    };
+    let off = |levels: &TwoLevels| (levels.transition - photon).abs();
+    let nearest = (0..).map_while(reached).min_by(|a, b| off(&a.1).total_cmp(&off(&b.1)));
+    let Some(([back, forth], levels)) = nearest else { return Ok(()) };
+    let half = |p: &f64| 0.5 * p;
+    let upper = populations(contents, &levels, &field);
+    let below = -electronvolts(round.ionization_energy);
+    let above = below + electronvolts(levels.transition);
+    let split: Vec<f64> = upper.iter().map(half).collect();
+    let lower = upper.iter().map(|p| 1.0 - p).collect();
+    put_levels(contents, vec![(from, below, lower), (back, above, split.clone()), (forth, above, split)]);
     Ok(())
+}
+
+/// Linear light of one direction, turned to x.
+fn along_x(field: &Field) -> Option<Field> {
+    let first = field.pulses.first()?;
+    let alike = field.pulses.iter().all(|pulse| pulse.ellipticity == 0.0 && pulse.angle == first.angle);
+    let turned = field.pulses.iter().map(|pulse| Pulse { angle: 0.0, ..*pulse }).collect();
+    (alike && field.sampled.is_none()).then_some(Field { pulses: turned, sampled: None })
+}
+
+/// Population of the upper of two levels at the times of the full run's populations.
+fn populations(contents: &Contents, levels: &TwoLevels, field: &Field) -> Vec<f64> {
+    let times = contents.real("populations", "time").expect("a recorded run has populations");
+    levels.populations(field, &times.iter().map(|t| t / TIME_FS).collect::<Vec<f64>>())
+}
+
+/// Puts levels in, by number, energy in eV and population in time; the first is the initial one.
+fn put_levels(contents: &mut Contents, levels: Vec<(usize, f64, Vec<f64>)>) {
+    let times = contents.real("populations", "time").expect("a recorded run has populations").clone();
+    let group = format!("models/{NAME}/populations");
+    contents.insert(&group, "state", levels.iter().map(|level| level.0 as i64).collect::<Vec<_>>());
+    contents.insert(&group, "time", times);
+    contents.insert(&group, "energy", levels.iter().map(|level| level.1).collect::<Vec<_>>());
+    let rows = Array2::from_shape_fn((levels.len(), levels[0].2.len()), |(s, t)| levels[s].2[t]);
+    contents.insert(&group, "initial_population", levels[0].2.clone());
+    contents.insert(&group, "populations", rows.into_dyn());
 }
 
 /// Ionization by one photon on a line; two levels where at least two populations are written.
@@ -72,16 +127,8 @@ fn two_levels(contents: &mut Contents, run: &Run, line: &Line) {
     let reached = (from + 1..run.job.record.populations).map(levels).filter(|(_, l)| l.dipole.abs() > 1e-6);
     let off = |levels: &TwoLevels| (levels.transition - photon).abs();
     let Some((to, levels)) = reached.min_by(|a, b| off(&a.1).total_cmp(&off(&b.1))) else { return };
-    let times = contents.real("populations", "time").expect("a recorded run has populations").clone();
-    let atomic: Vec<f64> = times.iter().map(|t| t / TIME_FS).collect();
-    let upper = levels.populations(run.field, &atomic);
-    let lower: Vec<f64> = upper.iter().map(|p| 1.0 - p).collect();
-    let group = format!("models/{NAME}/populations");
-    contents.insert(&group, "state", vec![from as i64, to as i64]);
-    contents.insert(&group, "time", times);
-    let energies = vec![electronvolts(bound.energies[from]), electronvolts(bound.energies[to])];
-    contents.insert(&group, "energy", energies);
-    let rows = Array2::from_shape_fn((2, upper.len()), |(s, t)| if s == 0 { lower[t] } else { upper[t] });
-    contents.insert(&group, "initial_population", lower);
-    contents.insert(&group, "populations", rows.into_dyn());
+    let upper = populations(contents, &levels, run.field);
+    let energy = |n: usize| electronvolts(bound.energies[n]);
+    let lower = upper.iter().map(|p| 1.0 - p).collect();
+    put_levels(contents, vec![(from, energy(from), lower), (to, energy(to), upper)]);
 }

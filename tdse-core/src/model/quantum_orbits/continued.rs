@@ -86,6 +86,7 @@ impl Continued {
     }
 
     /// The same field with its part across `direction` (a unit vector) multiplied by `part`.
+    #[must_use]
     pub fn squeezed(&self, direction: [f64; 2], part: f64) -> Self {
         let [x, y] = direction;
         let mut waves = self.waves.clone();
