@@ -229,8 +229,40 @@ fn every_model_in_two_dimensions() {
     let (x, y) = spectrum.split_at(spectrum.len() / 2);
     let largest = x.iter().copied().filter(|v| v.is_finite()).fold(0.0, f64::max);
     assert!(largest > 0.0 && y.iter().all(|v| v.is_nan() || *v < 1e-20 * largest));
-    let [straight, bent] = [&linear, &elliptical].map(|full| of(full, "quantum_orbits", "cutoff_energy")[0]);
-    assert!((bent / straight - 1.0).abs() < 0.2, "{straight} and {bent} eV");
+    for model in ["three_step", "quantum_orbits"] {
+        let [straight, bent] = [&linear, &elliptical].map(|full| of(full, model, "cutoff_energy")[0]);
+        assert!(bent < straight && bent > 0.8 * straight, "{model}: {straight} and {bent} eV");
+    }
+}
+
+/// Ionization by one photon of 31 eV in two dimensions: the model is the full result to a few parts in a hundred even in the coarse box
+/// (bound invented by us; to 0.2 % on a fine grid, see the tests of the core), and two levels are written as populations.
+#[test]
+fn one_photon_in_two_dimensions() {
+    let folder = tempfile::tempdir().unwrap();
+    let more = [
+        "/field/pulses/0/wavelength=40 nm",
+        "/field/pulses/0/intensity=1e13 W/cm^2",
+        "/field/pulses/0/envelope/cycles=10",
+        "/field/pulses/0/ellipticity=0",
+        "/outputs/populations/states=3",
+        "/atom/potential/depth=50 eV",
+        r#"/models={"perturbation": {}}"#,
+    ];
+    let sets: Vec<&str> = SMALL.iter().chain(&more).copied().collect();
+    let result = tdse("run", &shipped("circular.json"), &folder.path().join("out"), &sets).result();
+    let ratio = of(&result, "perturbation", "ionization_ratio")[0];
+    println!("model / full: {ratio}, electrons {}", of(&result, "perturbation", "electron_yield_ratio")[0]);
+    assert!((ratio - 1.0).abs() < 0.05, "{ratio}");
+    let angular = numbers(&result, "models/perturbation/photoelectrons", "angular_distribution");
+    let angles = numbers(&result, "models/perturbation/photoelectrons", "emission_angle");
+    for (p, angle) in angular.iter().zip(&angles) {
+        assert!((p / angular[0] - angle.cos().powi(2)).abs() < 1e-9, "linear light from m = 0: cos²");
+    }
+    assert_eq!(result.get("populations", "time"), result.get("models/perturbation/populations", "time"));
+    let levels = numbers(&result, "models/perturbation/populations", "populations");
+    let full = numbers(&result, "populations", "populations");
+    assert_eq!(levels.len(), full.len(), "the ground state and both m = ±1");
 }
 
 /// Bars of the full result come into the comparison, and the repeated runs do without models.

@@ -8,9 +8,9 @@ use std::f64::consts::PI;
 
 use num_complex::Complex;
 use support::*;
-use tdse_core::field::{Envelope, Field};
+use tdse_core::field::{Envelope, Field, Pulse};
 use tdse_core::model::branches::IntensityWindow;
-use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep};
+use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep, strongest_part};
 
 const FREQUENCY: f64 = 0.057;
 const PEAK: f64 = 0.05;
@@ -107,6 +107,30 @@ fn elliptical_light_misses_the_nucleus() {
     let (slight, half) = (miss(0.02).0, miss(0.01).0);
     assert!((slight / half - 2.0).abs() < 0.01, "{slight} and {half} bohr");
     assert!(miss(1.0).1 > 0.1 * PEAK / (FREQUENCY * FREQUENCY), "{} bohr", miss(1.0).1);
+}
+
+/// The strongest part of light that turns is the field along that direction, with the cutoff of linear light of that strength.
+#[test]
+fn strongest_part_of_elliptical_light() {
+    let mut light = sin2_pulse(FREQUENCY, PEAK, 4.0);
+    (light.ellipticity, light.angle, light.phase) = (0.4, 0.7, 0.3);
+    let mut second = sin2_pulse(2.0 * FREQUENCY, 0.3 * PEAK, 8.0);
+    (second.ellipticity, second.angle) = (-1.0, 0.2);
+    for pulses in [vec![light], vec![light, second]] {
+        let whole = Field { pulses, sampled: None };
+        let (part, [x, y]) = strongest_part(&whole);
+        assert!((x.hypot(y) - 1.0).abs() < 1e-12);
+        for t in [-150.0, -20.0, 0.0, 33.0, 170.0] {
+            let (a, e) = whole.potential_and_field(t);
+            let (found, electric) = part.potential_and_field(t);
+            assert!((found[0] - a[0] * x - a[1] * y).abs() < 1e-12 && found[1] == 0.0);
+            assert!((electric[0] - e[0] * x - e[1] * y).abs() < 1e-12);
+        }
+    }
+    let cutoff = |light: Pulse| ThreeStep::new(&strongest_part(&field(light)).0).cutoff(0.0).unwrap();
+    let mut linear = sin2_pulse(FREQUENCY, PEAK / 1.16f64.sqrt(), 4.0);
+    linear.phase = 0.3;
+    assert!((cutoff(light) / cutoff(linear) - 1.0).abs() < 0.01, "{} and {}", cutoff(light), cutoff(linear));
 }
 
 /// Design: φ = 0 puts a crest at the centre; of a two-cycle pulse the cutoff lies below that of a long one.

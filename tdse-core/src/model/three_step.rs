@@ -4,8 +4,11 @@
 //! v(t) = A(t) - A(t₀), r(t) = α(t) - α(t₀) - A(t₀)(t - t₀), α = ∫A dt. A return is a zero of the path along the direction of
 //! the field at t₀; in two dimensions the electron misses the nucleus there by [`Return::miss`].
 
+use num_complex::Complex;
+
 use super::Motion;
-use crate::field::Field;
+use crate::field::{Field, Pulse};
+use crate::quantities::field_shape;
 use crate::stationary::root::brent;
 
 /// Which of the two paths to one energy.
@@ -127,6 +130,29 @@ impl ThreeStep {
         let path = Path::from(&self.motion, r.emission).expect("a path that returned has a direction");
         let [v, e] = path.velocity_and_field(r.time);
         v + c * e * (r.time - r.emission)
+    }
+}
+
+/// The pulses' part along the direction of the largest field, turned to x, and that direction as a unit vector: in it move the electrons
+/// that start with just the velocity across it that brings them back. Linear light of one direction is its own strongest part.
+pub fn strongest_part(field: &Field) -> (Field, [f64; 2]) {
+    let peak = field.electric_field(field_shape(field).peak_time);
+    let angle = peak[1].atan2(peak[0]);
+    let pulses = field.pulses.iter().map(|pulse| part_along(pulse, angle)).collect();
+    (Field { pulses, sampled: None }, [angle.cos(), angle.sin()])
+}
+
+/// Of A = a f (-sin Φ, ε cos Φ) along an angle β to the major axis: -a ρ f sin(Φ - χ), ρ e^{iχ} = cos β + iε sin β.
+fn part_along(pulse: &Pulse, angle: f64) -> Pulse {
+    let s = 1.0 / (1.0 + pulse.ellipticity.powi(2)).sqrt();
+    let (sin, cos) = (angle - pulse.angle).sin_cos();
+    let part = Complex::new(cos, pulse.ellipticity * sin);
+    Pulse {
+        peak_field: pulse.peak_field * s * part.norm(),
+        phase: pulse.phase - part.arg(),
+        ellipticity: 0.0,
+        angle: 0.0,
+        ..*pulse
     }
 }
 

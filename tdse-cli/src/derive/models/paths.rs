@@ -3,7 +3,7 @@
 use ndarray::Array2;
 use tdse_core::field::Pulse;
 use tdse_core::model::quantum_orbits::{Orbit, QuantumOrbits};
-use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep};
+use tdse_core::model::three_step::{Branch, Extreme, Return, ThreeStep, strongest_part};
 
 use super::run::Run;
 use super::{electronvolts, own};
@@ -49,7 +49,11 @@ pub(super) fn three_step(contents: &mut Contents, run: &Run) {
     contents.insert(group, "branch", Array2::from_shape_fn((RETURNS, count), branches).into_dyn());
     let comparison = own("three_step");
     let ev = |value: Option<f64>| value.map_or(f64::NAN, electronvolts);
-    contents.insert(&comparison, "cutoff_energy", ev(model.cutoff(ip)));
+    // Of light that turns only electrons with a velocity across it come back.
+    let turns = run.dimensions() == 2 && run.field.sampled.is_none();
+    let cutoff =
+        if turns { ThreeStep::new(&strongest_part(run.field).0).cutoff(ip) } else { model.cutoff(ip) };
+    contents.insert(&comparison, "cutoff_energy", ev(cutoff));
     contents.insert(&comparison, "direct_limit", electronvolts(model.direct_limit()));
     let scattered = model.highest(1, Extreme::Backscattering).map(|r| r.backscattered);
     contents.insert(&comparison, "rescattering_limit", ev(scattered));

@@ -73,7 +73,7 @@ fn levels_on_plane(contents: &mut Contents, run: &Run) -> Result<(), String> {
     let above = below + electronvolts(levels.transition);
     let split: Vec<f64> = upper.iter().map(half).collect();
     let lower = upper.iter().map(|p| 1.0 - p).collect();
-    put_levels(contents, vec![(from, below, lower), (back, above, split.clone()), (forth, above, split)]);
+    put_levels(contents, &[(from, below, lower), (back, above, split.clone()), (forth, above, split)]);
     Ok(())
 }
 
@@ -92,7 +92,7 @@ fn populations(contents: &Contents, levels: &TwoLevels, field: &Field) -> Vec<f6
 }
 
 /// Puts levels in, by number, energy in eV and population in time; the first is the initial one.
-fn put_levels(contents: &mut Contents, levels: Vec<(usize, f64, Vec<f64>)>) {
+fn put_levels(contents: &mut Contents, levels: &[(usize, f64, Vec<f64>)]) {
     let times = contents.real("populations", "time").expect("a recorded run has populations").clone();
     let group = format!("models/{NAME}/populations");
     contents.insert(&group, "state", levels.iter().map(|level| level.0 as i64).collect::<Vec<_>>());
@@ -130,5 +130,5 @@ fn two_levels(contents: &mut Contents, run: &Run, line: &Line) {
     let upper = populations(contents, &levels, run.field);
     let energy = |n: usize| electronvolts(bound.energies[n]);
     let lower = upper.iter().map(|p| 1.0 - p).collect();
-    put_levels(contents, vec![(from, energy(from), lower), (to, energy(to), upper)]);
+    put_levels(contents, &[(from, energy(from), lower), (to, energy(to), upper)]);
 }

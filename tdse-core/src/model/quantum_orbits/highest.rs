@@ -1,11 +1,8 @@
 //! The orbits that lead to the highest photon energy of an actual field.
 
-use num_complex::Complex;
-
 use super::{Continued, QuantumOrbits};
-use crate::field::{Envelope, Field, Pulse};
-use crate::model::three_step::{Extreme, Return, ThreeStep};
-use crate::quantities::field_shape;
+use crate::field::{Envelope, Field};
+use crate::model::three_step::{Extreme, Return, ThreeStep, strongest_part};
 
 /// Part of the highest return energy by which another electron may return with less and still stand for it.
 const SHORT_OF_HIGHEST: f64 = 0.01;
@@ -35,14 +32,13 @@ impl QuantumOrbits {
         if field.sampled.is_some() {
             return Err(NotAnalytic::Sampled);
         }
-        let peak = field.electric_field(field_shape(field).peak_time);
-        let angle = peak[1].atan2(peak[0]);
-        let model = ThreeStep::new(&part_along(field, angle));
+        let (strongest, direction) = strongest_part(field);
+        let model = ThreeStep::new(&strongest);
         let within = |path: &Return| {
             let continued = Continued::around(field, path.emission).ok()?;
             let orbits = Self {
                 field: continued,
-                direction: [angle.cos(), angle.sin()],
+                direction,
                 classical: [path.emission, path.time],
                 ionization_energy,
                 dimensions,
@@ -70,22 +66,4 @@ impl QuantumOrbits {
         }
         Ok(())
     }
-}
-
-/// The part along `angle` of pulses, turned to x: of A = a f (-sin Φ, ε cos Φ) along an angle β to the major axis it is
-/// -a ρ f sin(Φ - χ), ρ e^{iχ} = cos β + iε sin β.
-fn part_along(field: &Field, angle: f64) -> Field {
-    let pulses = field.pulses.iter().map(|pulse| {
-        let s = 1.0 / (1.0 + pulse.ellipticity.powi(2)).sqrt();
-        let (sin, cos) = (angle - pulse.angle).sin_cos();
-        let part = Complex::new(cos, pulse.ellipticity * sin);
-        Pulse {
-            peak_field: pulse.peak_field * s * part.norm(),
-            phase: pulse.phase - part.arg(),
-            ellipticity: 0.0,
-            angle: 0.0,
-            ..*pulse
-        }
-    });
-    Field { pulses: pulses.collect(), sampled: None }
 }
