@@ -159,10 +159,19 @@ fn planted_branches_are_separated() {
         })
         .collect();
     for (range, expected, slope) in [(-12.0..13.5, short, slow), (13.5..45.0, long, fast)] {
-        let found = window.part(&scan, range);
+        let found = window.part(&scan, range.clone());
         assert!((found.amplitude - expected).norm() < 0.01, "{found:?} against {expected}");
         assert!((found.slope - slope).abs() < 0.3, "{found:?} against {slope}");
+        let peak = window.peak(&scan, range).unwrap();
+        assert!((peak - slope).abs() < 0.05, "{peak} against {slope}");
     }
+    // Between the two the distribution falls and rises, with no maximum of its own; an amplitude that is not known leaves none.
+    assert_eq!(window.peak(&scan, 7.0..9.0), None);
+    let unknown = [&scan[..100], &[Complex::from(f64::NAN)], &scan[101..]].concat();
+    assert_eq!(window.peak(&unknown, -12.0..13.5), None);
+    // FWHM of exp(-α² width²/(16 ln 2)).
+    let half = window.distribution(&[Complex::from(1.0); 201], &[0.0, 0.5 * window.resolution()]);
+    assert!((half[1].norm() / half[0].norm() - 0.5).abs() < 2e-3, "{half:?}");
     let peak = window.distribution(&scan, &[slow, fast, 60.0]);
     let peak: Vec<f64> = peak.iter().map(|z| z.norm()).collect();
     assert!((peak[1] / peak[0] - 0.5).abs() < 0.02 && peak[2] < 1e-3 * peak[0], "{peak:?}");

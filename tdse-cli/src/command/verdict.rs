@@ -3,7 +3,7 @@
 use std::fmt::Write as _;
 use std::path::Path;
 
-use crate::derive::models::names;
+use crate::derive::models::{branches::BRANCHES, names};
 use crate::store::table::{Kind, group};
 use crate::store::{Contents, Error, ScanDimension, Values, read_groups_where};
 use crate::text::{Table, number, with_bar};
@@ -19,8 +19,9 @@ const MOST: usize = 60;
 /// # Errors
 /// Where the result cannot be read.
 pub fn text(result: &Path) -> Result<String, Error> {
-    let contents =
-        read_groups_where(result, |path| path.starts_with("models/") && path.ends_with("/comparison"))?;
+    let contents = read_groups_where(result, |path| {
+        path == BRANCHES || path.starts_with("models/") && path.ends_with("/comparison")
+    })?;
     let names = names(&contents);
     if names.is_empty() {
         return Ok(String::new());
@@ -36,7 +37,7 @@ pub fn text(result: &Path) -> Result<String, Error> {
             _ => counts(&contents, name),
         };
     }
-    Ok(out + "\n")
+    Ok(out + &branches(&contents) + "\n")
 }
 
 fn verdicts(contents: &Contents, name: &str) -> Vec<i64> {
@@ -71,6 +72,22 @@ fn single(contents: &Contents, name: &str) -> String {
     let failure = failure.and_then(|(_, group)| group.attributes.get("failure"));
     let failure = failure.map_or(String::new(), |failure| format!(" ({failure})"));
     format!("{name}: {verdict}{failure}\n{table}")
+}
+
+/// How far the phase slopes of the full result's paths are from the quantum orbits', in the middle of the scan.
+fn branches(contents: &Contents) -> String {
+    let middle = contents.scan().iter().fold(0, |point, d| point * d.length() + d.length() / 2);
+    let Some(medians) = contents.real(BRANCHES, "median_difference").and_then(|array| array.as_slice())
+    else {
+        return String::new();
+    };
+    let [short, long] = [0, 1].map(|orbit| number(medians[2 * middle + orbit]));
+    let place: Vec<String> = contents.scan().iter().map(|d| label(d, d.length() / 2)).collect();
+    format!(
+        "Phase slopes of the full result's paths against the quantum orbits at {}: median difference {short} rad cm**2/W of the \
+         short ones, {long} of the long ones\n",
+        place.join(", ")
+    )
 }
 
 /// The signs over the scan, the first parameter down, the second across.

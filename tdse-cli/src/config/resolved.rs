@@ -26,6 +26,10 @@ pub struct Chosen<'a> {
 pub fn resolved(request: &Request, chosen: &Chosen) -> Value {
     let mut written = request.written.clone();
     written.scan = None;
+    // What a scan as a whole is asked is not asked of a point.
+    if let Some(orbits) = written.models.as_mut().and_then(|models| models.quantum_orbits.as_mut()) {
+        orbits.branches = None;
+    }
     atom(&mut written.atom, chosen.softening);
     inputs(&mut written, request);
     numerics(&mut written.numerics, chosen.numerics);

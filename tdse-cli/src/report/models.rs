@@ -108,3 +108,45 @@ pub fn draw_ionization(picture: &IonizationPicture<'_>) -> String {
         notes,
     })
 }
+
+/// Phase slopes of both kinds of paths at one intensity.
+#[derive(Debug, Clone)]
+pub struct BranchPicture<'a> {
+    /// Title from the user.
+    pub title: &'a str,
+    /// Harmonic orders.
+    pub orders: &'a [f64],
+    /// Slopes of the full result, short and long, rad cm²/W.
+    pub full: [&'a [f64]; 2],
+    /// Slopes of the quantum orbits.
+    pub orbits: [&'a [f64]; 2],
+    /// Where in the scan, in words.
+    pub place: &'a str,
+}
+
+/// Unit of the slopes that are drawn, rad cm²/W.
+const SLOPE: f64 = 1e-14;
+
+/// Draws the slopes as SVG.
+pub fn draw_branches(picture: &BranchPicture<'_>) -> String {
+    let named = [
+        ("orbit, short", picture.orbits[0], Trace::Line),
+        ("orbit, long", picture.orbits[1], Trace::Line),
+        ("full, short", picture.full[0], Trace::Points),
+        ("full, long", picture.full[1], Trace::Points),
+    ];
+    let curves = named.map(|(name, slopes, trace)| {
+        let known = picture.orders.iter().zip(slopes).filter(|(_, slope)| slope.is_finite());
+        let (x, y): (Vec<f64>, Vec<f64>) = known.map(|(&order, slope)| (order, slope / SLOPE)).unzip();
+        Curve { name: Cow::Borrowed(name), x: Cow::Owned(x), y: Cow::Owned(y), trace }
+    });
+    draw_figure(&Figure {
+        title: picture.title,
+        across: Across::linear("harmonic order"),
+        panels: vec![Panel::new("phase slope (10⁻¹⁴ rad cm²/W)", Up::Linear, curves.into())],
+        notes: vec![format!(
+            "{}. Where short and long are not told apart, as in the cutoff, both stand at one slope.",
+            picture.place
+        )],
+    })
+}

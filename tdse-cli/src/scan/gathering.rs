@@ -2,9 +2,12 @@
 
 use super::ledger::{Ledger, Standing};
 use super::run::{now, origin, spelled};
+use super::{branches, points};
+use crate::derive::models::branches::put;
 use crate::store::{self, Error, Gathering, Point, Provenance, Request, gather_while, read_groups};
 
-/// Writes `result.h5` from the points that exist; `start_time` is that of the whole calculation.
+/// Writes `result.h5` from the points that exist, and what follows from all of them together; `start_time` is that of the whole
+/// calculation.
 ///
 /// # Errors
 /// As [`gather_while`].
@@ -19,7 +22,14 @@ pub fn gather_all(
     let provenance = provenance(ledger, request, &points, start_time)?;
     let scan = request.dimensions();
     let gathering = Gathering { provenance: &provenance, scan: &scan, points: &points };
-    gather_while(&ledger.folder.result(), gathering, go_on)
+    let result = ledger.folder.result();
+    gather_while(&result, gathering, go_on)?;
+    // A request that was taken up once has sound axes.
+    let axes = points::read_axes(&request.configuration, |_| false).map(|(axes, _)| axes).unwrap_or_default();
+    let Ok(Some(look)) = branches::look(&request.configuration, &axes) else { return Ok(()) };
+    let mut contents = store::read(&result)?;
+    put(&mut contents, &look);
+    store::write(&result, &contents)
 }
 
 /// A scan runs again from its request; a single run from its point.

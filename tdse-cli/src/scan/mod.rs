@@ -3,6 +3,7 @@
 pub mod asked;
 pub mod atoms;
 pub mod axis;
+pub mod branches;
 pub mod cost;
 pub mod defaults;
 pub mod electrons;

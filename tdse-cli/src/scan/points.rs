@@ -2,6 +2,7 @@
 
 use serde_json::{Value, json};
 
+use super::branches;
 use crate::config::complaint::{Complaint, Complaints, Fix};
 use crate::config::raw;
 use crate::config::{self, Files, Library, Request, resolved, schema, structure};
@@ -45,10 +46,20 @@ pub fn read_scan(
 ) -> Result<ScanRequest, Complaints> {
     let tree = config::parse(text, sets)?;
     let library = Library::new(files.into());
-    let mut axes = axes(&tree, is_reserved)?;
-    let shape = shape(&tree, &mut axes)?;
+    let (axes, shape) = read_axes(&tree, is_reserved)?;
     let points = points(&tree, &axes, &shape, &library)?;
+    branches::look(&tree, &axes).map_err(|complaint| Complaints(vec![*complaint]))?;
     Ok(ScanRequest { axes, shape, points })
+}
+
+/// Axes of a configuration, and the lengths of its dimensions.
+///
+/// # Errors
+/// Every fault of the scan.
+pub fn read_axes(tree: &Value, is_reserved: fn(&str) -> bool) -> Result<(Vec<Axis>, Vec<usize>), Complaints> {
+    let mut axes = axes(tree, is_reserved)?;
+    let shape = shape(tree, &mut axes)?;
+    Ok((axes, shape))
 }
 
 /// The axes, each sound by itself and none in the way of another.

@@ -10,6 +10,9 @@ use std::ops::Range;
 
 use num_complex::Complex;
 
+/// Samples of the distribution within its resolution.
+const SAMPLES: f64 = 40.0;
+
 /// Intensities of a scan, uniform, and the window through which the phase is looked at.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct IntensityWindow {
@@ -54,8 +57,7 @@ impl IntensityWindow {
     /// As [`Self::distribution`], and if the range is empty.
     pub fn part(&self, amplitudes: &[Complex<f64>], range: Range<f64>) -> Part {
         assert!(range.start < range.end, "a range of slopes, got {range:?}");
-        // The window's transform has width 8 ln 2/FWHM: forty samples of it.
-        let spacing = ((8.0 * LN_2 / self.width) / 40.0).min((range.end - range.start) / 8.0);
+        let spacing = (self.resolution() / SAMPLES).min((range.end - range.start) / 8.0);
         let count = ((range.end - range.start) / spacing).ceil() as usize;
         let h = (range.end - range.start) / count as f64;
         let alphas: Vec<f64> = (0..count).map(|i| range.start + (i as f64 + 0.5) * h).collect();
@@ -64,6 +66,29 @@ impl IntensityWindow {
         let power: f64 = distribution.iter().map(Complex::norm_sqr).sum();
         let moment: f64 = distribution.iter().zip(&alphas).map(|(d, a)| d.norm_sqr() * a).sum();
         Part { amplitude: sum * (h / (2.0 * PI)), slope: moment / power, power: power * h }
+    }
+
+    /// Phase slope in `range` at which |D| is largest, where that is a maximum within the range and not its edge; `None` otherwise,
+    /// and where an amplitude is not known.
+    ///
+    /// # Panics
+    /// As [`Self::part`].
+    pub fn peak(&self, amplitudes: &[Complex<f64>], range: Range<f64>) -> Option<f64> {
+        assert!(range.start < range.end, "a range of slopes, got {range:?}");
+        let count = ((range.end - range.start) / self.resolution() * SAMPLES).ceil().max(8.0) as usize;
+        let h = (range.end - range.start) / count as f64;
+        let alphas: Vec<f64> = (0..=count).map(|i| range.start + i as f64 * h).collect();
+        let power: Vec<f64> = self.distribution(amplitudes, &alphas).iter().map(Complex::norm_sqr).collect();
+        let top = |i: &usize| power[*i] > power[i - 1] && power[*i] >= power[i + 1];
+        let i = (1..count).filter(top).max_by(|a, b| power[*a].total_cmp(&power[*b]))?;
+        // Vertex of the parabola through the three highest samples.
+        let (before, after) = (power[i] - power[i - 1], power[i] - power[i + 1]);
+        Some(alphas[i] + 0.5 * h * (before - after) / (before + after))
+    }
+
+    /// Full width at half maximum of |D| of one path, 8 ln 2/width: paths closer than this are not told apart.
+    pub fn resolution(&self) -> f64 {
+        8.0 * LN_2 / self.width
     }
 
     /// Largest |α| that the step of the scan tells apart, π/step.

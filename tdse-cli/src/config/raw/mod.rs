@@ -22,7 +22,7 @@ use super::quantity;
 pub use atom::{Atom, ElementSymbol, Parity, Potential, State, Term};
 pub use field::example as example_pulse;
 pub use field::{Envelope, Field, Pulse, Sampled};
-pub use models::{Curve, CurveOf, Models, Tolerance};
+pub use models::{Branches, Curve, CurveOf, Models, Tolerance};
 pub use numerics::{Absorber, ElectronMethod, Gauge, Numerics, Scheme, Shape};
 pub use outputs::{Harmonics, Outputs, Populations, TimeFrequency, Window};
 pub use scan::{Axis, Spacing};

@@ -5,6 +5,8 @@ use serde::{Deserialize, Serialize};
 use serde_json::json;
 use tdse_core::model::metrics;
 
+use super::Intensity;
+
 /// Simpler models of the same atom in the same field, compared with the full result.
 #[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
@@ -22,7 +24,7 @@ pub struct Models {
     pub strong_field: Option<StrongField>,
     /// Complex times of start and return of the short and the long orbit, and the dipole phase.
     #[schemars(example = json!({}))]
-    pub quantum_orbits: Option<Plain>,
+    pub quantum_orbits: Option<QuantumOrbits>,
     /// Ionization in time by rates: quasi-static of the model atom, ADK and PPT of an atom in three dimensions.
     #[schemars(example = json!({}))]
     pub tunnelling: Option<Tunnelling>,
@@ -54,6 +56,28 @@ pub struct StrongField {
     /// Let the bound state be emptied at the quasi-static rate of the model atom.
     #[serde(default)]
     pub depletion: bool,
+}
+
+/// Quantum orbits.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct QuantumOrbits {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Of a scan over the intensity of the pulse: the full result parted into short and long paths, beside the orbits.
+    #[schemars(example = json!({}))]
+    pub branches: Option<Branches>,
+}
+
+/// Paths of the full result, told apart by how fast the phase of a harmonic turns with the intensity.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Branches {
+    /// Anything worth remembering.
+    pub note: Option<String>,
+    /// Intensities looked at together, full width at half maximum of a Gaussian; two fifths of the scan if left out.
+    #[schemars(example = "4e13 W/cm^2", extend("x-exclusive-minimum" = "0 W/cm^2"))]
+    pub window: Option<Intensity>,
 }
 
 /// Rates of tunnelling.

@@ -3,6 +3,7 @@
 //! What a model gives is derived from the request and the recorded arrays alone, so models can be changed without a new
 //! propagation.
 
+pub mod branches;
 mod comparison;
 mod curve;
 mod harmonics;

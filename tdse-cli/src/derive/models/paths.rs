@@ -86,5 +86,8 @@ pub(super) fn quantum_orbits(contents: &mut Contents, run: &Run) -> Result<(), S
     contents.insert(group, "dipole_phase", over(&|o| o.action.re));
     let weight = |o: &Orbit| if o.contributes { (-2.0 * o.action.im).exp() } else { 0.0 };
     contents.insert(group, "weight", over(&weight));
+    let full = &full.amplitudes;
+    contents.insert(group, "harmonic_amplitude", full.iter().map(|a| a.norm()).collect::<Vec<_>>());
+    contents.insert(group, "harmonic_phase", full.iter().map(|a| a.arg()).collect::<Vec<_>>());
     Ok(())
 }

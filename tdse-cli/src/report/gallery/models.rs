@@ -1,11 +1,13 @@
 //! Pictures of simpler models: of one run, and of verdicts over a scan.
 
-use super::super::models::{IonizationPicture, SpectraPicture, draw_ionization, draw_spectra};
+use super::super::models::{
+    BranchPicture, IonizationPicture, SpectraPicture, draw_branches, draw_ionization, draw_spectra,
+};
 use super::super::time_frequency::{self, TimeFrequencyPicture};
 use super::super::verdict::{self, VerdictPicture};
 use super::survey::Parameter;
 use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, rows, slice};
-use crate::derive::models::names;
+use crate::derive::models::{branches::BRANCHES, names};
 use crate::store::{Contents, Values};
 
 /// What both components radiate.
@@ -133,5 +135,30 @@ pub(super) fn of_scan(contents: &Contents) -> Option<Drawn> {
         }),
         caption: "Where each simpler model stays within the tolerance; γ is the Keldysh parameter.".into(),
         alternative: "Cells over the scanned parameters, coloured by the verdict on every model.".into(),
+    })
+}
+
+/// Phase slopes of short and long paths in the middle of the scan.
+pub(super) fn branches(contents: &Contents) -> Option<Drawn> {
+    let Values::Integer(orders) = contents.get(BRANCHES, "order")? else { return None };
+    let orders: Vec<f64> = orders.iter().map(|&order| order as f64).collect();
+    let middle = contents.scan().iter().fold(0, |point, d| point * d.length() + d.length() / 2);
+    let rows = |name: &str| -> Option<[&[f64]; 2]> {
+        let all = slice(contents, BRANCHES, name).chunks(orders.len()).skip(2 * middle).take(2);
+        all.collect::<Vec<_>>().try_into().ok()
+    };
+    let place: Vec<String> = contents.scan().iter().map(|d| Parameter::of(d).said(d.length() / 2)).collect();
+    Some(Drawn {
+        name: "branches".into(),
+        svg: draw_branches(&BranchPicture {
+            title: &contents.provenance.title,
+            orders: &orders,
+            full: rows("phase_slope")?,
+            orbits: rows("orbit_phase_slope")?,
+            place: &format!("At {}", place.join(", ")),
+        }),
+        caption: "How fast the phase of every harmonic turns with the intensity: the paths of the full result, and quantum orbits."
+            .into(),
+        alternative: "Phase slope against harmonic order: orbits as lines, the full result as points.".into(),
     })
 }

@@ -2,6 +2,7 @@
 
 use super::super::figure::Up;
 use super::super::map::Shading;
+use super::super::number::significant;
 use super::super::parameter::{Axis, Values as Spread};
 use super::super::scan::{self, NumberMap, NumberScan, SpectrumScan};
 use super::{Drawn, MAP_DECADES, SPECTRUM, shared, slice, summary_numbers};
@@ -56,6 +57,13 @@ impl Parameter {
             Spread::Text(&self.words)
         };
         Axis { name: &self.name, unit: if self.unit == "1" { "" } else { &self.unit }, values }
+    }
+
+    /// Name and one value with its unit.
+    pub(super) fn said(&self, place: usize) -> String {
+        let value = self.numbers.get(place).map(|&number| significant(number, 4));
+        let value = value.or_else(|| self.words.get(place).cloned()).unwrap_or_default();
+        format!("{} {value} {}", self.name, self.axis().unit).trim_end().to_owned()
     }
 
     /// Whether equal ratios, rather than equal differences, lead from value to value.

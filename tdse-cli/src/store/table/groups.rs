@@ -1,6 +1,6 @@
 //! The table itself.
 
-use super::models::{COMPARISON, IONIZATION, ORBITS, RETURNS};
+use super::models::{BRANCHES, COMPARISON, IONIZATION, ORBITS, RETURNS};
 use super::{Dataset, Form, Group, Kind, Role};
 
 const ACCELERATION: &str = "bohr / atomic_unit_of_time**2";
@@ -238,6 +238,7 @@ pub static GROUPS: &[Group] = &[
     },
     RETURNS,
     ORBITS,
+    BRANCHES,
     IONIZATION,
     COMPARISON,
 ];

@@ -40,9 +40,41 @@ pub(super) const ORBITS: Group = Group {
         value("return_time", "fs", BY_ORBIT, "Time of the return, real part"),
         value("dipole_phase", "rad", BY_ORBIT, "Real part of the action: phase of the contribution"),
         value("weight", NUMBER, BY_ORBIT, "exp(-2 Im action); zero where the orbit does not contribute"),
+        value("harmonic_amplitude", AMPLITUDE, &["order"], "Amplitude |a| of the full result at the order"),
+        value("harmonic_phase", "rad", &["order"], "Phase of a of the full result at the order"),
     ],
 };
+/// Of a(ω) = ∫ a(t) w(t) exp(iωt) dt.
+const AMPLITUDE: &str = "bohr / atomic_unit_of_time";
 const BY_ORBIT: &[&str] = &["orbit", "order"];
+
+/// Short and long paths of the full result, of a scan over the intensity.
+pub(super) const BRANCHES: Group = Group {
+    name: "branches",
+    title: "Short and long paths of the full result by the slope of the dipole phase over the intensity",
+    signal: "phase_slope",
+    auxiliary: &["orbit_phase_slope"],
+    datasets: &[
+        count("orbit", "Paths: 0 the short ones, 1 the long ones"),
+        count("order", "Harmonic order"),
+        value("phase_slope", SLOPE, BY_ORBIT, "Slope of the dipole phase over the intensity, downwards"),
+        value("orbit_phase_slope", SLOPE, BY_ORBIT, "The same of the quantum orbit"),
+        value(
+            "branch_amplitude",
+            AMPLITUDE,
+            BY_ORBIT,
+            "What these paths contribute to |a| of the full result",
+        ),
+        value("branch_phase", "rad", BY_ORBIT, "Phase of that contribution"),
+        value(
+            "median_difference",
+            SLOPE,
+            &["orbit"],
+            "Median of |full - orbit| over harmonics at which the two are told apart",
+        ),
+    ],
+};
+const SLOPE: &str = "rad*cm**2/W";
 
 /// Ionization in time.
 pub(super) const IONIZATION: Group = Group {
