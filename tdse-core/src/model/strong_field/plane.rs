@@ -76,7 +76,7 @@ impl<'a> PlaneElectrons<'a> {
             momenta[0].iter().map(at).collect()
         };
         let density = momenta[1].par_iter().map(row).collect::<Vec<_>>().concat();
-        MomentumMap { momenta, density, tail: 0.0 }
+        MomentumMap { momenta, density }
     }
 
     /// dP/dE = ∫|a|² dθ on `axis`, 1/hartree, by `directions` equally spaced directions.
