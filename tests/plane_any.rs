@@ -9,7 +9,7 @@ use num_complex::Complex;
 use support::{deviation, field, final_wave, plan_from, sin2_pulse};
 use tdse_core::field::Pulse;
 use tdse_core::grid::Grid;
-use tdse_core::potential::{Potential, PotentialOnGrid};
+use tdse_core::potential::{Potential, PotentialOnGrid, Rectangle};
 use tdse_core::problem::{
     Absorber, Gauge, InitialState, Numerics, Parity, PlaneLabel, Record, Scheme, Symmetry, Term,
 };
@@ -88,6 +88,20 @@ fn states_of_a_round_atom_are_those_found_along_the_radius() {
         println!("{:?}: {:.12}, overlap {overlap:.10}", found.label, found.energy);
         assert!((found.energy - expected.energy).abs() < 1e-10, "{} of {}", found.energy, expected.energy);
         assert!((overlap - 1.0).abs() < 1e-8, "overlap {overlap}");
+    }
+}
+
+/// A table of the anisotropic oscillator, exact at its points, has its levels: a cubic reproduces a parabola.
+#[test]
+fn a_table_on_a_rectangle_has_the_levels_of_what_it_holds() {
+    let side: Vec<f64> = (0..=60).map(|i| -15.0 + 0.5 * f64::from(i)).collect();
+    let at = |x: f64, y: f64| 0.5 * ((0.5 * x).powi(2) + (0.37 * y).powi(2));
+    let values: Vec<f64> = side.iter().flat_map(|y| side.iter().map(move |x| at(*x, *y))).collect();
+    let grid = Grid::square(80, 0.37);
+    let potential = Rectangle::new(&side, side.clone(), &values).on_grid(&grid).unwrap();
+    let labels = [GROUND, label(Parity::Even, Parity::Odd, 0)];
+    for (state, level) in parity_states(&potential, &grid, &labels).unwrap().iter().zip([0.435, 0.805]) {
+        assert!((state.energy - level).abs() < 1e-9, "{:?}: {} of {level}", state.label, state.energy);
     }
 }
 

@@ -1,6 +1,9 @@
 //! Model atoms: the potential energy of the active electron and its gradient.
 
 mod band;
+mod rectangle;
+
+pub use rectangle::{OutsideRectangle, Rectangle};
 
 use std::sync::Arc;
 
@@ -9,7 +12,7 @@ use crate::grid::Grid;
 
 /// Potential energy of the active electron, hartree, as a function of r in bohr.
 ///
-/// In two dimensions every potential is round; in one dimension [`Potential::Sampled`] may be asymmetric.
+/// In two dimensions each of these is round (others are given as [`PotentialOnGrid`]); in one dimension [`Potential::Sampled`] may be asymmetric.
 #[derive(Clone, Debug, PartialEq)]
 pub enum Potential {
     /// -Z/√(r²+a²) (Javanainen, Eberly, Su, Phys. Rev. A 38, 3430 (1988), eq. 1).
@@ -138,7 +141,7 @@ impl Potential {
 
 /// Potential and its gradient on the points of a grid: what the propagator needs of an atom.
 ///
-/// A caller of the library may fill it with any potential.
+/// A caller of the library may fill it with any potential, from values on a [`Rectangle`] for instance.
 #[derive(Clone, Debug, PartialEq)]
 pub struct PotentialOnGrid {
     /// V, hartree, length `grid.len()`, x fastest.
