@@ -35,7 +35,7 @@ fn one_photon_ionization_is_the_full_result_in_weak_fields() {
             let problem = ground(potential.clone(), light.clone());
             let plan = Plan::new(&problem, atom.clone(), &numerics, Record::default()).unwrap();
             let state = run(&plan);
-            let rest = without_bound(&final_wave(&plan, &state), &atom.bound, numerics.grid.x, 150.0);
+            let rest = without_bound(&final_wave(&plan, &state), &atom.bound.states, numerics.grid.x, 150.0);
             let full = ContinuumAmplitude::of(&rest, &states, momenta.clone());
             let model = one_photon(&states, &ground_state, &light, momenta.clone());
             let [yield_full, yield_model] = [&full, &model].map(|a| a.probability().iter().sum::<f64>());

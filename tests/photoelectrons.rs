@@ -197,7 +197,7 @@ impl Finished {
         let inner = 0.5 * grid.x.extent() - self.numerics.absorber.width();
         let count = count_below(&self.potential, -0.05, inner).min(3);
         let bound = bound_states(&self.potential, &grid, count).unwrap();
-        without_bound(&final_wave(&self.plan, &self.state), &bound, grid.x, inner)
+        without_bound(&final_wave(&self.plan, &self.state), &bound.states, grid.x, inner)
     }
 
     fn amplitude(&self, momenta: Vec<f64>) -> ContinuumAmplitude {

@@ -55,7 +55,9 @@ fn amplitude(finished: &Finished, continuum: &ScatteringStates, axis: EnergyAxis
     let mut psi = vec![Complex::default(); numerics.grid.len()];
     plan.wave_function(state, &mut psi);
     let inner = 0.5 * numerics.grid.x.extent() - numerics.absorber.width();
-    let free = without_bound(&psi, &atom.bound, numerics.grid.x, inner);
+    // Those that were asked for are converged, the rest are good to the sum of their populations only.
+    let states = &atom.bound.states[..point.job.states().min(atom.bound.states.len())];
+    let free = without_bound(&psi, states, numerics.grid.x, inner);
     let amplitude = ContinuumAmplitude::of(&free, continuum, momenta_of(axis));
     match (plan.collector(), &state.outgoing) {
         (Some(collector), Some(outgoing)) => amplitude.with_collected(collector, outgoing),

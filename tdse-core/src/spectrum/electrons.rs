@@ -5,7 +5,7 @@ use num_complex::Complex;
 use super::EnergyAxis;
 use crate::grid::Axis;
 use crate::outgoing::{Collector, Outgoing};
-use crate::stationary::{BoundStates, ScatteringStates};
+use crate::stationary::ScatteringStates;
 
 /// Where the energy axis starts, as a part of its step: at E = 0 itself there is no momentum to project on, and
 /// dP/dE is the limit from above.
@@ -124,16 +124,17 @@ pub fn asymmetry([left, right]: [f64; 2]) -> Option<f64> {
     (sum > 0.0).then(|| (right - left) / sum)
 }
 
-/// ψ without its part in those of the bound states that fit into |x| < `inner`, bohr.
+/// ψ without its part in those of the bound `states` that fit into |x| < `inner`, bohr.
 ///
 /// The others are left alone: a state that the box or its absorber squeezes is not orthogonal to the continuum, while the
-/// true one is, and drops out of a projection by itself.
+/// true one is, and drops out of a projection by itself. So are states that are not converged: what they hold of the continuum
+/// would be taken from it.
 ///
 /// # Panics
 /// If the lengths differ.
-pub fn without_bound(psi: &[Complex<f64>], bound: &BoundStates, axis: Axis, inner: f64) -> Vec<Complex<f64>> {
+pub fn without_bound(psi: &[Complex<f64>], states: &[Vec<f64>], axis: Axis, inner: f64) -> Vec<Complex<f64>> {
     let mut rest = psi.to_vec();
-    for state in bound.states.iter().filter(|state| outside(state, axis, inner) < FITS) {
+    for state in states.iter().filter(|state| outside(state, axis, inner) < FITS) {
         assert_eq!(state.len(), psi.len(), "wave function and bound state have the same length");
         let overlap: Complex<f64> = state.iter().zip(psi).map(|(s, p)| p * s).sum();
         for (r, s) in rest.iter_mut().zip(state) {
