@@ -175,7 +175,9 @@ fn every_model_in_two_dimensions() {
         ran.result()
     };
     let elliptical = result("elliptical", &["/field/pulses/0/ellipticity=0.3"]);
-    let linear = result("linear", &["/field/pulses/0/ellipticity=0"]);
+    // The ground state by its other name.
+    let even = r#"/atom/state={"kind": "single", "parity_x": "even", "parity_y": "even"}"#;
+    let linear = result("linear", &["/field/pulses/0/ellipticity=0", even]);
     for full in [&elliptical, &linear] {
         for model in ["strong_field", "recombination"] {
             for group in [

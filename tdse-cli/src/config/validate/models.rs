@@ -45,9 +45,7 @@ fn unfit(model: &Model, written: &raw::Configuration, field: &Field) -> Option<(
         return None;
     }
     let of_quanta = !matches!(model, Model::ThreeStep);
-    if let raw::State::Single { parity_x, angular_momentum, .. } = &written.atom.state
-        && let Some(unfit) = unfit_on_plane(model, parity_x.is_some(), angular_momentum.unwrap_or(0))
-    {
+    if let Some(unfit) = unfit_on_plane(model, &written.atom.state) {
         return Some(unfit);
     }
     if of_quanta && matches!(written.atom.state, raw::State::Superposition { .. }) {
@@ -79,15 +77,22 @@ fn unfit(model: &Model, written: &raw::Configuration, field: &Field) -> Option<(
     }
 }
 
-/// What a model asks of a state in two dimensions, named by parity or of one angular momentum.
-fn unfit_on_plane(model: &Model, by_parity: bool, m: i32) -> Option<(String, &'static str)> {
-    match model {
-        Model::ThreeStep | Model::QuantumOrbits | Model::Curve { .. } => None,
-        _ if by_parity => Some((
+/// What a model asks of a state in two dimensions.
+fn unfit_on_plane(model: &Model, state: &raw::State) -> Option<(String, &'static str)> {
+    let raw::State::Single { number, angular_momentum, parity_x, parity_y, .. } = state else { return None };
+    let momentum = match (parity_x, parity_y) {
+        (None, _) => Some(angular_momentum.unwrap_or(0)),
+        // The lowest state that is even both ways is the ground state, which is round.
+        (Some(raw::Parity::Even), Some(raw::Parity::Even)) if *number == 0 => Some(0),
+        _ => None,
+    };
+    match (model, momentum) {
+        (Model::ThreeStep | Model::QuantumOrbits | Model::Curve { .. }, _) => None,
+        (_, None) => Some((
             "starts from one angular momentum, and /atom/state is named by its parity".to_owned(),
             "three_step, quantum_orbits and curve beside this state; every model beside one of angular momentum 0",
         )),
-        Model::Recombination if m != 0 => Some((
+        (Model::Recombination, Some(m)) if m != 0 => Some((
             format!(
                 "needs a state that is the same in all directions, and /atom/state has angular momentum {m}"
             ),

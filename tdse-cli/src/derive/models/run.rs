@@ -5,7 +5,7 @@ use std::cell::OnceCell;
 use num_complex::Complex;
 use tdse_core::field::Field;
 use tdse_core::model::strong_field::{DipoleSeries, Ground, Round, Stationary, StrongField};
-use tdse_core::problem::Symmetry;
+use tdse_core::problem::{Parity, Symmetry};
 use tdse_core::simulate::{Atom, Schedule};
 use tdse_core::spectrum::{EnergyAxis, Harmonics, Window, harmonics as transformed};
 use tdse_core::stationary::BoundStates;
@@ -169,6 +169,11 @@ impl<'a> Run<'a> {
                 Symmetry::Angular(m) => {
                     let number = state.label.number;
                     let round = Round { m, number, ionization_energy: -state.energy };
+                    (Initial::Round(round), state.energy)
+                }
+                // The lowest state that is even both ways is the ground state, which is round.
+                Symmetry::Mirror([Parity::Even, Parity::Even]) if state.label.number == 0 => {
+                    let round = Round { m: 0, number: 0, ionization_energy: -state.energy };
                     (Initial::Round(round), state.energy)
                 }
                 Symmetry::Mirror(_) => (Initial::Mixed, state.energy),
