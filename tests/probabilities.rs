@@ -1,18 +1,24 @@
-//! The ionization probability is as good as the accuracy asked for. Laser scenarios are invented.
+//! The ionization probability and the peaks of the electron spectrum are as good as the accuracy asked for. Laser scenarios are
+//! invented.
 
 mod support;
 
 use std::f64::consts::PI;
 
 use nalgebra::{DMatrix, SymmetricEigen};
+use num_complex::Complex;
 use support::*;
-use tdse_core::choose::{AtomFacts, PinnedAbsorber, Pins, Wish, choose};
+use tdse_core::choose::{
+    AtomFacts, Electrons as CountedElectrons, Energies, PinnedAbsorber, Pins, Wish, choose,
+    choose_for_electrons, fastest_electron,
+};
 use tdse_core::field::{Envelope, Pulse};
 use tdse_core::grid::Grid;
 use tdse_core::potential::Potential;
-use tdse_core::problem::{Numerics, Problem};
+use tdse_core::problem::{ElectronMethod, Numerics, Problem};
 use tdse_core::simulate::Atom;
-use tdse_core::stationary::Tail;
+use tdse_core::spectrum::{ContinuumAmplitude, Electrons, EnergyAxis, momenta_of, without_bound};
+use tdse_core::stationary::{ScatteringStates, Tail, bound_states};
 use tdse_core::units::{self, Quantity};
 
 /// ∫₀^{nπ} (1 - cos u)/u du for n = 0 … `most`, by Simpson's rule.
@@ -164,5 +170,79 @@ fn judge(name: &str, problem: &Problem) {
             numerics.absorber.width()
         );
         assert!(error < accuracy, "{name}, {accuracy:e}: {error:e}");
+    }
+}
+
+/// Peaks above this part of the highest are held to the accuracy; what those above a hundredth of it do is printed.
+const PEAKS: f64 = 1e-4;
+
+fn electron_yield(problem: &Problem, numerics: &Numerics, axis: EnergyAxis) -> Vec<f64> {
+    let (plan, state) = solve(problem, numerics);
+    let line = numerics.grid.x;
+    let bound = bound_states(&problem.potential, &numerics.grid, 1).unwrap();
+    let mut psi = vec![Complex::default(); line.points];
+    plan.wave_function(&state, &mut psi);
+    let free = without_bound(&psi, &bound.states, line, 0.5 * line.extent());
+    let continuum = ScatteringStates::new(&problem.potential, line).unwrap();
+    Electrons::new(axis, &ContinuumAmplitude::of(&free, &continuum, momenta_of(axis))).total()
+}
+
+/// Every peak above the floor, against spacing and step at least twice finer and a box one and a half times as long.
+#[test]
+fn electron_peaks_are_as_accurate_as_asked() {
+    let soft = |softening| Potential::SoftCoulomb { charge: 1.0, softening };
+    let scenarios = [
+        ("800 nm, 4e13, a = 1.63", ground(soft(1.63), field(light(800.0, 4e13, 4.0)))),
+        ("400 nm, 1e14, a = 1.414", ground(soft(2f64.sqrt()), field(light(400.0, 1e14, 6.0)))),
+        (
+            "400 nm, 8e13, Gaussian well",
+            ground(Potential::GaussianWell { depth: 0.8, width: 1.5 }, field(light(400.0, 8e13, 5.0))),
+        ),
+    ];
+    std::thread::scope(|scope| {
+        for (name, problem) in &scenarios {
+            scope.spawn(|| judge_peaks(name, problem));
+        }
+    });
+}
+
+fn judge_peaks(name: &str, problem: &Problem) {
+    let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
+    let axis = EnergyAxis { points: 601, step: 0.002 };
+    let energies = Energies { count: axis.points, largest: 1.2 };
+    let electrons =
+        CountedElectrons { energies, fastest: fastest_electron(problem, &facts).max(energies.largest) };
+    let chosen = |accuracy, pins: &Pins| {
+        let wish = Wish { problem, facts: &facts, pins, accuracy, populations: 0, max_photon: None };
+        choose_for_electrons(&wish, &electrons, ElectronMethod::ScatteringStates).numerics
+    };
+    let finest = chosen(1e-6, &Pins::default());
+    let spacing = Some(0.5 * finest.grid.x.spacing);
+    let extent = Some(1.5 * finest.grid.x.extent());
+    let step = chosen(1e-6, &Pins { spacing, extent, ..Pins::default() }).time_step;
+    let time_step = Some(step.min(0.5 * finest.time_step));
+    let exact =
+        electron_yield(problem, &chosen(1e-6, &Pins { spacing, extent, time_step, ..Pins::default() }), axis);
+    let highest = exact.iter().copied().fold(0.0, f64::max);
+    let is_peak =
+        |i: &usize| exact[*i] > exact[i - 1] && exact[*i] >= exact[i + 1] && exact[*i] > PEAKS * highest;
+    let peaks: Vec<usize> = (1..axis.points - 1).filter(is_peak).collect();
+    assert!(
+        peaks.iter().filter(|i| exact[**i] > PEAKS * highest).count() >= 3,
+        "{name}: {} peaks",
+        peaks.len()
+    );
+    for accuracy in [1e-3, 1e-4, 1e-6] {
+        let found = electron_yield(problem, &chosen(accuracy, &Pins::default()), axis);
+        let worst = |floor: f64| {
+            let those = peaks.iter().filter(|i| exact[**i] > floor * highest);
+            those.map(|&i| (found[i] / exact[i] - 1.0).abs()).fold(0.0, f64::max)
+        };
+        let (all, worst) = (worst(0.0), worst(PEAKS));
+        println!(
+            "{name}, {accuracy:.0e}: worst peak {worst:.1e}, of those down to {:.0e} of the highest {all:.1e}",
+            0.01 * PEAKS
+        );
+        assert!(worst < accuracy, "{name}, {accuracy:e}: {worst:e}");
     }
 }
