@@ -109,7 +109,7 @@ fn point(photon: f64, cep: f64) -> Contents {
     }
     result.insert("summary", "status", Status::Done as i64);
     result.insert("summary", "reason", "");
-    for group in ["returns", "orbits", "ionization", "comparison"] {
+    for group in ["returns", "orbits", "branches", "ionization", "comparison"] {
         filled(&mut result, group, cep);
     }
     result
@@ -499,8 +499,8 @@ fn files_that_contradict_themselves_are_refused() {
         ("entry/harmonics/radiated_energy", "wrong number of dimensions"),
         ("entry/harmonics/photon_energy", "120 values along photon_energy of 4"),
         ("entry/momentum/momentum", "21 values along momentum of 4"),
-        ("entry/comparison/cep", "the scan axis shape has the shape [3]"),
-        ("entry/comparison/shape", "the scan axis shape has the shape [4]"),
+        ("entry/branches/cep", "the scan axis shape has the shape [3]"),
+        ("entry/branches/shape", "the scan axis shape has the shape [4]"),
         ("entry/summary/reason", "wrong number of dimensions"),
         ("entry/title", "title holds 4 texts"),
     ] {

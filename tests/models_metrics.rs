@@ -6,7 +6,8 @@ use num_complex::Complex;
 use tdse_core::compare::Measured;
 use tdse_core::model::curve::{BadCurve, Curve};
 use tdse_core::model::metrics::{
-    HarmonicComparison, Metric, Tolerance, Verdict, compare_harmonics, compare_phases, worst,
+    HarmonicComparison, Metric, Tolerance, Verdict, breaks, compare_electrons, compare_harmonics,
+    compare_phases, moving_mean, worst,
 };
 use tdse_core::spectrum::EnergyAxis;
 
@@ -150,4 +151,57 @@ fn curves_of_a_user() {
     assert_eq!(bad(&[1.0, 1.0], &[1.0, 2.0]), BadCurve::NotRising { index: 1, value: 1.0, before: 1.0 });
     assert!(matches!(bad(&[1.0, f64::NAN], &[1.0, 2.0]), BadCurve::NotRising { .. }));
     assert_eq!(bad(&[1.0, 2.0], &[1.0, -2.0]), BadCurve::Value { index: 1, value: -2.0 });
+}
+
+/// A drawn electron spectrum (invented): peaks a photon apart on four straight lines that turn at these energies.
+fn drawn_electrons(turns: [f64; 3], photon: f64, shift: f64) -> Vec<f64> {
+    let decades = |e: f64| {
+        let after = |turn: f64| (e - turn).max(0.0);
+        -1.0 - 0.05 * e - 0.35 * after(turns[0]) + 0.38 * after(turns[1]) - 0.4 * after(turns[2])
+    };
+    let peak = |e: f64| 1.0 + 0.9 * (2.0 * PI * (e - shift) / photon).cos();
+    (0..1200).map(|i| 0.1 * f64::from(i)).map(|e| 10f64.powf(decades(e)) * peak(e)).collect()
+}
+
+#[test]
+fn electron_spectra_are_compared_without_their_peaks() {
+    let full = drawn_electrons([17.0, 36.0, 86.0], 1.5, 0.0);
+    let half = |shift: f64| -> Vec<f64> {
+        drawn_electrons([17.0, 36.0, 86.0], 1.5, shift).iter().map(|y| 0.5 * y).collect()
+    };
+    let found = compare_electrons(&half(0.0), &with_bars(&full, 0.1), 7).unwrap();
+    assert!(
+        (found.distance.value - 2f64.log10()).abs() < 1e-12 && (found.shift - 2f64.log10()).abs() < 1e-12
+    );
+    assert_eq!(found.shifted_distance.verdict(0.0), Verdict::WithinError);
+    assert_eq!(found.distance.verdict(TOLERANCE), Verdict::Different);
+    // All peaks moved by a third of a photon, as a shifted level moves them: what is left is the steepest slope, 0.4 decades per unit,
+    // within one photon.
+    let model = half(0.5);
+    let found = compare_electrons(&model, &with_bars(&full, 0.1), 7).unwrap();
+    println!("{found:?}");
+    assert!(
+        found.shifted_distance.value < 0.1 && found.shifted_distance.verdict(0.1) == Verdict::WithinTolerance
+    );
+    // Six decades below the largest the comparison ends: 0.05 E + 0.35 (E - 17) = 6 within a photon.
+    let end = 0.1 * found.places[1] as f64;
+    assert!((end - 29.9).abs() < 1.5, "{end}");
+    assert_eq!(compare_electrons(&model, &without_bars(&full), 7).unwrap().distance.error, None);
+    // Place by place the peaks would be torn apart.
+    assert!(compare_electrons(&model, &without_bars(&full), 0).unwrap().shifted_distance.value > 0.3);
+    assert_eq!(compare_electrons(&[0.0; 9], &without_bars(&[1.0; 9]), 0), None);
+}
+
+#[test]
+fn breaks_of_electron_spectra() {
+    for turns in [[17.0, 36.0, 86.0], [25.0, 42.0, 95.0]] {
+        let found = breaks(0.0, 0.1, &moving_mean(&drawn_electrons(turns, 1.5, 0.0), 7)).unwrap();
+        println!("{turns:?}: {found:?}");
+        for (found, expected) in [found.direct, found.plateau, found.rescattered].into_iter().zip(turns) {
+            assert!((found - expected).abs() < 0.8, "{found} for {expected}");
+        }
+    }
+    let falls: Vec<f64> = (0..1200).map(|i| 10f64.powf(-0.008 * f64::from(i))).collect();
+    assert_eq!(breaks(0.0, 0.1, &falls), None);
+    assert_eq!(breaks(0.0, 0.1, &[1.0; 30]), None);
 }

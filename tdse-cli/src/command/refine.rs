@@ -9,6 +9,7 @@ use super::options::RefineOptions;
 use super::output::data;
 use super::report;
 use super::run::carry_out;
+use super::verdict;
 use crate::refine::{self, Bar, ModelPlan, Plan, Spread};
 use crate::scan::asked;
 use crate::scan::ledger::Ledger;
@@ -51,7 +52,10 @@ pub fn refine(options: &RefineOptions) -> Result<Exit, Trouble> {
         judged(&prepared, &plan, &bars)
     };
     report::draw(&Folder::open(out).map_err(Trouble::incomplete)?).map_err(Trouble::incomplete)?;
-    data(format!("{text}{}\n", out.join("result.h5").display()));
+    let result = out.join("result.h5");
+    // Said once more: now differences can be smaller than a bar.
+    let models = verdict::text(&result).map_err(Trouble::incomplete)?;
+    data(format!("{text}{models}{}\n", result.display()));
     Ok(Exit::Complete)
 }
 

@@ -3,7 +3,8 @@
 use std::fmt::Write as _;
 use std::path::Path;
 
-use crate::derive::models::{branches::BRANCHES, names};
+use crate::derive::models::{branches::BRANCHES, judged, names};
+use crate::scan::points::position;
 use crate::store::table::{Kind, group};
 use crate::store::{Contents, Error, ScanDimension, Values, read_groups_where};
 use crate::text::{Table, number, with_bar};
@@ -11,6 +12,8 @@ use crate::text::{Table, number, with_bar};
 /// Signs of the verdicts from -1 on.
 const SIGNS: [char; 4] = ['.', '=', '+', 'x'];
 const LEGEND: &str = "= within the error, + within the tolerance, x different, . none";
+/// Most maps of a scan over more than two parameters.
+const MOST_MAPS: usize = 6;
 /// Most columns of a map.
 const MOST: usize = 60;
 
@@ -27,14 +30,13 @@ pub fn text(result: &Path) -> Result<String, Error> {
         return Ok(String::new());
     }
     let mut out = String::from("\nSimpler models beside the full result\n");
-    if let [_] | [_, _] = contents.scan() {
+    if !contents.scan().is_empty() {
         let _ = writeln!(out, "  {LEGEND}");
     }
     for name in &names {
         out += &match contents.scan() {
             [] => single(&contents, name),
-            [_] | [_, _] => map(&contents, name),
-            _ => counts(&contents, name),
+            _ => maps(&contents, name),
         };
     }
     Ok(out + &branches(&contents) + "\n")
@@ -51,23 +53,32 @@ fn sign(verdict: i64) -> char {
     usize::try_from(verdict + 1).ok().and_then(|place| SIGNS.get(place)).copied().unwrap_or('.')
 }
 
-/// Every number of one model.
+/// Every number of one model, with its bar and what that makes of it.
 fn single(contents: &Contents, name: &str) -> String {
     let path = format!("models/{name}/comparison");
     let known = group(&path).into_iter().flat_map(|group| group.datasets);
-    let word = |dataset: &str, value: i64| {
-        let flags = group(&path).and_then(|group| group.dataset(dataset)?.flags()).unwrap_or_default();
-        flags.iter().find(|(flag, _)| *flag == value).map_or("", |(_, word)| word)
+    let flag = |dataset: &str| match contents.get(&path, dataset) {
+        Some(Values::Integer(verdicts)) => verdicts.first().copied().unwrap_or(-1),
+        _ => -1,
     };
-    let verdict = verdicts(contents, name).first().map_or("", |&verdict| word("verdict", verdict));
     let mut table = Table::new();
     for dataset in known.filter(|dataset| dataset.kind == Kind::Real && dataset.name != "keldysh_parameter") {
         let at = |name: &str| contents.real(&path, name).and_then(|array| array.first().copied());
         let Some(value) = at(dataset.name).filter(|value| value.is_finite()) else { continue };
         let error = at(&format!("{}_errors", dataset.name)).filter(|error| error.is_finite());
         let text = error.map_or_else(|| number(value), |error| with_bar(value, error));
-        table.row(dataset.long_name, text, dataset.unit(), "");
+        let verdict = judged().find(|(number, _)| *number == dataset.name);
+        table.row(
+            dataset.long_name,
+            text,
+            dataset.unit(),
+            verdict.map_or("", |(_, verdict)| word(flag(verdict))),
+        );
     }
+    let verdict = match word(flag("verdict")) {
+        "" => "nothing to judge it by",
+        verdict => verdict,
+    };
     let failure = contents.groups().find(|(known, _)| *known == path);
     let failure = failure.and_then(|(_, group)| group.attributes.get("failure"));
     let failure = failure.map_or(String::new(), |failure| format!(" ({failure})"));
@@ -90,24 +101,59 @@ fn branches(contents: &Contents) -> String {
     )
 }
 
-/// The signs over the scan, the first parameter down, the second across.
-fn map(contents: &Contents, name: &str) -> String {
+/// What a verdict says.
+fn word(verdict: i64) -> &'static str {
+    match verdict {
+        0 => "within the error bar",
+        1 => "within the tolerance",
+        2 => "different",
+        _ => "",
+    }
+}
+
+/// The signs over the scan: one map over its last two parameters for every value of those before, or how many of each.
+fn maps(contents: &Contents, name: &str) -> String {
+    let scan = contents.scan();
+    let (before, shown) = scan.split_at(scan.len().saturating_sub(2));
+    let lengths: Vec<usize> = before.iter().map(ScanDimension::length).collect();
+    let slices: usize = lengths.iter().product();
     let verdicts = verdicts(contents, name);
-    let columns = match contents.scan() {
-        [_, second] => second.length(),
-        _ => 1,
-    };
-    let first = &contents.scan()[0];
+    let size = (verdicts.len() / slices).max(1);
     let mut out = format!("{name}\n");
+    for (number, slice) in verdicts.chunks(size).enumerate() {
+        let place = position(number, &lengths).into_iter().zip(before);
+        let said: Vec<String> =
+            place.map(|(i, dimension)| format!("{} {}", dimension.name(), label(dimension, i))).collect();
+        if slices > MOST_MAPS {
+            let _ = writeln!(out, "  {}: {}", said.join(", "), counts(slice));
+            continue;
+        }
+        if slices > 1 {
+            let _ = writeln!(out, "  at {}", said.join(", "));
+        }
+        out += &map(shown, slice);
+    }
+    out
+}
+
+/// The signs over one or two parameters, the first down, the second across.
+fn map(scan: &[ScanDimension], verdicts: &[i64]) -> String {
+    let columns = scan.get(1).map_or(1, ScanDimension::length);
+    let mut out = String::new();
     for (row, chunk) in verdicts.chunks(columns.max(1)).enumerate() {
         let signs: String = chunk.iter().take(MOST).flat_map(|&verdict| [' ', sign(verdict)]).collect();
-        let _ = writeln!(out, "  {:>24} {signs}", label(first, row));
+        let _ = writeln!(out, "  {:>24} {signs}", label(&scan[0], row));
     }
-    if let [_, second] = contents.scan() {
+    if let [_, second] = scan {
         let ends = [0, second.length() - 1].map(|place| label(second, place));
         let _ = writeln!(out, "  {:>24}  {} from {} to {}", "", second.name(), ends[0], ends[1]);
     }
     out
+}
+
+fn counts(verdicts: &[i64]) -> String {
+    let count = |wanted: i64| verdicts.iter().filter(|verdict| **verdict == wanted).count();
+    format!("{} =, {} +, {} x, {} .", count(0), count(1), count(2), count(-1))
 }
 
 fn label(dimension: &ScanDimension, place: usize) -> String {
@@ -119,16 +165,4 @@ fn label(dimension: &ScanDimension, place: usize) -> String {
         Values::Text(values) => values.iter().nth(place).cloned(),
     };
     format!("{}{unit}", value.unwrap_or_default())
-}
-
-fn counts(contents: &Contents, name: &str) -> String {
-    let verdicts = verdicts(contents, name);
-    let count = |wanted: i64| verdicts.iter().filter(|verdict| **verdict == wanted).count();
-    format!(
-        "  {name}: {} within the error, {} within the tolerance, {} different, {} none\n",
-        count(0),
-        count(1),
-        count(2),
-        count(-1)
-    )
 }

@@ -34,6 +34,14 @@ impl Files {
         }
     }
 
+    /// Where a file lies; nowhere where only contents are kept.
+    pub fn path(&self, file: &str) -> Option<PathBuf> {
+        match self {
+            Self::Folder(folder) => Some(folder.join(file)),
+            Self::Stored(_) => None,
+        }
+    }
+
     /// Names of the tables that can be read.
     pub fn tables(&self) -> Vec<String> {
         match self {

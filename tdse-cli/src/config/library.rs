@@ -8,7 +8,9 @@ use std::sync::Arc;
 use tdse_core::cubic::Cubic;
 
 use super::files::Files;
+use super::stored::{self, Places, StoredFault};
 use super::tables::{self, Layout, TableFault};
+use crate::store::is_hdf5;
 
 /// The files of a configuration, and the tables read from them so far.
 #[derive(Debug)]
@@ -46,6 +48,28 @@ impl Library {
         let table = Table { contents, curves };
         self.read.borrow_mut().insert(key, table.clone());
         Ok(table)
+    }
+
+    /// The table in two datasets of the HDF5 file `file`.
+    ///
+    /// # Errors
+    /// The first fault found.
+    pub fn stored(&self, file: &str, places: Places, layout: Layout) -> Result<Table, StoredFault> {
+        let key = ([file, places.axis, places.dataset].join("\n"), layout.header);
+        if let Some(table) = self.read.borrow().get(&key) {
+            return Ok(table.clone());
+        }
+        let path = self.files.path(file).unwrap_or_default();
+        let contents: Arc<str> = stored::text(&path, places, layout)?.into();
+        let curves = tables::read(&contents, &[layout]);
+        let table = Table { contents, curves };
+        self.read.borrow_mut().insert(key, table.clone());
+        Ok(table)
+    }
+
+    /// Whether `file` is there and an HDF5 file.
+    pub fn is_hdf5(&self, file: &str) -> bool {
+        self.files.path(file).is_some_and(|path| is_hdf5(&path))
     }
 
     /// Names of the tables there are.

@@ -1,6 +1,6 @@
 //! The simpler models that a request asks for: plain data.
 
-use tdse_core::model::curve::Curve;
+use tdse_core::model::curve::{Curve, RateOver};
 use tdse_core::model::metrics::Tolerance;
 
 /// Simpler models beside the full result.
@@ -34,7 +34,7 @@ pub enum Model {
     Curve {
         /// What it is a curve of.
         of: CurveOf,
-        /// Values over energies in hartree.
+        /// Values over energies in hartree; rates in 1/a.u. of time over fields in a.u. or intensities in W/cm².
         curve: Curve,
     },
 }
@@ -55,6 +55,8 @@ pub enum CurveOf {
     Harmonics,
     /// The electron spectrum.
     Photoelectrons,
+    /// The ionization probability, by rates over this.
+    Ionization(RateOver),
 }
 
 impl Model {

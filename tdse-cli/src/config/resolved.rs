@@ -85,6 +85,8 @@ fn inputs(written: &mut raw::Configuration, request: &Request) {
             && input.user == "/models/curve"
         {
             (curve.file, curve.sha256) = (input.reference(), Some(input.sha256.clone()));
+            // What is kept of an HDF5 file is a table.
+            (curve.dataset, curve.axis) = (None, None);
         }
         match (&mut written.atom.potential, &mut written.field.sampled) {
             (raw::Potential::Sampled { file, sha256, .. }, _) if input.user == "/atom/potential" => {

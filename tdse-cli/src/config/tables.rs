@@ -6,7 +6,7 @@ use std::sync::Arc;
 use csv::{ReaderBuilder, StringRecord, Trim};
 use sha2::{Digest, Sha256};
 use tdse_core::cubic::Cubic;
-use tdse_core::units::Quantity;
+use tdse_core::units::{Quantity, TIME_FS};
 
 use super::allowed::either;
 use super::files::INPUTS;
@@ -54,15 +54,15 @@ pub struct Column {
 pub enum Measure {
     /// Those of a quantity.
     Of(Quantity),
-    /// This one.
-    Fixed(&'static str),
+    /// These, with the factor to the one that results of reading are in.
+    Fixed(&'static [(&'static str, f64)]),
 }
 
 impl Measure {
     fn symbols(self) -> Vec<&'static str> {
         match self {
             Self::Of(quantity) => quantity.units().iter().map(|unit| unit.symbol).collect(),
-            Self::Fixed(symbol) => vec![symbol],
+            Self::Fixed(units) => units.iter().map(|(symbol, _)| *symbol).collect(),
         }
     }
 
@@ -70,7 +70,7 @@ impl Measure {
     fn factor(self, symbol: &str) -> Option<f64> {
         match self {
             Self::Of(quantity) => quantity.unit(symbol).map(|unit| unit.factor),
-            Self::Fixed(known) => (symbol == known).then_some(1.0),
+            Self::Fixed(units) => units.iter().find(|(known, _)| *known == symbol).map(|(_, factor)| *factor),
         }
     }
 }
@@ -82,6 +82,8 @@ pub struct Layout {
     pub columns: &'static [Column],
     /// An example of the header.
     pub header: &'static str,
+    /// The units of that header as HDF5 files spell them.
+    pub units: &'static [&'static str],
 }
 
 /// Electric field along x over time.
@@ -91,6 +93,7 @@ pub const FIELD: Layout = Layout {
         Column { name: "electric_field", measure: Measure::Of(Quantity::ElectricField) },
     ],
     header: "time [fs],electric_field [V/m]",
+    units: &["fs", "V/m"],
 };
 
 /// Electric field along x and y over time.
@@ -101,6 +104,7 @@ pub const PLANE_FIELD: Layout = Layout {
         Column { name: "electric_field_y", measure: Measure::Of(Quantity::ElectricField) },
     ],
     header: "time [fs],electric_field_x [V/m],electric_field_y [V/m]",
+    units: &["fs", "V/m", "V/m"],
 };
 
 /// Potential energy over position.
@@ -110,24 +114,43 @@ pub const POTENTIAL: Layout = Layout {
         Column { name: "potential", measure: Measure::Of(Quantity::Energy) },
     ],
     header: "position [bohr],potential [eV]",
+    units: &["bohr", "eV"],
 };
 
 /// A harmonic spectrum |a(ω)|² over photon energy.
 pub const SPECTRUM: Layout = Layout {
     columns: &[
         Column { name: "photon_energy", measure: Measure::Of(Quantity::Energy) },
-        Column { name: "spectrum", measure: Measure::Fixed("au") },
+        Column { name: "spectrum", measure: Measure::Fixed(&[("au", 1.0)]) },
     ],
     header: "photon_energy [eV],spectrum [au]",
+    units: &["eV", "bohr**2 / atomic_unit_of_time**2"],
 };
 
 /// An electron spectrum over kinetic energy.
 pub const YIELD: Layout = Layout {
     columns: &[
         Column { name: "energy", measure: Measure::Of(Quantity::Energy) },
-        Column { name: "yield", measure: Measure::Fixed("1/eV") },
+        Column { name: "yield", measure: Measure::Fixed(&[("1/eV", 1.0)]) },
     ],
     header: "energy [eV],yield [1/eV]",
+    units: &["eV", "1 / eV"],
+};
+
+const RATE: Column = Column { name: "rate", measure: Measure::Fixed(&[("1/fs", TIME_FS), ("au", 1.0)]) };
+
+/// Ionization rate over the strength of a static field.
+pub const RATE_OVER_FIELD: Layout = Layout {
+    columns: &[Column { name: "electric_field", measure: Measure::Of(Quantity::ElectricField) }, RATE],
+    header: "electric_field [V/m],rate [1/fs]",
+    units: &["V/m", "1 / fs"],
+};
+
+/// Ionization rate averaged over a cycle, over the intensity.
+pub const RATE_OVER_INTENSITY: Layout = Layout {
+    columns: &[Column { name: "intensity", measure: Measure::Of(Quantity::Intensity) }, RATE],
+    header: "intensity [W/cm^2],rate [1/fs]",
+    units: &["W/cm**2", "1 / fs"],
 };
 
 /// What is wrong with a table, where, and what belongs there.

@@ -7,7 +7,7 @@ use super::map::hatched;
 use super::number::significant;
 use super::palette::{INK, SOFT, VERDICTS};
 use super::parameter::{Axis, Band, Values, bands};
-use super::scale::{Range, Scale};
+use super::scale::{Kind, Range, Scale};
 use super::sheet::{EDGE, Sheet, WIDTH};
 use super::svg::{Anchor, Lettering, Point, Stroke, Svg};
 use super::ticks::{Ticks, ticks};
@@ -16,6 +16,10 @@ const ROW: f64 = 34.0;
 const PANEL: f64 = 150.0;
 const GAP: f64 = 16.0;
 const MOST: usize = 200;
+/// Part by which Keldysh parameters differ that are the same.
+const SAME: f64 = 1e-9;
+/// Length from which on a line has a label: a shorter one would be hidden by it.
+const LABELLED: f64 = 60.0;
 /// Keldysh parameters whose lines are drawn.
 const LEVELS: [f64; 7] = [0.25, 0.5, 1.0, 2.0, 4.0, 8.0, 16.0];
 /// Words of the legend, in the order of the colours.
@@ -51,7 +55,8 @@ pub fn draw(picture: &VerdictPicture<'_>) -> String {
 fn rows(sheet: &mut Sheet, picture: &VerdictPicture<'_>) {
     let names: Vec<String> = picture.models.iter().map(|(name, _)| name.replace('_', " ")).collect();
     let Some((range, bands)) = bands(&picture.first, MOST) else { return };
-    sheet.names("", "Keldysh parameter", WIDTH - EDGE);
+    let (above, name) = keldysh(picture);
+    sheet.names("", &name, WIDTH - EDGE);
     sheet.y += 14.0 + 1.7 * TICK;
     let ticks_left = words(&names, 150.0);
     let frame = Frame {
@@ -76,17 +81,44 @@ fn rows(sheet: &mut Sheet, picture: &VerdictPicture<'_>) {
         across,
         &parameter_ticks(&picture.first, range, (frame.right - frame.left, 50.0)),
     );
-    let values = picture.first.numbers();
-    let above = values.iter().zip(picture.keldysh).filter(|(_, gamma)| gamma.is_finite());
-    let above =
-        Ticks { major: above.map(|(v, gamma)| (*v, significant(*gamma, 2))).collect(), minor: Vec::new() };
     axis(&mut sheet.svg, frame, Side::Top, across, &above);
     let half = 0.5 * ROW;
     let span = Range { low: 0.0, high: (names.len() as f64 - 1.0).max(1e-9) };
-    let left = Scale::new(super::scale::Kind::Linear, span, frame.top + half, frame.bottom - half);
+    let left = Scale::new(Kind::Linear, span, frame.top + half, frame.bottom - half);
     axis(&mut sheet.svg, frame, Side::Left, left, &ticks_left);
     sheet.y = frame.bottom + 20.0;
     sheet.lower_name(&picture.first.label(), frame.right);
+}
+
+/// Ticks of the Keldysh parameter along the only axis, and the name of their axis: round values between the points, every point's own
+/// where the axis carries words, none where all points have the same.
+fn keldysh(picture: &VerdictPicture<'_>) -> (Ticks, String) {
+    const NAME: &str = "Keldysh parameter";
+    let mut points: Vec<(f64, f64)> =
+        picture.first.numbers().into_iter().zip(picture.keldysh.iter().copied()).collect();
+    points.retain(|(_, gamma)| gamma.is_finite());
+    points.sort_by(|a, b| a.0.total_cmp(&b.0));
+    let Some(range) = Range::of(points.iter().map(|(_, gamma)| *gamma), Kind::Linear) else {
+        return (Ticks::default(), String::new());
+    };
+    if picture.keldysh.iter().all(|gamma| (gamma / range.low - 1.0).abs() < SAME) {
+        return (Ticks::default(), format!("{NAME} {}", significant(range.low, 3)));
+    }
+    if let Values::Text(_) = picture.first.values {
+        let major = points.into_iter().map(|(at, gamma)| (at, significant(gamma, 2)));
+        return (Ticks { major: major.collect(), minor: Vec::new() }, NAME.into());
+    }
+    let levels = ticks(Kind::Log, range, 8);
+    let placed = |level: f64| {
+        let between = |pair: &[(f64, f64)]| {
+            let share = (level - pair[0].1) / (pair[1].1 - pair[0].1);
+            (0.0..=1.0).contains(&share).then(|| pair[0].0 + share * (pair[1].0 - pair[0].0))
+        };
+        points.windows(2).find_map(between)
+    };
+    let major = levels.major.iter().filter_map(|(level, label)| Some((placed(*level)?, label.clone())));
+    let minor = levels.minor.iter().filter_map(|level| placed(*level));
+    (Ticks { major: major.collect(), minor: minor.collect() }, NAME.into())
 }
 
 /// A panel per model, two beside each other.
@@ -191,7 +223,7 @@ fn contours(svg: &mut Svg, values: &[f64], (up, across): (&Axis<'_>, &Axis<'_>),
     svg.open("contours");
     let mut labels: Vec<(Point, String)> = Vec::new();
     for level in LEVELS {
-        let mut middle = Vec::new();
+        let (mut middle, mut length) = (Vec::new(), 0.0);
         for i in 0..rows.len().saturating_sub(1) {
             for j in 0..columns.len().saturating_sub(1) {
                 let around = [corner(i, j), corner(i, j + 1), corner(i + 1, j + 1), corner(i + 1, j)];
@@ -199,12 +231,14 @@ fn contours(svg: &mut Svg, values: &[f64], (up, across): (&Axis<'_>, &Axis<'_>),
                     (0..4).filter_map(|k| crossing(around[k], around[(k + 1) % 4], level.ln())).collect();
                 for ends in crossed.chunks_exact(2) {
                     svg.line(ends[0], ends[1], Stroke::solid(INK, 1.1));
+                    length += (ends[1].0 - ends[0].0).hypot(ends[1].1 - ends[0].1);
                     middle.push((f64::midpoint(ends[0].0, ends[1].0), f64::midpoint(ends[0].1, ends[1].1)));
                 }
             }
         }
         middle.sort_by(|a, b| a.0.total_cmp(&b.0));
-        labels.extend(middle.get(middle.len() / 2).map(|&at| (at, format!("γ = {level}"))));
+        let label = middle.get(middle.len() / 2).map(|&at| (at, format!("γ = {level}")));
+        labels.extend(label.filter(|_| length > LABELLED));
     }
     for ((x, y), label) in labels {
         let half = width(&label, 11.0, Weight::Regular) / 2.0 + 2.0;

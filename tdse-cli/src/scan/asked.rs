@@ -123,6 +123,11 @@ fn rename(value: &mut Value, names: &BTreeMap<String, String>) {
                 }
                 rename(value, names);
             }
+            // What is kept of an HDF5 file is a table.
+            if map.get("file").and_then(Value::as_str).is_some_and(|file| file.starts_with(INPUTS)) {
+                map.shift_remove("dataset");
+                map.shift_remove("axis");
+            }
         }
         Value::Array(list) => list.iter_mut().for_each(|value| rename(value, names)),
         _ => {}

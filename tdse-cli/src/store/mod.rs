@@ -13,6 +13,7 @@
 mod atomic;
 mod axes;
 pub mod checkpoint;
+mod column;
 mod compare;
 mod contents;
 mod entry;
@@ -33,6 +34,7 @@ mod write;
 
 pub use atomic::{Unfinished, host_name, publish};
 pub use axes::{ScanAxis, ScanDimension};
+pub use column::{Column, column, is_hdf5};
 pub use compare::differences;
 pub use contents::{Contents, Group};
 pub use error::Error;

@@ -7,7 +7,7 @@ use std::path::Path;
 use super::axes::{ScanAxis, ScanDimension};
 use super::contents::{Contents, Member, is_structural};
 use super::error::Error;
-use super::hdf5::{Failure, File, Node};
+use super::hdf5::{Failure, File, Node, SIGNATURE};
 use super::provenance::Provenance;
 use super::table::{self, LAYOUT_VERSION};
 
@@ -57,9 +57,6 @@ fn take(
     };
     take().map_err(Error::damaged(path))
 }
-
-/// The first bytes of every HDF5 file (HDF5 File Format Specification 3.0, section II.A).
-const SIGNATURE: &[u8] = b"\x89HDF\r\n\x1a\n";
 
 /// Opens a file and makes sure that it is ours, whole, and not from the future.
 fn open(path: &Path) -> Result<File, Error> {

@@ -1,6 +1,9 @@
 //! A user's own spectrum or rate, judged as the models are.
 
+use super::tunnelling;
+use crate::field::{Field, Pulse};
 use crate::spectrum::EnergyAxis;
+use crate::units::intensity;
 
 /// Positive values over rising positions, joined by straight lines of the logarithm.
 #[derive(Clone, Debug, PartialEq)]
@@ -40,6 +43,37 @@ pub enum BadCurve {
         /// Its value.
         value: f64,
     },
+}
+
+/// What a curve of rates is a function of.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum RateOver {
+    /// Of a static field's strength, a.u.: taken at every moment.
+    Field,
+    /// Of the intensity, W/cm², averaged over a cycle: taken at that of the envelope, of light along a line.
+    Intensity,
+}
+
+impl RateOver {
+    fn position(self, field: &Field, t: f64) -> f64 {
+        let envelope = |p: &Pulse| p.peak_field * p.envelope.value_and_slope(t - p.centre).0;
+        match self {
+            Self::Field => {
+                let [x, y] = field.electric_field(t);
+                x.hypot(y)
+            }
+            Self::Intensity => intensity(field.pulses.iter().map(envelope).sum()),
+        }
+    }
+}
+
+/// The field goes beyond the last entry of a curve of rates.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Beyond {
+    /// Where the curve ends.
+    pub last: f64,
+    /// Where the field goes.
+    pub reached: f64,
 }
 
 impl Curve {
@@ -88,6 +122,23 @@ impl Curve {
     /// Values on an energy axis, positions being energies in hartree: a spectrum beside the full run's.
     pub fn on(&self, axis: EnergyAxis) -> Vec<f64> {
         axis.values().into_iter().map(|e| self.at(e)).collect()
+    }
+
+    /// Probability to be ionized at `times` (rising, a.u.) where the values are rates, 1/a.u. of time: 1 - exp(-∫w dt), Simpson's rule
+    /// between the times. Below its first entry the rate is taken for zero.
+    ///
+    /// # Errors
+    /// [`Beyond`].
+    pub fn ionization(&self, over: RateOver, field: &Field, times: &[f64]) -> Result<Vec<f64>, Beyond> {
+        let (first, last) = self.domain();
+        let middles = times.windows(2).map(|pair| 0.5 * (pair[0] + pair[1]));
+        let positions = times.iter().copied().chain(middles).map(|t| over.position(field, t));
+        let reached = positions.fold(0.0, f64::max);
+        if reached > last {
+            return Err(Beyond { last, reached });
+        }
+        let rate = |position: f64| if position < first { 0.0 } else { self.at(position) };
+        Ok(tunnelling::ionization(times, |t| rate(over.position(field, t))))
     }
 
     /// Integrals over half a photon around orders 1 … `orders`, positions being energies in hartree; NaN where the curve does not

@@ -1,6 +1,10 @@
 //! How far a model is from the full result, each number with the full result's error bar, so that a difference smaller than the bar is
 //! not called one.
 
+mod electrons;
+
+pub use electrons::{Breaks, ElectronComparison, FLOOR, breaks, compare_electrons, moving_mean};
+
 use std::f64::consts::{LN_10, PI};
 use std::ops::RangeInclusive;
 

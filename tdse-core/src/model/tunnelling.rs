@@ -62,18 +62,7 @@ impl Rate {
     ///
     /// Averaged rates hear of pulses alone, not of a sampled field.
     pub fn ionization(&self, field: &Field, times: &[f64]) -> Vec<f64> {
-        let mut exponent = 0.0;
-        let mut last = times.first().map(|&t| (t, self.during(field, t)));
-        let mut out = Vec::with_capacity(times.len());
-        for &t in times {
-            if let Some((before, rate)) = last {
-                let (middle, here) = (self.during(field, 0.5 * (before + t)), self.during(field, t));
-                exponent += (t - before) / 6.0 * (rate + 4.0 * middle + here);
-                last = Some((t, here));
-            }
-            out.push(-f64::exp_m1(-exponent));
-        }
-        out
+        ionization(times, |t| self.during(field, t))
     }
 
     /// Factor on the whole field at which the probability after it is 1 - 1/e; `None` where no factor between 1e-3 and 1e3
@@ -102,6 +91,22 @@ impl Rate {
         let peak = field.pulses.first()?.peak_field;
         self.saturation(field).map(|factor| units::intensity(peak * factor))
     }
+}
+
+/// 1 - exp(-∫w dt) at `times` (rising), Simpson's rule between them.
+pub(super) fn ionization(times: &[f64], rate: impl Fn(f64) -> f64) -> Vec<f64> {
+    let mut exponent = 0.0;
+    let mut last = times.first().map(|&t| (t, rate(t)));
+    let mut out = Vec::with_capacity(times.len());
+    for &t in times {
+        if let Some((before, known)) = last {
+            let (middle, here) = (rate(0.5 * (before + t)), rate(t));
+            exponent += (t - before) / 6.0 * (known + 4.0 * middle + here);
+            last = Some((t, here));
+        }
+        out.push(-f64::exp_m1(-exponent));
+    }
+    out
 }
 
 fn scaled(field: &Field, factor: f64) -> Field {

@@ -34,7 +34,7 @@ pub struct Models {
     /// Harmonics of the strong-field packet that recombines by the atom's own dipole.
     #[schemars(example = json!({}))]
     pub recombination: Option<Plain>,
-    /// A spectrum of your own.
+    /// A spectrum, or rates, of your own.
     #[schemars(example = json!({ "file": "curve.csv" }))]
     pub curve: Option<Curve>,
 }
@@ -98,13 +98,20 @@ pub struct Tunnelling {
 pub struct Curve {
     /// Anything worth remembering.
     pub note: Option<String>,
-    /// CSV file, relative to the configuration's folder, with the header `photon_energy [eV],spectrum [au]` for harmonics or
-    /// `energy [eV],yield [1/eV]` for photoelectrons (any unit of energy).
+    /// CSV or HDF5 file, relative to the configuration's folder. The header of a CSV file is `photon_energy [eV],spectrum [au]` for
+    /// harmonics, `energy [eV],yield [1/eV]` for photoelectrons, `electric_field [V/m],rate [1/fs]` or
+    /// `intensity [W/cm^2],rate [1/fs]` for rates, or other units of the first column; rates may be in `au`.
     #[schemars(example = "curve.csv")]
     pub file: String,
-    /// SHA-256 that the contents must have.
+    /// Path of the values in an HDF5 file; of a result of this program the spectrum if left out.
+    #[schemars(example = &"/spectra/mine")]
+    pub dataset: Option<String>,
+    /// Path of what they are values over. Both datasets have an attribute `units` as the Python library pint reads it.
+    #[schemars(example = &"/spectra/energy")]
+    pub axis: Option<String>,
+    /// SHA-256 that the contents of a CSV file must have.
     pub sha256: Option<String>,
-    /// The spectrum that it is laid beside.
+    /// What it is laid beside.
     #[serde(default)]
     pub of: CurveOf,
 }
@@ -118,6 +125,10 @@ pub enum CurveOf {
     Harmonics,
     /// The electron spectrum of both directions.
     Photoelectrons,
+    /// The ionization probability: the rate in a static field, over its strength, at every moment of the pulse.
+    RateOverField,
+    /// The ionization probability: the rate averaged over a cycle, over the intensity, under the envelope of the only pulse.
+    RateOverIntensity,
 }
 
 /// Largest differences that count as agreement.

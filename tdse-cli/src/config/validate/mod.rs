@@ -1,6 +1,7 @@
 //! From the raw configuration to a [`Request`]: what the schema cannot say, and conversion to atomic units.
 
 mod atom;
+mod curve;
 mod electrons;
 mod field;
 mod models;

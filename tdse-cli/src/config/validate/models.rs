@@ -1,15 +1,14 @@
 //! `models`: what each needs of atom, field and outputs.
 
 use tdse_core::field::Field;
-use tdse_core::model::curve::Curve;
 use tdse_core::model::metrics::Tolerance;
 use tdse_core::model::quantum_orbits::QuantumOrbits;
 
 use super::Check;
-use crate::config::complaint::Fix;
-use crate::config::models::{CurveOf, Model, Models, Survival};
+use super::curve::curve;
+use crate::config::models::{Model, Models, Survival};
 use crate::config::pointer::join;
-use crate::config::{raw, tables};
+use crate::config::raw;
 
 /// The models asked for; `None` without the key.
 pub(super) fn models(check: &mut Check, written: &raw::Configuration, field: &Field) -> Option<Models> {
@@ -27,7 +26,7 @@ pub(super) fn models(check: &mut Check, written: &raw::Configuration, field: &Fi
     );
     asked.extend(raw.perturbation.as_ref().map(|_| Model::Perturbation));
     asked.extend(raw.recombination.as_ref().map(|_| Model::Recombination));
-    asked.extend(raw.curve.as_ref().and_then(|curve| user_curve(check, curve)));
+    asked.extend(raw.curve.as_ref().and_then(|table| curve(check, table, field)));
     for model in &asked {
         if let Some((reason, allowed)) = unfit(model, written, field) {
             let fix = check.without("/models", model.name());
@@ -99,35 +98,5 @@ fn unfit_on_plane(model: &Model, state: &raw::State) -> Option<(String, &'static
             "the key beside a state of angular momentum 0; every other model beside this one",
         )),
         _ => None,
-    }
-}
-
-fn user_curve(check: &mut Check, raw: &raw::Curve) -> Option<Model> {
-    const PLACE: &str = "/models/curve";
-    let (of, layout, key, output) = match raw.of {
-        raw::CurveOf::Harmonics => (CurveOf::Harmonics, tables::SPECTRUM, "harmonics", "/outputs/harmonics"),
-        raw::CurveOf::Photoelectrons => {
-            (CurveOf::Photoelectrons, tables::YIELD, "photoelectrons", "/outputs/photoelectrons")
-        }
-    };
-    if check.tree.pointer(output).is_none() {
-        let fix = check.without("/models", "curve");
-        let reason = format!("is laid beside outputs.{key}, which is not there");
-        check.complain(PLACE, reason, "that output, or the key left out", fix);
-    }
-    let table = check.table(PLACE, &raw.file, raw.sha256.as_ref(), layout)?;
-    let (positions, values) = table.points();
-    match Curve::new(positions.to_vec(), values.to_vec()) {
-        Ok(curve) => Some(Model::Curve { of, curve }),
-        Err(error) => {
-            let fix = Fix::Words("correct the file".into());
-            check.complain(
-                &join(PLACE, "file"),
-                format!("holds no curve: {error}"),
-                "values of 0 or more",
-                fix,
-            );
-            None
-        }
     }
 }

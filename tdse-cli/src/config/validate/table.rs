@@ -8,7 +8,9 @@ use tdse_core::cubic::Cubic;
 
 use super::Check;
 use crate::config::complaint::Fix;
+use crate::config::library::Table;
 use crate::config::pointer::{join, nearest};
+use crate::config::stored::Places;
 use crate::config::tables::{Input, Layout};
 
 impl Check<'_> {
@@ -38,6 +40,39 @@ impl Check<'_> {
                 return None;
             }
         };
+        self.kept(user, file, sha256, table)
+    }
+
+    /// The table in two datasets of the HDF5 file that the object at `user` names; of it the table alone is kept.
+    pub(super) fn stored_table(
+        &mut self,
+        user: &str,
+        file: &str,
+        places: Places,
+        layout: Layout,
+    ) -> Option<Arc<Cubic>> {
+        match self.library.stored(file, places, layout) {
+            Ok(table) => self.kept(user, file, None, table)?.into_iter().next(),
+            Err(fault) => {
+                // Where the user left the dataset out, the file is to blame.
+                let own = join(user, fault.key);
+                let place = if self.tree.pointer(&own).is_some() { own } else { join(user, "file") };
+                let name = if fault.key == "axis" { places.axis } else { places.dataset };
+                let reason = format!("leads to {name} in {file:?}, which {}", fault.reason);
+                let fix = Fix::Words("name another dataset, or correct the file".into());
+                self.complain(&place, reason, fault.allowed, fix);
+                None
+            }
+        }
+    }
+
+    fn kept(
+        &mut self,
+        user: &str,
+        file: &str,
+        sha256: Option<&String>,
+        table: Table,
+    ) -> Option<Vec<Arc<Cubic>>> {
         let input = Input::new(user, file, table.contents);
         if sha256.is_some_and(|wanted| *wanted != input.sha256) {
             self.complain(

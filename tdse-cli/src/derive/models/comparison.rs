@@ -1,6 +1,8 @@
 //! How far every model is from the full result, from the arrays of a result alone: at once for a run, and again for a whole
 //! scan when it has got error bars.
 
+mod electrons;
+
 use std::collections::{BTreeMap, BTreeSet};
 use std::ops::RangeInclusive;
 
@@ -14,7 +16,7 @@ use crate::store::{Contents, ScanDimension};
 /// Fewest orders that make a plateau.
 const FEWEST: usize = 4;
 
-/// Models that stand for ionization: the others are judged by the harmonics, or the yields of electrons where a curve is one.
+/// Models that stand for ionization: the others are judged by the harmonics, or the electrons where they have no harmonics.
 const OF_IONIZATION: [&str; 2] = ["tunnelling", "perturbation"];
 
 /// Names of the models that a result holds.
@@ -77,24 +79,22 @@ impl Numbers {
         };
         let photon = full("first_photon_energy").value;
         numbers.harmonics(contents, name, index, tolerance);
+        numbers.electrons(contents, name, index, tolerance);
         if !numbers.reals.contains_key("cutoff_difference")
             && let Some(cutoff) = model("cutoff_energy")
         {
             let known = full("cutoff_energy");
             let error = known.error.map(|error| error / photon);
             let metric = Metric { value: (cutoff - known.value) / photon, neutral: 0.0, error };
-            numbers.judge("cutoff_difference", "cutoff_verdict", metric, tolerance.orders);
+            numbers.judge(OF_PLATEAU[0], metric, tolerance.orders);
         }
-        if let Some(phase) = model("phase_difference") {
+        if let Some(phase) = model(PHASE.0) {
             let metric = Metric { value: phase, neutral: 0.0, error: None };
-            numbers.judge("phase_difference", "phase_verdict", metric, tolerance.phase);
+            numbers.judge(PHASE, metric, tolerance.phase);
         }
-        for (own, known, ratio, verdict) in [
-            ("ionization_probability", "ionization_probability", "ionization_ratio", "ionization_verdict"),
-            ("electron_yield", "electron_yield", "electron_yield_ratio", "electron_yield_verdict"),
-        ] {
-            if let Some(value) = model(own) {
-                numbers.judge(ratio, verdict, Metric::ratio(value, full(known)), tolerance.ratio);
+        for (number, ratio, verdict) in OF_RATIOS {
+            if let Some(value) = model(number) {
+                numbers.judge((ratio, verdict), Metric::ratio(value, full(number)), tolerance.ratio);
             }
         }
         numbers.verdicts.insert("verdict", numbers.verdict(name));
@@ -137,26 +137,52 @@ impl Numbers {
             (found.shifted_distance, tolerance.decades),
             (found.yields, tolerance.ratio),
         ];
-        for ((number, verdict), (metric, tolerance)) in OF_PLATEAU.into_iter().zip(metrics) {
-            self.judge(number, verdict, metric, tolerance);
+        for (names, (metric, tolerance)) in OF_PLATEAU.into_iter().zip(metrics) {
+            self.judge(names, metric, tolerance);
         }
     }
 
-    fn judge(&mut self, number: &'static str, verdict: &'static str, metric: Metric, tolerance: f64) {
+    fn judge(&mut self, (number, verdict): (&'static str, &'static str), metric: Metric, tolerance: f64) {
         self.reals.insert(number, (metric.value, metric.error.filter(|error| error.is_finite())));
         self.verdicts.insert(verdict, metric.verdict(tolerance));
     }
 
-    /// Shape of the harmonics, or what is ionized.
+    /// Shape of the harmonics, else of the electrons, else what is ionized.
     fn verdict(&self, name: &str) -> Verdict {
         let of = |names: &[&str]| worst(names.iter().filter_map(|name| self.verdicts.get(name).copied()));
-        match of(&["cutoff_verdict", "slope_verdict", "shape_verdict"]) {
-            _ if OF_IONIZATION.contains(&name) => of(&["ionization_verdict"]),
-            Verdict::Missing if name == "curve" => of(&["electron_yield_verdict"]),
-            harmonics => harmonics,
-        }
+        let shapes = [&["cutoff_verdict", "slope_verdict", "shape_verdict"][..], &["electron_shape_verdict"]];
+        let found = shapes.into_iter().filter(|_| !OF_IONIZATION.contains(&name)).map(of);
+        found
+            .chain([of(&["ionization_verdict"])])
+            .find(|v| *v != Verdict::Missing)
+            .unwrap_or(Verdict::Missing)
     }
 }
+
+/// Every number that is judged, and the dataset of its verdict.
+pub fn judged() -> impl Iterator<Item = (&'static str, &'static str)> {
+    OF_PLATEAU
+        .into_iter()
+        .chain(OF_ELECTRONS)
+        .chain(OF_LIMITS)
+        .chain(OF_RATIOS.map(|(_, ratio, verdict)| (ratio, verdict)))
+        .chain([PHASE])
+}
+
+const PHASE: (&str, &str) = ("phase_difference", "phase_verdict");
+/// Distances of electron spectra, before and after the shift.
+const OF_ELECTRONS: [(&str, &str); 2] = [
+    ("electron_distance", "electron_distance_verdict"),
+    ("electron_shifted_distance", "electron_shape_verdict"),
+];
+/// Classical limits beside the breaks of the full electron spectrum.
+const OF_LIMITS: [(&str, &str); 2] =
+    [("direct_difference", "direct_verdict"), ("rescattering_difference", "rescattering_verdict")];
+/// Numbers that the summary has too, with their ratios and verdicts.
+const OF_RATIOS: [(&str, &str, &str); 2] = [
+    ("ionization_probability", "ionization_ratio", "ionization_verdict"),
+    ("electron_yield", "electron_yield_ratio", "electron_yield_verdict"),
+];
 
 /// Numbers of the plateau with their verdicts, in the order of [`compare_harmonics`].
 const OF_PLATEAU: [(&str, &str); 6] = [

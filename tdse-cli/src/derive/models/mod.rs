@@ -23,7 +23,7 @@ use crate::scan::prepare::Point;
 use crate::store::Contents;
 use run::Run;
 
-pub use comparison::{compare, names};
+pub use comparison::{compare, judged, names};
 
 /// (Re)makes the models that the point asks for. A model that fails leaves the reason as the remark `failure` beside its comparison:
 /// the full result is there without it.
@@ -70,7 +70,7 @@ fn put(model: &Model, run: &Run, atoms: &Atoms, contents: &mut Contents) -> Resu
         Model::Tunnelling { angular_momentum } => ionization::tunnelling(contents, run, *angular_momentum)?,
         Model::Perturbation if run.dimensions() == 2 => perturbation::on_plane(contents, run)?,
         Model::Perturbation => perturbation::put(contents, run, &run.line()?, &*continuum()?),
-        Model::Curve { of, curve } => curve::put(contents, run, *of, curve),
+        Model::Curve { of, curve } => curve::put(contents, run, *of, curve)?,
     }
     Ok(())
 }

@@ -25,7 +25,7 @@ pub fn pictures(contents: &Contents) -> Vec<Drawn> {
     if contents.scan().is_empty() {
         return run::pictures(contents).into_iter().chain(models::of_run(contents)).collect();
     }
-    let of_models = [models::of_scan(contents), models::branches(contents)].into_iter().flatten();
+    let of_models = models::of_scan(contents).into_iter().chain(models::branches(contents));
     of_models.chain(survey::pictures(contents)).collect()
 }
 

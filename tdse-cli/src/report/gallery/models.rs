@@ -8,7 +8,8 @@ use super::super::verdict::{self, VerdictPicture};
 use super::survey::Parameter;
 use super::{Drawn, MAP_DECADES, SPECTRUM, fundamental, remark, rows, slice};
 use crate::derive::models::{branches::BRANCHES, names};
-use crate::store::{Contents, Values};
+use crate::scan::points::position;
+use crate::store::{Contents, ScanDimension, Values};
 
 /// What both components radiate.
 const RADIATED: &str = "radiated energy per unit photon energy";
@@ -83,16 +84,24 @@ fn returns(contents: &Contents) -> Option<Drawn> {
 }
 
 fn ionization(contents: &Contents) -> Option<Drawn> {
-    let group = "models/tunnelling/ionization";
-    let time = slice(contents, group, "time");
+    let time = slice(contents, "populations", "time");
     let left = slice(contents, "populations", "initial_population");
     if time.is_empty() || left.len() != time.len() {
         return None;
     }
     let gone: Vec<f64> = left.iter().map(|p| 1.0 - p).collect();
-    let rates = [("quasi-static", "probability"), ("ADK (3D)", "adk"), ("PPT (3D)", "ppt")];
-    let rates = rates.map(|(name, array)| (name, slice(contents, group, array)));
-    let rates = rates.into_iter().filter(|(_, values)| !values.is_empty());
+    let rates = [
+        ("quasi-static", "tunnelling", "probability"),
+        ("ADK (3D)", "tunnelling", "adk"),
+        ("PPT (3D)", "tunnelling", "ppt"),
+        ("curve", "curve", "probability"),
+    ];
+    let of = |model: &str, array| slice(contents, &format!("models/{model}/ionization"), array);
+    let rates = rates.map(|(name, model, array)| (name, of(model, array)));
+    let rates: Vec<_> = rates.into_iter().filter(|(_, values)| values.len() == time.len()).collect();
+    if rates.is_empty() {
+        return None;
+    }
     Some(Drawn {
         name: "ionization".into(),
         svg: draw_ionization(&IonizationPicture {
@@ -106,10 +115,35 @@ fn ionization(contents: &Contents) -> Option<Drawn> {
     })
 }
 
-/// Verdicts over a scan of one or two dimensions.
-pub(super) fn of_scan(contents: &Contents) -> Option<Drawn> {
-    let parameters: Vec<Parameter> = contents.scan().iter().map(Parameter::of).collect();
-    let (first, second) = match &parameters[..] {
+/// Most slices of a scan over more than two dimensions that are drawn.
+const MOST_SLICES: usize = 12;
+
+/// Verdicts over a scan: over its last two dimensions, one picture for every value of those before.
+pub(super) fn of_scan(contents: &Contents) -> Vec<Drawn> {
+    let scan = contents.scan();
+    let (before, shown) = scan.split_at(scan.len().saturating_sub(2));
+    let [parameters, outer] = [shown, before].map(|part| part.iter().map(Parameter::of).collect::<Vec<_>>());
+    let lengths: Vec<usize> = before.iter().map(ScanDimension::length).collect();
+    let slices: usize = lengths.iter().product();
+    let drawn = slices.min(MOST_SLICES);
+    // Evenly among all, the first and the last with them.
+    let numbers = (0..drawn).map(|n| n * (slices - 1) / drawn.saturating_sub(1).max(1));
+    let slice = |number: usize| {
+        let place = position(number, &lengths);
+        let said: Vec<String> = outer.iter().zip(place).map(|(parameter, i)| parameter.said(i)).collect();
+        verdicts(contents, &parameters, (number, slices), &said.join(", "))
+    };
+    numbers.filter_map(slice).collect()
+}
+
+/// One slice of so many, which stands at these values of the other parameters.
+fn verdicts(
+    contents: &Contents,
+    parameters: &[Parameter],
+    (number, slices): (usize, usize),
+    said: &str,
+) -> Option<Drawn> {
+    let (first, second) = match parameters {
         [first] => (first, None),
         [first, second] => (first, Some(second)),
         _ => return None,
@@ -119,19 +153,28 @@ pub(super) fn of_scan(contents: &Contents) -> Option<Drawn> {
     let models: Vec<(&str, Vec<i64>)> = names
         .iter()
         .filter_map(|name| match contents.get(&group(name), "verdict")? {
-            Values::Integer(verdicts) => Some((name.as_str(), verdicts.iter().copied().collect())),
+            Values::Integer(verdicts) => {
+                let size = verdicts.len() / slices;
+                Some((name.as_str(), verdicts.iter().copied().skip(number * size).take(size).collect()))
+            }
             _ => None,
         })
         .collect();
     let keldysh = slice(contents, &group(models.first()?.0), "keldysh_parameter");
+    let size = keldysh.len() / slices;
+    let title = &contents.provenance.title;
+    let (name, title) = match slices {
+        1 => ("verdict".into(), title.clone()),
+        _ => (format!("verdict_{}", number + 1), format!("{title}, {said}")),
+    };
     Some(Drawn {
-        name: "verdict".into(),
+        name,
         svg: verdict::draw(&VerdictPicture {
-            title: &contents.provenance.title,
+            title: &title,
             first: first.axis(),
             second: second.map(Parameter::axis),
             models: models.iter().map(|(name, verdicts)| (*name, verdicts.as_slice())).collect(),
-            keldysh,
+            keldysh: keldysh.get(number * size..(number + 1) * size).unwrap_or_default(),
         }),
         caption: "Where each simpler model stays within the tolerance; γ is the Keldysh parameter.".into(),
         alternative: "Cells over the scanned parameters, coloured by the verdict on every model.".into(),

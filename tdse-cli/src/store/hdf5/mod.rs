@@ -8,7 +8,7 @@ mod terminated;
 use std::path::Path;
 
 use hdf5_metno::file::FileCloseDegree;
-use hdf5_metno::types::VarLenUnicode;
+use hdf5_metno::types::{FixedAscii, FixedUnicode, VarLenAscii, VarLenUnicode};
 use hdf5_metno::{Dataset, H5Type, Hyperslab, Location, LocationType, SliceOrIndex};
 use ndarray::ArrayD;
 
@@ -18,6 +18,11 @@ use super::values::Values;
 /// The library's account of what failed.
 pub(super) type Failure = hdf5_metno::Error;
 type Result<T> = std::result::Result<T, Failure>;
+
+/// The first bytes of every HDF5 file (HDF5 File Format Specification 3.0, section II.A).
+pub(super) const SIGNATURE: &[u8] = b"\x89HDF\r\n\x1a\n";
+/// Longest text of fixed length that is read.
+const LONGEST: usize = 256;
 
 /// Whether the array is stored as it is, not compressed.
 pub(super) fn is_plain(values: &Values) -> bool {
@@ -241,6 +246,16 @@ impl Node {
             return Ok(None);
         }
         Ok(Some(dataset.attr(attribute)?.read_scalar::<VarLenUnicode>()?.to_string()))
+    }
+
+    /// The same in whatever form other programs store a text; none where there is no such attribute.
+    pub fn any_text_of(&self, name: &str, attribute: &str) -> Option<String> {
+        let attribute = self.0.dataset(name).and_then(|dataset| dataset.attr(attribute)).ok()?;
+        let varying = attribute.read_scalar::<VarLenUnicode>().map(|text| text.to_string());
+        let ascii = || attribute.read_scalar::<VarLenAscii>().map(|text| text.to_string());
+        let fixed = || attribute.read_scalar::<FixedAscii<LONGEST>>().map(|text| text.to_string());
+        let fixed_unicode = || attribute.read_scalar::<FixedUnicode<LONGEST>>().map(|text| text.to_string());
+        varying.or_else(|_| ascii()).or_else(|_| fixed()).or_else(|_| fixed_unicode()).ok()
     }
 
     /// The element type of the dataset `name`.
