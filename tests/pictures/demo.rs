@@ -11,8 +11,10 @@ use tdse_cli::report::populations::PopulationPicture;
 use tdse_cli::report::scale::{Kind, Range};
 use tdse_cli::report::scan::{NumberMap, NumberScan, SpectrumScan};
 use tdse_cli::report::time_frequency::TimeFrequencyPicture;
+use tdse_cli::report::verdict::VerdictPicture;
 use tdse_cli::report::{
-    electrons, field, figure, harmonics, lissajous, momentum_map, populations, scan, time_frequency,
+    electrons, field, figure, harmonics, lissajous, models, momentum_map, populations, scan, time_frequency,
+    verdict,
 };
 
 /// `count` values from `from` to `to`, ends included.
@@ -77,8 +79,40 @@ pub fn all() -> Vec<(&'static str, String)> {
     pictures.extend(electron_pictures());
     pictures.extend([("populations_linear", populations_of(0.4)), ("populations_log", populations_of(1e-4))]);
     pictures.extend(scans());
+    pictures.extend(of_models());
     pictures.push(("comparison", comparison()));
     pictures
+}
+
+/// Verdicts along one parameter, of numbers, of one Keldysh parameter, and of words; slopes of short and long paths.
+fn of_models() -> [(&'static str, String); 4] {
+    let numbers = even(6e13, 1.8e14, 41);
+    let words: Vec<String> = ["H", "He", "Ne", "Ar"].map(str::to_owned).into();
+    let verdicts: Vec<i64> = (0..41).map(|i| (i / 9) % 4 - 1).collect();
+    let gammas: Vec<f64> = numbers.iter().map(|i| 1.07 / (i / 1e14).sqrt()).collect();
+    let rows = |values, keldysh: &[f64]| {
+        let count = keldysh.len();
+        let models = vec![("strong_field", &verdicts[..count]), ("tunnelling", &verdicts[41 - count..])];
+        let first = Axis { name: "intensity", unit: "W/cm²", values };
+        verdict::draw(&VerdictPicture { title: "Invented verdicts", first, second: None, models, keldysh })
+    };
+    let orders = even(9.0, 51.0, 22);
+    let short: Vec<f64> = orders.iter().map(|q| 1e-14 * (q - 12.0).min(12.0)).collect();
+    let long: Vec<f64> = short.iter().map(|slope| 24e-14 - slope).collect();
+    let off = |slopes: &[f64]| -> Vec<f64> { slopes.iter().map(|slope| 1.1 * slope).collect() };
+    let branches = models::draw_branches(&models::BranchPicture {
+        title: "Invented paths",
+        orders: &orders,
+        full: [&off(&short), &off(&long)],
+        orbits: [&short, &long],
+        place: "At intensity 1.2·10¹⁴ W/cm²",
+    });
+    [
+        ("verdict_numbers", rows(Values::Linear(&numbers), &gammas)),
+        ("verdict_one_keldysh", rows(Values::Linear(&numbers[..12]), &[1.07; 12])),
+        ("verdict_words", rows(Values::Text(&words), &[1.07, 1.4, 1.3, 1.1])),
+        ("branches", branches),
+    ]
 }
 
 /// Of two dimensions: a field's figure, a rose, a ring of momenta, two helicities.
