@@ -337,6 +337,16 @@ fn spectrum_stops_at_its_floor() {
     }
 }
 
+/// Along one parameter that leaves it alone, the Keldysh parameter is said once; else round values of it are marked.
+#[test]
+fn the_keldysh_parameter_is_said() {
+    let of = |wanted: &str| demo::all().into_iter().find(|(name, _)| *name == wanted).unwrap().1;
+    assert!(of("verdict_one_keldysh").contains("Keldysh parameter 1.07<"));
+    let marked = of("verdict_numbers");
+    assert!(marked.contains("Keldysh parameter<") && marked.contains(">1.2<") && !marked.contains(">1.07<"));
+    assert!(of("verdict_words").contains(">1.4<"));
+}
+
 /// Missing points are counted in the title of a map, below a curve, and hatched.
 #[test]
 fn missing_points_are_said() {

@@ -98,11 +98,12 @@ fn keldysh(picture: &VerdictPicture<'_>) -> (Ticks, String) {
         picture.first.numbers().into_iter().zip(picture.keldysh.iter().copied()).collect();
     points.retain(|(_, gamma)| gamma.is_finite());
     points.sort_by(|a, b| a.0.total_cmp(&b.0));
-    let Some(range) = Range::of(points.iter().map(|(_, gamma)| *gamma), Kind::Linear) else {
+    let range = Range::of(points.iter().map(|(_, gamma)| *gamma), Kind::Linear);
+    let (Some(range), Some(&(_, first))) = (range, points.first()) else {
         return (Ticks::default(), String::new());
     };
-    if picture.keldysh.iter().all(|gamma| (gamma / range.low - 1.0).abs() < SAME) {
-        return (Ticks::default(), format!("{NAME} {}", significant(range.low, 3)));
+    if points.iter().all(|(_, gamma)| (gamma / first - 1.0).abs() < SAME) {
+        return (Ticks::default(), format!("{NAME} {}", significant(first, 3)));
     }
     if let Values::Text(_) = picture.first.values {
         let major = points.into_iter().map(|(at, gamma)| (at, significant(gamma, 2)));
