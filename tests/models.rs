@@ -93,6 +93,10 @@ fn models_are_derived_anew_and_a_planted_curve_is_recognised() {
     assert!((level - 1.5f64.log10()).abs() < 2e-3 && shifted < 2e-3, "level {level}, shifted {shifted}");
     assert!((of(&result, "curve", "harmonic_yield_ratio")[0] - 1.5).abs() < 5e-3);
     assert!(of(&result, "curve", "cutoff_difference")[0].abs() < 1e-9);
+    let [own, full, off] = ["cutoff_energy", "full_cutoff", "cutoff_difference"]
+        .map(|name| of(&result, "strong_field", name)[0]);
+    let photon = numbers(&result, "summary", "first_photon_energy")[0];
+    assert!(((own - full) / photon - off).abs() < 1e-9, "{own} and {full} eV are {off} photons apart");
     // 1 is within the tolerance, 2 different; without bars nothing is within them.
     assert_eq!(verdicts(&result, "curve", "shape_verdict"), [1]);
     assert_eq!(verdicts(&result, "curve", "distance_verdict"), [2]);
@@ -324,7 +328,7 @@ fn comparisons_get_the_bars_of_the_full_result() {
 
 /// Paulus, Becker, Nicklich, Walther, J. Phys. B 27, L703 (1994): electrons scattered back reach 10 Up, those that do not return 2 Up;
 /// in the full spectrum the plateau ends there (measured 2.1 photons above the classical limit of this pulse), and the first break
-/// lies higher, where scattering begins to fill the fall (3.1 photons). The planted curve is half as large again as the full spectrum.
+/// lies 3.1 photons higher. The planted curve is half as large again as the full spectrum.
 #[test]
 fn electron_spectra_are_compared() {
     let folder = tempfile::tempdir().unwrap();

@@ -126,6 +126,8 @@ pub struct HarmonicComparison {
     pub cutoff: Metric,
     /// Measured cutoff of the model, orders; NaN where there is none.
     pub model_cutoff: f64,
+    /// The same of the full run, which may differ from the knee of all its orders.
+    pub full_cutoff: f64,
     /// Difference of the plateau's slopes, decades per order.
     pub slope: Metric,
     /// Difference of the plateau's levels in its middle, decades.
@@ -172,7 +174,7 @@ pub fn compare_harmonics(
         let upper = yields.get(middle - 1..).and_then(measured_cutoff).map(|c| c.order + (middle - 1) as f64);
         upper.or_else(|| measured_cutoff(yields).map(|c| c.order)).unwrap_or(f64::NAN)
     };
-    let model_cutoff = knee(model);
+    let (model_cutoff, full_cutoff) = (knee(model), knee(&values));
     let points = points(model, full, &plateau);
     let differences: Vec<f64> = points.iter().map(|p| p.model - p.full).collect();
     let bars: Option<Vec<f64>> = points.iter().map(|p| p.bar).collect();
@@ -190,8 +192,9 @@ pub fn compare_harmonics(
     );
     HarmonicComparison {
         plateau,
-        cutoff: Metric::difference(model_cutoff - knee(&values), cutoff_error),
+        cutoff: Metric::difference(model_cutoff - full_cutoff, cutoff_error),
         model_cutoff,
+        full_cutoff,
         slope: Metric::difference(slope, slope_bar),
         level: Metric::difference(level, bars.as_deref().map(mean)),
         distance: Metric::difference(rms(&differences), rms_bar),

@@ -129,6 +129,7 @@ impl Numbers {
         let found = compare_harmonics(&model[..known], &full, plateau, cutoff_error);
         self.reals.insert("vertical_shift", (found.shift, None));
         self.reals.insert("cutoff_energy", (found.model_cutoff * photon, None));
+        self.reals.insert("full_cutoff", (found.full_cutoff * photon, None));
         let metrics = [
             (found.cutoff, tolerance.orders),
             (found.slope, tolerance.slope),

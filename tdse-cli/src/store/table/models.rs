@@ -110,6 +110,12 @@ pub(super) const COMPARISON: Group = Group {
         flag("verdict", &[], "Worst verdict of the numbers the model stands for"),
         value("keldysh_parameter", NUMBER, &[], "Keldysh parameter, all pulses together"),
         value("cutoff_energy", "eV", &[], "Cutoff of the model"),
+        value(
+            "full_cutoff",
+            "eV",
+            &[],
+            "Cutoff of the full result, by the upper half of the plateau as the model's",
+        ),
         value("ionization_probability", NUMBER, &[], "Ionization probability of the model"),
         value(
             "electron_yield",
