@@ -114,8 +114,9 @@ pub struct Wish<'a> {
     /// What the user fixed.
     pub pins: &'a Pins,
     /// Error asked for: of the dipole acceleration, relative in root-mean-square over the run; of every harmonic yield up to the
-    /// cutoff and above [`FLOOR`], relative; and absolute of the ionization probability, where populations are asked for;
-    /// and relative of the peaks of an electron spectrum above 1e-4 of the highest ([`choose_for_electrons`], one dimension).
+    /// cutoff and above [`FLOOR`], relative; in one dimension also absolute of the ionization probability,
+    /// where populations are asked for and a Coulomb tail is known by its formula, and relative of the peaks of an electron spectrum by
+    /// scattering states above 1e-4 of the highest ([`choose_for_electrons`]).
     pub accuracy: f64,
     /// Number of bound states whose populations are asked for.
     pub populations: usize,

@@ -28,7 +28,7 @@ pub use round::RoundStates;
 pub use round_continuum::{RoundContinuum, RoundWave};
 pub use round_photon::{NoTransition, RoundDipole, RoundTransitions};
 pub use scattering::{NoContinuum, Scattering, ScatteringStates, Side};
-pub use threshold::Tail;
+pub use threshold::BoundSeries;
 pub use tune::{Softenable, tune_plane_softening, tune_radial_softening, tune_softening};
 
 /// Why a stationary state could not be had.

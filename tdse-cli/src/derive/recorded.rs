@@ -8,7 +8,7 @@ use tdse_core::problem::InitialState;
 use tdse_core::quantities::classical_cutoff;
 use tdse_core::simulate::{Atom, Plan, State};
 use tdse_core::spectrum::twice_integrated;
-use tdse_core::stationary::{RoundStates, ScatteringStates, Tail};
+use tdse_core::stationary::{BoundSeries, RoundStates, ScatteringStates};
 
 use super::electrons::electrons;
 use super::{
@@ -178,7 +178,7 @@ fn levels(contents: &mut Contents, finished: &Finished) -> f64 {
     contents.insert("levels", "population", populations);
     match round {
         _ if confining => state.series.norm[state.step],
-        None => Tail::new(&point.job.problem.potential, &point.job.numerics.grid)
+        None => BoundSeries::new(&point.job.problem.potential, &point.job.numerics.grid)
             .bound_on_line(&every.0, &every.1),
         Some(round) => {
             let all = plan.round_populations(state, round, &mut plan.make_workspace());

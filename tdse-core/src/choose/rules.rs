@@ -1,7 +1,7 @@
 //! The rules: what an accuracy asks of grid, absorber and step. Every constant is common practice, checked by the tests
 //! of the shipped scenarios, with no single source unless one is named.
 
-use std::f64::consts::FRAC_PI_2;
+use std::f64::consts::{FRAC_PI_2, TAU};
 
 use num_complex::Complex;
 
@@ -162,9 +162,11 @@ impl Needs {
         let stiffness = stiffness(potential);
         let kink = match wish.facts.dimensions {
             1 => {
-                // Yields go with the ionization energy as e^{-4κ/E0} does, or as the phase over the whole run.
+                // Yields go with the ionization energy as e^{-4κ/E0} does, or as the phase of a returning electron, which is
+                // away for a period at most in what counts, or of the whole run.
+                let period = TAU * strength.quiver / strength.vector_potential;
                 let kappa = (2.0 * wish.facts.ionization_energy()).max(0.0).sqrt();
-                let sensitivity = (4.0 * kappa / strength.field).min(duration).max(1.0);
+                let sensitivity = (4.0 * kappa / strength.field).max(period).min(duration).max(1.0);
                 kink_spacing(potential, wish.accuracy / sensitivity)
             }
             _ => cusp_spacing(potential, wish.accuracy),
@@ -180,15 +182,16 @@ impl Needs {
         // What comes back went twice through the inner box: the wider that is, the faster it was, and the narrower the
         // absorber may be.
         let product = width_times_momentum((REFLECTED * wish.accuracy).powi(2));
-        // Where ionization is asked for, the absorber shall take nothing that is bound.
-        let diffuse = if wish.populations == 0 {
+        // Where ionization is asked for, the absorber shall take nothing that is bound; a plane of that size would be too dear.
+        let diffuse = if wish.populations == 0 || wish.facts.dimensions == 2 {
             0.0
         } else {
             bound_flight(potential.far_charge(), duration) * (BOUND_ACCURACY / wish.accuracy).cbrt()
                 + strength.quiver
         };
         let inner = atom_reach.max((0.5 * product * duration).sqrt());
-        let slowest = HELD * 2.0 * inner.max(diffuse) / duration;
+        let roomy = if wish.pins.extent.is_none() { inner.max(diffuse) } else { inner };
+        let slowest = HELD * 2.0 * roomy / duration;
         let width = (product / slowest).max(NARROWEST_ABSORBER);
         let needs_absorber =
             !confined && strength.field > 0.0 && flight.max(atom_reach) > inner.max(diffuse) + width;

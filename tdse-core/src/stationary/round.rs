@@ -9,7 +9,7 @@ use nalgebra::{DMatrix, DVector};
 use num_complex::Complex;
 
 use super::level::rough_radial_level;
-use super::{RadialFunction, StationaryError, Tail, radial_count_below};
+use super::{BoundSeries, RadialFunction, StationaryError, radial_count_below};
 use crate::grid::{Axis, Grid};
 use crate::potential::Potential;
 
@@ -26,7 +26,7 @@ pub struct RoundStates {
     /// The highest energy of each |m|, hartree.
     highest: Vec<f64>,
     /// What the box lacks of them.
-    tail: Tail,
+    series: BoundSeries,
 }
 
 impl RoundStates {
@@ -54,7 +54,7 @@ impl RoundStates {
             highest.extend(all.last().map(|(energy, _)| *energy));
             radial.push(all.into_iter().map(|(_, function)| function).collect());
         }
-        Ok(Self { radial, highest, tail: Tail::new(potential, grid) })
+        Ok(Self { radial, highest, series: BoundSeries::new(potential, grid) })
     }
 
     /// Number of states, m and -m counted apart.
@@ -81,7 +81,7 @@ impl RoundStates {
         let mut found = Vec::new();
         for ((m, sums), highest) in (0..).zip(&sums).zip(&self.highest) {
             let [forth, back] =
-                sums.shares(grid.cell()).map(|shares| self.tail.bound(Some(*highest), &shares));
+                sums.shares(grid.cell()).map(|shares| self.series.bound(Some(*highest), &shares));
             found.push((m, forth));
             if m > 0 {
                 found.push((-m, back));

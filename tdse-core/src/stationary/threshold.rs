@@ -10,17 +10,17 @@ use std::f64::consts::PI;
 use crate::grid::Grid;
 use crate::potential::Potential;
 
-/// The tail of an atom in a box.
+/// The series of bound states of an atom with a Coulomb tail, as a box holds it.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Tail {
+pub struct BoundSeries {
     /// Charge Z of -Z/r, zero for none.
     charge: f64,
     /// Half of the box, bohr.
     reach: f64,
 }
 
-impl Tail {
-    /// Tail of `potential` in the box of `grid`; in two dimensions in the circle that it holds.
+impl BoundSeries {
+    /// Those of `potential` in the box of `grid`; in two dimensions in the circle that it holds.
     pub fn new(potential: &Potential, grid: &Grid) -> Self {
         let [x, y] = grid.extents();
         let across = if grid.dimensions() == 1 { x } else { x.min(y) };
