@@ -281,6 +281,27 @@ fn a_fault_of_a_table_is_found_by_file_line_and_value() {
     }
 }
 
+/// In two dimensions positions are distances from the centre, which belongs to the table.
+#[test]
+fn a_table_on_a_plane_begins_at_the_centre() {
+    let folder = tempfile::tempdir().expect("a temporary folder");
+    let said = |first: f64| {
+        let table = format!("position [bohr],potential [eV]\n{first},-30\n1,-9\n2,-3\n90,0\n");
+        std::fs::write(folder.path().join("well.csv"), table).expect("a table");
+        let mut tree: Value = serde_json::from_str(ARGON).expect("an example");
+        tree["atom"] = json!({ "dimensions": 2, "potential": { "kind": "sampled", "file": "well.csv" } });
+        read(&text(&tree), &[], folder.path()).err().map(|complaints| complaints.to_string())
+    };
+    let allowed =
+        "in two dimensions its positions are distances from the centre; allowed: a table from 0 bohr on";
+    let complaint = |first: &str, fix: &str| {
+        Some(format!("/atom/potential/file: \"well.csv\" begins at {first} bohr; {allowed}; {fix}"))
+    };
+    assert_eq!(said(0.0), None);
+    assert_eq!(said(0.05), complaint("0.05", "begin the table with a row at 0 bohr"));
+    assert_eq!(said(-0.5), complaint("-0.5", "at /atom/dimensions try 1"));
+}
+
 #[test]
 fn overrides_are_applied_in_order_and_may_add_known_keys() {
     let sets = [

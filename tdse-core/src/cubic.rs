@@ -21,10 +21,23 @@ impl Cubic {
     /// # Panics
     /// If the lengths differ, there are fewer than four points, or `x` does not rise strictly.
     pub fn new(x: Vec<f64>, y: Vec<f64>) -> Self {
+        Self::with_end_slopes(x, y, end_slopes)
+    }
+
+    /// The same for a function of the distance from a centre, `x[0]`: level there, as the spline through the points and their
+    /// mirror images is.
+    ///
+    /// # Panics
+    /// As [`Self::new`].
+    pub fn even(x: Vec<f64>, y: Vec<f64>) -> Self {
+        Self::with_end_slopes(x, y, |x, y| [0.0, end_slopes(x, y)[1]])
+    }
+
+    fn with_end_slopes(x: Vec<f64>, y: Vec<f64>, ends: impl Fn(&[f64], &[f64]) -> [f64; 2]) -> Self {
         assert_eq!(x.len(), y.len(), "as many values as positions");
         assert!(x.len() >= 4, "a cubic needs at least 4 points, got {}", x.len());
         assert!(x.windows(2).all(|w| w[0] < w[1]), "positions must rise strictly");
-        let slope = spline_slopes(&x, &y);
+        let slope = spline_slopes(&x, &y, ends(&x, &y));
         let mut integral = vec![0.0; x.len()];
         for i in 1..x.len() {
             let h = x[i] - x[i - 1];
@@ -47,6 +60,11 @@ impl Cubic {
     /// Positions and values, as given.
     pub fn points(&self) -> (&[f64], &[f64]) {
         (&self.x, &self.y)
+    }
+
+    /// Smallest of the values given.
+    pub fn lowest(&self) -> f64 {
+        self.y.iter().copied().fold(f64::INFINITY, f64::min)
     }
 
     /// Value at `x`; outside the domain the value at its end.
@@ -93,14 +111,12 @@ impl Cubic {
 }
 
 /// Slopes that make the second derivative continuous, with given end slopes (tridiagonal elimination).
-fn spline_slopes(x: &[f64], y: &[f64]) -> Vec<f64> {
+fn spline_slopes(x: &[f64], y: &[f64], ends: [f64; 2]) -> Vec<f64> {
     let n = x.len();
     let h: Vec<f64> = x.windows(2).map(|w| w[1] - w[0]).collect();
     let d: Vec<f64> = (0..n - 1).map(|i| (y[i + 1] - y[i]) / h[i]).collect();
     let mut slope = vec![0.0; n];
-    slope[0] = end_slope([x[0], x[1], x[2], x[3]], [y[0], y[1], y[2], y[3]]);
-    slope[n - 1] =
-        end_slope([x[n - 1], x[n - 2], x[n - 3], x[n - 4]], [y[n - 1], y[n - 2], y[n - 3], y[n - 4]]);
+    [slope[0], slope[n - 1]] = ends;
     let mut diagonal = vec![1.0; n];
     let last = slope[n - 1];
     for i in 1..n - 1 {
@@ -116,6 +132,13 @@ fn spline_slopes(x: &[f64], y: &[f64]) -> Vec<f64> {
         slope[i] = (slope[i] - h[i - 1] * slope[i + 1]) / diagonal[i];
     }
     slope
+}
+
+/// Derivatives at the ends of the cubics through the four outermost points.
+fn end_slopes(x: &[f64], y: &[f64]) -> [f64; 2] {
+    let last = x.len() - 1;
+    [[0, 1, 2, 3], [last, last - 1, last - 2, last - 3]]
+        .map(|points| end_slope(points.map(|i| x[i]), points.map(|i| y[i])))
 }
 
 /// Derivative at the first of four points of the cubic through them.
@@ -148,6 +171,22 @@ mod tests {
                 (spline.integral(at) - primitive(at) + primitive(-1.0)).abs() < 1e-13,
                 "integral at {at}"
             );
+        }
+    }
+
+    /// Closed form: with a level start it is half of the spline through the points and their mirror images.
+    #[test]
+    fn an_even_spline_is_half_of_the_mirrored_one() {
+        let f = |x: f64| (-0.7 * x * x).exp();
+        let x: Vec<f64> = (0..=20).map(|i| 0.2 * f64::from(i)).collect();
+        let mirrored: Vec<f64> = x[1..].iter().rev().map(|x| -x).chain(x.iter().copied()).collect();
+        let whole = Cubic::new(mirrored.clone(), mirrored.into_iter().map(f).collect());
+        let half = Cubic::even(x.clone(), x.into_iter().map(f).collect());
+        assert_eq!(half.slope(0.0), 0.0);
+        for i in 0..=80 {
+            let at = 0.05 * f64::from(i);
+            assert!((half.value(at) - whole.value(at)).abs() < 1e-15, "value at {at}");
+            assert!((half.slope(at) - whole.slope(at)).abs() < 1e-14, "slope at {at}");
         }
     }
 

@@ -50,7 +50,8 @@ pub enum Potential {
         /// Frequency Ω, hartree.
         frequency: f64,
     },
-    /// Values on rising positions, joined by a cubic spline; in two dimensions on rising distances from the centre, from 0 on.
+    /// Values on rising positions, joined by a cubic spline; in two dimensions on rising distances from the centre, from 0 on, joined by
+    /// [`Cubic::even`]: with any other slope there they would have a cusp.
     Sampled(Arc<Cubic>),
 }
 

@@ -429,6 +429,17 @@ pub const CASES: &[Case] = &[
         ],
     },
     Case {
+        name: "a potential of both sides on a plane",
+        edits: &[
+            ("/atom/dimensions", Some("2")),
+            ("/atom/ionization_energy", None),
+            ("/atom/potential", Some(r#"{"kind": "sampled", "file": "sides.csv"}"#)),
+        ],
+        says: &[
+            r#"/atom/potential/file: "sides.csv" begins at -500 bohr; in two dimensions its positions are distances from the centre; allowed: a table from 0 bohr on; at /atom/dimensions try 1"#,
+        ],
+    },
+    Case {
         name: "wrong hash",
         edits: &[("/field/sampled", Some(r#"{"file": "pulse.csv", "sha256": "00"}"#))],
         says: &[

@@ -37,6 +37,11 @@ const PULSE: &str = "time [fs],electric_field [GV/m]\n0,0\n1,0.5\n2,-0.5\n3,0\n"
 const CROSSED: &str =
     "time [fs],electric_field_x [GV/m],electric_field_y [GV/m]\n0,0,0\n1,0.5,0\n2,-0.5,0.5\n3,0,0\n";
 
+/// A well on both sides, and the same over the distance from the centre.
+const SIDES: &str = "position [bohr],potential [eV]\n-500,0\n-20,0\n-2,-5\n0,-30\n2,-5\n20,0\n500,0\n";
+const ROUND: &str =
+    "position [bohr],potential [eV]\n0,-30\n1,-20\n2,-8\n3,-2\n4,-0.3\n6,0\n8,0\n10,0\n20,0\n60,0\n";
+
 fn edited(edits: &[(&str, Option<&str>)]) -> Value {
     let mut tree: Value = serde_json::from_str(SOUND).expect("the sound configuration");
     for (place, json) in edits {
@@ -62,7 +67,9 @@ fn read_in(folder: &Path, tree: &Value) -> Result<Request, Complaints> {
 
 fn folder() -> tempfile::TempDir {
     let folder = tempfile::tempdir().expect("a temporary folder");
-    for (name, table) in [("pulse.csv", PULSE), ("crossed.csv", CROSSED)] {
+    for (name, table) in
+        [("pulse.csv", PULSE), ("crossed.csv", CROSSED), ("sides.csv", SIDES), ("round.csv", ROUND)]
+    {
         std::fs::write(folder.path().join(name), table).expect("a table");
     }
     folder

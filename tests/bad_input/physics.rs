@@ -114,6 +114,21 @@ const PHYSICS: &[(&str, Edits, &[&str])] = &[
         ],
     ),
     (
+        "a table along the radius that ends before the corners",
+        &[
+            ("/atom/dimensions", Some("2")),
+            ("/atom/ionization_energy", None),
+            ("/atom/potential", Some(r#"{"kind": "sampled", "file": "round.csv"}"#)),
+            ("/numerics/extent", Some(r#""300 bohr""#)),
+        ],
+        &[
+            "/numerics/extent: \"300 bohr\" reaches from 0 to 217.2 bohr in its corners; the potential's table, along the radius, \
+             from 0 to 60 bohr",
+            "allowed: a box within the table, or a table from 0 to at least 217.2 bohr",
+            "try \"60 bohr\"",
+        ],
+    ),
+    (
         "ionization energy out of reach",
         &[("/atom/ionization_energy", Some(r#""30 eV""#)), ("/atom/state/number", Some("1"))],
         &["/atom/ionization_energy: \"30 eV\" is out of reach of state 1", "allowed: 0.", "try \""],

@@ -5,6 +5,7 @@ use std::f64::consts::SQRT_2;
 use super::rules::Needs;
 use super::{Finding, Knob, Verdict, Wish, ladder};
 use crate::absorber::reflection;
+use crate::grid::Grid;
 use crate::problem::{Absorber, Numerics};
 use crate::step::resonant_step;
 
@@ -81,12 +82,14 @@ fn domain(wish: &Wish, numerics: &Numerics) -> Option<Finding> {
         Some(Finding { knob: Some(Knob::Extent), verdict: Verdict::Impossible, reason, allowed, passes })
     };
     if numerics.grid.dimensions() == 1 {
+        if edge <= last && -edge >= first {
+            return None;
+        }
         let reason = format!(
             "reaches {edge:.1} bohr to each side; the potential's table ends at {first} and {last} bohr"
         );
         let allowed = format!("a box within the table, or a table over at least {edge:.1} bohr to each side");
-        let passes = 2.0 * last.min(-first).max(0.0);
-        return if edge > last || -edge < first { finding(reason, allowed, passes) } else { None };
+        return finding(reason, allowed, within(2.0 * last.min(-first), &numerics.grid));
     }
     let corner = edge * SQRT_2;
     if corner <= last && first <= 0.0 {
@@ -96,7 +99,20 @@ fn domain(wish: &Wish, numerics: &Numerics) -> Option<Finding> {
         "reaches from 0 to {corner:.1} bohr in its corners; the potential's table, along the radius, from {first} to {last} bohr"
     );
     let allowed = format!("a box within the table, or a table from 0 to at least {corner:.1} bohr");
-    finding(reason, allowed, if first <= 0.0 { SQRT_2 * last } else { 0.0 })
+    finding(reason, allowed, if first <= 0.0 { within(SQRT_2 * last, &numerics.grid) } else { 0.0 })
+}
+
+/// Largest rung at which a box is no wider than `limit` though its points are rounded up to a good number; zero where none is.
+fn within(limit: f64, grid: &Grid) -> f64 {
+    let mut rung = limit;
+    while rung >= grid.x.spacing {
+        rung = ladder::at_most(rung);
+        if grid.covering([rung; 2], grid.spacings()).x.extent() <= limit {
+            return rung;
+        }
+        rung *= 0.99;
+    }
+    0.0
 }
 
 fn absorber(needs: &Needs, numerics: &Numerics) -> Option<Finding> {

@@ -35,7 +35,7 @@ impl AtomFacts {
             initial_energy: lowest.energy,
             highest_energy: highest.energy,
             reach: highest.reach,
-            analytic_length: smoothness::analytic_length(potential),
+            analytic_length: smoothness::in_a_plane(potential)?,
         })
     }
 }

@@ -107,6 +107,12 @@ impl Half {
 }
 
 impl Well<'_> {
+    /// A level found with ends at ±`reach`, or as far along the radius as the potential is known.
+    fn level(&self, number: usize, energy: f64, reach: f64) -> Level {
+        let known = if self.angular.is_some() { self.potential.domain().1 } else { f64::INFINITY };
+        Level { number, energy, reach: reach.min(known) }
+    }
+
     /// Both meshes for ends at ±`reach`, cut to the domain of the potential; or from the centre and from `reach`.
     fn meshes(&self, reach: f64, fineness: f64) -> [Half; 2] {
         let (first, last) = self.potential.domain();
@@ -189,13 +195,13 @@ fn converged(well: Well, number: usize) -> Result<Level, StationaryError> {
         energy = finer + (finer - raw) / 15.0;
         change = (energy - last).abs();
         if change < wanted {
-            return Ok(Level { number, energy, reach });
+            return Ok(well.level(number, energy, reach));
         }
         (raw, last) = (finer, energy);
     }
     // Rounding of the many steps, or a kink in a table, sets the floor.
     if change < 1e-10 * energy.abs().max(1.0) {
-        return Ok(Level { number, energy, reach });
+        return Ok(well.level(number, energy, reach));
     }
     Err(StationaryError::NotConverged { what: "a bound level", reached: change, wanted, unit: "hartree" })
 }
@@ -216,7 +222,7 @@ fn rough(well: Well, number: usize, reach: f64) -> Result<Level, StationaryError
     while far < reach && well.meshes(far, 1.0 / 8.0).iter().any(|mesh| mesh.decay(energy) < 2.0 * DECAY) {
         far = (1.5 * far).min(reach);
     }
-    Ok(Level { number, energy, reach: far })
+    Ok(well.level(number, energy, far))
 }
 
 /// A reach to start from: the whole range of a short-range potential, grown later as the state needs.
@@ -241,7 +247,11 @@ fn locate(well: Well, number: usize, reach: f64) -> Result<f64, StationaryError>
     let potential = well.potential;
     let meshes = well.meshes(reach, 1.0 / 8.0);
     let f = |energy: f64| quantum_number(&meshes, energy) - number as f64;
-    let bottom = potential.value(meeting_point(potential));
+    let mut bottom = potential.value(meeting_point(potential));
+    // The spline of a table may swing below its points.
+    while f(bottom) > 0.0 {
+        bottom -= bottom.abs().max(1.0);
+    }
     let mut top = THRESHOLD;
     if potential.is_confining() {
         top = bottom + 1.0;

@@ -93,9 +93,17 @@ enum Start {
     Far { radius: f64, value: f64 },
 }
 
-/// Where both meshes meet: near the centre, further out for a state that the centrifugal force keeps away.
+/// Where both meshes meet: near the centre, further out for a state that the centrifugal force keeps away. Of a table, whose points
+/// may be much closer than it changes, where that force, m²/2r², is as large as the well is deep: no electron is further in.
 fn meeting_radius(potential: &Potential, m: u32) -> f64 {
-    potential.smallest_length() * f64::from(m.max(1))
+    let m = f64::from(m.max(1));
+    match potential {
+        Potential::Sampled(table) => {
+            let wave = (-2.0 * table.lowest()).max(0.0).sqrt().recip();
+            (m * wave.max(potential.smallest_length())).min(0.5 * potential.domain().1)
+        }
+        _ => potential.smallest_length() * m,
+    }
 }
 
 impl RadialMesh {

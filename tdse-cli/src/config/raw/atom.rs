@@ -121,7 +121,8 @@ pub enum Potential {
         #[schemars(example = "0.5 au", extend("x-exclusive-minimum" = "0 eV"))]
         frequency: Energy,
     },
-    /// Values from a CSV file with the header `position [bohr],potential [eV]` (any units), joined by a cubic spline.
+    /// Values from a CSV file with the header `position [bohr],potential [eV]` (any units), joined by a cubic spline; in two dimensions
+    /// the position is the distance from the centre, from 0 to the corners of the box.
     Sampled {
         /// Anything worth remembering.
         note: Option<String>,

@@ -1,6 +1,9 @@
 //! `atom`.
 
+use std::sync::Arc;
+
 use serde_json::json;
+use tdse_core::cubic::Cubic;
 use tdse_core::elements::Element;
 use tdse_core::potential::Potential;
 use tdse_core::problem::{InitialState, PlaneLabel, Term};
@@ -17,11 +20,6 @@ const TUNERS: [&str; 2] = ["ionization_energy", "element"];
 
 /// `None` where a complaint says why.
 pub(super) fn atom(check: &mut Check, atom: &raw::Atom) -> Option<AtomRequest> {
-    if atom.dimensions == 2 && matches!(atom.potential, raw::Potential::Sampled { .. }) {
-        let fix = Fix::Elsewhere { place: "/atom/dimensions".into(), value: json!(1) };
-        let reason = "needs one dimension: potentials of two are round, and given by a formula";
-        check.complain("/atom/potential/kind", reason, "any other kind in two dimensions", fix);
-    }
     let (initial, labels) = match atom.dimensions {
         1 => (on_the_line(check, &atom.state), Vec::new()),
         _ => on_the_plane(check, &atom.state),
@@ -52,10 +50,29 @@ fn potential(check: &mut Check, atom: &raw::Atom) -> Option<AtomPotential> {
         }
         raw::Potential::Harmonic { frequency, .. } => Potential::Harmonic { frequency: frequency.value() },
         raw::Potential::Sampled { file, sha256, .. } => {
-            Potential::Sampled(check.table("/atom/potential", file, sha256.as_ref(), tables::POTENTIAL)?)
+            let table = check.table("/atom/potential", file, sha256.as_ref(), tables::POTENTIAL)?;
+            Potential::Sampled(if atom.dimensions == 1 { table } else { along_the_radius(check, &table)? })
         }
     };
     Some(AtomPotential::Fixed(fixed))
+}
+
+/// A table for two dimensions: of the distance from the centre.
+fn along_the_radius(check: &mut Check, table: &Cubic) -> Option<Arc<Cubic>> {
+    let (first, _) = table.domain();
+    if first == 0.0 {
+        let (radii, values) = table.points();
+        return Some(Arc::new(Cubic::even(radii.to_vec(), values.to_vec())));
+    }
+    let fix = if first < 0.0 {
+        Fix::Elsewhere { place: "/atom/dimensions".into(), value: json!(1) }
+    } else {
+        Fix::Words("begin the table with a row at 0 bohr".into())
+    };
+    let reason =
+        format!("begins at {first} bohr; in two dimensions its positions are distances from the centre");
+    check.complain("/atom/potential/file", reason, "a table from 0 bohr on", fix);
+    None
 }
 
 /// The softening, or what tunes it: exactly one of the three may be given.
