@@ -9,11 +9,12 @@ use num_complex::Complex;
 use support::*;
 use tdse_core::field::{Envelope, Field, Pulse};
 use tdse_core::model::strong_field::{Bare, DipoleSeries, PlaneDipole, PlaneElectrons, Round, Stationary};
-use tdse_core::model::tunnelling::{Asymptotic, polarizability};
+use tdse_core::model::tunnelling::{Asymptotic, QuasiStatic, Rate, polarizability};
 use tdse_core::potential::Potential;
 use tdse_core::simulate::Schedule;
 use tdse_core::spectrum::{EnergyAxis, Window, helicity_yields, order_yields};
 use tdse_core::stationary::{RoundTransitions, radial_level};
+use tdse_core::units;
 
 const ROUND: Potential = Potential::SoftCoulomb { charge: 1.0, softening: 0.8 };
 
@@ -231,6 +232,22 @@ fn polarizability_of_a_harmonic_potential() {
         let found = polarizability(&harmonic, angular, number).unwrap() * 0.49;
         println!("m = {angular}, number {number}: {:e}", found - 1.0);
         assert!((found - 1.0).abs() < 1e-6, "m = {angular}, number {number}: {found}");
+    }
+}
+
+/// By definition the atom is ionized with 1 - 1/e at its saturation intensity, with a tail and without one.
+#[test]
+fn saturation_on_a_plane() {
+    for potential in [ROUND, WELL] {
+        let rate = Rate::Model(QuasiStatic::on_plane(&potential, 0, 0).unwrap());
+        let light = field(sin2_pulse(0.057, 0.05, 8.0));
+        let intensity = rate.saturation_intensity(&light).expect("a finite intensity");
+        let strong = field(sin2_pulse(0.057, units::peak_field(intensity), 8.0));
+        let (start, end) = light.interval();
+        let times: Vec<f64> = (0..=8000).map(|i| start + (end - start) * f64::from(i) / 8000.0).collect();
+        let after = rate.ionization(&strong, &times)[8000];
+        println!("{potential:?}: {intensity:e} W/cm², {after}");
+        assert!((after - 1.0 + (-1.0f64).exp()).abs() < 1e-3, "{after}");
     }
 }
 

@@ -18,6 +18,9 @@ use crate::field::Field;
 use crate::quantities::barrier_suppression_field;
 use crate::units;
 
+/// Step, downwards, in which the search for saturation looks for a factor that saturates.
+const OVER_BARRIER: f64 = 1.25;
+
 /// A rate at a field of given strength.
 #[derive(Clone, Debug)]
 pub enum Rate {
@@ -76,7 +79,11 @@ impl Rate {
             -(-self.ionization(&scaled, &times).last().copied().unwrap_or(0.0)).ln_1p()
         };
         let (mut low, mut high) = (1e-3f64, 1e3f64);
-        if exponent(low) > 1.0 || exponent(high) < 1.0 {
+        // Far over the barrier rates of leading order fall again.
+        while exponent(high) < 1.0 && high > low {
+            high /= OVER_BARRIER;
+        }
+        if exponent(low) > 1.0 || high <= low {
             return None;
         }
         while high / low > 1.0 + 1e-9 {

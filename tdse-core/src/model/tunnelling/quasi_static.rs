@@ -5,6 +5,7 @@ use std::f64::consts::PI;
 use super::{polarizability, resonances};
 use crate::cubic::Cubic;
 use crate::potential::Potential;
+use crate::quantities::barrier_suppression_field;
 use crate::stationary::{StationaryError, level, radial_level};
 
 /// Part of the reach (decay by e⁻²⁰) at which the coefficient is read off.
@@ -126,8 +127,13 @@ fn decaying(potential: &Potential, energy: f64, square: f64, r: f64) -> f64 {
 pub enum Stark {
     /// It stays.
     None,
-    /// By -αF²/2.
-    Polarizability(f64),
+    /// By -αF²/2, beyond a field by what it is there.
+    Polarizability {
+        /// α, a.u.
+        alpha: f64,
+        /// The field beyond which the shift stays, a.u.
+        until: f64,
+    },
     /// To the real part of the resonance, tabulated over |F|; for fields towards -x and towards +x.
     Resonance([Cubic; 2]),
 }
@@ -170,22 +176,29 @@ impl QuasiStatic {
         Ok(Self { asymptotic, stark: Stark::Resonance([negative, positive]) })
     }
 
-    /// Rate of the level with `number` radial nodes at angular momentum ±`angular` in two dimensions, its shift by its polarizability.
+    /// Rate of the level with `number` radial nodes at angular momentum ±`angular` in two dimensions, its shift by its polarizability up
+    /// to the field of barrier suppression, Ip²/4Z, with Z = 1 where the potential has no tail. Over the barrier there is no level to
+    /// shift, and -αF²/2 has no end.
     ///
     /// # Errors
     /// As [`radial_level`] and [`polarizability`].
     pub fn on_plane(potential: &Potential, angular: u32, number: usize) -> Result<Self, StationaryError> {
-        Ok(Self {
-            asymptotic: Asymptotic::on_plane(potential, angular, number)?,
-            stark: Stark::Polarizability(polarizability(potential, angular, number)?),
-        })
+        let asymptotic = Asymptotic::on_plane(potential, angular, number)?;
+        let charge = if asymptotic.charge > 0.0 { asymptotic.charge } else { 1.0 };
+        let stark = Stark::Polarizability {
+            alpha: polarizability(potential, angular, number)?,
+            until: barrier_suppression_field(-asymptotic.energy, charge),
+        };
+        Ok(Self { asymptotic, stark })
     }
 
-    /// Energy of the level in a field, hartree; beyond the table that at its end.
+    /// Energy of the level in a field, hartree; beyond the table, or the last field of a polarizability, that at its end.
     pub fn energy(&self, field: f64) -> f64 {
         match &self.stark {
             Stark::None => self.asymptotic.energy,
-            Stark::Polarizability(alpha) => self.asymptotic.energy - 0.5 * alpha * field * field,
+            Stark::Polarizability { alpha, until } => {
+                self.asymptotic.energy - 0.5 * alpha * field.abs().min(*until).powi(2)
+            }
             Stark::Resonance(tables) => tables[usize::from(field > 0.0)].value(field.abs()),
         }
     }
