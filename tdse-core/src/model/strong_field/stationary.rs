@@ -12,7 +12,7 @@ use crate::quantities::field_shape;
 use crate::simulate::Schedule;
 use crate::stationary::StationaryError;
 
-/// Longest excursion in periods of the slowest pulse: later returns have spread.
+/// Longest excursion in periods of the slowest pulse, where there are pulses alone: later returns have spread.
 const EXCURSION: f64 = 2.5;
 /// Velocity beyond 2 max |A|, which none of the electrons that return exceeds, 1/bohr.
 const BEYOND: f64 = 0.1;
@@ -103,12 +103,15 @@ impl Stationary {
             trailing_time,
         );
         let returning = 2.0 * field_shape(field).peak_potential + BEYOND;
+        let whole = schedule.end - schedule.start;
         let period = field.pulses.iter().map(Pulse::period).fold(0.0, f64::max);
+        // A sampled field has no period that is known.
+        let longest_excursion = if field.sampled.is_some() { whole } else { (EXCURSION * period).min(whole) };
         Ok(Self {
             bare: Bare::Plane(PlaneDipole::new(potential, state.m, state.number, returning)?),
             field: field.clone(),
             ionization_energy: state.ionization_energy,
-            longest_excursion: (EXCURSION * period).min(schedule.end - schedule.start),
+            longest_excursion,
             schedule,
         })
     }
