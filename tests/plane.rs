@@ -267,6 +267,12 @@ fn a_map_has_its_flight_out_and_pinning_what_was_chosen_changes_nothing() {
         println!("{:?}: {}", reason.knob, reason.why);
     }
     assert!(chosen.findings.is_empty(), "{:?}", chosen.findings);
+    let absorber = chosen.reasons.iter().find(|reason| reason.knob == Knob::Absorber).unwrap();
+    assert!(
+        absorber.why.contains("shifts none of them") && !absorber.why.contains("corrected"),
+        "{}",
+        absorber.why
+    );
     assert!(matches!(n.absorber, Absorber::Round { .. }), "{:?}", n.absorber);
     assert_eq!(n.grid.y, Some(n.grid.x));
     // The slowest electrons the absorber takes cleanly reach the edge.

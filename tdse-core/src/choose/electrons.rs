@@ -219,12 +219,20 @@ fn extent_reason(numerics: &Numerics, electrons: &Electrons) -> String {
 }
 
 fn absorber_reason(problem: &Problem, numerics: &Numerics) -> String {
-    let left = tail_of(problem, numerics);
-    format!(
-        "lets out electrons faster than {:.3} / bohr cleanly; the ion's pull beyond it is corrected for, but for a shift \
-         of {:.1e} hartree and sidebands of relative amplitude {:.1e}",
-        slowest_momentum(numerics.absorber.width()),
-        left.shift,
-        left.sideband
-    )
+    let slowest = slowest_momentum(numerics.absorber.width());
+    let pull = match (numerics.grid.dimensions(), problem.potential.far_charge()) {
+        (2, 0.0) => "the ion has no Coulomb tail beyond it".into(),
+        (2, _) => {
+            "the ion's pull beyond it shifts none of them, but may change how many there are at an energy"
+                .into()
+        }
+        _ => {
+            let left = tail_of(problem, numerics);
+            format!(
+                "the ion's pull beyond it is corrected for, but for a shift of {:.1e} hartree and sidebands of relative amplitude {:.1e}",
+                left.shift, left.sideband
+            )
+        }
+    };
+    format!("lets out electrons faster than {slowest:.3} / bohr cleanly; {pull}")
 }

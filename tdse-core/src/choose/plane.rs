@@ -49,7 +49,8 @@ pub fn map_range(problem: &Problem, numerics: &Numerics, energies: Energies) -> 
     let fastest = energies.momentum();
     let step = energies.largest / energies.count.saturating_sub(1).max(1) as f64;
     let spacing = ladder::at_least((step / fastest).max(fastest / MOST));
-    // Room for a cubic through neighbours, and for electrons that the tail makes faster at the absorber than they end.
+    // Room for a cubic through neighbours. The map's momenta are final, so no more is needed, but the times at which it is taken
+    // hang on its range: it keeps the momentum that the tail gives at the absorber.
     let at_absorber = (fastest * fastest + 2.0 * problem.potential.far_charge() / inner).sqrt();
     MapRange { largest: (at_absorber + 3.0 * spacing).min(axis.largest_momentum()), spacing }
 }
