@@ -269,6 +269,16 @@ fn one_photon_in_two_dimensions() {
     let levels = numbers(&result, "models/perturbation/populations", "populations");
     let full = numbers(&result, "populations", "populations");
     assert_eq!(levels.len(), full.len(), "the ground state and both m = ±1");
+
+    // The probability does not hang on where the run's spectrum ends, here below the line.
+    let short: Vec<&str> = sets.iter().chain(&["/outputs/photoelectrons/max_energy=1 eV"]).copied().collect();
+    let result = tdse("run", &shipped("circular.json"), &folder.path().join("short"), &short).result();
+    let cut = of(&result, "perturbation", "ionization_ratio")[0];
+    println!(
+        "spectrum up to 1 eV: {cut}, electrons {}",
+        numbers(&result, "models/perturbation/comparison", "electron_yield")[0]
+    );
+    assert!((cut / ratio - 1.0).abs() < 1e-3, "{cut} where the axis ends below the line, {ratio} where not");
 }
 
 /// Bars of the full result come into every number that has one, a curve that ionizes as much as the full result, to the last digit

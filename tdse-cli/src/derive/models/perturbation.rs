@@ -14,28 +14,30 @@ use crate::derive::plane::emission_angles;
 use crate::store::Contents;
 
 const NAME: &str = "perturbation";
-/// Electron energies of a run that writes no electrons: up to so many times the fastest photon, hartree.
+/// How far photons reach: electron energies up to so many times the fastest photon, hartree.
 const BEYOND: f64 = 2.0;
 /// Their number.
 const ENERGIES: usize = 800;
 
-/// The axis of the electrons, or one that holds them where none are written.
-fn axis(run: &Run) -> EnergyAxis {
+/// The axis that holds all electrons of one photon: the run's where that reaches as far, for its spectrum may end before.
+fn whole(run: &Run) -> EnergyAxis {
     let fastest = run.field.pulses.iter().map(|pulse| pulse.frequency).fold(0.5, f64::max);
-    let own_axis = EnergyAxis { step: BEYOND * fastest / ENERGIES as f64, points: ENERGIES + 1 };
-    run.electron_axis().unwrap_or(own_axis)
+    let largest = BEYOND * fastest;
+    let reaches = |axis: &EnergyAxis| axis.step * (axis.points - 1) as f64 >= largest;
+    let own_axis = EnergyAxis { step: largest / ENERGIES as f64, points: ENERGIES + 1 };
+    run.electron_axis().filter(reaches).unwrap_or(own_axis)
 }
 
 /// Ionization by one photon in two dimensions.
 pub(super) fn on_plane(contents: &mut Contents, run: &Run) -> Result<(), String> {
-    let (round, axis) = (run.round()?, axis(run));
-    let fastest = (2.0 * axis.step * axis.points as f64).sqrt();
+    let (round, whole) = (run.round()?, whole(run));
+    let fastest = (2.0 * whole.step * whole.points as f64).sqrt();
     let transitions = RoundTransitions::new(&run.job.problem.potential, round.m, round.number, fastest)
         .map_err(|error| error.to_string())?;
-    let found = PlaneOnePhoton::new(&transitions, run.field, axis);
-    let probability = found.probability();
-    contents.insert(&own(NAME), "ionization_probability", probability);
-    if run.electron_axis().is_some() {
+    let found = PlaneOnePhoton::new(&transitions, run.field, whole);
+    contents.insert(&own(NAME), "ionization_probability", found.probability());
+    if let Some(axis) = run.electron_axis() {
+        let found = if axis == whole { found } else { PlaneOnePhoton::new(&transitions, run.field, axis) };
         let group = format!("models/{NAME}/photoelectrons");
         let energies: Vec<f64> = axis.values().into_iter().map(electronvolts).collect();
         contents.insert(&group, "energy", energies);
@@ -45,7 +47,7 @@ pub(super) fn on_plane(contents: &mut Contents, run: &Run) -> Result<(), String>
         let distribution = found.angular_distribution(&angles);
         contents.insert(&group, "emission_angle", angles);
         contents.insert(&group, "angular_distribution", distribution);
-        contents.insert(&own(NAME), "electron_yield", probability);
+        contents.insert(&own(NAME), "electron_yield", found.probability());
     }
     levels_on_plane(contents, run)
 }
@@ -105,13 +107,15 @@ fn put_levels(contents: &mut Contents, levels: &[(usize, f64, Vec<f64>)]) {
 
 /// Ionization by one photon on a line; two levels where at least two populations are written.
 pub(super) fn put(contents: &mut Contents, run: &Run, line: &Line, states: &ScatteringStates) {
-    let axis = axis(run);
-    let amplitude = one_photon(states, &line.ground, run.field, momenta_of(axis));
-    if run.electron_axis().is_some() {
-        electrons(contents, NAME, axis, &amplitude);
-    }
+    let whole = whole(run);
+    let on = |axis: EnergyAxis| one_photon(states, &line.ground, run.field, momenta_of(axis));
+    let amplitude = on(whole);
     let probability = amplitude.probability().iter().sum::<f64>();
     contents.insert(&own(NAME), "ionization_probability", probability);
+    if let Some(axis) = run.electron_axis() {
+        let amplitude = if axis == whole { amplitude } else { on(axis) };
+        electrons(contents, NAME, axis, &amplitude);
+    }
     two_levels(contents, run, line);
 }
 
