@@ -68,8 +68,9 @@ pub fn factor(from: &str, to: &str) -> Option<f64> {
 fn size(text: &str) -> Option<Size> {
     let text = text.replace("**", "^");
     let mut whole = Size { factor: 1.0, powers: [0; 4] };
+    // From left to right: the sign before a factor holds for that factor alone.
     for (i, over) in text.split('/').enumerate() {
-        for part in over.split('*') {
+        for (j, part) in over.split('*').enumerate() {
             let (name, power) = match part.split_once('^') {
                 Some((name, power)) => (name.trim(), power.trim().parse::<i32>().ok()?),
                 None => (part.trim(), 1),
@@ -77,7 +78,7 @@ fn size(text: &str) -> Option<Size> {
             if name == "1" && power == 1 {
                 continue;
             }
-            let power = if i == 0 { power } else { -power };
+            let power = if i > 0 && j == 0 { -power } else { power };
             let unit = named(name)?;
             whole.factor *= unit.factor.powi(power);
             whole.powers.iter_mut().zip(unit.powers).for_each(|(sum, own)| *sum += power * own);
@@ -126,6 +127,8 @@ mod tests {
             ("GV / m", "volt / meter", 1e9),
             ("hartree / elementary_charge / bohr", "V/m", 5.142_206_751_12e11),
             ("W/m**2", "W/cm**2", 1e-4),
+            ("V / m * nm", "V", 1e-9),
+            ("joule / fs * ps / bohr * angstrom", "J", 1e3 / 0.529_177_210_544),
             ("TW / centimeter^2", "W/cm**2", 1e12),
         ] {
             let found = factor(from, to).unwrap_or_else(|| panic!("{from} to {to}"));
