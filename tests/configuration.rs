@@ -302,6 +302,18 @@ fn a_table_on_a_plane_begins_at_the_centre() {
     assert_eq!(said(-0.5), complaint("-0.5", "at /atom/dimensions try 1"));
 }
 
+/// A table has one component, or on a plane both.
+#[test]
+fn tables_are_told_every_width_they_may_have() {
+    let folder = tempfile::tempdir().expect("a temporary folder");
+    let table = "time [fs],electric_field_x [V/m],electric_field_y [V/m],electric_field_z [V/m]\n0,1,2,3\n";
+    std::fs::write(folder.path().join("pulse.csv"), table).expect("a table");
+    let complaints = read(&with_table("pulse.csv"), &[], folder.path()).expect_err("four columns");
+    let said: Vec<_> = complaints.0.iter().map(|c| (c.reason.as_str(), c.allowed.as_str())).collect();
+    let reason = "has a fault in line 1: \"time [fs]\" has 4 columns";
+    assert_eq!(said, [(reason, "two columns, or in two dimensions three, parted by a comma")]);
+}
+
 #[test]
 fn overrides_are_applied_in_order_and_may_add_known_keys() {
     let sets = [

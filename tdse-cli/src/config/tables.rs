@@ -165,7 +165,7 @@ pub struct TableFault {
 }
 
 /// Reads a table in atomic units: a curve for every column but the first. Of several layouts the first that is as wide as the
-/// header is taken, or else the first.
+/// header is taken.
 ///
 /// # Errors
 /// The first fault from the top.
@@ -183,6 +183,8 @@ pub fn read(contents: &str, layouts: &[Layout]) -> Result<Vec<Arc<Cubic>>, Table
     let mut records = reader.records();
     let header = records.next().ok_or_else(|| source.too_short(layouts[0].header))?;
     let header = source.record(header)?;
+    let widths: Vec<usize> = layouts.iter().map(|layout| layout.columns.len()).collect();
+    source.width(&header, &widths)?;
     let layout = layouts.iter().find(|layout| layout.columns.len() == header.len()).unwrap_or(&layouts[0]);
     let factors = source.units(&header, layout)?;
     let mut columns = vec![Vec::new(); factors.len()];
@@ -211,7 +213,6 @@ struct Source<'a> {
 impl Source<'_> {
     /// Factors to atomic units of all columns.
     fn units(&self, header: &StringRecord, layout: &Layout) -> Result<Vec<f64>, TableFault> {
-        self.width(header, layout.columns.len())?;
         let factor = |(i, column): (usize, &Column)| {
             let unit = header[i].strip_suffix(']').and_then(|cell| cell.split_once('['));
             let unit = unit.filter(|(name, _)| name.trim() == column.name);
@@ -226,7 +227,7 @@ impl Source<'_> {
 
     /// The values of a row in atomic units.
     fn row(&self, record: &StringRecord, factors: &[f64]) -> Result<Vec<f64>, TableFault> {
-        self.width(record, factors.len())?;
+        self.width(record, &[factors.len()])?;
         let value = |(text, factor): (&str, &f64)| {
             let value =
                 text.parse().ok().map(|number: f64| number * factor).filter(|value| value.is_finite());
@@ -236,13 +237,18 @@ impl Source<'_> {
         record.iter().zip(factors).map(value).collect()
     }
 
-    fn width(&self, record: &StringRecord, wanted: usize) -> Result<(), TableFault> {
-        let reason = match record.len() {
-            n if n == wanted => return Ok(()),
-            n => format!("{:?} has {n} columns", &record[0]),
+    fn width(&self, record: &StringRecord, wanted: &[usize]) -> Result<(), TableFault> {
+        if wanted.contains(&record.len()) {
+            return Ok(());
+        }
+        let reason = format!("{:?} has {} columns", &record[0], record.len());
+        let allowed = match wanted {
+            [2] => "two columns",
+            [3] => "three columns",
+            // Of the layouts only that of a field has two widths.
+            _ => "two columns, or in two dimensions three",
         };
-        let wanted = if wanted == 2 { "two" } else { "three" };
-        Err(self.fault(record, reason, format!("{wanted} columns, parted by a comma")))
+        Err(self.fault(record, reason, format!("{allowed}, parted by a comma")))
     }
 
     fn record(&self, record: csv::Result<StringRecord>) -> Result<StringRecord, TableFault> {
