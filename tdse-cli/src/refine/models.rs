@@ -90,9 +90,9 @@ fn configuration(prepared: &Prepared, request: &Request, repeated: &[usize], ato
     without_models(&mut tree);
     let first: Value = serde_json::from_str(&prepared.points[repeated[0]].configuration).unwrap_or_default();
     tree["outputs"] = first["outputs"].clone();
-    if let Some(outputs) = tree["outputs"].as_object_mut() {
-        // Another atom has other levels, perhaps fewer.
-        outputs.shift_remove("populations");
+    // Another atom has other levels, perhaps fewer; the one that all have keeps the box, and so the ionization, that of the run.
+    if !tree["outputs"]["populations"].is_null() {
+        tree["outputs"]["populations"]["states"] = 1.into();
     }
     let each = atoms.len() / repeated.len();
     let points: Vec<(usize, usize)> = repeated.iter().map(|index| (*index, each)).collect();
