@@ -222,6 +222,7 @@ fn every_model_in_two_dimensions() {
             ("perturbation", "electron_yield_ratio"),
             ("perturbation", "ionization_ratio"),
             ("tunnelling", "ionization_ratio"),
+            ("tunnelling", "saturation_intensity"),
         ] {
             let value = of(full, model, number)[0];
             println!("{model} {number}: {value}");
