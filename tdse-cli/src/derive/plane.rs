@@ -31,9 +31,8 @@ pub(super) fn electrons(contents: &mut Contents, finished: &Finished, axis: Ener
     contents.insert("summary", "electron_method", ElectronMethod::OutgoingAmplitude as i64);
     let slowest = slowest_momentum(job.numerics.absorber.width());
     contents.insert("summary", "lowest_clean_momentum", slowest);
-    let left = tail_of(&job.problem, &job.numerics);
-    contents.insert("summary", "coulomb_shift", electronvolts(left.shift));
-    contents.insert("summary", "coulomb_sideband", left.sideband);
+    let sideband = tail_of(&job.problem, &job.numerics).sideband;
+    contents.insert("summary", "coulomb_sideband", sideband);
 }
 
 /// Puts energy spectrum, angular distribution and density of a map in, in the groups of this name after `prefix`; the probability of
