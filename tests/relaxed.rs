@@ -20,7 +20,7 @@ use tdse_core::units::{self, HARTREE_EV, Quantity};
 
 const ACCURACY: f64 = 1e-4;
 /// Factors by which a choice is relaxed.
-const FACTORS: [f64; 5] = [1.0, 1.25, 1.5, 2.0, 3.0];
+const FACTORS: [f64; 6] = [1.0, 1.25, 1.5, 2.0, 2.5, 3.0];
 
 fn scenario(ionization_energy: f64, nanometres: f64, intensity: f64, cycles: f64) -> (Problem, f64) {
     let binding = ionization_energy / HARTREE_EV;

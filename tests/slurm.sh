@@ -37,14 +37,14 @@ place=$(mktemp -d)
 chmod 755 "$place"
 trap '"$slurm" stop "$place/slurm" || :; rm -rf "$place"' EXIT
 
-# Invented: points of a third of a second each.
+# Invented: points of half a second or more each, so that a task is still at work when it is stopped.
 cat > "$place/scan.json" <<'JSON'
 {
   "title": "Invented for the test of job arrays",
   "atom": { "potential": { "kind": "soft_coulomb", "softening": "1.4142135623730951 bohr" } },
   "field": {
     "pulses": [
-      { "wavelength": "400 nm", "intensity": "1e14 W/cm^2", "envelope": { "kind": "sin2", "cycles": 4 } }
+      { "wavelength": "400 nm", "intensity": "1e14 W/cm^2", "envelope": { "kind": "sin2", "cycles": 12 } }
     ]
   },
   "numerics": { "spacing": "0.2 bohr", "extent": "400 bohr" },
