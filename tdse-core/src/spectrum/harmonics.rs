@@ -138,8 +138,7 @@ pub fn order_yields(
 /// stands at its index q (points - 1)/(orders + ½).
 pub fn sampled_by_order(schedule: &Schedule, photon: f64, orders: usize) -> EnergyAxis {
     let length = schedule.time_step * schedule.steps as f64;
-    // Whole cycles stay whole, whichever way the steps round: runs that differ in their step alone have one axis.
-    let per_half = 2 * (photon * length / (2.0 * PI) - 1e-6).ceil().max(4.0) as usize;
+    let per_half = 2 * (photon * length / (2.0 * PI)).ceil().max(4.0) as usize;
     EnergyAxis { step: 0.5 * photon / per_half as f64, points: (2 * orders + 1) * per_half + 1 }
 }
 
