@@ -3,20 +3,10 @@
 
 mod support;
 
-use std::f64::consts::PI;
-
 use support::*;
-use tdse_core::choose::{AtomFacts, PinnedAbsorber, Pins, Wish, choose};
-use tdse_core::field::{Envelope, Pulse};
+use tdse_core::choose::{AtomFacts, PinnedAbsorber, Pins, choose};
 use tdse_core::potential::Potential;
 use tdse_core::problem::{Numerics, Problem};
-use tdse_core::units::{self, Quantity};
-
-fn light(nanometres: f64, intensity: f64, cycles: f64) -> Pulse {
-    let frequency = units::angular_frequency(nanometres * Quantity::Length.unit("nm").unwrap().factor);
-    let duration = cycles * 2.0 * PI / frequency;
-    pulse(frequency, units::peak_field(intensity), Envelope::Sin2 { duration })
-}
 
 fn scenarios() -> Vec<(&'static str, Problem)> {
     let soft = |softening| Potential::SoftCoulomb { charge: 1.0, softening };
@@ -45,7 +35,7 @@ fn scenarios() -> Vec<(&'static str, Problem)> {
 
 fn chosen(problem: &Problem, accuracy: f64, pins: &Pins) -> Numerics {
     let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
-    choose(&Wish { problem, facts: &facts, pins, accuracy, populations: 0, max_photon: None }).numerics
+    choose(&wish(problem, &facts, pins, accuracy)).numerics
 }
 
 #[test]

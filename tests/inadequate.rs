@@ -6,7 +6,7 @@ mod support;
 use std::sync::Arc;
 
 use support::*;
-use tdse_core::choose::{AtomFacts, Choice, Knob, PinnedAbsorber, Pins, Verdict, Wish, choose};
+use tdse_core::choose::{AtomFacts, Choice, Knob, PinnedAbsorber, Pins, Verdict, choose};
 use tdse_core::cubic::Cubic;
 use tdse_core::field::{Field, SampledField};
 use tdse_core::grid::Grid;
@@ -22,7 +22,7 @@ fn problem() -> Problem {
 
 fn choice(problem: &Problem, pins: &Pins) -> Choice {
     let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
-    choose(&Wish { problem, facts: &facts, pins, accuracy: ACCURACY, populations: 0, max_photon: None })
+    choose(&wish(problem, &facts, pins, ACCURACY))
 }
 
 /// Verdicts of the one knob that is objected to, and of nothing else.

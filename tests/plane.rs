@@ -5,10 +5,10 @@ mod support;
 use std::sync::Arc;
 
 use num_complex::Complex;
-use support::{deviation, field, sin2_pulse};
+use support::{deviation, field, sin2_pulse, wish};
 use tdse_core::absorber::slowest_momentum;
 use tdse_core::choose::{
-    AtomFacts, Choice, Electrons, Energies, Knob, PinnedAbsorber, Pins, Verdict, Wish, choose,
+    AtomFacts, Choice, Electrons, Energies, Knob, PinnedAbsorber, Pins, Verdict, choose,
     choose_for_electrons, fastest_electron, map_range, strictest,
 };
 use tdse_core::cubic::Cubic;
@@ -194,14 +194,7 @@ fn chosen_numerics_reach_the_accuracy_asked() {
         Problem { potential: potential.clone(), initial: InitialState::Single(0), field: field(pulse) };
     let facts = AtomFacts::on_plane(&potential, &labels).unwrap();
     let pins = Pins { absorber: Some(PinnedAbsorber::Width(20.0)), ..Pins::default() };
-    let choice = choose(&Wish {
-        problem: &problem,
-        facts: &facts,
-        pins: &pins,
-        accuracy,
-        populations: 0,
-        max_photon: None,
-    });
+    let choice = choose(&wish(&problem, &facts, &pins, accuracy));
     let n = choice.numerics;
     println!("{n:?}");
     assert!(choice.findings.is_empty(), "{:?}", choice.findings);
@@ -228,14 +221,7 @@ fn chosen_numerics_reach_the_accuracy_asked() {
     assert!(error < accuracy, "error {error}");
     // A step beyond the resonance is objected to.
     let pins = Pins { time_step: Some(1.1 * resonant_step(n.grid.x.largest_momentum(), 0.5)), ..pins };
-    let choice = choose(&Wish {
-        problem: &problem,
-        facts: &facts,
-        pins: &pins,
-        accuracy,
-        populations: 0,
-        max_photon: None,
-    });
+    let choice = choose(&wish(&problem, &facts, &pins, accuracy));
     assert!(choice.findings.iter().any(|f| f.knob == Some(Knob::TimeStep)), "{:?}", choice.findings);
 }
 
@@ -250,8 +236,7 @@ const ENERGIES: Energies = Energies { count: 201, largest: 2.0 };
 fn for_electrons(pins: &Pins, method: ElectronMethod) -> Choice {
     let problem = elliptical_infrared();
     let facts = AtomFacts::on_plane(&problem.potential, &[angular(0, 0)]).unwrap();
-    let wish =
-        Wish { problem: &problem, facts: &facts, pins, accuracy: 1e-3, populations: 0, max_photon: None };
+    let wish = wish(&problem, &facts, pins, 1e-3);
     let fastest = fastest_electron(&problem, &facts);
     choose_for_electrons(&wish, &Electrons { energies: ENERGIES, fastest }, method)
 }
@@ -320,14 +305,7 @@ fn a_plane_keeps_its_absorber_and_its_table() {
     let problem = Problem { potential: table, ..elliptical_infrared() };
     let at = |extent, absorber| {
         let pins = Pins { extent: Some(extent), absorber: Some(absorber), ..Pins::default() };
-        choose(&Wish {
-            problem: &problem,
-            facts: &facts,
-            pins: &pins,
-            accuracy: 1e-3,
-            populations: 0,
-            max_photon: None,
-        })
+        choose(&wish(&problem, &facts, &pins, 1e-3))
     };
     for (pinned, expected) in [
         (PinnedAbsorber::Width(30.0), Absorber::Smooth { width: 30.0 }),

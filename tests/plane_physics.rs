@@ -7,14 +7,12 @@ use std::f64::consts::{FRAC_1_SQRT_2, PI};
 use std::sync::Arc;
 
 use num_complex::Complex;
-use support::{field, pulse, sin2_pulse};
+use support::{field, plane_numerics, pulse, sin2_pulse};
 use tdse_core::field::{Envelope, Field, Pulse};
 use tdse_core::grid::{Grid, Transform};
 use tdse_core::outgoing::{MapRange, MomentumMap};
 use tdse_core::potential::Potential;
-use tdse_core::problem::{
-    Absorber, Gauge, InitialState, Numerics, PlaneLabel, Problem, Record, Scheme, Symmetry,
-};
+use tdse_core::problem::{InitialState, Numerics, PlaneLabel, Problem, Record, Symmetry};
 use tdse_core::simulate::{Atom, Plan, State, advance};
 use tdse_core::spectrum::{Window, helicity_yields};
 use tdse_core::stationary::{RoundStates, radial_level};
@@ -22,17 +20,6 @@ use tdse_core::stationary::{RoundStates, radial_level};
 type C = Complex<f64>;
 
 const GROUND: PlaneLabel = PlaneLabel { symmetry: Symmetry::Angular(0), number: 0 };
-
-fn plane(points: usize, spacing: f64, time_step: f64, width: f64) -> Numerics {
-    Numerics {
-        grid: Grid::square(points, spacing),
-        time_step,
-        scheme: Scheme::FourthOrder,
-        gauge: Gauge::Length,
-        absorber: if width > 0.0 { Absorber::Round { width } } else { Absorber::None },
-        trailing_time: 0.0,
-    }
-}
 
 fn planned(potential: &Potential, field: Field, numerics: &Numerics) -> Plan {
     let atom = Arc::new(Atom::on_plane(potential, &numerics.grid, &[GROUND]).unwrap());
@@ -72,7 +59,7 @@ const SHORT_RANGE: Potential = Potential::GaussianWell { depth: 1.4, width: 1.0 
 #[test]
 fn counter_rotating_colours_leave_out_every_third_harmonic() {
     let pulses = vec![circular(FREQUENCY, 1.0, 0.032), circular(2.0 * FREQUENCY, -1.0, 0.032)];
-    let numerics = plane(160, 0.5, 0.14, 16.0);
+    let numerics = plane_numerics(160, 0.5, 0.14, 16.0);
     let plan = planned(&SHORT_RANGE, Field { pulses, sampled: None }, &numerics);
     let state = run(&plan);
     let left = state.series.populations.last().unwrap();
@@ -100,7 +87,7 @@ fn counter_rotating_colours_leave_out_every_third_harmonic() {
 /// the second order, 5.1e-6 at the third, beside the ionization threshold.
 #[test]
 fn a_circular_field_makes_no_harmonics() {
-    let numerics = plane(160, 0.5, 0.14, 16.0);
+    let numerics = plane_numerics(160, 0.5, 0.14, 16.0);
     let plan = planned(&SHORT_RANGE, field(circular(FREQUENCY, 1.0, 0.032)), &numerics);
     let state = run(&plan);
     let [plus, minus] =
@@ -174,11 +161,11 @@ fn projected(plan: &Plan, state: &State, grid: &Grid, momenta: &[Vec<f64>; 2], b
 #[test]
 fn the_momentum_map_is_that_of_a_box_that_nothing_leaves() {
     let light = || field(Pulse { ellipticity: 0.5, angle: 0.3, ..sin2_pulse(1.0, 0.08, 12.0) });
-    let mut small = plane(160, 0.6, 0.15, 26.0);
+    let mut small = plane_numerics(160, 0.6, 0.15, 26.0);
     small.trailing_time = 200.0;
     let (map, state, ionized) =
         mapped(&SHORT_RANGE, light(), &small, MapRange { largest: 2.0, spacing: 2.0 * PI / 384.0 });
-    let mut large = plane(640, 0.6, 0.15, 0.0);
+    let mut large = plane_numerics(640, 0.6, 0.15, 0.0);
     // The fastest pass the periodic edge after the pulse, which changes no momentum, and come nowhere near the atom.
     large.trailing_time = 90.0;
     let plan = planned(&SHORT_RANGE, light(), &large);
@@ -234,7 +221,7 @@ fn a_circular_pulse_makes_a_ring_of_the_vector_potential() {
     let well = Potential::GaussianWell { depth: 0.36, width: 2.0 };
     let (frequency, crest) = (0.015, 0.016);
     let light = field(Pulse { ellipticity: 1.0, ..sin2_pulse(frequency, crest / FRAC_1_SQRT_2, 3.0) });
-    let mut numerics = plane(256, 0.9, 0.25, 45.0);
+    let mut numerics = plane_numerics(256, 0.9, 0.25, 45.0);
     numerics.trailing_time = 250.0;
     let atom = Atom::on_plane(&well, &numerics.grid, &[GROUND]).unwrap();
     let keldysh = (2.0 * -atom.plane[0].energy).sqrt() * frequency / crest;

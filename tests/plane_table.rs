@@ -4,8 +4,8 @@ mod support;
 
 use std::sync::Arc;
 
-use support::{field, sin2_pulse};
-use tdse_core::choose::{AtomFacts, Pins, Wish, choose};
+use support::{field, sin2_pulse, wish};
+use tdse_core::choose::{AtomFacts, Pins, choose};
 use tdse_core::cubic::Cubic;
 use tdse_core::field::{Field, Pulse};
 use tdse_core::grid::Grid;
@@ -137,14 +137,7 @@ fn chosen(potential: &Potential, accuracy: f64) -> f64 {
     let facts = AtomFacts::on_plane(potential, &[GROUND]).unwrap();
     let problem = Problem { potential: potential.clone(), initial: InitialState::Single(0), field: light() };
     let pins = Pins::default();
-    let choice = choose(&Wish {
-        problem: &problem,
-        facts: &facts,
-        pins: &pins,
-        accuracy,
-        populations: 0,
-        max_photon: None,
-    });
+    let choice = choose(&wish(&problem, &facts, &pins, accuracy));
     assert_eq!(choice.findings, Vec::new());
     choice.numerics.grid.x.spacing
 }

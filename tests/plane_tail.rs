@@ -6,14 +6,12 @@ use std::f64::consts::{PI, TAU};
 use std::sync::Arc;
 
 use num_complex::Complex;
-use support::{field, sin2_pulse};
+use support::{field, plane_numerics, sin2_pulse};
 use tdse_core::field::Pulse;
 use tdse_core::grid::Grid;
 use tdse_core::outgoing::{MapRange, MomentumMap};
 use tdse_core::potential::Potential;
-use tdse_core::problem::{
-    Absorber, Gauge, InitialState, Numerics, PlaneLabel, Problem, Record, Scheme, Symmetry,
-};
+use tdse_core::problem::{InitialState, Numerics, PlaneLabel, Problem, Record, Symmetry};
 use tdse_core::refine::plane_model_atoms;
 use tdse_core::simulate::{Atom, Plan, State, advance};
 
@@ -172,17 +170,6 @@ fn the_projection_of_a_free_packet_is_its_fourier_transform() {
     }
 }
 
-fn plane(points: usize, spacing: f64, time_step: f64, width: f64) -> Numerics {
-    Numerics {
-        grid: Grid::square(points, spacing),
-        time_step,
-        scheme: Scheme::FourthOrder,
-        gauge: Gauge::Length,
-        absorber: if width > 0.0 { Absorber::Round { width } } else { Absorber::None },
-        trailing_time: 0.0,
-    }
-}
-
 /// On two threads: the bits are the same.
 fn propagated(problem: &Problem, numerics: &Numerics, range: Option<MapRange>) -> (Plan, State) {
     let atom = Arc::new(Atom::on_plane(&problem.potential, &numerics.grid, &[GROUND]).unwrap());
@@ -283,9 +270,9 @@ fn differences(
 fn a_line_of_the_soft_core_stands_where_it_should() {
     let light = field(sin2_pulse(1.0, 0.08, 12.0));
     let problem = Problem { potential: SOFT, initial: InitialState::Single(0), field: light };
-    let mut small = plane(192, 0.5, 0.12, 26.0);
+    let mut small = plane_numerics(192, 0.5, 0.12, 26.0);
     small.trailing_time = 200.0;
-    let large = plane(528, 0.5, 0.12, 0.0);
+    let large = plane_numerics(528, 0.5, 0.12, 0.0);
     let momenta: Vec<f64> = (0..31).map(|n| 0.7 + 0.02 * f64::from(n)).collect();
     let found = &differences(&problem, &[small], &large, (&momenta, 4))[0];
     assert!(found.shift.abs() < 1e-4, "mean energy off by {}", found.shift);
@@ -300,11 +287,11 @@ fn a_line_of_the_soft_core_stands_where_it_should() {
 fn several_photons_on_the_soft_core() {
     let light = field(Pulse { ellipticity: 0.5, angle: 0.3, ..sin2_pulse(0.3, 0.1, 6.0) });
     let boxes = [(192, 26.0), (288, 26.0), (384, 32.0)].map(|(points, width)| {
-        let mut small = plane(points, 0.5, 0.12, width);
+        let mut small = plane_numerics(points, 0.5, 0.12, width);
         small.trailing_time = 300.0;
         small
     });
-    let large = plane(800, 0.5, 0.12, 0.0);
+    let large = plane_numerics(800, 0.5, 0.12, 0.0);
     let momenta: Vec<f64> = (0..41).map(|n| 0.4 + 0.025 * f64::from(n)).collect();
     let found = |potential: &Potential, boxes: &[Numerics]| {
         let initial = InitialState::Single(0);

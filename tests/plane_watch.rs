@@ -5,8 +5,8 @@ mod support;
 
 use std::sync::Arc;
 
-use support::{field, sin2_pulse};
-use tdse_core::choose::{AtomFacts, PinnedAbsorber, Pins, Wish, choose};
+use support::{field, sin2_pulse, wish};
+use tdse_core::choose::{AtomFacts, PinnedAbsorber, Pins, choose};
 use tdse_core::field::Pulse;
 use tdse_core::grid::Grid;
 use tdse_core::potential::Potential;
@@ -37,14 +37,7 @@ fn chosen() -> Numerics {
         trailing_time: Some(30.0),
         ..Pins::default()
     };
-    let wish = Wish {
-        problem: &problem,
-        facts: &facts,
-        pins: &pins,
-        accuracy: ACCURACY,
-        populations: 0,
-        max_photon: None,
-    };
+    let wish = wish(&problem, &facts, &pins, ACCURACY);
     let numerics = choose(&wish).numerics;
     println!("{numerics:?}");
     numerics

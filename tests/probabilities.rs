@@ -12,14 +12,12 @@ use tdse_core::choose::{
     AtomFacts, Electrons as CountedElectrons, Energies, PinnedAbsorber, Pins, Wish, choose,
     choose_for_electrons, fastest_electron,
 };
-use tdse_core::field::{Envelope, Pulse};
 use tdse_core::grid::Grid;
 use tdse_core::potential::Potential;
 use tdse_core::problem::{ElectronMethod, Numerics, Problem};
 use tdse_core::simulate::Atom;
 use tdse_core::spectrum::{ContinuumAmplitude, Electrons, EnergyAxis, momenta_of, without_bound};
 use tdse_core::stationary::{BoundSeries, ScatteringStates, bound_states};
-use tdse_core::units::{self, Quantity};
 
 /// ∫₀^{nπ} (1 - cos u)/u du for n = 0 … `most`, by Simpson's rule.
 fn cosine_integrals(most: usize) -> Vec<f64> {
@@ -111,14 +109,9 @@ fn what_a_box_lacks_of_the_levels_is_added() {
     }
 }
 
-fn light(nanometres: f64, intensity: f64, cycles: f64) -> Pulse {
-    let frequency = units::angular_frequency(nanometres * Quantity::Length.unit("nm").unwrap().factor);
-    pulse(frequency, units::peak_field(intensity), Envelope::Sin2 { duration: cycles * 2.0 * PI / frequency })
-}
-
 fn chosen(problem: &Problem, accuracy: f64, pins: &Pins) -> Numerics {
     let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
-    choose(&Wish { problem, facts: &facts, pins, accuracy, populations: 1, max_photon: None }).numerics
+    choose(&Wish { populations: 1, ..wish(problem, &facts, pins, accuracy) }).numerics
 }
 
 fn ionized(problem: &Problem, numerics: &Numerics) -> f64 {
@@ -214,7 +207,7 @@ fn judge_peaks(name: &str, problem: &Problem) {
     let electrons =
         CountedElectrons { energies, fastest: fastest_electron(problem, &facts).max(energies.largest) };
     let chosen = |accuracy, pins: &Pins| {
-        let wish = Wish { problem, facts: &facts, pins, accuracy, populations: 0, max_photon: None };
+        let wish = wish(problem, &facts, pins, accuracy);
         choose_for_electrons(&wish, &electrons, ElectronMethod::ScatteringStates).numerics
     };
     let finest = chosen(1e-6, &Pins::default());

@@ -5,18 +5,16 @@
 
 mod support;
 
-use std::f64::consts::PI;
 use std::fmt::Write;
 
 use support::*;
-use tdse_core::choose::{AtomFacts, FLOOR, Pins, Wish, choose};
-use tdse_core::field::{Envelope, Pulse};
+use tdse_core::choose::{AtomFacts, FLOOR, Pins, choose};
 use tdse_core::grid::good_length;
 use tdse_core::problem::{Absorber, Numerics, Problem};
 use tdse_core::spectrum::{Window, order_yields};
 use tdse_core::stationary::{Softenable, tune_softening};
 use tdse_core::step::resonant_step;
-use tdse_core::units::{self, HARTREE_EV, Quantity};
+use tdse_core::units::HARTREE_EV;
 
 const ACCURACY: f64 = 1e-4;
 /// Factors by which a choice is relaxed.
@@ -26,13 +24,7 @@ fn scenario(ionization_energy: f64, nanometres: f64, intensity: f64, cycles: f64
     let binding = ionization_energy / HARTREE_EV;
     let family = Softenable::SoftCoulomb { charge: 1.0 };
     let softening = tune_softening(&family, 0, -binding).unwrap();
-    let frequency = units::angular_frequency(nanometres * Quantity::Length.unit("nm").unwrap().factor);
-    let pulse: Pulse = pulse(
-        frequency,
-        units::peak_field(intensity),
-        Envelope::Sin2 { duration: cycles * 2.0 * PI / frequency },
-    );
-    (ground(family.with_softening(softening), field(pulse)), binding)
+    (ground(family.with_softening(softening), field(light(nanometres, intensity, cycles))), binding)
 }
 
 struct Found {
@@ -104,14 +96,7 @@ fn how_far_each_choice_can_be_relaxed() {
     for (name, (problem, binding)) in scenarios {
         let facts = AtomFacts::new(&problem.potential, &problem.initial).unwrap();
         let pins = Pins::default();
-        let wish = Wish {
-            problem: &problem,
-            facts: &facts,
-            pins: &pins,
-            accuracy: ACCURACY,
-            populations: 0,
-            max_photon: None,
-        };
+        let wish = wish(&problem, &facts, &pins, ACCURACY);
         let mut base = choose(&wish).numerics;
         let (start, end) = problem.field.interval();
         // Steps that all the factors divide: every relaxed run ends with the others.

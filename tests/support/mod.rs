@@ -5,6 +5,7 @@ use std::f64::consts::PI;
 use std::sync::Arc;
 
 use num_complex::Complex;
+use tdse_core::choose::{AtomFacts, Pins, Wish};
 use tdse_core::field::{Envelope, Field, Pulse};
 use tdse_core::grid::Grid;
 use tdse_core::potential::{Potential, PotentialOnGrid};
@@ -34,14 +35,19 @@ pub fn pulse(frequency: f64, peak_field: f64, envelope: Envelope) -> Pulse {
     }
 }
 
+/// The same of `nanometres` and W/cm².
+pub fn light(nanometres: f64, intensity: f64, cycles: f64) -> Pulse {
+    let frequency = units::angular_frequency(nanometres * units::Quantity::Length.unit("nm").unwrap().factor);
+    sin2_pulse(frequency, units::peak_field(intensity), cycles)
+}
+
 pub fn field(pulse: Pulse) -> Field {
     Field { pulses: vec![pulse], sampled: None }
 }
 
 /// The run DESIGN calls typical: 800 nm, 1e14 W/cm², 4 cycles.
 pub fn near_infrared() -> Pulse {
-    let frequency = units::angular_frequency(800.0 * units::Quantity::Length.unit("nm").unwrap().factor);
-    sin2_pulse(frequency, units::peak_field(1e14), 4.0)
+    light(800.0, 1e14, 4.0)
 }
 
 pub fn numerics(points: usize, spacing: f64, time_step: f64) -> Numerics {
@@ -53,6 +59,20 @@ pub fn numerics(points: usize, spacing: f64, time_step: f64) -> Numerics {
         absorber: Absorber::None,
         trailing_time: 0.0,
     }
+}
+
+/// In two dimensions; a width of zero is no absorber.
+pub fn plane_numerics(points: usize, spacing: f64, time_step: f64, width: f64) -> Numerics {
+    Numerics {
+        grid: Grid::square(points, spacing),
+        absorber: if width > 0.0 { Absorber::Round { width } } else { Absorber::None },
+        ..numerics(points, spacing, time_step)
+    }
+}
+
+/// What an accuracy asks for when neither populations nor a photon energy is asked for.
+pub fn wish<'a>(problem: &'a Problem, facts: &'a AtomFacts, pins: &'a Pins, accuracy: f64) -> Wish<'a> {
+    Wish { problem, facts, pins, accuracy, populations: 0, max_photon: None }
 }
 
 pub fn ground(potential: Potential, field: Field) -> Problem {

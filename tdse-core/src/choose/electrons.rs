@@ -161,12 +161,7 @@ pub fn electron_bytes(
 pub fn tail_of(problem: &Problem, numerics: &Numerics) -> TailLeft {
     let strength = Strength::of(&problem.field);
     let inner = 0.5 * numerics.grid.x.extent() - numerics.absorber.width();
-    tail_left(problem.potential.far_charge(), inner, frequency(&strength), strength.quiver)
-}
-
-/// A/α of the whole field: its frequency where there is one pulse, hartree; never zero.
-fn frequency(strength: &Strength) -> f64 {
-    if strength.quiver > 0.0 { strength.vector_potential / strength.quiver } else { 1.0 }
+    tail_left(problem.potential.far_charge(), inner, strength.frequency(), strength.quiver)
 }
 
 /// How far from zero the fastest electrons come, bohr.
@@ -178,8 +173,8 @@ fn flight(wish: &Wish, electrons: &Electrons, strength: &Strength) -> f64 {
 
 /// Distance of the absorber at which the ion's pull beyond it is weak enough, bohr.
 pub(super) fn quiet(problem: &Problem, strength: &Strength) -> f64 {
-    let at_one = tail_left(problem.potential.far_charge(), 1.0, frequency(strength), strength.quiver);
-    (at_one.sideband / SIDEBAND).sqrt().max((at_one.shift / (SHIFT * frequency(strength))).cbrt())
+    let at_one = tail_left(problem.potential.far_charge(), 1.0, strength.frequency(), strength.quiver);
+    (at_one.sideband / SIDEBAND).sqrt().max((at_one.shift / (SHIFT * strength.frequency())).cbrt())
 }
 
 /// Points of the waves of both sides that a sample overlaps with.

@@ -49,8 +49,9 @@ fn bound_flight(charge: f64, duration: f64) -> f64 {
     (4.5 * charge * duration * duration).cbrt()
 }
 
-/// Accuracy of the ionization probability with the absorber just where electrons that stay bound come; it goes with the third
-/// power of the distance (measured on four pulses and soft cores: 1e-6 to 2e-5, no better than 1e-6 at four times the distance).
+/// Accuracy of the ionization probability with the absorber just where electrons that stay bound come, taken to go with the third
+/// power of the distance (measured on soft cores: within the accuracies of `tests/probabilities.rs` with half to one and a half
+/// orders to spare, and at half the distance 1e-4 for the most ionized).
 const BOUND_ACCURACY: f64 = 1e-4;
 
 /// Maxima of the field over all envelopes, free of phases and delays.
@@ -80,6 +81,11 @@ impl Strength {
             sum.add_table(sampled);
         }
         sum
+    }
+
+    /// A/α of the whole field: its frequency where there is one pulse, hartree; never zero.
+    pub(super) fn frequency(&self) -> f64 {
+        if self.quiver > 0.0 { self.vector_potential / self.quiver } else { 1.0 }
     }
 
     /// Largest |E| and |A| of a table, and the largest excursion ∫A from the middle of its range.
@@ -162,9 +168,9 @@ impl Needs {
         let stiffness = stiffness(potential);
         let kink = match wish.facts.dimensions {
             1 => {
-                // Yields go with the ionization energy as e^{-4κ/E0} does, or as the phase of a returning electron, which is
-                // away for a period at most in what counts, or of the whole run.
-                let period = TAU * strength.quiver / strength.vector_potential;
+                // Yields go with the ionization energy as e^{-4κ/E0} does, or as the phase of an electron that returns, within a
+                // period in what counts (measured on the longest wave of the tests' twenty configurations), or of the whole run.
+                let period = TAU / strength.frequency();
                 let kappa = (2.0 * wish.facts.ionization_energy()).max(0.0).sqrt();
                 let sensitivity = (4.0 * kappa / strength.field).max(period).min(duration).max(1.0);
                 kink_spacing(potential, wish.accuracy / sensitivity)

@@ -137,8 +137,9 @@ pub fn order_yields(
 /// Axis to half a photon beyond the last order: four samples per resolvable width 2π/length, an even number per half photon. Order q
 /// stands at its index q (points - 1)/(orders + ½).
 pub fn sampled_by_order(schedule: &Schedule, photon: f64, orders: usize) -> EnergyAxis {
-    let length = schedule.time_step * schedule.steps as f64;
-    let per_half = 2 * (photon * length / (2.0 * PI)).ceil().max(4.0) as usize;
+    // Of the time asked for, as the windows: runs that differ in their step alone have one axis. Whole cycles within rounding are whole.
+    let cycles = photon * (schedule.end - schedule.start) / (2.0 * PI);
+    let per_half = 2 * (cycles - 1e-9).ceil().max(4.0) as usize;
     EnergyAxis { step: 0.5 * photon / per_half as f64, points: (2 * orders + 1) * per_half + 1 }
 }
 
